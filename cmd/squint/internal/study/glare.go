@@ -1,0 +1,349 @@
+package study
+
+import (
+	"fmt"
+	"math"
+	"sync"
+
+	"gonum.org/v1/gonum/spatial/r3"
+
+	"squint/glare"
+	"squint/glare/verdict"
+	"squint/scene"
+	"squint/trace/annual"
+	"squint/trace/coeff"
+)
+
+// ViewResult is one viewpoint's year. Series have one value per record; hours
+// in use without daylight hold 0, hours not in use NaN.
+type ViewResult struct {
+	Viewpoint scene.Viewpoint
+	DGP       []float32
+	StdErr    []float32 // of DGP, jackknife over the batches
+	Ev        []float32 // lx
+	InRange   []bool    // DGP within the range of its data
+	Cause     []int16   // index into Causes, -1 where DGP is low
+	Causes    []Cause
+
+	Worst *Worst // nil where no hour in use has daylight
+
+	// Levels holds the verdict of every EN 17037 level; Asked is the level
+	// that the project asks for, -1 for none.
+	Levels []verdict.Verdict
+	Hours  []verdict.GlareHours
+	Asked  int
+	// When says in words when and why it glares at the asked level.
+	When string
+}
+
+// Cause is what carries most of an hour's glare.
+type Cause struct {
+	Kind CauseKind
+	Name string // of an opening or part; "" where it has none
+	Via  string // opening looked through, "" for none
+}
+
+// CauseKind tells sun from sky from surfaces.
+type CauseKind int
+
+// The kinds of cause.
+const (
+	Brightness CauseKind = iota // no source stands out, the view as a whole is bright
+	SunDisc
+	SkySeen
+	GroundSeen
+	Sunlit  // sun on a surface
+	Surface // a surface lit by sky or by other surfaces
+)
+
+// String is the cause in words, to follow "mostly".
+func (c Cause) String() string {
+	via := ""
+	if c.Via != "" {
+		via = " through " + c.Via
+	}
+	switch c.Kind {
+	case SunDisc:
+		return "the sun's disc" + via
+	case SkySeen:
+		return "the sky" + via
+	case GroundSeen:
+		return "the ground outside" + via
+	case Sunlit:
+		return "sun on " + c.Name + via
+	case Surface:
+		return c.Name + via
+	}
+	return "the brightness of the whole view"
+}
+
+// Worst is the hour of highest DGP with its picture.
+type Worst struct {
+	Moment   *scene.Moment
+	DGP, Ev  float64
+	StdErr   float64
+	Result   glare.Result
+	Lum      []float32 // pooled luminance, the disc not in it
+	Disc     annual.Disc
+	InsideOf *coeff.Eye
+}
+
+// causeFrom is the DGP from which an hour's cause is looked for: the strictest
+// level's limit. Source: EN 17037:2018 annex E.
+const causeFrom = 0.35
+
+// glareSink turns frames into series as they come.
+type glareSink struct {
+	in     *Input
+	eyes   []*coeff.Eye
+	field  *glare.Field
+	opt    glare.Options
+	views  []ViewResult
+	mu     []sync.Mutex // by view
+	cause  []map[Cause]int16
+	work   []sinkScratch // by worker
+	discOf func(e *coeff.Eye, d annual.Disc) []glare.Disc
+}
+
+type sinkScratch struct {
+	scratch glare.Scratch
+	rest    []float32 // leave-one-out image
+	discs   []glare.Disc
+}
+
+func newGlareSink(in *Input, eyes []*coeff.Eye, workers int) *glareSink {
+	g := &glareSink{in: in, eyes: eyes, views: make([]ViewResult, len(eyes)), mu: make([]sync.Mutex, len(eyes)),
+		cause: make([]map[Cause]int16, len(eyes)), work: make([]sinkScratch, workers)}
+	if len(eyes) > 0 {
+		g.field = glare.NewField(eyes[0].View)
+	}
+	for i := range g.views {
+		v := &g.views[i]
+		v.Viewpoint = in.Scene.Viewpoints[i]
+		n := len(in.Climate.SinAltitude)
+		v.DGP, v.StdErr, v.Ev = make([]float32, n), make([]float32, n), make([]float32, n)
+		v.InRange, v.Cause = make([]bool, n), make([]int16, n)
+		for h := range v.DGP {
+			v.DGP[h], v.StdErr[h], v.Ev[h], v.Cause[h] = nan32(), nan32(), nan32(), -1
+		}
+		for _, h := range in.Occupied {
+			v.DGP[h], v.StdErr[h], v.Ev[h] = 0, 0, 0
+		}
+		g.cause[i] = map[Cause]int16{}
+	}
+	return g
+}
+
+// take evaluates one frame: DGP of the pooled image, its standard error by
+// the jackknife over batches, and above causeFrom what carries it.
+// Source of the error: Quenouille 1956, Notes on bias in estimation,
+// Biometrika 43; Tukey 1958 (abstract), Annals of Mathematical Statistics 29.
+func (g *glareSink) take(worker int, f *annual.Frame) {
+	w := &g.work[worker]
+	e := g.eyes[f.Eye]
+	v := &g.views[f.Eye]
+	w.discs = toView(w.discs[:0], e, f.Disc)
+	dgp, ev := glare.DGPOnly(g.field, f.Mean, w.discs, g.opt, &w.scratch)
+	se := g.jackknife(w, e, f)
+	h := f.Moment.Hour
+	v.DGP[h], v.Ev[h], v.StdErr[h] = float32(dgp), float32(ev), float32(se)
+	v.InRange[h] = glare.InRange(dgp, ev)
+	g.mu[f.Eye].Lock()
+	defer g.mu[f.Eye].Unlock()
+	worst := v.Worst == nil || dgp > v.Worst.DGP || (dgp == v.Worst.DGP && h < v.Worst.Moment.Hour)
+	if dgp < causeFrom && !worst {
+		return
+	}
+	w.discs = toView(w.discs[:0], e, f.Disc)
+	full := glare.Evaluate(g.field, f.Mean, w.discs, g.opt, &w.scratch)
+	if dgp >= causeFrom {
+		c := g.causeOf(e, f, &full)
+		id, ok := g.cause[f.Eye][c]
+		if !ok {
+			id = int16(len(g.cause[f.Eye]))
+			g.cause[f.Eye][c] = id
+			v.Causes = append(v.Causes, c)
+		}
+		v.Cause[h] = id
+	}
+	if worst {
+		v.Worst = &Worst{Moment: f.Moment, DGP: dgp, Ev: ev, StdErr: se, Result: full,
+			Lum: append([]float32(nil), f.Mean...), Disc: f.Disc, InsideOf: e}
+	}
+}
+
+// jackknife is the standard error of the pooled DGP.
+func (g *glareSink) jackknife(w *sinkScratch, e *coeff.Eye, f *annual.Frame) float64 {
+	n := len(f.Batch)
+	if n < 2 {
+		return math.NaN()
+	}
+	if len(w.rest) != len(f.Mean) {
+		w.rest = make([]float32, len(f.Mean))
+	}
+	all, without := float32(n)/float32(n-1), 1/float32(n-1)
+	var sum, square float64
+	for b := range f.Batch {
+		batch := f.Batch[b]
+		for _, px := range e.Inside {
+			w.rest[px] = max(0, f.Mean[px]*all-batch[px]*without)
+		}
+		w.discs = toView(w.discs[:0], e, withoutBatch(f.Discs, b))
+		d, _ := glare.DGPOnly(g.field, w.rest, w.discs, g.opt, &w.scratch)
+		sum += d
+		square += d * d
+	}
+	mean := sum / float64(n)
+	return math.Sqrt(math.Max(0, (square/float64(n)-mean*mean)*float64(n-1)))
+}
+
+// withoutBatch pools the discs of all batches but one.
+func withoutBatch(discs []annual.Disc, leave int) annual.Disc {
+	var omega, flux float64
+	var dir r3.Vec
+	for b, d := range discs {
+		if b == leave || d.OmegaSr == 0 {
+			continue
+		}
+		omega += d.OmegaSr
+		flux += d.OmegaSr * d.Luminance
+		dir = d.Dir
+	}
+	if omega == 0 {
+		return annual.Disc{}
+	}
+	return annual.Disc{Dir: dir, OmegaSr: omega / float64(len(discs)-1), Luminance: flux / omega}
+}
+
+func toView(out []glare.Disc, e *coeff.Eye, d annual.Disc) []glare.Disc {
+	if d.OmegaSr == 0 {
+		return out
+	}
+	return append(out, glare.Disc{Dir: e.View.Local(d.Dir), OmegaSr: d.OmegaSr, Luminance: d.Luminance})
+}
+
+// causeOf names what carries most of the glare.
+func (g *glareSink) causeOf(e *coeff.Eye, f *annual.Frame, r *glare.Result) Cause {
+	if len(r.Sources) == 0 {
+		return Cause{Kind: Brightness}
+	}
+	// Without its sources the view may be over the limit all the same.
+	if glare.DGP(r.EIndirect, 0) >= causeFrom {
+		return Cause{Kind: Brightness}
+	}
+	top := &r.Sources[0]
+	if top.Disc {
+		return Cause{Kind: SunDisc, Via: g.openingTowards(e, f.Disc.Dir)}
+	}
+	// Within the source, the share of each thing seen, weighted by what it
+	// sends to the eye.
+	number := map[int32]int{}
+	for p, px := range e.Inside {
+		number[px] = p
+	}
+	weight := map[Cause]float64{}
+	var order []Cause
+	for _, px := range top.Pixels {
+		seen := e.Seen[number[px]]
+		c := g.causeOfPixel(seen, f.Sunlit[px] > 0.5*f.Mean[px])
+		if _, ok := weight[c]; !ok {
+			order = append(order, c)
+		}
+		weight[c] += float64(f.Mean[px]) * g.field.Omega[px]
+	}
+	best := order[0]
+	for _, c := range order {
+		if weight[c] > weight[best] {
+			best = c
+		}
+	}
+	return best
+}
+
+func (g *glareSink) causeOfPixel(s coeff.Seen, sunlit bool) Cause {
+	c := Cause{Via: g.openingOf(s.Via)}
+	switch s.Part {
+	case coeff.SkySeen:
+		c.Kind = SkySeen
+		return c
+	case coeff.GroundSeen:
+		c.Kind = GroundSeen
+		return c
+	}
+	part := g.in.Scene.Parts[s.Part]
+	if part.Kind == scene.GroundPlane {
+		c.Kind = GroundSeen
+		return c
+	}
+	c.Kind, c.Name = Surface, part.Name
+	if sunlit {
+		c.Kind = Sunlit
+	}
+	return c
+}
+
+// openingOf names the opening that a part belongs to.
+func (g *glareSink) openingOf(part int32) string {
+	if part < 0 {
+		return ""
+	}
+	p := g.in.Scene.Parts[part]
+	if p.Opening >= 0 {
+		return g.in.Scene.Openings[p.Opening].Name
+	}
+	return p.Name
+}
+
+// openingTowards names the opening that a direction from the eye leads
+// through.
+func (g *glareSink) openingTowards(e *coeff.Eye, dir r3.Vec) string {
+	for _, o := range g.in.Scene.Openings {
+		r := o.Rect
+		co := r3.Dot(dir, r.Outward)
+		if co <= 0 {
+			continue
+		}
+		t := r3.Dot(r3.Sub(r.Origin, e.View.Position), r.Outward) / co
+		q := r3.Sub(r3.Add(e.View.Position, r3.Scale(t, dir)), r.Origin)
+		a, b := r3.Dot(q, r.Across), r3.Dot(q, r.Up)
+		if t > 0 && a >= 0 && b >= 0 && a <= r.WidthM && b <= r.HeightM {
+			return o.Name
+		}
+	}
+	return ""
+}
+
+// judgeViews brackets each view's hours over the limits.
+func (r *Result) judgeViews(y *year) {
+	r.Views = y.glare.views
+	z := verdict.T(confidence, max(len(r.Views), 1), max(r.Project.Simulation.Batches-1, 1))
+	r.Settings.ZViews = z
+	for i := range r.Views {
+		v := &r.Views[i]
+		v.sortCauses()
+		v.Asked = -1
+		dgp, se := make([]float32, len(r.Occupied)), make([]float32, len(r.Occupied))
+		for k, h := range r.Occupied {
+			dgp[k], se[k] = v.DGP[h], v.StdErr[h]
+		}
+		for k, l := range verdict.ProtectionLevels {
+			hours := verdict.CountGlare(dgp, se, l.DGP, z)
+			when := v.when(r, l.DGP)
+			out := verdict.Glare(fmt.Sprintf("%s, looking %s", v.Viewpoint.Name, r.bearing(v.Viewpoint.Direction)), l, hours, when)
+			v.Hours = append(v.Hours, hours)
+			v.Levels = append(v.Levels, out)
+			if l.Name == r.Project.Criteria.Glare {
+				v.Asked, v.When = k, when
+				r.Verdicts = append(r.Verdicts, out)
+			}
+		}
+	}
+}
+
+// bearing is the compass direction of a line of sight in words.
+func (r *Result) bearing(d r3.Vec) string {
+	az := math.Atan2(d.X, d.Y)*180/math.Pi + r.Project.Site.NorthDeg
+	names := []string{"north", "north-east", "east", "south-east", "south", "south-west", "west", "north-west"}
+	k := int(math.Floor(math.Mod(az+22.5+720, 360) / 45))
+	return names[k]
+}

@@ -1,0 +1,114 @@
+package study
+
+import (
+	"math"
+
+	"squint/glare/daylight"
+	"squint/glare/verdict"
+	"squint/scene"
+)
+
+// PlaneResult is one work plane's year. Series are [sensor][record] in lx, 0
+// at night.
+type PlaneResult struct {
+	Plane     scene.WorkPlane
+	E, StdErr [][]float32
+	Direct    [][]float32
+
+	DA, CDA []float64 // by sensor, shares
+	UDI     []daylight.UsefulShares
+
+	MeanDA, MeanCDA float64
+	MeanUDI         daylight.UsefulShares
+
+	Factors     daylight.FactorStats
+	Factor      []float64 // by sensor, share
+	FactorError []float64
+
+	SDA       daylight.SpatialResult
+	ASE       daylight.ExposureResult
+	Provision []daylight.ProvisionResult // by level
+	Levels    []verdict.Verdict
+	Asked     int // index of the level asked for, -1 for none
+}
+
+// daThresholdLx is the threshold of DA and cDA; 300 lx as in IES LM-83-12 and
+// EN 17037:2018's minimum target.
+const daThresholdLx = 300
+
+// judgePlanes spreads the sensors' series over the year and counts.
+func (r *Result) judgePlanes(y *year) {
+	looks := max(r.Scene.Sensors(), 1)
+	z := verdict.T(confidence, looks, max(r.Project.Simulation.Batches-1, 1))
+	r.Settings.ZSensors = z
+	first := 0
+	for _, w := range r.Scene.WorkPlanes {
+		n := len(w.Sensors)
+		p := PlaneResult{Plane: w, Asked: -1}
+		p.E = r.spread(y.light.E[first : first+n])
+		p.StdErr = r.spread(y.light.StdErr[first : first+n])
+		p.Direct = r.spread(y.light.Direct[first : first+n])
+		p.Factor, p.FactorError = y.factors[first:first+n], y.factorE[first:first+n]
+		first += n
+		r.judgePlane(&p, z)
+		r.Planes = append(r.Planes, p)
+	}
+}
+
+func (r *Result) spread(byMoment [][]float32) [][]float32 {
+	out := make([][]float32, len(byMoment))
+	for s := range byMoment {
+		out[s] = make([]float32, len(r.Climate.SinAltitude))
+		for k, m := range r.Climate.Moments {
+			out[s][m.Hour] = byMoment[s][k]
+		}
+	}
+	return out
+}
+
+func (r *Result) judgePlane(p *PlaneResult, z float64) {
+	for s := range p.E {
+		p.DA = append(p.DA, daylight.DA(p.E[s], r.Occupied, daThresholdLx))
+		p.CDA = append(p.CDA, daylight.CDA(p.E[s], r.Occupied, daThresholdLx))
+		p.UDI = append(p.UDI, daylight.UDI(p.E[s], r.Occupied, daylight.DefaultBins))
+	}
+	p.MeanDA, p.MeanCDA = mean(p.DA), mean(p.CDA)
+	p.MeanUDI = meanUDI(p.UDI)
+	p.Factors = daylight.Factors(p.Factor)
+	plane := daylight.Plane{E: p.E, SE: p.StdErr, Z: z}
+	p.SDA = daylight.SDA(plane, r.Clock, daylight.DefaultSpatial)
+	p.ASE = daylight.ASE(p.Direct, r.Clock, daylight.DefaultExposure)
+	for k, l := range daylight.ProvisionLevels {
+		res := daylight.Provision(plane, r.Daylight, l)
+		v := verdict.Provision(p.Plane.Name, res)
+		p.Provision = append(p.Provision, res)
+		p.Levels = append(p.Levels, v)
+		if l.Name == r.Project.Criteria.Provision {
+			p.Asked = k
+			r.Verdicts = append(r.Verdicts, v)
+		}
+	}
+}
+
+func mean(v []float64) float64 {
+	if len(v) == 0 {
+		return math.NaN()
+	}
+	sum := 0.0
+	for _, x := range v {
+		sum += x
+	}
+	return sum / float64(len(v))
+}
+
+func meanUDI(v []daylight.UsefulShares) daylight.UsefulShares {
+	var m daylight.UsefulShares
+	n := float64(len(v))
+	for _, u := range v {
+		m.FellShort += u.FellShort / n
+		m.Supplementary += u.Supplementary / n
+		m.Autonomous += u.Autonomous / n
+		m.Exceeded += u.Exceeded / n
+	}
+	return m
+}

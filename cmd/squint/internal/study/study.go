@@ -1,0 +1,191 @@
+package study
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"io/fs"
+	"math"
+	"time"
+
+	"squint/glare/daylight"
+	"squint/glare/verdict"
+	"squint/scene"
+	"squint/scene/project"
+	"squint/trace"
+	"squint/trace/soundness"
+)
+
+// Options steer a run apart from the project.
+type Options struct {
+	Workers int // threads; results do not depend on it
+	// Progress, if not nil, hears of each stage's work done.
+	Progress func(stage Stage, done, total int)
+}
+
+// Stage names a part of the run.
+type Stage string
+
+// The stages, in order.
+const (
+	StageViews    Stage = "looking out of the viewpoints"
+	StageSurfaces Stage = "linking the surfaces"
+	StageSensors  Stage = "gathering at the sensors"
+	StageYear     Stage = "the year"
+)
+
+// Result is a finished study.
+type Result struct {
+	Project *project.Project
+	Scene   *scene.Scene
+	Climate *scene.Climate
+
+	Calendar                  daylight.Calendar
+	Occupied, Clock, Daylight daylight.Hours
+
+	Views  []ViewResult
+	Planes []PlaneResult
+
+	// Outcome combines the asked criteria; Verdicts are those, first what
+	// fails.
+	Outcome  verdict.Outcome
+	Verdicts []verdict.Verdict
+
+	// Warnings change how far a verdict may be trusted; Notes do not.
+	Warnings, Notes []string
+
+	Settings Settings
+}
+
+// Settings are the sizes of a run.
+type Settings struct {
+	Workers    int
+	TexelSides int
+	Coarsen    float64
+	Confidence float64
+	ZViews     float64 // standard errors by which a view's hours are bracketed
+	ZSensors   float64
+	Kernel     string
+}
+
+// confidence of the verdicts over all views together.
+const confidence = 0.95
+
+// Input is a project that was read, built and found sound: what is left can
+// be computed.
+type Input struct {
+	Project *project.Project
+	Scene   *scene.Scene
+	Climate *scene.Climate
+	World   *trace.World
+	Notes   []string
+
+	Calendar                  daylight.Calendar
+	Occupied, Clock, Daylight daylight.Hours
+}
+
+// Prepare reads everything and checks it. Errors are the user's to mend, all
+// of them joined.
+func Prepare(fsys fs.FS, name string, workers int) (*Input, error) {
+	p, err := project.Load(fsys, name)
+	if err != nil {
+		return nil, err
+	}
+	s, err := scene.Build(fsys, p)
+	if err != nil {
+		return nil, err
+	}
+	in := &Input{Project: p, Scene: s}
+	// The year decides the weekday of 1 January, so it is read before the
+	// hours are chosen; the moments are marked afterwards.
+	c, err := scene.ReadClimate(fsys, p, nil)
+	if err != nil {
+		return nil, err
+	}
+	in.Climate = c
+	in.Calendar = calendar(p, c)
+	in.Occupied = in.Calendar.Occupied()
+	in.Clock = in.Calendar.Clock(8, 18)
+	in.Daylight = daylight.SunHighest(c.SinAltitude, daylight.DaylightHoursPerYear)
+	if len(in.Occupied) == 0 {
+		return nil, fmt.Errorf("%s: occupancy: got no hour of use, want at least one; check days, from, to and holidays", p.File)
+	}
+	used := make([]bool, daylight.HoursPerYear)
+	for _, h := range in.Occupied {
+		used[h] = true
+	}
+	for _, m := range c.Moments {
+		m.Occupied = used[m.Hour]
+	}
+	in.World = trace.Accelerate(s, workers)
+	errs, notes := soundness.Receivers(in.World)
+	if len(errs) > 0 {
+		return nil, errors.Join(errs...)
+	}
+	in.Notes = append(append(append(in.Notes, s.Notes...), c.Notes...), notes...)
+	return in, nil
+}
+
+// calendar translates the project's occupancy.
+func calendar(p *project.Project, c *scene.Climate) daylight.Calendar {
+	first := c.Year.Moment(0, -0.5)
+	jan1 := time.Date(first.Year(), 1, 1, 0, 0, 0, 0, time.UTC)
+	k := daylight.Calendar{
+		FirstWeekday: (int(jan1.Weekday()) + 6) % 7,
+		Days:         p.Occupancy.Days,
+		FromH:        p.Occupancy.FromH,
+		ToH:          p.Occupancy.ToH,
+	}
+	for _, h := range p.Occupancy.Holidays {
+		k.Holidays = append(k.Holidays, daylight.MonthDay(h))
+	}
+	if f := p.Occupancy.DaylightSavingFrom; f != nil {
+		d := daylight.MonthDay(*f)
+		k.SavingFrom = &d
+	}
+	if f := p.Occupancy.DaylightSavingTo; f != nil {
+		d := daylight.MonthDay(*f)
+		k.SavingTo = &d
+	}
+	return k
+}
+
+// Run computes the study.
+func Run(ctx context.Context, in *Input, opt Options) (*Result, error) {
+	if opt.Workers < 1 {
+		opt.Workers = 1
+	}
+	if opt.Progress == nil {
+		opt.Progress = func(Stage, int, int) {}
+	}
+	r := &Result{
+		Project: in.Project, Scene: in.Scene, Climate: in.Climate,
+		Calendar: in.Calendar, Occupied: in.Occupied, Clock: in.Clock, Daylight: in.Daylight,
+		Notes: in.Notes,
+	}
+	y, err := computeYear(ctx, in, opt, r)
+	if err != nil {
+		return nil, err
+	}
+	r.judgeViews(y)
+	r.judgePlanes(y)
+	r.combine()
+	return r, nil
+}
+
+// combine orders the asked verdicts, failing ones first, and sums them up.
+func (r *Result) combine() {
+	var ordered []verdict.Verdict
+	for _, o := range []verdict.Outcome{verdict.NotMet, verdict.Undecided, verdict.Met} {
+		for _, v := range r.Verdicts {
+			if v.Outcome == o {
+				ordered = append(ordered, v)
+			}
+		}
+	}
+	r.Verdicts = ordered
+	r.Outcome = verdict.Combine(ordered)
+}
+
+// nan32 marks an hour that was not evaluated.
+func nan32() float32 { return float32(math.NaN()) }

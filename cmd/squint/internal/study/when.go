@@ -1,0 +1,105 @@
+package study
+
+import (
+	"fmt"
+	"sort"
+	"strings"
+)
+
+// sortCauses renumbers the causes in the order of their words, since frames
+// arrive in no certain order.
+func (v *ViewResult) sortCauses() {
+	order := make([]int, len(v.Causes))
+	for i := range order {
+		order[i] = i
+	}
+	sort.Slice(order, func(a, b int) bool { return v.Causes[order[a]].String() < v.Causes[order[b]].String() })
+	place := make([]int16, len(order))
+	causes := make([]Cause, len(order))
+	for k, i := range order {
+		place[i] = int16(k)
+		causes[k] = v.Causes[i]
+	}
+	for h, c := range v.Cause {
+		if c >= 0 {
+			v.Cause[h] = place[c]
+		}
+	}
+	v.Causes = causes
+}
+
+// mostly is the share of the hours that "mostly" speaks for.
+const mostly = 0.7
+
+// when says when the hours above a limit fall and what carries them: the
+// shortest span of clock hours and the shortest span of months that hold most
+// of them, and the commonest cause. Empty when there are none.
+func (v *ViewResult) when(r *Result, limit float64) string {
+	var byHour [24]int
+	var byMonth [12]int
+	byCause := map[int16]int{}
+	n := 0
+	for _, h := range r.Occupied {
+		if float64(v.DGP[h]) <= limit {
+			continue
+		}
+		n++
+		clock := (h%24 + int(r.Calendar.ClockShiftH(h/24))) % 24
+		byHour[clock]++
+		byMonth[r.Climate.Year.Records[h].Month-1]++
+		byCause[v.Cause[h]]++
+	}
+	if n == 0 {
+		return ""
+	}
+	from, to := span(byHour[:], n, false)
+	m0, m1 := span(byMonth[:], n, true)
+	cause, most := int16(-1), 0
+	for c := range v.Causes {
+		if byCause[int16(c)] > most {
+			cause, most = int16(c), byCause[int16(c)]
+		}
+	}
+	var b strings.Builder
+	fmt.Fprintf(&b, "mostly %d to %d h", from, to+1)
+	if m0 == m1 {
+		fmt.Fprintf(&b, " in %s", months[m0])
+	} else if (m1-m0+12)%12 < 11 {
+		fmt.Fprintf(&b, " from %s to %s", months[m0], months[m1])
+	} else {
+		b.WriteString(" all year")
+	}
+	if cause >= 0 {
+		fmt.Fprintf(&b, ", by %s", v.Causes[cause])
+	}
+	return b.String()
+}
+
+var months = [12]string{"January", "February", "March", "April", "May", "June", "July", "August", "September", "October", "November", "December"}
+
+// span finds the shortest run of bins that holds the share mostly of n; wrap
+// lets it run over the end.
+func span(bins []int, n int, wrap bool) (from, to int) {
+	need := int(mostly*float64(n) + 0.999)
+	best := len(bins) + 1
+	for i := range bins {
+		sum := 0
+		for k := 0; k < len(bins); k++ {
+			j := i + k
+			if j >= len(bins) {
+				if !wrap {
+					break
+				}
+				j -= len(bins)
+			}
+			sum += bins[j]
+			if sum >= need {
+				if k+1 < best {
+					best, from, to = k+1, i, j
+				}
+				break
+			}
+		}
+	}
+	return from, to
+}

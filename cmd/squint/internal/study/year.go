@@ -1,0 +1,198 @@
+package study
+
+import (
+	"context"
+	"fmt"
+	"math"
+	"sync"
+	"sync/atomic"
+
+	"squint/materials"
+	"squint/scene"
+	"squint/scene/sky"
+	"squint/trace"
+	"squint/trace/annual"
+	"squint/trace/bvh"
+	"squint/trace/coeff"
+	"squint/trace/surface"
+)
+
+// sensorPatchFactor divides the sky for sensors: 577 patches. Views use the
+// continuous sky where they see it.
+const sensorPatchFactor = 2
+
+// year is what the engine computed.
+type year struct {
+	eyes    []*coeff.Eye
+	glare   *glareSink
+	light   *annual.Daylight // [sensor][moment]
+	factors []float64        // daylight factor by sensor, share
+	factorE []float64        // its standard error
+}
+
+func computeYear(ctx context.Context, in *Input, opt Options, r *Result) (*year, error) {
+	sim := in.Project.Simulation
+	cfg := surface.Config{Batches: sim.Batches, Samples: sim.TexelSamples, Seed: sim.Seed, Workers: opt.Workers, Coarsen: 1}
+	t := surface.NewTransport(in.World, sky.NewPatches(1), cfg)
+	for estimate := memoryMiB(t, sim.Batches, opt.Workers); estimate > float64(sim.MemoryMiB); estimate = memoryMiB(t, sim.Batches, opt.Workers) {
+		cfg.Coarsen *= math.Max(1.1, math.Sqrt(estimate/float64(sim.MemoryMiB)))
+		if cfg.Coarsen > 100 {
+			return nil, fmt.Errorf("%s: simulation.memory_mib: got %d, want more: even texels 100 times larger do not fit", in.Project.File, sim.MemoryMiB)
+		}
+		t = surface.NewTransport(in.World, sky.NewPatches(1), cfg)
+	}
+	if cfg.Coarsen > 1 {
+		r.Warnings = append(r.Warnings, fmt.Sprintf("surfaces are cut %.1f times more coarsely than asked, to fit memory_mib = %d.", cfg.Coarsen, sim.MemoryMiB))
+	}
+	y := &year{}
+	if err := traceEyes(ctx, in, t, opt, y); err != nil {
+		return nil, err
+	}
+	rec := annual.Receivers{Eyes: y.eyes, Fine: sky.NewPatches(sensorPatchFactor)}
+	for _, w := range in.Scene.WorkPlanes {
+		rec.Sensors = append(rec.Sensors, w.Sensors...)
+	}
+	found, err := traceSensors(ctx, t, &rec, sim.SensorSamples, sim.Seed, opt)
+	if err != nil {
+		return nil, err
+	}
+	for _, e := range y.eyes {
+		t.Activate(e.Sides())
+	}
+	for _, g := range found {
+		for b := range g {
+			for _, l := range g[b].Links {
+				t.Activate([]int32{l.Side})
+			}
+		}
+	}
+	if err := t.Trace(ctx, func(done, known int) { opt.Progress(StageSurfaces, done, known) }); err != nil {
+		return nil, err
+	}
+	for _, e := range y.eyes {
+		e.Bind(t)
+	}
+	rec.Rows = make([]surface.Rows, sim.Batches)
+	for b := range rec.Rows {
+		rec.Rows[b] = surface.NewRows()
+		for _, g := range found {
+			rec.Rows[b].Add(t, &g[b])
+		}
+	}
+	r.Settings = Settings{Workers: opt.Workers, TexelSides: t.Len(), Coarsen: cfg.Coarsen, Confidence: confidence, Kernel: bvh.Kernel()}
+	if warnsMirroredSun(in.Scene) {
+		r.Warnings = append(r.Warnings, mirroredSunWarning)
+	}
+	y.glare = newGlareSink(in, y.eyes, max(opt.Workers, 1))
+	acfg := annual.Config{Workers: opt.Workers, Seed: sim.Seed}
+	total := len(in.Climate.Moments)
+	y.light, err = annual.Run(ctx, t, rec, in.Climate.Moments, acfg, y.glare.take, func(done int) { opt.Progress(StageYear, done, total) })
+	if err != nil {
+		return nil, err
+	}
+	return y, y.daylightFactors(ctx, t, rec, acfg)
+}
+
+// daylightFactors runs the one moment of the CIE overcast sky.
+func (y *year) daylightFactors(ctx context.Context, t *surface.Transport, rec annual.Receivers, cfg annual.Config) error {
+	if len(rec.Sensors) == 0 {
+		return nil
+	}
+	m, err := scene.Overcast(0)
+	if err != nil {
+		return err
+	}
+	d, err := annual.Run(ctx, t, rec, []*scene.Moment{m}, cfg, nil, nil)
+	if err != nil {
+		return err
+	}
+	for i := range d.E {
+		y.factors = append(y.factors, float64(d.E[i][0])/m.GlobalLx)
+		y.factorE = append(y.factorE, float64(d.StdErr[i][0])/m.GlobalLx)
+	}
+	return nil
+}
+
+// memoryMiB estimates the year's working set: three rows a texel side, batch
+// and worker, two fifths of all sides being reached in a closed room.
+func memoryMiB(t *surface.Transport, batches, workers int) float64 {
+	sides := float64(2*t.Texels.Len()) * 0.6
+	return sides * float64(batches*workers) * 3 * surface.Width * 4 / (1 << 20)
+}
+
+func traceEyes(ctx context.Context, in *Input, t *surface.Transport, opt Options, y *year) error {
+	sim := in.Project.Simulation
+	views := in.Scene.Viewpoints
+	y.eyes = make([]*coeff.Eye, len(views))
+	cfg := coeff.EyeConfig{Pixels: sim.FisheyePixels, SamplesPerPixel: sim.SamplesPerPixel, Batches: sim.Batches, Seed: sim.Seed}
+	return each(ctx, opt, StageViews, len(views), func(i int) error {
+		e, err := coeff.TraceEye(t, views[i], i, cfg)
+		if err != nil {
+			return fmt.Errorf("%s:%d: viewpoint %q: %w", in.Project.File, views[i].Line, views[i].Name, err)
+		}
+		y.eyes[i] = e
+		return nil
+	})
+}
+
+func traceSensors(ctx context.Context, t *surface.Transport, rec *annual.Receivers, samples int, seed uint64, opt Options) ([][]surface.Gathered, error) {
+	out := make([][]surface.Gathered, len(rec.Sensors))
+	err := each(ctx, opt, StageSensors, len(rec.Sensors), func(i int) error {
+		var found trace.Found
+		out[i] = coeff.TraceSensor(t, rec.Sensors[i], i, samples, seed, rec.Fine, &found)
+		return nil
+	})
+	return out, err
+}
+
+// each runs work for 0..n-1 on the workers and reports progress.
+func each(ctx context.Context, opt Options, stage Stage, n int, work func(i int) error) error {
+	errs := make([]error, n)
+	var next, done atomic.Int64
+	var wg sync.WaitGroup
+	for range opt.Workers {
+		wg.Add(1)
+		go func() {
+			defer wg.Done()
+			for ctx.Err() == nil {
+				i := int(next.Add(1)) - 1
+				if i >= n {
+					return
+				}
+				errs[i] = work(i)
+				opt.Progress(stage, int(done.Add(1)), n)
+			}
+		}()
+	}
+	wg.Wait()
+	if err := ctx.Err(); err != nil {
+		return err
+	}
+	for _, err := range errs {
+		if err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
+const mirroredSunWarning = "the project has mirroring finishes: the sun that mirrors throw into the room is not yet counted, so that light is missing and glare by mirrored sun is not seen; verdicts hold for the rest of the light only."
+
+// warnsMirroredSun reports whether a mirror other than glass is in the scene.
+func warnsMirroredSun(s *scene.Scene) bool {
+	used := make([]bool, len(s.Finishes))
+	for i := range s.Triangles {
+		used[s.Triangles[i].Finish] = true
+	}
+	for i, f := range s.Finishes {
+		if !used[i] {
+			continue
+		}
+		for _, side := range []materials.Side{materials.Front, materials.Back} {
+			if mirror, through := f.BSDF.Delta(side, 1); (mirror > 0 && through == 0) || f.BSDF.Gloss(side) != nil {
+				return true
+			}
+		}
+	}
+	return false
+}

@@ -1,0 +1,63 @@
+package verdict
+
+import (
+	"fmt"
+	"strings"
+)
+
+// Caveat goes with every list of verdicts.
+const Caveat = "Criteria quote published thresholds only; local codes and licensed practice decide."
+
+// Verdict is one criterion held against one room, work plane or view.
+type Verdict struct {
+	Criterion string // what is asked, with its thresholds
+	Source    string // the standard that states them
+	Subject   string // the view or work plane
+	Outcome   Outcome
+
+	Estimate, Surely, Possibly, Limit float64 // shares, 0 to 1
+
+	Text string // the finding, the number, the reason
+}
+
+// Combine is the outcome of a room: not met when any verdict is not met, met
+// when all are met, otherwise undecided. Of no verdicts: undecided.
+func Combine(all []Verdict) Outcome {
+	o := make([]Outcome, len(all))
+	for i, v := range all {
+		o[i] = v.Outcome
+	}
+	return Both(o...)
+}
+
+// percent writes a share: 5 %, 5.5 %.
+func percent(share float64) string { return number(100*share) + " %" }
+
+// spread writes a share with its bounds where they differ at the digit shown:
+// 5.5 %, 5.2 to 5.9.
+func spread(b Bracket) string { return between(b, ", ", "") }
+
+// spreadIn is spread within a sentence: 5.5 % (5.2 to 5.9).
+func spreadIn(b Bracket) string { return between(b, " (", ")") }
+
+func between(b Bracket, before, after string) string {
+	lo, mid, hi := number(100*b.Surely), number(100*b.Estimate), number(100*b.Possibly)
+	if lo == mid && mid == hi {
+		return mid + " %"
+	}
+	return fmt.Sprintf("%s %%%s%s to %s%s", mid, before, lo, hi, after)
+}
+
+// number has one decimal, and none where it would be zero.
+func number(x float64) string {
+	return strings.TrimSuffix(fmt.Sprintf("%.1f", x), ".0")
+}
+
+// whole groups thousands: 2,610.
+func whole(x float64) string {
+	s := fmt.Sprintf("%.0f", x)
+	for i := len(s) - 3; i > 0 && s[i-1] != '-'; i -= 3 {
+		s = s[:i] + "," + s[i:]
+	}
+	return s
+}

@@ -1,0 +1,218 @@
+package scene
+
+import (
+	"fmt"
+	"io/fs"
+	"math"
+	"time"
+
+	"gonum.org/v1/gonum/spatial/r3"
+
+	"squint/scene/photometry"
+	"squint/scene/project"
+	"squint/scene/sky"
+	"squint/scene/weather"
+)
+
+// Moment is one record of the year with daylight: the sun in the model frame,
+// its illuminance on a plane facing it, and the sky.
+type Moment struct {
+	Hour        int // index of the record, 0 is the first hour of 1 January
+	Time        time.Time
+	Month       int // 0 is January
+	Sun         r3.Vec
+	SunNormalLx float64
+	Sky         *sky.Sky
+	DiffuseLx   float64 // of the whole sky on a level plane
+	GlobalLx    float64 // with the sun, as far as the horizon line lets it pass
+	Occupied    bool    // viewpoints are judged at this hour
+}
+
+// Climate is a weather file made into moments.
+type Climate struct {
+	Year    *weather.Year
+	Site    sky.Site
+	Fit     weather.Fit
+	OffsetH float64 // used: the fit's, or the project's own
+	Moments []*Moment
+	// SinAltitude of the sun by record, for the choice of daylight hours;
+	// negative at night.
+	SinAltitude []float64
+	// DiffuseLx by record, 0 at night.
+	DiffuseLx []float64
+	// Clamped counts skies that the all-weather model does not cover and that
+	// were moved into its range.
+	Clamped int
+	Notes   []string
+}
+
+// minSkyLx is the diffuse illuminance below which a record counts as night:
+// such light changes no metric.
+const minSkyLx = 10
+
+// ReadClimate reads the project's weather file, finds the moment that each
+// record stands for, and makes suns and skies. occupied marks the records at
+// which viewpoints are judged; it may be nil.
+func ReadClimate(fsys fs.FS, p *project.Project, occupied []bool) (*Climate, error) {
+	y, err := weather.Read(fsys, p.Weather.File)
+	if err != nil {
+		return nil, err
+	}
+	override(&y.Site, p.Site)
+	c := &Climate{Year: y, Site: sky.Site{LatitudeDeg: y.Site.LatitudeDeg, LongitudeDeg: y.Site.LongitudeDeg, ElevationM: y.Site.ElevationM}}
+	var sunErr error
+	cz := func(t time.Time) float64 {
+		s, err := sky.SunAt(c.Site, t)
+		if err != nil {
+			sunErr = err
+			return math.NaN()
+		}
+		return s.Direction.Z
+	}
+	c.Fit = y.FitMoment(cz)
+	if sunErr != nil {
+		return nil, fmt.Errorf("%s: sun: %w", y.File, sunErr)
+	}
+	c.OffsetH = c.Fit.OffsetH
+	if p.Weather.MomentOffsetH != nil {
+		c.OffsetH = *p.Weather.MomentOffsetH
+	}
+	horizon, hasHorizon, err := turnedHorizon(p)
+	if err != nil {
+		return nil, err
+	}
+	north := p.Site.NorthDeg * math.Pi / 180
+	c.SinAltitude = make([]float64, len(y.Records))
+	c.DiffuseLx = make([]float64, len(y.Records))
+	for i := range y.Records {
+		m, sinAlt, clamped, err := c.moment(i, cz)
+		if err != nil {
+			return nil, err
+		}
+		c.SinAltitude[i] = sinAlt
+		if m == nil {
+			continue
+		}
+		if clamped {
+			c.Clamped++
+		}
+		c.DiffuseLx[i] = m.DiffuseLx
+		m.turn(north)
+		if hasHorizon && horizon.Hides(m.Sun) {
+			m.GlobalLx = m.DiffuseLx
+		}
+		m.Occupied = occupied != nil && occupied[i]
+		c.Moments = append(c.Moments, m)
+	}
+	if len(c.Moments) == 0 {
+		return nil, fmt.Errorf("%s: got no hour with daylight, want a year of them; check the irradiance columns and the site", y.File)
+	}
+	c.Notes = append(c.Notes, y.Notes...)
+	return c, nil
+}
+
+func override(s *weather.Site, o project.Site) {
+	for _, x := range []struct {
+		to   *float64
+		from *float64
+	}{{&s.LatitudeDeg, o.LatitudeDeg}, {&s.LongitudeDeg, o.LongitudeDeg}, {&s.UTCOffsetH, o.UTCOffsetH}, {&s.ElevationM, o.ElevationM}} {
+		if x.from != nil {
+			*x.to = *x.from
+		}
+	}
+}
+
+// moment makes record i; nil at night. The sky is still in the world frame.
+func (c *Climate) moment(i int, cz weather.CosZenith) (m *Moment, sinAlt float64, clamped bool, err error) {
+	r := &c.Year.Records[i]
+	t, share := c.Year.SunlitMoment(i, c.OffsetH, cz)
+	s, err := sky.SunAt(c.Site, t)
+	if err != nil {
+		return nil, 0, false, fmt.Errorf("%s:%d: sun: %w", c.Year.File, r.Line, err)
+	}
+	sinAlt = s.Direction.Z
+	if r.DHI <= 0 && r.DNI <= 0 {
+		return nil, sinAlt, false, nil
+	}
+	dni := r.DNI
+	if share <= 0 || s.Direction.Z <= 0 {
+		dni = 0 // light before sunrise is the sky's
+	}
+	day := t.YearDay()
+	ill := photometry.Perez1990(photometry.Irradiance{
+		DHI: r.DHI, DNI: dni, ZenithRad: s.ZenithRad,
+		E0n:       photometry.ExtraterrestrialNormal(day),
+		DewPointC: r.DewPointC,
+		AirMass:   photometry.AirMassKastenYoung1989(s.ZenithRad),
+	})
+	if ill.Diffuse < minSkyLx && ill.DirectNormal*math.Max(0, s.Direction.Z) < minSkyLx {
+		return nil, sinAlt, false, nil
+	}
+	apparent := s
+	if s.Direction.Z > 0 {
+		apparent = s.Refracted(r.PressurePa/100, orZero(r.DryBulbC))
+	}
+	dome, clamp := sky.NewPerez(aboveHorizon(apparent.Direction), ill.Clearness, ill.Brightness, ill.Diffuse)
+	m = &Moment{
+		Hour: i, Time: t, Month: r.Month - 1,
+		Sun: apparent.Direction, SunNormalLx: ill.DirectNormal, Sky: dome,
+		DiffuseLx: ill.Diffuse,
+		GlobalLx:  ill.Diffuse + ill.DirectNormal*math.Max(0, apparent.Direction.Z),
+	}
+	return m, sinAlt, clamp.Clamped, nil
+}
+
+// aboveHorizon puts a sun that is down on the horizon, for the sky's glow.
+func aboveHorizon(d r3.Vec) r3.Vec {
+	if d.Z >= 0 {
+		return d
+	}
+	d.Z = 0
+	return r3.Unit(d)
+}
+
+func orZero(x float64) float64 {
+	if math.IsNaN(x) {
+		return 0
+	}
+	return x
+}
+
+// turn moves the moment from the world frame (y north) into the model frame,
+// whose +y points to azimuth north.
+func (m *Moment) turn(north float64) {
+	m.Sun = turn(m.Sun, north)
+	m.Sky = m.Sky.WithSun(turn(m.Sky.Sun(), north))
+}
+
+// turn rotates a world direction into the model frame.
+func turn(d r3.Vec, north float64) r3.Vec {
+	s, c := math.Sincos(north)
+	// Azimuth a in the world is a-north in the model.
+	return r3.Vec{X: d.X*c - d.Y*s, Y: d.X*s + d.Y*c, Z: d.Z}
+}
+
+// turnedHorizon is the project's horizon line in the model frame.
+func turnedHorizon(p *project.Project) (h sky.Horizon, has bool, err error) {
+	if len(p.Horizon) == 0 {
+		return h, false, nil
+	}
+	var pts []sky.HorizonPoint
+	for _, q := range p.Horizon {
+		az := math.Mod(q.AzimuthDeg-p.Site.NorthDeg+720, 360)
+		pts = append(pts, sky.HorizonPoint{AzimuthRad: az * math.Pi / 180, AltitudeRad: q.AltitudeDeg * math.Pi / 180})
+	}
+	h, err = sky.NewHorizon(pts)
+	return h, err == nil, err
+}
+
+// Overcast is the moment of the daylight factor: the CIE traditional overcast
+// sky of 10,000 lx on a level plane.
+func Overcast(month int) (*Moment, error) {
+	const lx = 10000
+	dome, err := sky.NewOvercastTraditional(sky.ByHorizontalIlluminance(lx))
+	if err != nil {
+		return nil, err
+	}
+	return &Moment{Hour: -1, Month: month, Sun: r3.Vec{Z: 1}, Sky: dome, DiffuseLx: lx, GlobalLx: lx}, nil
+}

@@ -1,0 +1,148 @@
+package project
+
+import "strings"
+
+// finishCommon are the keys of every finish.
+var finishCommon = []key[Finish]{
+	{spec{name: "name", about: "by which meshes, openings and systems call it", required: true, form: itemName}, func(f *Finish) any { return &f.Name }},
+	{spec{name: "type", about: "decides which further keys there are", required: true, choices: finishTypeNames()}, func(f *Finish) any { return &f.Type }},
+}
+
+// finishType is one type of finish and the keys that it has beside the
+// common ones.
+type finishType struct {
+	name, about string
+	keys        []key[Finish]
+	check       func(*reader, *node, *Finish)
+}
+
+var finishBack = key[Finish]{spec{name: "back", about: "finish of the side that the normal points away from; else both sides are alike", refers: "finish", types: opaque}, func(f *Finish) any { return &f.Back }}
+
+// opaque are the types that let no light through.
+var opaque = []string{"matte", "mirror"}
+
+var finishTypes = []finishType{
+	{"matte", "reflects diffusely", []key[Finish]{
+		{spec{name: "reflectance", about: "diffuse", required: true, in: share}, func(f *Finish) any { return &f.Reflectance }},
+		finishBack,
+	}, nil},
+	{"mirror", "reflects as a mirror, and diffusely", []key[Finish]{
+		{spec{name: "specular_reflectance", about: "as a mirror", required: true, in: share}, func(f *Finish) any { return &f.SpecularReflectance }},
+		{spec{name: "diffuse_reflectance", about: "besides", in: share, def: "0", source: own}, func(f *Finish) any { return &f.DiffuseReflectance }},
+		finishBack,
+	}, checkMirror},
+	{"glazing", "clear panes, both sides alike", []key[Finish]{
+		{spec{name: "transmittance", about: "visible, at normal incidence", in: share}, func(f *Finish) any { return &f.Transmittance }},
+		{spec{name: "panes", about: "number of panes that share the transmittance", in: within{lo: 1, hi: 4}, def: "2", source: usual}, func(f *Finish) any { return &f.Panes }},
+		{spec{name: "table", about: "instead of transmittance: rows of angle of incidence (degrees), transmittance, reflectance"}, func(f *Finish) any { return &f.Table }},
+	}, checkGlazing},
+}
+
+func finishTypeNames() []string {
+	list := make([]string, len(finishTypes))
+	for i, t := range finishTypes {
+		list[i] = t.name
+	}
+	return list
+}
+
+func finishSection() section {
+	const name = "finish"
+	s := section{name: name, about: "a surface", list: true, keys: describe(finishCommon)}
+	for _, t := range finishTypes {
+		s.variants = append(s.variants, variant{t.name, t.about, describe(t.keys)})
+	}
+	s.read = func(r *reader, n *node, p *Project) {
+		f := Finish{Line: n.line}
+		decode(r, n, name, finishCommon, &f)
+		known := names(finishCommon)
+		for _, t := range finishTypes {
+			if t.name == f.Type {
+				decode(r, n, name, t.keys, &f)
+				known = append(known, names(t.keys)...)
+				if t.check != nil {
+					t.check(r, n, &f)
+				}
+			}
+		}
+		unknownFinishKeys(r, n, &f, known)
+		if f.Back != "" && f.Back == f.Name {
+			r.reject(n, name, "back", "got the finish itself; leave it out where both sides are alike")
+		}
+		keep(r, n, name, &p.Finishes, f, func(f *Finish) string { return f.Name })
+	}
+	return s
+}
+
+// unknownFinishKeys tells keys of other types from keys of none. Without a
+// type, keys of any type may be right.
+func unknownFinishKeys(r *reader, n *node, f *Finish, known []string) {
+	owners := map[string][]string{}
+	for _, t := range finishTypes {
+		for _, k := range names(t.keys) {
+			owners[k] = append(owners[k], t.name)
+		}
+	}
+	isKnown := map[string]bool{}
+	for _, k := range known {
+		isKnown[k] = true
+	}
+	candidates := known
+	if f.Type == "" {
+		for _, t := range finishTypes {
+			candidates = append(candidates, names(t.keys)...)
+		}
+	}
+	for _, k := range n.keys {
+		switch of := owners[k]; {
+		case isKnown[k], of != nil && f.Type == "":
+		case of != nil:
+			r.reject(n, "finish", k, "no key of type %q but of %s; want %s", f.Type, oneOf(of), strings.Join(known, ", "))
+		default:
+			r.reject(n, "finish", k, "unknown key; %s", DidYouMean(k, candidates))
+		}
+	}
+}
+
+// roundOff lets shares that are written with two or three decimals add up to
+// 1 although their binary sum exceeds it.
+const roundOff = 1e-9
+
+func checkMirror(r *reader, n *node, f *Finish) {
+	if sum := f.SpecularReflectance + f.DiffuseReflectance; n.good("specular_reflectance", "diffuse_reflectance") && sum > 1+roundOff {
+		r.reject(n, "finish", "specular_reflectance", "got %g and diffuse_reflectance %g, together %.4g, want at most 1", f.SpecularReflectance, f.DiffuseReflectance, sum)
+	}
+}
+
+func checkGlazing(r *reader, n *node, f *Finish) {
+	const name = "finish"
+	switch {
+	case n.has("table") && n.has("transmittance"):
+		r.reject(n, name, "table", "got transmittance too; want one of the two")
+		return
+	case n.has("table") && n.has("panes"):
+		r.reject(n, name, "panes", "got a table too, which holds for all panes together; leave panes out")
+		return
+	case !n.has("table") && !n.has("transmittance"):
+		r.reject(n, name, "transmittance", "missing; want 0 to 1, or a table")
+		return
+	case !n.has("table") || !n.good("table"):
+		return
+	}
+	f.Panes = 0
+	t := f.Table
+	if len(t) < 2 || t[0][0] != 0 || t[len(t)-1][0] != 90 {
+		r.reject(n, name, "table", "got %s, want at least two, the first at 0 degrees and the last at 90 (all light reflected: [90, 0, 1])", count(len(t), "row"))
+		return
+	}
+	for i, row := range t {
+		switch {
+		case i > 0 && row[0] <= t[i-1][0]:
+			r.reject(n, name, "table", "row %d: got angle %g after %g, want rising angles", i+1, row[0], t[i-1][0])
+		case !share.holds(row[1]) || !share.holds(row[2]):
+			r.reject(n, name, "table", "row %d: got transmittance %g and reflectance %g, want 0 to 1", i+1, row[1], row[2])
+		case row[1]+row[2] > 1+roundOff:
+			r.reject(n, name, "table", "row %d: got transmittance %g and reflectance %g, together %.4g, want at most 1", i+1, row[1], row[2], row[1]+row[2])
+		}
+	}
+}

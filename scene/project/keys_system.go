@@ -1,0 +1,124 @@
+package project
+
+import (
+	"errors"
+	"math"
+
+	"gonum.org/v1/gonum/spatial/r3"
+
+	"squint/scene/system"
+)
+
+var openingKeys = []key[Opening]{
+	{spec{name: "name", about: "by which systems call it", required: true, form: itemName}, func(o *Opening) any { return &o.Name }},
+	{spec{name: "group", about: "openings of one group are controlled together; else the opening is a group of its own", form: itemName}, func(o *Opening) any { return &o.Group }},
+	{spec{name: "corners_m", about: "four corners in order around the rectangle, counter-clockwise seen from outdoors unless outward_deg is given", in: coordinate}, func(o *Opening) any { return &o.CornersM }},
+	{spec{name: "mesh_group", about: "instead of corners_m: the mesh group that is the glass", form: itemName}, func(o *Opening) any { return &o.MeshGroup }},
+	{spec{name: "outward_deg", about: "azimuth to which the opening faces", in: anyAngle}, func(o *Opening) any { return &o.OutwardDeg }},
+	{spec{name: "glazing", about: "finish of the glass; with corners_m a pane is built", refers: "finish", types: []string{"glazing"}}, func(o *Opening) any { return &o.Glazing }},
+}
+
+func checkOpening(r *reader, n *node, o *Opening) {
+	const name = "opening"
+	o.Line = n.line
+	o.HasCorners = n.has("corners_m")
+	if o.Group == "" {
+		o.Group = o.Name
+	}
+	r.openings = append(r.openings, n)
+	switch {
+	case n.has("corners_m") && n.has("mesh_group"):
+		r.reject(n, name, "mesh_group", "got corners_m too; want one of the two")
+	case !n.has("corners_m") && !n.has("mesh_group"):
+		r.reject(n, name, "corners_m", "missing; want 4 corners of 3 numbers each, or a mesh_group")
+	case n.has("corners_m") && !n.has("glazing"):
+		r.reject(n, name, "glazing", "missing; want a finish's name in quotes")
+	}
+}
+
+// OutwardHint is the horizontal direction, in the model, to which the opening
+// faces, for system.RectFromCorners and system.RectFromTriangles; zero
+// where the file does not say it. northDeg is Site.NorthDeg.
+func (o Opening) OutwardHint(northDeg float64) r3.Vec {
+	if o.OutwardDeg == nil {
+		return r3.Vec{}
+	}
+	return Direction(*o.OutwardDeg, 0, northDeg)
+}
+
+// Direction is the unit vector, in the model, of a compass azimuth and a pitch
+// above the horizon, in degrees. northDeg is Site.NorthDeg.
+func Direction(azimuthDeg, pitchDeg, northDeg float64) r3.Vec {
+	sin, cos := math.Sincos((azimuthDeg - northDeg) * math.Pi / 180)
+	up, level := math.Sincos(pitchDeg * math.Pi / 180)
+	return r3.Vec{X: level * sin, Y: level * cos, Z: up}
+}
+
+// Rect is the rectangle of an opening with corners.
+func (o Opening) Rect(northDeg float64) (system.Rect, error) {
+	if !o.HasCorners {
+		return system.Rect{}, errors.New("opening: got a mesh group, want corners")
+	}
+	var c [4]r3.Vec
+	for i, p := range o.CornersM {
+		c[i] = r3.Vec{X: p[0], Y: p[1], Z: p[2]}
+	}
+	return system.RectFromCorners(c, o.OutwardHint(northDeg))
+}
+
+var lightShelfKeys = []key[LightShelf]{
+	{spec{name: "name", about: "shown in results", required: true, form: itemName}, func(s *LightShelf) any { return &s.Name }},
+	{spec{name: "opening", about: "at which the shelf is", required: true, refers: "opening"}, func(s *LightShelf) any { return &s.Opening }},
+	{spec{name: "height_m", about: "of the top at the glass, above the opening's lower edge", required: true, in: within{hi: 20, above: true}}, func(s *LightShelf) any { return &s.HeightM }},
+	{spec{name: "outside_depth_m", about: "from the plane of the glass along the shelf, outdoors", in: within{hi: 5}, def: "0", source: own}, func(s *LightShelf) any { return &s.OutsideDepthM }},
+	{spec{name: "inside_depth_m", about: "from the plane of the glass along the shelf, indoors", in: within{hi: 5}, def: "0", source: own}, func(s *LightShelf) any { return &s.InsideDepthM }},
+	{spec{name: "thickness_m", about: "of the shelf", in: within{lo: 0.001, hi: 0.5}, def: "0.05", source: usual}, func(s *LightShelf) any { return &s.ThicknessM }},
+	{spec{name: "outside_tilt_deg", about: "from the horizontal; positive lifts the outer edge", in: within{lo: -60, hi: 60}, def: "0", source: own}, func(s *LightShelf) any { return &s.OutsideTiltDeg }},
+	{spec{name: "inside_tilt_deg", about: "from the horizontal; positive lifts the outer edge, which is the one at the glass", in: within{lo: -60, hi: 60}, def: "0", source: own}, func(s *LightShelf) any { return &s.InsideTiltDeg }},
+	{spec{name: "extend_m", about: "beyond the opening, on each side", in: within{hi: 5}, def: "0", source: own}, func(s *LightShelf) any { return &s.ExtendM }},
+	{spec{name: "gap_m", about: "between glass and shelf, on either side", in: within{lo: 0.001, hi: 0.5}, def: "0.01", source: usual}, func(s *LightShelf) any { return &s.GapM }},
+	{spec{name: "top", about: "finish of the upper side", required: true, refers: "finish", types: opaque}, func(s *LightShelf) any { return &s.Top }},
+	{spec{name: "underside", about: "finish of the lower side and of the edges", required: true, refers: "finish", types: opaque}, func(s *LightShelf) any { return &s.Underside }},
+}
+
+func checkLightShelf(r *reader, n *node, s *LightShelf) {
+	s.Line = n.line
+	r.shelves = append(r.shelves, n)
+	if n.good("outside_depth_m", "inside_depth_m") && s.OutsideDepthM == 0 && s.InsideDepthM == 0 {
+		r.reject(n, "light_shelf", "outside_depth_m", "got no outside_depth_m and no inside_depth_m above 0; want at least one of them")
+	}
+}
+
+// System is the shelf in the units of package system.
+func (s LightShelf) System() system.LightShelf {
+	return system.LightShelf{
+		HeightM: s.HeightM, OutsideDepthM: s.OutsideDepthM, InsideDepthM: s.InsideDepthM, ThicknessM: s.ThicknessM,
+		OutsideTiltRad: s.OutsideTiltDeg * math.Pi / 180, InsideTiltRad: s.InsideTiltDeg * math.Pi / 180,
+		ExtendM: s.ExtendM, GapM: s.GapM, Top: s.Top, Underside: s.Underside,
+	}
+}
+
+var rollerKeys = []key[Roller]{
+	{spec{name: "name", about: "shown in results", required: true, form: itemName}, func(ro *Roller) any { return &ro.Name }},
+	{spec{name: "opening", about: "at which the roller is", required: true, refers: "opening"}, func(ro *Roller) any { return &ro.Opening }},
+	{spec{name: "position", about: "side of the glass", choices: []string{"inside", "outside"}, def: `"inside"`, source: usual}, func(ro *Roller) any { return &ro.Position }},
+	{spec{name: "openness", about: "share of light that passes straight between the threads", required: true, in: share}, func(ro *Roller) any { return &ro.Openness }},
+	{spec{name: "diffuse_transmittance", about: "share of light that passes scattered", required: true, in: share}, func(ro *Roller) any { return &ro.DiffuseTransmittance }},
+	{spec{name: "reflectance", about: "diffuse, of either side", required: true, in: share}, func(ro *Roller) any { return &ro.Reflectance }},
+	{spec{name: "drop", about: "share of the opening's height that is covered, from the top", in: share, def: "1", source: own}, func(ro *Roller) any { return &ro.Drop }},
+	{spec{name: "gap_m", about: "between glass and cloth", in: within{lo: 0.001, hi: 1}, def: "0.05", source: usual}, func(ro *Roller) any { return &ro.GapM }},
+	{spec{name: "drawn", about: "whether the cloth is down", def: "true", source: own}, func(ro *Roller) any { return &ro.Drawn }},
+}
+
+func checkRoller(r *reader, n *node, ro *Roller) {
+	ro.Line = n.line
+	r.rollers = append(r.rollers, n)
+	if sum := ro.Openness + ro.DiffuseTransmittance + ro.Reflectance; n.good("openness", "diffuse_transmittance", "reflectance") && sum > 1+roundOff {
+		r.reject(n, "roller", "openness", "got %g, diffuse_transmittance %g and reflectance %g, together %.4g, want at most 1", ro.Openness, ro.DiffuseTransmittance, ro.Reflectance, sum)
+	}
+}
+
+// System is the roller in the units of package system, with the finish given.
+func (ro Roller) System(cloth string) system.Roller {
+	return system.Roller{Outside: ro.Position == "outside", Drop: ro.Drop, GapM: ro.GapM, Raised: !ro.Drawn, Cloth: cloth}
+}

@@ -1,0 +1,198 @@
+package project
+
+// Project is one project file, read, checked and completed with defaults.
+// Lengths are in metres, angles in degrees as written in the file; every
+// azimuth is a compass azimuth, clockwise from north. The fields named Line
+// hold the line on which the item's table starts.
+type Project struct {
+	File     string // as given to Load
+	Hash     string // SHA-256 of the file's bytes, hexadecimal
+	Title    string
+	Invented bool // the data are invented; marked wherever results are shown
+
+	Site      Site
+	Weather   Weather
+	Ground    Ground
+	Horizon   []HorizonPoint // by rising azimuth; none: a flat horizon
+	Occupancy Occupancy
+
+	Meshes       []Mesh
+	Finishes     []Finish
+	Openings     []Opening
+	LightShelves []LightShelf
+	Rollers      []Roller
+	Viewpoints   []Viewpoint
+	WorkPlanes   []WorkPlane
+
+	Criteria   Criteria
+	Simulation Simulation
+}
+
+// Site says how the model lies and, where the weather file's header is wrong
+// or not meant, where on earth. A nil pointer leaves the header's value.
+type Site struct {
+	NorthDeg     float64  // azimuth of the model's +y axis, clockwise from north
+	LatitudeDeg  *float64 // north positive
+	LongitudeDeg *float64 // east positive
+	UTCOffsetH   *float64 // east of Greenwich positive
+	ElevationM   *float64 // above sea level
+}
+
+// Weather names the weather file, as a path from the root of the file system
+// given to Load.
+type Weather struct {
+	File string
+	// MomentOffsetH, where not nil, replaces the fitted offset between a
+	// record's time stamp and the moment it stands for.
+	MomentOffsetH *float64
+}
+
+// Ground is the endless matte plane around the building.
+type Ground struct {
+	LevelM      float64     // z of the ground in the model
+	Reflectance [12]float64 // January first
+}
+
+// HorizonPoint is one point of the skyline; between two points the altitude
+// is interpolated along the azimuth, and from the last one on to the first.
+type HorizonPoint struct{ AzimuthDeg, AltitudeDeg float64 }
+
+// MonthDay is a day of any year.
+type MonthDay struct{ Month, Day int }
+
+// Occupancy is when the rooms are used, in clock time.
+type Occupancy struct {
+	Days     [7]bool // Monday first
+	FromH    float64 // hours after midnight, clock time
+	ToH      float64 // larger than FromH
+	Holidays []MonthDay
+	// From the start of the first day to the start of the second the clock
+	// shows one hour more than standard time; both are nil without daylight
+	// saving. The first may be the later one of the year (southern summers).
+	DaylightSavingFrom, DaylightSavingTo *MonthDay
+}
+
+// Mesh is one geometry file and how it is put into the model: scaled to
+// metres, turned so that z is up, rotated about the z axis, then moved.
+type Mesh struct {
+	File       string  // path from the root of the file system given to Load
+	Unit       string  // "m", "cm", "mm", "ft" or "in"
+	Up         string  // the file's upward axis: "y" or "z"
+	Role       string  // "room" or "surroundings"
+	RotateDeg  float64 // about z, positive clockwise seen from above, as azimuths are
+	TranslateM [3]float64
+	Finish     string       // of every group that Finishes does not name; "" for none
+	Finishes   []Assignment // in the file's order
+	Line       int
+}
+
+// Assignment gives a mesh's group or material a finish.
+type Assignment struct {
+	Name   string // group or material of the mesh
+	Finish string
+	Line   int
+}
+
+// Finish is a surface. Which fields count depends on Type, see Defaults and
+// the finish tables in keys_finish.go; the others are zero.
+type Finish struct {
+	Name string
+	Type string // "matte", "mirror" or "glazing"
+
+	Reflectance         float64 // matte: diffuse
+	SpecularReflectance float64 // mirror
+	DiffuseReflectance  float64 // mirror
+	Transmittance       float64 // glazing: visible, at normal incidence
+	Panes               int     // glazing, with Transmittance
+	// Table, instead of Transmittance, holds rows of angle of incidence
+	// (degrees, rising from 0 to 90), transmittance and reflectance.
+	Table [][3]float64
+
+	Openness             float64 // no type reads it yet
+	DiffuseTransmittance float64 // no type reads it yet
+
+	Back string // finish of the side the normal points away from; "": alike
+	Line int
+}
+
+// Opening is a rectangular window, given by its corners or found in a mesh.
+type Opening struct {
+	Name  string
+	Group string // openings of one group are controlled together; default: its own name
+	// CornersM, with HasCorners, are the corners in order around the
+	// rectangle. Without OutwardDeg they run counter-clockwise seen from
+	// outdoors; with it, either way round. Any corner may be the first.
+	CornersM   [4][3]float64
+	HasCorners bool
+	MeshGroup  string // instead of corners: the mesh group that is the glass
+	// OutwardDeg is the azimuth to which the opening faces; of no effect for
+	// one that lies flat, which faces up.
+	OutwardDeg *float64
+	Glazing    string // finish; with a mesh group "" keeps the mesh's own
+	Line       int
+}
+
+// LightShelf is a shelf at an opening; system.LightShelf says what each
+// dimension means.
+type LightShelf struct {
+	Name, Opening                 string
+	HeightM                       float64 // of the top, at the glass, above the opening's lower edge
+	OutsideDepthM, InsideDepthM   float64 // from the plane of the glass, along the shelf
+	ThicknessM                    float64
+	OutsideTiltDeg, InsideTiltDeg float64 // from the horizontal, positive lifts the outer edge
+	ExtendM                       float64 // beyond the opening, on each side
+	GapM                          float64 // between glass and shelf
+	Top, Underside                string  // finishes
+	Line                          int
+}
+
+// Roller is a blind of cloth at an opening.
+type Roller struct {
+	Name, Opening        string
+	Position             string  // "inside" or "outside"
+	Openness             float64 // share of straight passage
+	DiffuseTransmittance float64
+	Reflectance          float64
+	Drop                 float64 // share of the opening's height that is covered, from the top
+	GapM                 float64 // between glass and cloth
+	Drawn                bool
+	Line                 int
+}
+
+// Viewpoint is an eye. Exactly one of AzimuthDeg and TowardM is set.
+type Viewpoint struct {
+	Name       string
+	PositionM  [3]float64
+	AzimuthDeg *float64
+	TowardM    *[3]float64 // a point of the model that is looked at
+	PitchDeg   float64     // with AzimuthDeg; up positive
+	Line       int
+}
+
+// WorkPlane is a horizontal plane of sensors.
+type WorkPlane struct {
+	Name       string
+	PolygonM   [][2]float64 // outline in x and y, not closed, either way round
+	HeightM    float64      // z of the plane in the model
+	SpacingM   float64      // between sensors; 0: the rule of Cell
+	PerimeterM float64      // band along the outline without sensors
+	Line       int
+}
+
+// Criteria are the levels asked for: "minimum", "medium", "high" or "none".
+type Criteria struct {
+	Glare     string // EN 17037:2018, protection from glare
+	Provision string // EN 17037:2018, daylight provision
+}
+
+// Simulation sets how finely is computed.
+type Simulation struct {
+	Seed            uint64
+	Batches         int // independent repetitions, for confidence
+	FisheyePixels   int // across a view
+	SamplesPerPixel int // a multiple of Batches
+	SensorSamples   int // a multiple of Batches
+	TexelM          float64
+	TexelSamples    int // a multiple of Batches
+	MemoryMiB       int
+}

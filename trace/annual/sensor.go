@@ -1,0 +1,68 @@
+package annual
+
+import (
+	"math"
+
+	"gonum.org/v1/gonum/spatial/r3"
+
+	"squint/materials/sampling"
+	"squint/scene/photometry"
+	"squint/trace"
+	"squint/trace/surface"
+)
+
+// Random streams of this package.
+const (
+	streamSensorSun = 21
+	streamEyeSun    = 22
+	streamDisc      = 23
+)
+
+// sensors reads every sensor against the solved block.
+func (w *worker) sensors(bl *surface.Block, b block, d *Daylight) {
+	batches := len(w.lights)
+	for i, s := range w.r.Sensors {
+		var sum, square, direct surface.Row
+		for batch := range w.lights {
+			var e surface.Row
+			bl.Gather(&w.r.Rows[batch], &w.lights[batch], i, &e)
+			for h, m := range bl.Moments {
+				if m.SunNormalLx > 0 {
+					sun := w.sunOn(s.Position, s.Normal, m.Sun, m.SunNormalLx, streamSensorSun, i, m.Hour, batch)
+					e[h] += sun
+					direct[h] += sun
+				}
+			}
+			for h := range e {
+				sum[h] += e[h]
+				square[h] += e[h] * e[h]
+			}
+		}
+		n := float32(batches)
+		for h, k := range b {
+			mean := sum[h] / n
+			d.E[i][k] = mean
+			d.Direct[i][k] = direct[h] / n
+			if batches > 1 {
+				v := (square[h]/n - mean*mean) / (n - 1)
+				d.StdErr[i][k] = float32(math.Sqrt(math.Max(0, float64(v))))
+			}
+		}
+	}
+}
+
+// sunOn samples the direct sun at p on a plane with unit normal n by one ray
+// to a random point of the disc, in lx.
+func (w *worker) sunOn(p, n, sun r3.Vec, normalLx float64, stream uint64, receiver, hour, batch int) float32 {
+	if r3.Dot(n, sun) <= -0.01 {
+		return 0
+	}
+	s := sampling.NewStream(w.cfg.Seed, stream, uint64(receiver), uint64(hour), uint64(batch))
+	dir := trace.ConeDirection(sun, photometry.SunDiameterRad/2, s.Float64(), s.Float64())
+	cos := r3.Dot(n, dir)
+	if cos <= 0 || w.t.Hidden(dir) {
+		return 0
+	}
+	world := w.t.World
+	return float32(normalLx * cos * world.Transmittance(world.Offset(p, n), dir, math.Inf(1)))
+}
