@@ -2,13 +2,13 @@ package annual
 
 import (
 	"math"
+	"math/bits"
 
 	"gonum.org/v1/gonum/spatial/r3"
 
 	"squint/materials/sampling"
 	"squint/scene"
 	"squint/scene/photometry"
-	"squint/trace"
 	"squint/trace/coeff"
 	"squint/trace/surface"
 )
@@ -67,7 +67,7 @@ func (w *worker) see(bl *surface.Block, b block, eye int, lit []uint64) {
 			f.Mean[px] = sum * inv
 			f.Sunlit[px] = s.sunlit[p][h] * inv
 		}
-		w.discs(e, eye, m, f)
+		w.discs(e, eye, m, &bl.Sun[h], f)
 		w.sink(w.number, f)
 	}
 }
@@ -78,11 +78,9 @@ func (w *worker) render(bl *surface.Block, e *coeff.Eye, eye, batch int, lit []u
 	eb := &e.Batches[batch]
 	light := &w.lights[batch]
 	img := w.eye.image[batch]
-	var sun [surface.Width]sunSampler
+	var random [surface.Width]sampling.Stream
 	for h, m := range bl.Moments {
-		if m.SunNormalLx > 0 {
-			sun[h] = newSunSampler(m, w.cfg.Seed, eye, batch)
-		}
+		random[h] = sampling.NewStream(w.cfg.Seed, streamEyeSun, uint64(eye), uint64(m.Hour), uint64(batch))
 	}
 	for p := range e.Inside {
 		row := surface.Row{}
@@ -98,7 +96,7 @@ func (w *worker) render(bl *surface.Block, e *coeff.Eye, eye, batch int, lit []u
 			}
 			surface.AddScaled(&row, &light.Rest[sf.Side], weight)
 			if lit[sf.Side] != 0 {
-				w.sunlit(bl, sf, weight, lit[sf.Side], &sun, &row, &w.eye.sunlit[p])
+				w.sunlit(bl, sf, weight, lit[sf.Side], &random, &row, &w.eye.sunlit[p])
 			}
 		}
 		for _, x := range eb.ExitsOf(p) {
@@ -114,51 +112,36 @@ func (w *worker) render(bl *surface.Block, e *coeff.Eye, eye, batch int, lit []u
 }
 
 // sunlit adds the sun on one surface sample for the moments in mask.
-func (w *worker) sunlit(bl *surface.Block, sf *coeff.SurfaceSample, weight float32, mask uint64, sun *[surface.Width]sunSampler, row, lit *surface.Row) {
+func (w *worker) sunlit(bl *surface.Block, sf *coeff.SurfaceSample, weight float32, mask uint64, random *[surface.Width]sampling.Stream, row, lit *surface.Row) {
 	n := vec(sf.Normal)
 	p := vec(sf.Point)
-	for h, m := range bl.Moments {
-		if mask&(1<<h) == 0 || m.SunNormalLx <= 0 {
+	for ; mask != 0; mask &= mask - 1 {
+		h := bits.TrailingZeros64(mask)
+		rays := &bl.Sun[h]
+		dir, ok := rays.Draw(random[h].Uint64())
+		if !ok {
 			continue
 		}
-		if r3.Dot(n, m.Sun) <= -0.01 {
-			continue
-		}
-		dir := sun[h].next()
 		cos := r3.Dot(n, dir)
-		if cos <= 0 || w.t.Hidden(dir) {
+		if cos <= 0 {
 			continue
 		}
 		if tr := w.t.World.Transmittance(p, dir, math.Inf(1)); tr > 0 {
-			v := weight * float32(m.SunNormalLx*cos*tr)
+			v := weight * float32(rays.NormalLx*cos*tr)
 			row[h] += v
 			lit[h] += v
 		}
 	}
 }
 
-// sunSampler draws points of the sun's disc.
-type sunSampler struct {
-	axis r3.Vec
-	s    sampling.Stream
-}
-
-func newSunSampler(m *scene.Moment, seed uint64, eye, batch int) sunSampler {
-	return sunSampler{axis: m.Sun, s: sampling.NewStream(seed, streamEyeSun, uint64(eye), uint64(m.Hour), uint64(batch))}
-}
-
-func (s *sunSampler) next() r3.Vec {
-	return trace.ConeDirection(s.axis, photometry.SunDiameterRad/2, s.s.Float64(), s.s.Float64())
-}
-
 // discs looks for the sun's own disc from the eye. What is opaque takes from
 // its solid angle; glass and cloth take from its luminance.
-func (w *worker) discs(e *coeff.Eye, eye int, m *scene.Moment, f *Frame) {
+func (w *worker) discs(e *coeff.Eye, eye int, m *scene.Moment, rays *surface.SunRays, f *Frame) {
 	f.Disc = Disc{}
 	for b := range f.Discs {
 		f.Discs[b] = Disc{}
 	}
-	if m.SunNormalLx <= 0 || r3.Dot(m.Sun, e.View.Direction) <= 0 {
+	if rays.NormalLx <= 0 || r3.Dot(m.Sun, e.View.Direction) <= 0 {
 		return
 	}
 	full := photometry.DiscSolidAngle(photometry.SunDiameterRad)
@@ -169,8 +152,8 @@ func (w *worker) discs(e *coeff.Eye, eye int, m *scene.Moment, f *Frame) {
 		var open int
 		var tau float64
 		for range discRays {
-			dir := trace.ConeDirection(m.Sun, photometry.SunDiameterRad/2, s.Float64(), s.Float64())
-			if w.t.Hidden(dir) || w.t.World.Blocked(e.View.Position, dir, math.Inf(1)) {
+			dir, ok := rays.Draw(s.Uint64())
+			if !ok || w.t.World.Blocked(e.View.Position, dir, math.Inf(1)) {
 				continue
 			}
 			open++

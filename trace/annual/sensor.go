@@ -6,8 +6,6 @@ import (
 	"gonum.org/v1/gonum/spatial/r3"
 
 	"squint/materials/sampling"
-	"squint/scene/photometry"
-	"squint/trace"
 	"squint/trace/surface"
 )
 
@@ -27,8 +25,8 @@ func (w *worker) sensors(bl *surface.Block, b block, d *Daylight) {
 			var e surface.Row
 			bl.Gather(&w.r.Rows[batch], &w.lights[batch], i, &e)
 			for h, m := range bl.Moments {
-				if m.SunNormalLx > 0 {
-					sun := w.sunOn(s.Position, s.Normal, m.Sun, m.SunNormalLx, streamSensorSun, i, m.Hour, batch)
+				if bl.Sun[h].NormalLx > 0 {
+					sun := w.sunOn(s.Position, s.Normal, &bl.Sun[h], i, m.Hour, batch)
 					e[h] += sun
 					direct[h] += sun
 				}
@@ -53,16 +51,16 @@ func (w *worker) sensors(bl *surface.Block, b block, d *Daylight) {
 
 // sunOn samples the direct sun at p on a plane with unit normal n by one ray
 // to a random point of the disc, in lx.
-func (w *worker) sunOn(p, n, sun r3.Vec, normalLx float64, stream uint64, receiver, hour, batch int) float32 {
-	if r3.Dot(n, sun) <= -0.01 {
+func (w *worker) sunOn(p, n r3.Vec, rays *surface.SunRays, receiver, hour, batch int) float32 {
+	s := sampling.NewStream(w.cfg.Seed, streamSensorSun, uint64(receiver), uint64(hour), uint64(batch))
+	dir, ok := rays.Draw(s.Uint64())
+	if !ok {
 		return 0
 	}
-	s := sampling.NewStream(w.cfg.Seed, stream, uint64(receiver), uint64(hour), uint64(batch))
-	dir := trace.ConeDirection(sun, photometry.SunDiameterRad/2, s.Float64(), s.Float64())
 	cos := r3.Dot(n, dir)
-	if cos <= 0 || w.t.Hidden(dir) {
+	if cos <= 0 {
 		return 0
 	}
 	world := w.t.World
-	return float32(normalLx * cos * world.Transmittance(world.Offset(p, n), dir, math.Inf(1)))
+	return float32(rays.NormalLx * cos * world.Transmittance(world.Offset(p, n), dir, math.Inf(1)))
 }

@@ -32,13 +32,11 @@ func (t *Tree) Closest(org, dir [3]float32, tmin, tmax float32) Hit {
 	if len(t.nodes) == 0 {
 		return hit
 	}
-	var q query
-	scale := q.set(&org, &dir, tmin, tmax, t.extent)
-	if scale == 0 {
-		return hit
-	}
-	t.closest(&q, &hit)
-	if scale != 1 {
+	var r ray
+	if r.aim(&org, &dir, tmin, tmax, t.extent) {
+		t.closest(&r, &hit)
+	} else if scale, ok := r.rescale(tmin, tmax, t.extent); ok {
+		t.closest(&r, &hit)
 		hit.T = float32(float64(hit.T) * scale)
 	}
 	return hit
@@ -50,9 +48,11 @@ func (t *Tree) Occluded(org, dir [3]float32, tmin, tmax float32) bool {
 	if len(t.nodes) == 0 {
 		return false
 	}
-	var q query
-	if q.set(&org, &dir, tmin, tmax, t.extent) == 0 {
-		return false
+	var r ray
+	if !r.aim(&org, &dir, tmin, tmax, t.extent) {
+		if _, ok := r.rescale(tmin, tmax, t.extent); !ok {
+			return false
+		}
 	}
-	return t.occluded(&q)
+	return t.occluded(&r)
 }

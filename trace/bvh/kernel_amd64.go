@@ -5,10 +5,10 @@ package bvh
 import "golang.org/x/sys/cpu"
 
 //go:noescape
-func closestAVX2(nodes *node, blocks *block, q *query, h *Hit)
+func closestAVX2(nodes *node, blocks *block, r *ray, h *Hit)
 
 //go:noescape
-func occludedAVX2(nodes *node, blocks *block, q *query) bool
+func occludedAVX2(nodes *node, blocks *block, r *ray) bool
 
 //go:noescape
 func fillAVX2(bs *bins, ps *prim, n int, lo, scale *[4]float32)
@@ -20,21 +20,21 @@ func partitionAVX2(ps *prim, n int, c *cut, mids *[2]span) int
 func scanAVX2(box *span, count, step int, sum *span, area *float32)
 
 // useAVX2 is a fact about the machine, not a setting.
-var useAVX2 = cpu.X86.HasAVX2 && cpu.X86.HasPOPCNT
+var useAVX2 = cpu.X86.HasAVX2 && cpu.X86.HasBMI1 && cpu.X86.HasPOPCNT
 
-func (t *Tree) closest(q *query, h *Hit) {
+func (t *Tree) closest(r *ray, h *Hit) {
 	if t.avx2 {
-		closestAVX2(&t.nodes[0], &t.blocks[0], q, h)
+		closestAVX2(&t.nodes[0], &t.blocks[0], r, h)
 		return
 	}
-	t.closestGo(q, h)
+	t.closestGo(r, h)
 }
 
-func (t *Tree) occluded(q *query) bool {
+func (t *Tree) occluded(r *ray) bool {
 	if t.avx2 {
-		return occludedAVX2(&t.nodes[0], &t.blocks[0], q)
+		return occludedAVX2(&t.nodes[0], &t.blocks[0], r)
 	}
-	return t.occludedGo(q)
+	return t.occludedGo(r)
 }
 
 func (bs *bins) fill(ps []prim, lo, scale *[4]float32) {

@@ -16,7 +16,7 @@
 //	R8-R10	byte offsets of the near planes, R11-R13 of the far planes
 //	R14	byte offset of the children's order
 //	R15	compress table
-//	DI	query, SI stack pointer, AX node or block, DX its reference
+//	SI stack pointer, AX node or block, DX its reference
 // A leaf uses all Y registers and BX, CX, DX.
 
 // Frame: vectors, then the stack of references, then that of distances.
@@ -27,39 +27,97 @@
 #define VNUM 128
 #define WNUM 160
 #define DETS 192
-#define STACK 224
+#define NEARO 224 // origin for near planes, x y z
+#define FARO 240
+#define NRDIR 256 // -1/direction
+#define SHEARS 272 // origin kx ky kz, sx, sy, -1/dir[kz]
+#define AXES 296 // byte offsets of kx ky kz in a vertex of a block
+#define STACK 320
 #define NEAR 2048 // from a reference to its distance
 
 #define END $0x80000000 // the reference at the bottom of the stack
 
 // PLANES loads what nodes need.
 #define PLANES \
-	VBROADCASTSS query_near+0(DI), Y0  \
-	VBROADCASTSS query_near+4(DI), Y1  \
-	VBROADCASTSS query_near+8(DI), Y2  \
-	VBROADCASTSS query_far+0(DI), Y3   \
-	VBROADCASTSS query_far+4(DI), Y4   \
-	VBROADCASTSS query_far+8(DI), Y5   \
-	VBROADCASTSS query_nrdir+0(DI), Y6 \
-	VBROADCASTSS query_nrdir+4(DI), Y13 \
-	VBROADCASTSS query_nrdir+8(DI), Y14
+	VBROADCASTSS NEARO+0(SP), Y0  \
+	VBROADCASTSS NEARO+4(SP), Y1  \
+	VBROADCASTSS NEARO+8(SP), Y2  \
+	VBROADCASTSS FARO+0(SP), Y3   \
+	VBROADCASTSS FARO+4(SP), Y4   \
+	VBROADCASTSS FARO+8(SP), Y5   \
+	VBROADCASTSS NRDIR+0(SP), Y6  \
+	VBROADCASTSS NRDIR+4(SP), Y13 \
+	VBROADCASTSS NRDIR+8(SP), Y14
 
+// SETUP is query.set and the bottom of the stack.
 #define SETUP \
-	MOVQ         q+16(FP), DI              \
+	MOVQ         r+16(FP), DI              \
+	VMOVSS       ray_org+0(DI), X0         \
+	VINSERTPS    $0x10, ray_org+4(DI), X0, X0 \
+	VINSERTPS    $0x20, ray_org+8(DI), X0, X0 \
+	VMOVSS       ray_dir+0(DI), X1         \
+	VINSERTPS    $0x10, ray_dir+4(DI), X1, X1 \
+	VINSERTPS    $0x20, ray_dir+8(DI), X1, X1 \
+	VBROADCASTSS ray_shift(DI), X2         \
+	VPCMPEQD     X3, X3, X3                \
+	VPSLLD       $31, X3, X3               \
+	VANDPS       X3, X1, X4                \
+	VORPS        X4, X2, X2                \
+	VADDPS       X2, X0, X5                \
+	VSUBPS       X2, X0, X6                \
+	VANDNPS      X1, X3, X7                \
+	VMAXPS       tiny<>(SB), X7, X7        \
+	VORPS        X4, X7, X7                \
+	VMOVUPS      minus<>(SB), X8           \
+	VDIVPS       X7, X8, X7                \
+	VMOVUPS      X5, NEARO(SP)             \
+	VMOVUPS      X6, FARO(SP)              \
+	VMOVUPS      X7, NRDIR(SP)             \
+	VMOVMSKPS    X1, R14                   \
 	LEAQ         ·compress(SB), R15       \
-	MOVLQZX      query_nearX(DI), R8       \
-	MOVLQZX      query_nearY(DI), R9       \
-	MOVLQZX      query_nearZ(DI), R10      \
-	MOVQ         R8, R11                   \
-	MOVQ         R9, R12                   \
-	MOVQ         R10, R13                  \
-	XORQ         $32, R11                  \
-	XORQ         $32, R12                  \
-	XORQ         $32, R13                  \
-	VBROADCASTSS query_tmin(DI), Y7        \
-	VBROADCASTSS query_tmax(DI), Y8        \
+	MOVL         R14, R8                   \
+	MOVL         R14, R9                   \
+	MOVL         R14, R10                  \
+	SHLL         $5, R8                    \
+	SHLL         $4, R9                    \
+	SHLL         $3, R10                   \
+	ANDL         $32, R8                   \
+	ANDL         $32, R9                   \
+	ANDL         $32, R10                  \
+	MOVL         R8, R11                   \
+	MOVL         R9, R12                   \
+	MOVL         R10, R13                  \
+	XORL         $32, R11                  \
+	XORL         $32, R12                  \
+	XORL         $32, R13                  \
+	SHLL         $2, R14                   \
+	VBROADCASTSS ray_tmin(DI), Y7          \
+	VBROADCASTSS ray_tmax(DI), Y8          \
 	VMOVUPS      Y7, TMIN(SP)              \
 	VMOVUPS      Y8, TMAX(SP)              \
+	MOVLQSX      ray_kz(DI), DX            \
+	LEAQ         axes<>(SB), SI            \
+	MOVLQZX      (SI)(DX*4), BX            \
+	MOVLQZX      4(SI)(DX*4), CX           \
+	VMOVSS       NRDIR(SP)(DX*4), X9       \
+	VMOVSS       X9, SHEARS+20(SP)         \
+	VXORPS       X3, X9, X9                \
+	VMULSS       ray_dir(DI)(BX*4), X9, X10 \
+	VMULSS       ray_dir(DI)(CX*4), X9, X11 \
+	VMOVSS       ray_org(DI)(BX*4), X12    \
+	VMOVSS       ray_org(DI)(CX*4), X13    \
+	VMOVSS       ray_org(DI)(DX*4), X14    \
+	VMOVSS       X12, SHEARS+0(SP)         \
+	VMOVSS       X13, SHEARS+4(SP)         \
+	VMOVSS       X14, SHEARS+8(SP)         \
+	VMOVSS       X10, SHEARS+12(SP)        \
+	VMOVSS       X11, SHEARS+16(SP)        \
+	SHLL         $5, BX                    \
+	SHLL         $5, CX                    \
+	SHLL         $5, DX                    \
+	MOVL         BX, AXES+0(SP)            \
+	MOVL         CX, AXES+4(SP)            \
+	MOVL         DX, AXES+8(SP)            \
 	LEAQ         STACK(SP), SI             \
 	MOVL         END, (SI)                 \
 	MOVL         $-1, NEAR(SI)             \
@@ -160,14 +218,14 @@
 	LEAQ         (DX)(DX*4), AX        \
 	SHLQ         $6, AX                \
 	ADDQ         blocks+8(FP), AX      \
-	MOVLQZX      query_kx(DI), BX      \
-	MOVLQZX      query_ky(DI), CX      \
-	MOVLQZX      query_kz(DI), DX      \
-	VBROADCASTSS query_org+8(DI), Y0   \
-	VBROADCASTSS query_org+0(DI), Y1   \
-	VBROADCASTSS query_org+4(DI), Y2   \
-	VBROADCASTSS query_sx(DI), Y3      \
-	VBROADCASTSS query_sy(DI), Y4      \
+	MOVLQZX      AXES+0(SP), BX      \
+	MOVLQZX      AXES+4(SP), CX      \
+	MOVLQZX      AXES+8(SP), DX      \
+	VBROADCASTSS SHEARS+8(SP), Y0   \
+	VBROADCASTSS SHEARS+0(SP), Y1   \
+	VBROADCASTSS SHEARS+4(SP), Y2   \
+	VBROADCASTSS SHEARS+12(SP), Y3      \
+	VBROADCASTSS SHEARS+16(SP), Y4      \
 	VSUBPS       (AX)(DX*1), Y0, Y7    \
 	VSUBPS       96(AX)(DX*1), Y0, Y8  \
 	VSUBPS       192(AX)(DX*1), Y0, Y9 \
@@ -203,7 +261,7 @@
 
 // CROSSING goes on from BLOCK's label exact.
 #define CROSSING \
-	VBROADCASTSS query_nsz(DI), Y11    \
+	VBROADCASTSS SHEARS+20(SP), Y11    \
 	VADDPS       Y1, Y0, Y3            \
 	VMULPS       Y11, Y7, Y7           \
 	VMULPS       Y11, Y8, Y8           \
@@ -224,11 +282,10 @@
 	VMOVMSKPS    Y9, CX                \
 	TESTL        CX, CX
 
-// func closestAVX2(nodes *node, blocks *block, q *query, h *Hit)
-TEXT ·closestAVX2(SB), 0, $4352-32
+// func closestAVX2(nodes *node, blocks *block, r *ray, h *Hit)
+TEXT ·closestAVX2(SB), 0, $4448-32
 	NO_LOCAL_POINTERS
 	SETUP
-	MOVLQZX query_octant(DI), R14
 	PLANES
 
 node:
@@ -242,10 +299,9 @@ node:
 	VMOVDQU      Y9, REFS(SP)
 	XORL         $0xff, CX
 	JEQ          pop
-	BSFL         CX, DX
+	TZCNTL       CX, DX
 	MOVL         REFS(SP)(DX*4), DX
-	LEAL         -1(CX), BX
-	ANDL         BX, CX
+	BLSRL        CX, CX
 	VPMOVZXBD    (R15)(CX*8), Y10
 	VPERMD       Y9, Y10, Y9
 	VPERMD       Y7, Y10, Y7
@@ -290,15 +346,15 @@ exact:
 	MOVQ    h+24(FP), BX
 
 commit:
-	BSFL   CX, DX
-	MOVL   DIST(SP)(DX*4), R14
-	CMPL   R14, TMAX(SP)
+	TZCNTL CX, DX
+	MOVL   DIST(SP)(DX*4), DI
+	CMPL   DI, TMAX(SP)
 	JGT    skip
 	JLT    take
-	MOVL   Hit_Prim(BX), R14      // of equals the lowest, -1 being no hit
-	TESTL  R14, R14
+	MOVL   Hit_Prim(BX), DI      // of equals the lowest, -1 being no hit
+	TESTL  DI, DI
 	JMI    take
-	CMPL   R14, block_prim(AX)(DX*4)
+	CMPL   DI, block_prim(AX)(DX*4)
 	JLT    skip
 
 take:
@@ -311,16 +367,14 @@ take:
 	VMOVSS       X7, Hit_T(BX)
 	VMOVSS       X9, Hit_U(BX)
 	VMOVSS       X10, Hit_V(BX)
-	MOVL         block_prim(AX)(DX*4), R14
-	MOVL         R14, Hit_Prim(BX)
+	MOVL         block_prim(AX)(DX*4), DI
+	MOVL         DI, Hit_Prim(BX)
 	VBROADCASTSS X7, Y7
 	VMOVUPS      Y7, TMAX(SP)
 
 skip:
-	LEAL -1(CX), DX
-	ANDL DX, CX
+	BLSRL CX, CX
 	JNE  commit
-	MOVLQZX query_octant(DI), R14
 
 tested:
 	PLANES
@@ -330,8 +384,8 @@ end:
 	VZEROUPPER
 	RET
 
-// func occludedAVX2(nodes *node, blocks *block, q *query) bool
-TEXT ·occludedAVX2(SB), 0, $4352-25
+// func occludedAVX2(nodes *node, blocks *block, r *ray) bool
+TEXT ·occludedAVX2(SB), 0, $4448-25
 	NO_LOCAL_POINTERS
 	SETUP
 	PLANES
@@ -342,10 +396,9 @@ node:
 	VMOVDQU   node_ref(AX), Y9
 	XORL      $0xff, CX
 	JEQ       pop
-	BSFL      CX, DX
+	TZCNTL    CX, DX
 	MOVL      node_ref(AX)(DX*4), DX
-	LEAL      -1(CX), BX
-	ANDL      BX, CX
+	BLSRL     CX, CX
 	VPMOVZXBD (R15)(CX*8), Y10
 	VPERMD    Y9, Y10, Y9
 	VMOVDQU   Y9, (SI)
@@ -394,6 +447,19 @@ out:
 	VZEROUPPER
 	MOVB CX, ret+24(FP)
 	RET
+
+// axes holds kx at kz and ky at kz+1.
+DATA axes<>+0(SB)/8, $0x0000000200000001
+DATA axes<>+8(SB)/8, $0x0000000100000000
+GLOBL axes<>(SB), RODATA|NOPTR, $16
+
+DATA tiny<>+0(SB)/8, $0x1780000017800000 // tinyDir
+DATA tiny<>+8(SB)/8, $0x1780000017800000
+GLOBL tiny<>(SB), RODATA|NOPTR, $16
+
+DATA minus<>+0(SB)/8, $0xbf800000bf800000 // -1
+DATA minus<>+8(SB)/8, $0xbf800000bf800000
+GLOBL minus<>(SB), RODATA|NOPTR, $16
 
 // shifts brings the nibble of each lane down; VPERMD reads three bits.
 DATA shifts<>+0(SB)/8, $0x0000000400000000

@@ -4,9 +4,9 @@ package bvh
 
 const useAVX2 = false
 
-func (t *Tree) closest(q *query, h *Hit) { t.closestGo(q, h) }
+func (t *Tree) closest(r *ray, h *Hit) { t.closestGo(r, h) }
 
-func (t *Tree) occluded(q *query) bool { return t.occludedGo(q) }
+func (t *Tree) occluded(r *ray) bool { return t.occludedGo(r) }
 
 func (bs *bins) fill(ps []prim, lo, scale *[4]float32) { bs.fillGo(ps, lo, scale) }
 

@@ -1,7 +1,5 @@
 package bvh
 
-import "math"
-
 // The loops of this file are those of kernel_amd64.s in Go: the fallback, and
 // what the assembly is tested against. They compare floats as int32: among
 // non-negative ones the order is the same, and negative ones are below them,
@@ -15,34 +13,35 @@ type entry struct{ ref, near int32 }
 // smallStack serves most trees; a larger one costs time to clear.
 const smallStack = 96
 
-func intBits(x float32) int32     { return int32(math.Float32bits(x)) }
-func fromIntBits(b int32) float32 { return math.Float32frombits(uint32(b)) }
-
-func (t *Tree) closestGo(q *query, h *Hit) {
+func (t *Tree) closestGo(r *ray, h *Hit) {
+	var q query
+	q.set(r)
 	if t.stack <= smallStack {
 		var s [smallStack]entry
-		t.walkClosest(q, h, s[:])
+		t.walkClosest(&q, h, s[:])
 		return
 	}
 	var s [stackSize]entry
-	t.walkClosest(q, h, s[:])
+	t.walkClosest(&q, h, s[:])
 }
 
-func (t *Tree) occludedGo(q *query) bool {
+func (t *Tree) occludedGo(r *ray) bool {
+	var q query
+	q.set(r)
 	if t.stack <= smallStack {
 		var s [smallStack]int32
-		return t.walkOccluded(q, s[:])
+		return t.walkOccluded(&q, s[:])
 	}
 	var s [stackSize]int32
-	return t.walkOccluded(q, s[:])
+	return t.walkOccluded(&q, s[:])
 }
 
 func (t *Tree) walkClosest(q *query, h *Hit, stack []entry) {
 	px, py, pz := q.near[0], q.near[1], q.near[2]
 	fx, fy, fz := q.far[0], q.far[1], q.far[2]
 	rx, ry, rz := q.nrdir[0], q.nrdir[1], q.nrdir[2]
-	ax, ay, az := q.nearX/row, 2+q.nearY/row, 4+q.nearZ/row
-	octant := q.octant / 4
+	ax, ay, az := q.down[0], 2+q.down[1], 4+q.down[2]
+	octant := q.octant
 	tmin, tmax := q.tmin, q.tmax
 	ref, sp := int32(0), 0
 	for {
@@ -82,7 +81,7 @@ func (t *Tree) walkOccluded(q *query, stack []int32) bool {
 	px, py, pz := q.near[0], q.near[1], q.near[2]
 	fx, fy, fz := q.far[0], q.far[1], q.far[2]
 	rx, ry, rz := q.nrdir[0], q.nrdir[1], q.nrdir[2]
-	ax, ay, az := q.nearX/row, 2+q.nearY/row, 4+q.nearZ/row
+	ax, ay, az := q.down[0], 2+q.down[1], 4+q.down[2]
 	tmin, tmax := q.tmin, q.tmax
 	ref, sp := int32(0), 0
 	for {
@@ -120,7 +119,7 @@ func (t *Tree) walkOccluded(q *query, stack []int32) bool {
 // Ray/Triangle Intersection", JCGT 2(1). Positions are counted from the vertex
 // to the origin, which changes no sign of a product.
 func closestBlock(b *block, last int, q *query, h *Hit) {
-	kx, ky, kz := q.kx/row, q.ky/row, q.kz/row
+	kx, ky, kz := q.kx, q.ky, q.kz
 	x0, x1, x2 := &b.v[0][kx], &b.v[1][kx], &b.v[2][kx]
 	y0, y1, y2 := &b.v[0][ky], &b.v[1][ky], &b.v[2][ky]
 	z0, z1, z2 := &b.v[0][kz], &b.v[1][kz], &b.v[2][kz]

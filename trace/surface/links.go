@@ -2,7 +2,7 @@ package surface
 
 import (
 	"context"
-	"sort"
+	"slices"
 	"sync"
 	"sync/atomic"
 
@@ -23,12 +23,9 @@ type Link struct {
 	W    float32
 }
 
-// PatchWeight says that a sky patch's mean luminance times W (sr) arrives as
-// illuminance.
-type PatchWeight struct {
-	Patch int32
-	W     float32
-}
+// PatchWeight is a Link from a sky patch: its mean luminance times W (sr)
+// arrives as illuminance. Side holds the patch.
+type PatchWeight = Link
 
 // Rows holds, in compressed form, what each receiver of a batch gathers:
 // links, sky patches and the endless ground. Receivers here are texel sides;
@@ -52,6 +49,9 @@ type Config struct {
 	Workers int
 	// Coarsen multiplies every texel edge; 1 where memory allows.
 	Coarsen float64
+	// Receivers are points of view and sensors; parts that they hardly see
+	// are cut more coarsely. None: all parts alike.
+	Receivers []r3.Vec
 }
 
 // portalShare is the share of a texel's rays that aim at openings.
@@ -67,7 +67,6 @@ type Transport struct {
 
 	active []int32 // texel side -> dense index + 1, 0 where not (yet) active
 	sides  []int32 // dense index -> texel side
-	ground []bool  // dense index -> lies on the ground plane
 	rows   []Rows  // by batch
 	done   int
 	near   neighbours
@@ -80,7 +79,7 @@ func NewTransport(w *trace.World, patches *sky.Patches, cfg Config) *Transport {
 		cfg.Coarsen = 1
 	}
 	t := &Transport{World: w, Patches: patches, Config: cfg}
-	t.Texels = Cut(w, cfg.Coarsen)
+	t.Texels = Cut(w, cfg.Coarsen, cellFactors(w, cfg.Receivers, cfg.Seed))
 	t.active = make([]int32, 2*t.Texels.Len())
 	t.rows = make([]Rows, cfg.Batches)
 	for b := range t.rows {
@@ -165,10 +164,7 @@ func (t *Transport) Trace(ctx context.Context, progress func(done, known int)) e
 			progress(t.done, len(t.sides))
 		}
 	}
-	t.ground = make([]bool, len(t.sides))
-	for i := range t.sides {
-		t.ground[i] = t.World.Scene.Parts[t.Part(int32(i))].Kind == scene.GroundPlane
-	}
+	t.dropDark()
 	t.near = t.findNeighbours()
 	return nil
 }
@@ -247,6 +243,8 @@ func share(total, i, parts int) int { return (total*(i+1))/parts - (total*i)/par
 const (
 	streamTexel = 1
 	streamSun   = 2
+	streamDisc  = 3
+	streamLook  = 4
 )
 
 // Compress sorts what was found by texel side and patch and sums equal ones.
@@ -284,10 +282,8 @@ func (t *Transport) Compress(f *trace.Found, patches *sky.Patches, scale float64
 		}
 		r.Patches = append(r.Patches, PatchWeight{int32(patches.Index(e.Dir)), w})
 	}
-	sort.SliceStable(r.Links, func(a, b int) bool { return r.Links[a].Side < r.Links[b].Side })
-	r.Links = mergeLinks(r.Links)
-	sort.SliceStable(r.Patches, func(a, b int) bool { return r.Patches[a].Patch < r.Patches[b].Patch })
-	r.Patches = mergePatches(r.Patches)
+	r.Links = mergeLinks(sorted(r.Links))
+	r.Patches = mergeLinks(sorted(r.Patches))
 	return r
 }
 
@@ -298,6 +294,12 @@ const pi = 3.14159265358979323846
 func (t *Transport) Hidden(dir r3.Vec) bool {
 	s := t.World.Scene
 	return dir.Z <= 0 || (s.HasHorizon && s.Horizon.Hides(dir))
+}
+
+// sorted orders links by sender, equal ones as they came.
+func sorted(l []Link) []Link {
+	slices.SortStableFunc(l, func(a, b Link) int { return int(a.Side) - int(b.Side) })
+	return l
 }
 
 func mergeLinks(l []Link) []Link {
@@ -312,22 +314,13 @@ func mergeLinks(l []Link) []Link {
 	return out
 }
 
-func mergePatches(l []PatchWeight) []PatchWeight {
-	out := l[:0]
-	for _, x := range l {
-		if n := len(out); n > 0 && out[n-1].Patch == x.Patch {
-			out[n-1].W += x.W
-			continue
-		}
-		out = append(out, x)
-	}
-	return out
-}
-
 // Add appends one receiver; links are rewritten to dense indices.
 func (r *Rows) Add(t *Transport, x *Gathered) {
 	for _, l := range x.Links {
 		d := Link{t.Index(l.Side), l.W}
+		if d.Side < 0 {
+			continue // dark
+		}
 		if t.World.Scene.Parts[t.Texels.Part(l.Side/2)].Kind == scene.GroundPlane {
 			r.groundLink = append(r.groundLink, d)
 		} else {

@@ -52,7 +52,7 @@ func (t *Transport) findNeighbours() neighbours {
 		for b := range t.rows {
 			r := &t.rows[b]
 			for _, p := range r.patches[r.patchStart[i]:r.patchStart[i+1]] {
-				own[i*n.stride+int(p.Patch)/64] |= 1 << (p.Patch % 64)
+				own[i*n.stride+int(p.Side)/64] |= 1 << (p.Side % 64)
 			}
 		}
 	}

@@ -2,15 +2,10 @@ package surface
 
 import (
 	"math"
+	"unsafe"
 
-	"gonum.org/v1/gonum/spatial/r3"
-
-	"squint/materials"
-	"squint/materials/sampling"
 	"squint/scene"
-	"squint/scene/photometry"
 	"squint/scene/sky"
-	"squint/trace"
 )
 
 // Width is the number of moments solved together: one row of Width float32
@@ -24,6 +19,8 @@ type Row [Width]float32
 // skies averaged over patches.
 type Block struct {
 	Moments []*scene.Moment
+	// Sun holds the sun's rays of each moment.
+	Sun []SunRays
 	// Sky[p] holds the mean luminance of patch p at each moment.
 	Sky []Row
 	// Fine is the same over the finer patches that sensors use.
@@ -44,6 +41,7 @@ func (t *Transport) NewBlock(moments []*scene.Moment, fine *sky.Patches) *Block 
 	}
 	for h, m := range moments {
 		b.Below[h] = float32(GroundLuminance(t.World.Scene, m))
+		b.Sun = append(b.Sun, t.newSunRays(m))
 	}
 	return b
 }
@@ -84,52 +82,6 @@ const sweepTolerance = 2e-4
 // maxSweeps is never reached below a mean reflectance of 0.99.
 const maxSweeps = 400
 
-// SunOn samples the direct sun on every active side for all moments of a
-// block in batch b: one ray from a random point of the texel to a random point
-// of the disc. Sides that look at no sky near the sun, nor have neighbours that
-// do, are passed over (Transport.maySee).
-func (t *Transport) SunOn(bl *Block, b int, light *Light) {
-	w := t.World
-	alpha := photometry.SunDiameterRad / 2
-	patch := make([]int, len(bl.Moments))
-	for h, m := range bl.Moments {
-		patch[h] = -1
-		if m.SunNormalLx > 0 {
-			patch[h] = t.Patches.Index(m.Sun)
-		}
-	}
-	for i, side := range t.sides {
-		sun := &light.Sun[i]
-		*sun = Row{}
-		light.Lit[i] = 0
-		if !t.near.looksUp[i] {
-			continue
-		}
-		k := side / 2
-		sign := 1.0
-		if side&1 == int32(materials.Back) {
-			sign = -1
-		}
-		for h, m := range bl.Moments {
-			if patch[h] < 0 || !t.near.maySee(i, patch[h]) {
-				continue
-			}
-			s := sampling.Stream4(t.Config.Seed, streamSun, uint64(m.Hour)<<32|uint64(side), uint64(b))
-			p, n := t.Texels.Sample(k, s.Float64(), s.Float64(), s.Float64())
-			n = r3.Scale(sign, n)
-			dir := trace.ConeDirection(m.Sun, alpha, s.Float64(), s.Float64())
-			cos := r3.Dot(dir, n)
-			if cos <= 0 || t.Hidden(dir) {
-				continue
-			}
-			if tr := w.Transmittance(w.Offset(p, n), dir, math.Inf(1)); tr > 0 {
-				sun[h] = float32(m.SunNormalLx * cos * tr)
-				light.Lit[i] |= 1 << h
-			}
-		}
-	}
-}
-
 // Solve computes the illuminance of every active side in batch b for a block.
 // light is reused between calls.
 func (t *Transport) Solve(bl *Block, b int, light *Light) {
@@ -137,17 +89,15 @@ func (t *Transport) Solve(bl *Block, b int, light *Light) {
 	if len(light.E) != n {
 		light.E, light.Sun, light.Rest, light.Lit = make([]Row, n), make([]Row, n), make([]Row, n), make([]uint64, n)
 	}
-	t.SunOn(bl, b, light)
+	t.sunOn(bl, b, light)
 	rows := &t.rows[b]
 	source := light.Rest
 	for i := range n {
 		e := &source[i]
 		*e = light.Sun[i]
-		for _, p := range rows.patches[rows.patchStart[i]:rows.patchStart[i+1]] {
-			axpy(e, &bl.Sky[p.Patch], p.W)
-		}
+		gather(e, bl.Sky, rows.patches[rows.patchStart[i]:rows.patchStart[i+1]], 1)
 		if g := rows.below[i]; g > 0 {
-			axpy(e, &bl.Below, g)
+			AddScaled(e, &bl.Below, g)
 		}
 		light.E[i] = *e
 	}
@@ -159,16 +109,11 @@ func (t *Transport) Solve(bl *Block, b int, light *Light) {
 				i = n - 1 - j
 			}
 			e := source[i]
-			for _, l := range rows.links[rows.linkStart[i]:rows.linkStart[i+1]] {
-				axpy(&e, &light.E[l.Side], l.W)
-			}
-			for _, l := range rows.groundLink[rows.groundFrom[i]:rows.groundFrom[i+1]] {
-				axpy(&e, &light.E[l.Side], l.W*bl.GroundReflectance)
-			}
-			c, s := difference(&e, &light.E[i])
+			gather(&e, light.E, rows.links[rows.linkStart[i]:rows.linkStart[i+1]], 1)
+			gather(&e, light.E, rows.groundLink[rows.groundFrom[i]:rows.groundFrom[i+1]], bl.GroundReflectance)
+			c, s := settle(&e, &light.E[i])
 			change += c
 			total += s
-			light.E[i] = e
 		}
 		if change <= sweepTolerance*total {
 			break
@@ -186,47 +131,16 @@ func (t *Transport) Solve(bl *Block, b int, light *Light) {
 // illuminance of receiver r without the sun's direct light on it.
 func (bl *Block) Gather(rows *Rows, light *Light, r int, out *Row) {
 	*out = Row{}
-	for _, l := range rows.links[rows.linkStart[r]:rows.linkStart[r+1]] {
-		axpy(out, &light.E[l.Side], l.W)
-	}
-	for _, l := range rows.groundLink[rows.groundFrom[r]:rows.groundFrom[r+1]] {
-		axpy(out, &light.E[l.Side], l.W*bl.GroundReflectance)
-	}
-	for _, p := range rows.patches[rows.patchStart[r]:rows.patchStart[r+1]] {
-		axpy(out, &bl.Fine[p.Patch], p.W)
-	}
+	gather(out, light.E, rows.links[rows.linkStart[r]:rows.linkStart[r+1]], 1)
+	gather(out, light.E, rows.groundLink[rows.groundFrom[r]:rows.groundFrom[r+1]], bl.GroundReflectance)
+	gather(out, bl.Fine, rows.patches[rows.patchStart[r]:rows.patchStart[r+1]], 1)
 	if g := rows.below[r]; g > 0 {
-		axpy(out, &bl.Below, g)
+		AddScaled(out, &bl.Below, g)
 	}
-}
-
-// axpy adds w times x to y.
-func axpy(y, x *Row, w float32) {
-	for i := 0; i < Width; i += 8 {
-		y[i] += w * x[i]
-		y[i+1] += w * x[i+1]
-		y[i+2] += w * x[i+2]
-		y[i+3] += w * x[i+3]
-		y[i+4] += w * x[i+4]
-		y[i+5] += w * x[i+5]
-		y[i+6] += w * x[i+6]
-		y[i+7] += w * x[i+7]
-	}
-}
-
-// difference sums |a-b| and a over a row.
-func difference(a, b *Row) (change, total float64) {
-	var c, s float32
-	for i := range a {
-		d := a[i] - b[i]
-		if d < 0 {
-			d = -d
-		}
-		c += d
-		s += a[i]
-	}
-	return float64(c), float64(s)
 }
 
 // AddScaled adds w times x to y.
-func AddScaled(y, x *Row, w float32) { axpy(y, x, w) }
+func AddScaled(y, x *Row, w float32) {
+	l := [1]Link{{0, w}}
+	gather(y, unsafe.Slice(x, 1), l[:], 1)
+}

@@ -43,12 +43,13 @@ type piece struct {
 }
 
 // Cut divides the world's diffusely scattering triangles into texels with the
-// cell edge that each part asks for, times coarsen (>= 1).
-func Cut(w *trace.World, coarsen float64) *Texels {
+// cell edge that each part asks for, times coarsen (>= 1) and the part's
+// factor.
+func Cut(w *trace.World, coarsen float64, factor []float64) *Texels {
 	s := w.Scene
 	t := &Texels{world: w, index: map[texelKey]int32{}, cell: make([]float64, len(s.Parts))}
 	for i, p := range s.Parts {
-		t.cell[i] = p.TexelM * coarsen
+		t.cell[i] = p.TexelM * coarsen * factor[i]
 	}
 	type owned struct {
 		texel int32

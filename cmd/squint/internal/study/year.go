@@ -33,6 +33,14 @@ type year struct {
 func computeYear(ctx context.Context, in *Input, opt Options, r *Result) (*year, error) {
 	sim := in.Project.Simulation
 	cfg := surface.Config{Batches: sim.Batches, Samples: sim.TexelSamples, Seed: sim.Seed, Workers: opt.Workers, Coarsen: 1}
+	for _, v := range in.Scene.Viewpoints {
+		cfg.Receivers = append(cfg.Receivers, v.Position)
+	}
+	for _, w := range in.Scene.WorkPlanes {
+		for _, s := range w.Sensors {
+			cfg.Receivers = append(cfg.Receivers, s.Position)
+		}
+	}
 	t := surface.NewTransport(in.World, sky.NewPatches(1), cfg)
 	for estimate := memoryMiB(t, sim.Batches, opt.Workers); estimate > float64(sim.MemoryMiB); estimate = memoryMiB(t, sim.Batches, opt.Workers) {
 		cfg.Coarsen *= math.Max(1.1, math.Sqrt(estimate/float64(sim.MemoryMiB)))

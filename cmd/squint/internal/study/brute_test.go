@@ -1,0 +1,186 @@
+package study
+
+import (
+	"context"
+	"math"
+	"os"
+	"runtime"
+	"sync"
+	"testing"
+
+	"gonum.org/v1/gonum/spatial/r3"
+
+	"squint/cmd/squint/demo"
+	"squint/glare"
+	"squint/materials/sampling"
+	"squint/scene"
+	"squint/scene/photometry"
+	"squint/trace"
+	"squint/trace/annual"
+	"squint/trace/coeff"
+)
+
+// TestAnnualAgainstBruteForce holds the annual run's DGP against pictures of
+// the same hours made by the plain path tracer, pixel by pixel at the same
+// resolution: no texels, no sky patches, no links. It takes minutes and runs
+// where SQUINT_LONG is set, as .ci/run does.
+//
+// The bounds are those asked of the method: RMSE 0.01, largest 0.03. The brute
+// force pictures' own error is measured by their batches and must be small
+// against the bounds.
+func TestAnnualAgainstBruteForce(t *testing.T) {
+	if os.Getenv("SQUINT_LONG") == "" {
+		t.Skip("takes minutes; set SQUINT_LONG=1, as .ci/run does")
+	}
+	in, err := Prepare(demo.FS(), demo.Project, runtime.NumCPU())
+	if err != nil {
+		t.Fatal(err)
+	}
+	// Two views: one towards the windows, one along them.
+	views := []int{3, 0}
+	in.Scene.Viewpoints = []scene.Viewpoint{in.Scene.Viewpoints[views[0]], in.Scene.Viewpoints[views[1]]}
+	in.Scene.WorkPlanes = nil
+	moments := spreadMoments(in.Climate.Moments, 20)
+	in.Climate.Moments = moments
+	r, err := Run(context.Background(), in, Options{Workers: runtime.NumCPU()})
+	if err != nil {
+		t.Fatal(err)
+	}
+	var sum, worst, bruteSE float64
+	n := 0
+	for k, v := range in.Scene.Viewpoints {
+		dgp, se := bruteForce(t, in, v, moments, 4096)
+		for i, m := range moments {
+			got := float64(r.Views[k].DGP[m.Hour])
+			d := got - dgp[i]
+			t.Logf("%-8s %s sun %6.0f lx  annual %.4f +- %.4f  brute %.4f +- %.4f  difference %+.4f",
+				v.Name, m.Time.Format("01-02 15:04"), m.SunNormalLx, got, r.Views[k].StdErr[m.Hour], dgp[i], se[i], d)
+			sum += d * d
+			worst = math.Max(worst, math.Abs(d))
+			bruteSE = math.Max(bruteSE, se[i])
+			n++
+		}
+	}
+	rmse := math.Sqrt(sum / float64(n))
+	t.Logf("DGP: RMSE %.4f, largest difference %.4f over %d pictures; largest standard error of brute force %.4f", rmse, worst, n, bruteSE)
+	if rmse > 0.01 || worst > 0.03 {
+		t.Errorf("RMSE %.4f, largest %.4f; want at most 0.01 and 0.03", rmse, worst)
+	}
+	if bruteSE > 0.006 {
+		t.Errorf("brute force is not converged: standard error %.4f, want at most a fifth of 0.03", bruteSE)
+	}
+}
+
+// spreadMoments takes n occupied moments evenly from the year.
+func spreadMoments(all []*scene.Moment, n int) []*scene.Moment {
+	var used []*scene.Moment
+	for _, m := range all {
+		if m.Occupied {
+			used = append(used, m)
+		}
+	}
+	var out []*scene.Moment
+	for i := range n {
+		out = append(out, used[(2*i+1)*len(used)/(2*n)])
+	}
+	return out
+}
+
+// bruteForce renders every moment with spp samples a pixel and returns DGP
+// with its jackknife error over 8 batches.
+func bruteForce(t *testing.T, in *Input, v scene.Viewpoint, moments []*scene.Moment, spp int) (dgp, se []float64) {
+	t.Helper()
+	cfg := coeff.EyeConfig{Pixels: in.Project.Simulation.FisheyePixels, SamplesPerPixel: 8, Batches: 8, Seed: 1}
+	view, inside := fisheye(t, v, cfg.Pixels)
+	const batches = 8
+	images := make([][batches][]float32, len(moments))
+	for i := range images {
+		for b := range images[i] {
+			images[i][b] = make([]float32, cfg.Pixels*cfg.Pixels)
+		}
+	}
+	var wg sync.WaitGroup
+	jobs := make(chan int)
+	for range runtime.NumCPU() {
+		wg.Add(1)
+		go func() {
+			defer wg.Done()
+			tr := trace.NewTracer(in.World, moments)
+			out := make([]float64, len(moments))
+			for px := range jobs {
+				for b := range batches {
+					clear(out)
+					s := sampling.Stream4(77, 1, uint64(px), uint64(b))
+					for range spp / batches {
+						dir, ok := view.Ray(float64(px%cfg.Pixels)+s.Float64(), float64(px/cfg.Pixels)+s.Float64())
+						for !ok {
+							dir, ok = view.Ray(float64(px%cfg.Pixels)+s.Float64(), float64(px/cfg.Pixels)+s.Float64())
+						}
+						tr.Luminance(v.Position, dir, 1, &s, out)
+					}
+					for i := range out {
+						images[i][b][px] = float32(out[i] / float64(spp/batches))
+					}
+				}
+			}
+		}()
+	}
+	for _, px := range inside {
+		jobs <- int(px)
+	}
+	close(jobs)
+	wg.Wait()
+	field := glare.NewField(view)
+	var scratch glare.Scratch
+	for i, m := range moments {
+		disc := bruteDisc(in, v, m)
+		var discs []glare.Disc
+		if disc.OmegaSr > 0 {
+			discs = append(discs, glare.Disc{Dir: view.Local(disc.Dir), OmegaSr: disc.OmegaSr, Luminance: disc.Luminance})
+		}
+		pooled := make([]float32, len(images[i][0]))
+		for b := range batches {
+			for px, l := range images[i][b] {
+				pooled[px] += l / batches
+			}
+		}
+		d, _ := glare.DGPOnly(field, pooled, discs, glare.Options{}, &scratch)
+		var s1, s2 float64
+		rest := make([]float32, len(pooled))
+		for b := range batches {
+			for px := range rest {
+				rest[px] = max(0, (pooled[px]*batches-images[i][b][px])/(batches-1))
+			}
+			x, _ := glare.DGPOnly(field, rest, discs, glare.Options{}, &scratch)
+			s1 += x
+			s2 += x * x
+		}
+		mean := s1 / batches
+		dgp = append(dgp, d)
+		se = append(se, math.Sqrt(math.Max(0, s2/batches-mean*mean)*(batches-1)))
+	}
+	return dgp, se
+}
+
+// bruteDisc looks at the sun with many rays.
+func bruteDisc(in *Input, v scene.Viewpoint, m *scene.Moment) annual.Disc {
+	const n = 4096
+	if m.SunNormalLx <= 0 || r3.Dot(m.Sun, v.Direction) <= 0 {
+		return annual.Disc{}
+	}
+	s := sampling.Stream3(78, 2, uint64(m.Hour))
+	var open, tau float64
+	for range n {
+		dir := trace.ConeDirection(m.Sun, photometry.SunDiameterRad/2, s.Float64(), s.Float64())
+		if dir.Z <= 0 || in.Scene.HasHorizon && in.Scene.Horizon.Hides(dir) || in.World.Blocked(v.Position, dir, math.Inf(1)) {
+			continue
+		}
+		open++
+		tau += in.World.Straight(v.Position, dir, math.Inf(1))
+	}
+	if open == 0 {
+		return annual.Disc{}
+	}
+	return annual.Disc{Dir: m.Sun, OmegaSr: photometry.DiscSolidAngle(photometry.SunDiameterRad) * open / n,
+		Luminance: photometry.DiscLuminance(m.SunNormalLx, photometry.SunDiameterRad) * tau / open}
+}

@@ -1,0 +1,7 @@
+//go:build !amd64 || purego
+
+package surface
+
+func gather(acc *Row, rows []Row, links []Link, scale float32) { gatherGo(acc, rows, links, scale) }
+
+func settle(e, old *Row) (change, total float64) { return settleGo(e, old) }
