@@ -149,7 +149,7 @@ func (b *builder) readMesh(def *project.Mesh) (*mesh.Mesh, error) {
 		err = m.SizeProblemWithin(0.1, 20000, 1000)
 	}
 	if err != nil {
-		return nil, err
+		return nil, fmt.Errorf("%s:%d: mesh: %w", b.p.File, def.Line, err)
 	}
 	turn := -def.RotateDeg * math.Pi / 180 // clockwise seen from above
 	s, c := math.Sincos(turn)
@@ -173,10 +173,9 @@ func (b *builder) readMesh(def *project.Mesh) (*mesh.Mesh, error) {
 func (b *builder) addMesh(pm *placed) {
 	m, def := pm.m, pm.def
 	byName := map[string]string{}
-	used := map[string]bool{}
 	for _, a := range def.Finishes {
 		if m.GroupIndex(a.Name) < 0 && m.MaterialIndex(a.Name) < 0 {
-			hint := project.DidYouMean(a.Name, append(append([]string{}, m.Groups...), m.Materials...))
+			hint := didYouMean(a.Name, append(append([]string{}, m.Groups...), m.Materials...))
 			missing := ""
 			if m.MissingMTL != "" {
 				missing = fmt.Sprintf("; the material library %s that the mesh names is not there", m.MissingMTL)
@@ -224,7 +223,6 @@ func (b *builder) addMesh(pm *placed) {
 			bare[label] = true
 			continue
 		}
-		used[name] = true
 		f, ok := b.finish[name]
 		if !ok {
 			continue // the project's own check has said so
@@ -259,21 +257,7 @@ func (b *builder) finishNames() []string {
 func (b *builder) addOpenings(meshes []*placed) {
 	for i := range b.p.Openings {
 		o := &b.p.Openings[i]
-		hint := r3.Vec{}
-		if o.OutwardDeg != nil {
-			hint = compass(*o.OutwardDeg, b.p.Site.NorthDeg)
-		}
-		var r system.Rect
-		var err error
-		if o.MeshGroup != "" {
-			r, err = b.rectOfGroup(meshes, o, hint)
-		} else {
-			var c [4]r3.Vec
-			for k, v := range o.CornersM {
-				c[k] = vec(v)
-			}
-			r, err = system.RectFromCorners(c, hint)
-		}
+		r, err := b.faceOpening(meshes, o)
 		if err != nil {
 			b.failf(o.Line, "opening %q: %v", o.Name, err)
 			continue
@@ -282,23 +266,27 @@ func (b *builder) addOpenings(meshes []*placed) {
 		if o.Glazing != "" {
 			part := b.part(Part{Name: o.Name, Kind: Pane, Opening: len(b.s.Openings) - 1, TexelM: systemTexelM})
 			b.addFaces(system.Pane(r, o.Glazing), func(string) int32 { return part })
+		} else {
+			b.ownGlass(o, len(b.s.Openings)-1)
 		}
 	}
 }
 
-func (b *builder) rectOfGroup(meshes []*placed, o *project.Opening, hint r3.Vec) (system.Rect, error) {
-	var tris [][3]r3.Vec
-	var groups []string
-	for _, pm := range meshes {
-		groups = append(groups, pm.m.Groups...)
-		if g := pm.m.GroupIndex(o.MeshGroup); g >= 0 {
-			tris = append(tris, pm.m.GroupTriangles(g)...)
+// ownGlass makes the mesh's own glass of a group the pane of opening k.
+func (b *builder) ownGlass(o *project.Opening, k int) {
+	for i := range b.s.Triangles {
+		t := &b.s.Triangles[i]
+		part, f := &b.s.Parts[t.Part], &b.s.Finishes[t.Finish]
+		if part.Name != o.MeshGroup || part.Kind == System {
+			continue
 		}
+		_, scattered := f.BSDF.Lambert(materials.Front)
+		if _, through := f.BSDF.Delta(materials.Front, 1); through <= 0 && scattered <= 0 {
+			b.failf(o.Line, "opening %q: mesh_group: the mesh gives group %q the finish %q, which lets no light through; want a finish of type glazing there, or give glazing here", o.Name, o.MeshGroup, f.Name)
+			return
+		}
+		part.Kind, part.Opening = Pane, k
 	}
-	if len(tris) == 0 {
-		return system.Rect{}, fmt.Errorf("mesh_group: no mesh has a group %q%s; there are %s", o.MeshGroup, project.DidYouMean(o.MeshGroup, groups), list(groups))
-	}
-	return system.RectFromTriangles(tris, hint)
 }
 
 func (b *builder) addFaces(faces []system.Face, partOf func(string) int32) {

@@ -15,7 +15,8 @@ import (
 )
 
 // Moment is one record of the year with daylight: the sun in the model frame,
-// its illuminance on a plane facing it, and the sky.
+// its illuminance on a plane facing it, and the sky. Illuminances are the means
+// over the record's whole hour, also where the sun is up for a part of it.
 type Moment struct {
 	Hour        int // index of the record, 0 is the first hour of 1 January
 	Time        time.Time
@@ -35,8 +36,8 @@ type Climate struct {
 	Fit     weather.Fit
 	OffsetH float64 // used: the fit's, or the project's own
 	Moments []*Moment
-	// SinAltitude of the sun by record, for the choice of daylight hours;
-	// negative at night.
+	// SinAltitude of the sun, as it is seen through the air, by record, for the
+	// choice of daylight hours; negative at night.
 	SinAltitude []float64
 	// DiffuseLx by record, 0 at night.
 	DiffuseLx []float64
@@ -85,7 +86,7 @@ func ReadClimate(fsys fs.FS, p *project.Project, occupied []bool) (*Climate, err
 	c.SinAltitude = make([]float64, len(y.Records))
 	c.DiffuseLx = make([]float64, len(y.Records))
 	for i := range y.Records {
-		m, sinAlt, clamped, err := c.moment(i, cz)
+		m, sinAlt, clamped, err := c.moment(i)
 		if err != nil {
 			return nil, err
 		}
@@ -122,42 +123,65 @@ func override(s *weather.Site, o project.Site) {
 	}
 }
 
-// moment makes record i; nil at night. The sky is still in the world frame.
-func (c *Climate) moment(i int, cz weather.CosZenith) (m *Moment, sinAlt float64, clamped bool, err error) {
-	r := &c.Year.Records[i]
-	t, share := c.Year.SunlitMoment(i, c.OffsetH, cz)
+// sunAt is the sun as it is seen through the air at t, weather by record r.
+func (c *Climate) sunAt(r *weather.Record, t time.Time) (sky.Sun, error) {
 	s, err := sky.SunAt(c.Site, t)
 	if err != nil {
-		return nil, 0, false, fmt.Errorf("%s:%d: sun: %w", c.Year.File, r.Line, err)
+		return s, fmt.Errorf("%s:%d: sun: %w", c.Year.File, r.Line, err)
+	}
+	return s.Refracted(r.PressurePa/100, orZero(r.DryBulbC)), nil
+}
+
+// moment makes record i; nil at night. The sky is still in the world frame.
+//
+// Where the sun rises or sets within a record that is a mean over an hour, it
+// stands in the middle of its sunlit part, while the illuminances stay the
+// means over the whole hour: an hour counts as one hour in every metric, so
+// that this keeps the light of the year. While the sun is up they are
+// 1/share times as high, which nothing downstream needs.
+func (c *Climate) moment(i int) (m *Moment, sinAlt float64, clamped bool, err error) {
+	r := &c.Year.Records[i]
+	t, share := c.Year.SunlitMoment(i, c.OffsetH, func(t time.Time) float64 {
+		s, sunErr := c.sunAt(r, t)
+		if sunErr != nil {
+			err = sunErr
+			return math.NaN()
+		}
+		return s.Direction.Z
+	})
+	if err != nil {
+		return nil, 0, false, err
+	}
+	s, err := c.sunAt(r, t)
+	if err != nil {
+		return nil, 0, false, err
 	}
 	sinAlt = s.Direction.Z
 	if r.DHI <= 0 && r.DNI <= 0 {
 		return nil, sinAlt, false, nil
 	}
 	dni := r.DNI
-	if share <= 0 || s.Direction.Z <= 0 {
-		dni = 0 // light before sunrise is the sky's
+	if share <= 0 || sinAlt <= 0 {
+		// No direct light comes from a sun that is down; in files that are
+		// right to the minute there is none.
+		dni = 0
 	}
-	day := t.YearDay()
 	ill := photometry.Perez1990(photometry.Irradiance{
 		DHI: r.DHI, DNI: dni, ZenithRad: s.ZenithRad,
-		E0n:       photometry.ExtraterrestrialNormal(day),
+		E0n:       photometry.ExtraterrestrialNormal(t.YearDay()),
 		DewPointC: r.DewPointC,
 		AirMass:   photometry.AirMassKastenYoung1989(s.ZenithRad),
 	})
-	if ill.Diffuse < minSkyLx && ill.DirectNormal*math.Max(0, s.Direction.Z) < minSkyLx {
+	direct := ill.DirectNormal * math.Max(0, sinAlt)
+	if ill.Diffuse < minSkyLx && direct < minSkyLx {
 		return nil, sinAlt, false, nil
 	}
-	apparent := s
-	if s.Direction.Z > 0 {
-		apparent = s.Refracted(r.PressurePa/100, orZero(r.DryBulbC))
-	}
-	dome, clamp := sky.NewPerez(aboveHorizon(apparent.Direction), ill.Clearness, ill.Brightness, ill.Diffuse)
+	dome, clamp := sky.NewPerez(aboveHorizon(s.Direction), ill.Clearness, ill.Brightness, ill.Diffuse)
 	m = &Moment{
 		Hour: i, Time: t, Month: r.Month - 1,
-		Sun: apparent.Direction, SunNormalLx: ill.DirectNormal, Sky: dome,
+		Sun: s.Direction, SunNormalLx: ill.DirectNormal, Sky: dome,
 		DiffuseLx: ill.Diffuse,
-		GlobalLx:  ill.Diffuse + ill.DirectNormal*math.Max(0, apparent.Direction.Z),
+		GlobalLx:  ill.Diffuse + direct,
 	}
 	return m, sinAlt, clamp.Clamped, nil
 }
@@ -203,7 +227,10 @@ func turnedHorizon(p *project.Project) (h sky.Horizon, has bool, err error) {
 		pts = append(pts, sky.HorizonPoint{AzimuthRad: az * math.Pi / 180, AltitudeRad: q.AltitudeDeg * math.Pi / 180})
 	}
 	h, err = sky.NewHorizon(pts)
-	return h, err == nil, err
+	if err != nil {
+		return h, false, fmt.Errorf("%s: horizon.line: %w", p.File, err)
+	}
+	return h, true, nil
 }
 
 // Overcast is the moment of the daylight factor: the CIE traditional overcast

@@ -8,8 +8,31 @@ import (
 	"squint/scene/project"
 )
 
-// buildFinish turns one finish of the project into its optical model.
+// buildFinish turns one finish of the project into its optical model, with
+// that of its back where it has one.
 func buildFinish(p *project.Project, f *project.Finish) (materials.BSDF, error) {
+	front, err := buildSide(p, f)
+	if err != nil || f.Back == "" {
+		return front, err
+	}
+	for i := range p.Finishes {
+		if p.Finishes[i].Name != f.Back {
+			continue
+		}
+		back, err := buildSide(p, &p.Finishes[i])
+		if err != nil {
+			return nil, err
+		}
+		both, err := materials.NewTwoSided(front, back)
+		if err != nil {
+			return nil, fmt.Errorf("%s:%d: finish %q: back: %w", p.File, f.Line, f.Name, err)
+		}
+		return both, nil
+	}
+	return nil, fmt.Errorf("%s:%d: finish %q: back: got %q, want the name of a finish", p.File, f.Line, f.Name, f.Back)
+}
+
+func buildSide(p *project.Project, f *project.Finish) (materials.BSDF, error) {
 	fail := func(err error) (materials.BSDF, error) {
 		return nil, fmt.Errorf("%s:%d: finish %q: %w", p.File, f.Line, f.Name, err)
 	}

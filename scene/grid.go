@@ -1,6 +1,7 @@
 package scene
 
 import (
+	"fmt"
 	"math"
 
 	"gonum.org/v1/gonum/spatial/r3"
@@ -8,10 +9,15 @@ import (
 	"squint/scene/project"
 )
 
+// maxCells keeps a slip in spacing_m from asking for millions of sensors: a
+// floor of 50 m by 50 m in cells of 0.1 m is a quarter of it.
+const maxCells = 1_000_000
+
 // sensorGrid lays cells of at most the asked spacing over the outline's
 // bounding box less the perimeter band, one sensor in the middle of each cell
-// that lies inside the outline and clear of the band.
-func sensorGrid(def *project.WorkPlane) WorkPlane {
+// that lies inside the outline and clear of the band. It fails where no sensor
+// fits, and where cells are more than maxCells.
+func sensorGrid(def *project.WorkPlane) (WorkPlane, error) {
 	w := WorkPlane{Name: def.Name, HeightM: def.HeightM, PolygonM: def.PolygonM, Line: def.Line}
 	lo, hi := [2]float64{math.Inf(1), math.Inf(1)}, [2]float64{math.Inf(-1), math.Inf(-1)}
 	for _, p := range def.PolygonM {
@@ -19,10 +25,7 @@ func sensorGrid(def *project.WorkPlane) WorkPlane {
 			lo[k], hi[k] = math.Min(lo[k], p[k]), math.Max(hi[k], p[k])
 		}
 	}
-	spacing := def.SpacingM
-	if spacing <= 0 {
-		spacing = ruleSpacing(hi[0]-lo[0], hi[1]-lo[1])
-	}
+	spacing := def.Cell()
 	w.SpacingM = spacing
 	var n [2]int
 	var step [2]float64
@@ -30,10 +33,13 @@ func sensorGrid(def *project.WorkPlane) WorkPlane {
 		lo[k] += def.PerimeterM
 		hi[k] -= def.PerimeterM
 		if hi[k]-lo[k] <= 0 {
-			return w
+			return w, noSensor(def, spacing)
 		}
 		n[k] = int(math.Max(1, math.Ceil((hi[k]-lo[k])/spacing-1e-9)))
 		step[k] = (hi[k] - lo[k]) / float64(n[k])
+	}
+	if float64(n[0])*float64(n[1]) > maxCells {
+		return w, fmt.Errorf("spacing_m: got %g, which makes %d by %d cells, want at most %d in all; give a larger spacing_m or split the plane", spacing, n[0], n[1], maxCells)
 	}
 	for j := range n[1] {
 		for i := range n[0] {
@@ -48,19 +54,14 @@ func sensorGrid(def *project.WorkPlane) WorkPlane {
 			})
 		}
 	}
-	return w
+	if len(w.Sensors) == 0 {
+		return w, noSensor(def, spacing)
+	}
+	return w, nil
 }
 
-// ruleSpacing is the largest cell of EN 17037:2018: p = 0.5 x 5^(log10 d), d
-// the longer side of the area, or the shorter where the sides differ by more
-// than a factor of two. Source: EN 17037:2018 annex B, from memory.
-func ruleSpacing(a, b float64) float64 {
-	long, short := math.Max(a, b), math.Min(a, b)
-	d := long
-	if long > 2*short {
-		d = short
-	}
-	return 0.5 * math.Pow(5, math.Log10(d))
+func noSensor(def *project.WorkPlane, spacing float64) error {
+	return fmt.Errorf("polygon_m: no sensor fits between the perimeter band of %g m and the outline with %.2g m spacing; want a larger outline, or smaller perimeter_m or spacing_m", def.PerimeterM, spacing)
 }
 
 // inside is the even-odd rule.

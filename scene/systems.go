@@ -22,7 +22,7 @@ func (b *builder) addSystems() {
 		if !ok {
 			continue // the project's own check has said so
 		}
-		s := shelf(def)
+		s := def.System()
 		faces, err := s.Build(b.s.Openings[k].Rect)
 		if err != nil {
 			b.failf(def.Line, "light_shelf %q: %v", def.Name, err)
@@ -60,7 +60,7 @@ func (b *builder) addSystems() {
 		}
 		name := "roller " + def.Name
 		b.finish[name] = b.intern(name, cloth)
-		ro := system.Roller{Outside: def.Position == "outside", Drop: def.Drop, GapM: def.GapM, Cloth: name}
+		ro := def.System(name)
 		r := b.s.Openings[k].Rect
 		faces, err := ro.Build(r)
 		if err == nil {
@@ -74,21 +74,6 @@ func (b *builder) addSystems() {
 		}
 		part := b.part(Part{Name: def.Name, Kind: System, Opening: k, TexelM: systemTexelM})
 		b.addFaces(faces, func(string) int32 { return part })
-	}
-}
-
-func shelf(d *project.LightShelf) system.LightShelf {
-	return system.LightShelf{
-		HeightM:        d.HeightM,
-		OutsideDepthM:  d.OutsideDepthM,
-		InsideDepthM:   d.InsideDepthM,
-		ThicknessM:     d.ThicknessM,
-		OutsideTiltRad: d.OutsideTiltDeg * math.Pi / 180,
-		InsideTiltRad:  d.InsideTiltDeg * math.Pi / 180,
-		ExtendM:        d.ExtendM,
-		GapM:           d.GapM,
-		Top:            d.Top,
-		Underside:      d.Underside,
 	}
 }
 
@@ -117,30 +102,29 @@ func (b *builder) addReceivers() {
 			}
 			dir = r3.Unit(dir)
 		} else if v.AzimuthDeg != nil {
-			dir = compass(*v.AzimuthDeg, b.p.Site.NorthDeg)
-			s, c := math.Sincos(v.PitchDeg * math.Pi / 180)
-			dir = r3.Vec{X: dir.X * c, Y: dir.Y * c, Z: s}
+			dir = project.Direction(*v.AzimuthDeg, v.PitchDeg, b.p.Site.NorthDeg)
 		}
 		b.s.Viewpoints = append(b.s.Viewpoints, Viewpoint{Name: v.Name, Position: pos, Direction: dir, Line: v.Line})
 	}
 	for i := range b.p.WorkPlanes {
-		w := sensorGrid(&b.p.WorkPlanes[i])
-		if len(w.Sensors) == 0 {
-			b.failf(w.Line, "work_plane %q: no sensor fits between the perimeter band of %g m and the outline with %.2g m spacing; want a larger outline, or smaller perimeter_m or spacing_m",
-				w.Name, b.p.WorkPlanes[i].PerimeterM, w.SpacingM)
+		w, err := sensorGrid(&b.p.WorkPlanes[i])
+		if err != nil {
+			b.failf(w.Line, "work_plane %q: %v", w.Name, err)
 			continue
 		}
 		b.s.WorkPlanes = append(b.s.WorkPlanes, w)
 	}
 }
 
-// compass is the level model direction of a compass azimuth in degrees.
-func compass(azimuthDeg, northDeg float64) r3.Vec {
-	s, c := math.Sincos((azimuthDeg - northDeg) * math.Pi / 180)
-	return r3.Vec{X: s, Y: c}
-}
-
 func vec(a [3]float64) r3.Vec { return r3.Vec{X: a[0], Y: a[1], Z: a[2]} }
+
+// didYouMean is the ending of a message that lists the known names itself.
+func didYouMean(unknown string, known []string) string {
+	if s := project.Suggest(unknown, known); s != "" {
+		return fmt.Sprintf("; did you mean %q?", s)
+	}
+	return ""
+}
 
 func list(names []string) string {
 	const most = 12

@@ -23,6 +23,7 @@ type World struct {
 	// clearPrim maps a triangle of clear to its index in the scene.
 	clearPrim []int32
 	eps       float64
+	specular  specular
 }
 
 type triangle struct {
@@ -87,6 +88,7 @@ func Accelerate(s *scene.Scene, workers int) *World {
 	// float32 keeps 24 bits: a start this far off its surface is clear of
 	// rounding at the scene's largest coordinate.
 	w.eps = math.Max(1e-5, extent*math.Ldexp(1, -21))
+	w.findSpecular()
 	return w
 }
 
@@ -186,4 +188,17 @@ func (w *World) Straight(org, dir r3.Vec, tmax float64) float64 {
 		tmin = bh.T + float32(w.eps) + bh.T*1e-6
 	}
 	return tau
+}
+
+// FirstPane is the part of the first pane or cloth along dir from org, -1
+// where there is none or something opaque comes first.
+func (w *World) FirstPane(org, dir r3.Vec) int32 {
+	h, ok := w.Closest(org, dir)
+	if !ok {
+		return -1
+	}
+	if _, through := h.BSDF.Delta(h.Side, h.Cos); through > 0 {
+		return h.Part
+	}
+	return -1
 }

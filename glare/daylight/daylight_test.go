@@ -143,30 +143,6 @@ func TestFactors(t *testing.T) {
 	}
 }
 
-func TestGrid(t *testing.T) {
-	for _, c := range []struct{ a, b, want float64 }{
-		{10, 10, 2.5},  // exact: 0.5*5^1
-		{1, 1, 0.5},    // exact: 0.5*5^0
-		{100, 100, 10}, // exact: 12.5, bounded by 10
-		{10, 30, 2.5},  // sides three to one: the shorter
-		{30, 10, 2.5},  // either way round
-		{9, 10, 2.5},   // otherwise the longer
-		{5, 5, 0.5 * math.Exp(math.Ln10*(1-math.Ln2/math.Ln10)*(1-math.Ln2/math.Ln10))}, // exact: ln 5 = ln 10 - ln 2
-	} {
-		if got := MaxCellM(c.a, c.b); math.Abs(got-c.want) > 1e-5 {
-			t.Errorf("%g by %g: %g, want %g", c.a, c.b, got, c.want)
-		}
-	}
-	for _, c := range []struct {
-		length, cell float64
-		want         int
-	}{{3, 0.6, 5}, {3.01, 0.6, 6}, {0.1, 1, 1}} {
-		if got := Cells(c.length, c.cell); got != c.want {
-			t.Errorf("%g in cells of %g: %d, want %d", c.length, c.cell, got, c.want)
-		}
-	}
-}
-
 // A series with a standard error common to all hours of a sensor: the true
 // share must lie within the bracket. With z = 3.5 a sensor is wrong with a
 // chance of 5e-4; 50 sensors in 40 years make 2,000 looks, so that a bracket

@@ -73,6 +73,22 @@ func (a *Attributes) validate() error {
 			return fmt.Errorf("%w: %s: got %d bytes, want at most %d", ErrInvalid, s.name, len(s.text), maxText)
 		}
 	}
+	if !finite(a.FOVDeg) {
+		return fmt.Errorf("%w: field of view: got %g degrees, want a finite number", ErrInvalid, a.FOVDeg)
+	}
+	for _, v := range [...]struct {
+		name string
+		vec  [3]float64
+	}{{"position", a.Position}, {"direction", a.Direction}, {"up", a.Up}} {
+		if !finite(v.vec[:]...) {
+			return fmt.Errorf("%w: %s: got %v, want finite numbers", ErrInvalid, v.name, v.vec)
+		}
+	}
+	for i, d := range a.Discs {
+		if !finite(d.Direction[:]...) || !finite(d.OmegaSr, d.Luminance) || d.OmegaSr < 0 || d.Luminance < 0 {
+			return fmt.Errorf("%w: disc %d: got %+v, want finite numbers, solid angle and luminance of 0 or more", ErrInvalid, i+1, d)
+		}
+	}
 	if len(a.Discs) > maxDiscs {
 		return fmt.Errorf("%w: discs: got %d, want at most %d", ErrInvalid, len(a.Discs), maxDiscs)
 	}
@@ -85,6 +101,15 @@ const (
 	maxText  = 1 << 16
 	maxDiscs = 1 << 10
 )
+
+func finite(values ...float64) bool {
+	for _, v := range values {
+		if math.IsNaN(v) || math.IsInf(v, 0) {
+			return false
+		}
+	}
+	return true
+}
 
 // text writes a disc as five numbers; they read back exactly.
 func (d Disc) text() string {

@@ -102,10 +102,6 @@ func valueSchema(k described) object {
 	number := object{"type": "number"}
 	if !k.in.any() {
 		number["minimum"], number["maximum"] = k.in.lo, k.in.hi
-		if k.in.above {
-			delete(number, "minimum")
-			number["exclusiveMinimum"] = k.in.lo
-		}
 	}
 	list := func(items object, least, most int) object {
 		o := object{"type": "array", "items": items, "minItems": least}

@@ -144,7 +144,8 @@ func TestSchemaAgreesWithLoad(t *testing.T) {
 		{"choice", `up = "y"`, `up = "x"`, false},
 		{"array too short", "toward_m = [1, 0, 1.2]", "toward_m = [1, 0]", false},
 		{"key of another type", "specular_reflectance = 0.7", "specular_reflectance = 0.7\npanes = 2", false},
-		{"above", "height_m = 1.2", "height_m = 0", false},
+		{"shelf on the transom", "height_m = 1.2", "height_m = 0", true},
+		{"shelf far below", "height_m = 1.2", "height_m = -1.5", false},
 		{"day", `"mon"`, `"monday"`, false},
 	} {
 		t.Run(c.name, func(t *testing.T) {

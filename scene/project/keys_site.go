@@ -41,6 +41,9 @@ func checkHorizon(r *reader, n *node, h *[]HorizonPoint) {
 			r.reject(n, "horizon", "line", "row %d: azimuth: got %g after %g, want rising azimuths", i+1, p.AzimuthDeg, (*h)[i-1].AzimuthDeg)
 		}
 	}
+	if len(*h) == 1 && n.good("line") {
+		r.reject(n, "horizon", "line", "got 1 point, want at least 2; for the same altitude all around give it at 0 and 180")
+	}
 	if k := len(*h); k > 1 && (*h)[0].AzimuthDeg == 0 && (*h)[k-1].AzimuthDeg == 360 && (*h)[0].AltitudeDeg != (*h)[k-1].AltitudeDeg {
 		r.reject(n, "horizon", "line", "row %d: altitude: got %g at azimuth 360 and %g at 0, which are one; leave one of the two out", k, (*h)[k-1].AltitudeDeg, (*h)[0].AltitudeDeg)
 	}

@@ -69,7 +69,7 @@ func (o Opening) Rect(northDeg float64) (system.Rect, error) {
 var lightShelfKeys = []key[LightShelf]{
 	{spec{name: "name", about: "shown in results", required: true, form: itemName}, func(s *LightShelf) any { return &s.Name }},
 	{spec{name: "opening", about: "at which the shelf is", required: true, refers: "opening"}, func(s *LightShelf) any { return &s.Opening }},
-	{spec{name: "height_m", about: "of the top at the glass, above the opening's lower edge", required: true, in: within{hi: 20, above: true}}, func(s *LightShelf) any { return &s.HeightM }},
+	{spec{name: "height_m", about: "of the top at the glass, above the opening's lower edge; 0 is on the transom below it, negative on the wall further down", in: within{lo: -1, hi: 20}, def: "0", source: "on the transom between window and clerestory: " + usual}, func(s *LightShelf) any { return &s.HeightM }},
 	{spec{name: "outside_depth_m", about: "from the plane of the glass along the shelf, outdoors", in: within{hi: 5}, def: "0", source: own}, func(s *LightShelf) any { return &s.OutsideDepthM }},
 	{spec{name: "inside_depth_m", about: "from the plane of the glass along the shelf, indoors", in: within{hi: 5}, def: "0", source: own}, func(s *LightShelf) any { return &s.InsideDepthM }},
 	{spec{name: "thickness_m", about: "of the shelf", in: within{lo: 0.001, hi: 0.5}, def: "0.05", source: usual}, func(s *LightShelf) any { return &s.ThicknessM }},

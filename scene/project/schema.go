@@ -136,7 +136,7 @@ type Opening struct {
 // dimension means.
 type LightShelf struct {
 	Name, Opening                 string
-	HeightM                       float64 // of the top, at the glass, above the opening's lower edge
+	HeightM                       float64 // of the top, at the glass, above the opening's lower edge; from -1
 	OutsideDepthM, InsideDepthM   float64 // from the plane of the glass, along the shelf
 	ThicknessM                    float64
 	OutsideTiltDeg, InsideTiltDeg float64 // from the horizontal, positive lifts the outer edge

@@ -38,12 +38,8 @@ const (
 	itemName        // a name that other tables and the results use
 )
 
-// within is a closed range, or one open at its lower end. The zero value is
-// any finite number.
-type within struct {
-	lo, hi float64
-	above  bool // lo itself is outside
-}
+// within is a closed range. The zero value is any finite number.
+type within struct{ lo, hi float64 }
 
 func (w within) any() bool { return w == within{} }
 
@@ -51,18 +47,14 @@ func (w within) holds(x float64) bool {
 	if w.any() {
 		return true
 	}
-	return (x > w.lo || x == w.lo && !w.above) && x <= w.hi
+	return x >= w.lo && x <= w.hi
 }
 
 func (w within) String() string {
-	lo, hi := decimal(w.lo), decimal(w.hi)
-	switch {
-	case w.any():
+	if w.any() {
 		return "a number"
-	case w.above:
-		return "above " + lo + ", at most " + hi
 	}
-	return lo + " to " + hi
+	return decimal(w.lo) + " to " + decimal(w.hi)
 }
 
 func decimal(x float64) string { return strconv.FormatFloat(x, 'f', -1, 64) }

@@ -63,12 +63,16 @@ func (ro Roller) Meets(s LightShelf, r Rect) error {
 	}
 	high, ok := highest(p, ro.GapM)
 	low := r.HeightM * (1 - ro.Drop)
-	if !ok || low > high {
+	// A cloth that ends on the shelf's top touches it and no more.
+	if !ok || low >= high-touchM {
 		return nil
 	}
 	return dimension("drop", "got %g, which reaches the shelf, whose top is %.4g m above the opening's lower edge at the cloth; want at most %.3g, or a gap larger than the shelf's reach",
 		ro.Drop, high, math.Floor(1000*max(0, 1-high/r.HeightM))/1000)
 }
+
+// touchM is far below what can be built, far above rounding.
+const touchM = 1e-6
 
 // highest is the top of a convex section at a distance from the glass.
 func highest(section [4][2]float64, out float64) (float64, bool) {

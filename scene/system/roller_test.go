@@ -83,6 +83,8 @@ func TestRollerMeetsShelf(t *testing.T) {
 	s := LightShelf{HeightM: 1, InsideDepthM: 0.4, ThicknessM: 0.04, GapM: 0.01}
 	rising := s
 	rising.InsideTiltRad = -45 * rad // indoors it rises: 0.05 m up at 0.05 m from the glass
+	onTransom, below, risingTransom := s, s, rising
+	onTransom.HeightM, below.HeightM, risingTransom.HeightM = 0, -0.1, 0
 	for _, c := range []struct {
 		name  string
 		ro    Roller
@@ -98,6 +100,10 @@ func TestRollerMeetsShelf(t *testing.T) {
 		{"raised", Roller{Drop: 1, GapM: 0.05, Raised: true}, s, false},
 		{"above a rising one", Roller{Drop: 0.299, GapM: 0.05}, rising, false}, // 1.0515 m
 		{"on a rising one", Roller{Drop: 0.301, GapM: 0.05}, rising, true},     // 1.0485 m
+		// on the transom below the opening: a drawn cloth ends on the shelf
+		{"ends on the top", Roller{Drop: 1, GapM: 0.05}, onTransom, false},
+		{"ends above the wall", Roller{Drop: 1, GapM: 0.05}, below, false},
+		{"ends in one that rises", Roller{Drop: 1, GapM: 0.05}, risingTransom, true},
 	} {
 		if err := c.ro.Meets(c.s, r); (err != nil) != c.meets {
 			t.Errorf("%s: got %v, want an error: %v", c.name, err, c.meets)

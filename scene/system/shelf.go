@@ -11,7 +11,9 @@ import (
 // radians; Build states the domain.
 type LightShelf struct {
 	// HeightM is the height of the top above the lower edge of the opening,
-	// along the glass, where the top's plane meets the plane of the glass.
+	// along the glass, where the top's plane meets the plane of the glass. 0
+	// is a shelf on the transom below a clerestory, its thickness hanging
+	// below the opening; negative is one on the wall further down.
 	HeightM float64
 	// OutsideDepthM and InsideDepthM are the depths of the parts: from the
 	// plane of the glass to the far edge, along the shelf's top. 0: no part.
@@ -36,6 +38,9 @@ const (
 	maxTurnRad = 75 * math.Pi / 180
 	maxLeanRad = 75 * math.Pi / 180
 	maxDepthM  = 20.0
+	// minHeightM: further below its opening a shelf belongs to another one.
+	minHeightM    = -1.0
+	maxThicknessM = 0.5
 )
 
 // Build makes the closed surface of each part: 12 faces, their fronts away
@@ -43,11 +48,12 @@ const (
 // to the glass, GapM away from it, so that the glass is never touched; the far
 // end is square to the top.
 //
-// An error names the dimension and its limit: a height outside the opening, a
-// part thicker than the shelf is high, no depth, a negative length, a gap that
-// is not positive, a tilt beyond 60 degrees or 75 from the glass's normal, a
-// part so steep or shallow that nothing of it is left clear of the glass, an
-// opening within 15 degrees of flat. Whether a part meets the room's ceiling
+// An error names the dimension and its limit: a height above the
+// opening or more than 1 m below it, a thickness that is not positive or above
+// 0.5 m, no depth, a negative length, a gap that is not positive, a tilt beyond
+// 60 degrees or 75 from the glass's normal, a part so steep or shallow that
+// nothing of it is left clear of the glass, an opening within 15 degrees of
+// flat. Whether a part meets the room's ceiling
 // or walls cannot be known here.
 func (s LightShelf) Build(r Rect) ([]Face, error) {
 	if err := s.check(r); err != nil {
@@ -88,11 +94,11 @@ func (s LightShelf) check(r Rect) error {
 	if !(s.GapM > 0 && s.GapM <= maxDepthM) {
 		return dimension("gap", "got %g m, want above 0 m, so that the shelf does not touch the glass", s.GapM)
 	}
-	if !(s.HeightM > 0 && s.HeightM <= r.HeightM) {
-		return dimension("height", "got %g m, want above 0 m and at most the opening's height, %.4g m", s.HeightM, r.HeightM)
+	if !(s.HeightM >= minHeightM && s.HeightM <= r.HeightM) {
+		return dimension("height", "got %g m, want %g m to the opening's height, %.4g m", s.HeightM, minHeightM, r.HeightM)
 	}
-	if !(s.ThicknessM > 0 && s.ThicknessM <= s.HeightM) {
-		return dimension("thickness", "got %g m, want above 0 m and at most the height of the shelf above the opening's lower edge, %g m", s.ThicknessM, s.HeightM)
+	if !(s.ThicknessM > 0 && s.ThicknessM <= maxThicknessM) {
+		return dimension("thickness", "got %g m, want above 0 m and at most %g m", s.ThicknessM, maxThicknessM)
 	}
 	lean := r.LeanRad()
 	if !(math.Abs(lean) <= maxLeanRad) {

@@ -132,6 +132,31 @@ func TestShelfByHand(t *testing.T) {
 	}
 }
 
+// TestShelfOnTransom: the top at the opening's lower edge or below it, the
+// thickness hanging down whatever the height.
+func TestShelfOnTransom(t *testing.T) {
+	r := Rect{Origin: r3.Vec{Z: 2.1}, Across: r3.Vec{X: 1}, Up: r3.Vec{Z: 1}, Outward: r3.Vec{Y: 1}, WidthM: 2, HeightM: 0.8}
+	for _, height := range []float64{0.02, 0, -0.3, -1} {
+		s := LightShelf{HeightM: height, OutsideDepthM: 0.6, InsideDepthM: 0.4, ThicknessM: 0.05, GapM: 0.01}
+		faces, err := s.Build(r)
+		if err != nil {
+			t.Fatalf("height %g: %v", height, err)
+		}
+		lo, hi := math.Inf(1), math.Inf(-1)
+		for _, f := range faces {
+			for _, v := range f.V {
+				lo, hi = min(lo, v.Z), max(hi, v.Z)
+			}
+		}
+		if math.Abs(hi-(2.1+height)) > near || math.Abs(lo-(2.05+height)) > near { // by hand
+			t.Errorf("height %g: z from %g to %g, want %g to %g", height, lo, hi, 2.05+height, 2.1+height)
+		}
+		if n := openEdges(faces[:12]) + openEdges(faces[12:]); n != 0 {
+			t.Errorf("height %g: %d edges are open", height, n)
+		}
+	}
+}
+
 // TestTiltLiftsOuterEdge, of either part.
 func TestTiltLiftsOuterEdge(t *testing.T) {
 	r := facing(2, 0, 0, 2, 1.5)
@@ -303,9 +328,9 @@ func TestShelfRefused(t *testing.T) {
 		change          func(*LightShelf)
 	}{
 		{"above the opening", "height", upright, func(s *LightShelf) { s.HeightM = 1.51 }},
-		{"at the sill", "height", upright, func(s *LightShelf) { s.HeightM = 0 }},
+		{"far below the sill", "height", upright, func(s *LightShelf) { s.HeightM = -1.01 }},
 		{"height not a number", "height", upright, func(s *LightShelf) { s.HeightM = math.NaN() }},
-		{"too thick", "thickness", upright, func(s *LightShelf) { s.ThicknessM = 1.3 }},
+		{"too thick", "thickness", upright, func(s *LightShelf) { s.ThicknessM = 0.51 }},
 		{"without thickness", "thickness", upright, func(s *LightShelf) { s.ThicknessM = 0 }},
 		{"negative depth", "outside depth", upright, func(s *LightShelf) { s.OutsideDepthM = -1 }},
 		{"infinite depth", "inside depth", upright, func(s *LightShelf) { s.InsideDepthM = math.Inf(1) }},

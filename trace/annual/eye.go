@@ -9,12 +9,10 @@ import (
 	"squint/materials/sampling"
 	"squint/scene"
 	"squint/scene/photometry"
+	"squint/trace"
 	"squint/trace/coeff"
 	"squint/trace/surface"
 )
-
-// discRays is the number of rays a batch sends to the sun's disc from an eye.
-const discRays = 4
 
 // eyeScratch holds the images of one eye over a block.
 type eyeScratch struct {
@@ -33,7 +31,7 @@ func (s *eyeScratch) prepare(e *coeff.Eye, batches int) {
 	}
 	size := e.View.Width * e.View.Height
 	if len(s.frame.Mean) != size {
-		s.frame = Frame{Mean: make([]float32, size), Sunlit: make([]float32, size), Discs: make([]Disc, batches)}
+		s.frame = Frame{Mean: make([]float32, size), Sunlit: make([]float32, size)}
 		for range batches {
 			s.frame.Batch = append(s.frame.Batch, make([]float32, size))
 		}
@@ -67,7 +65,7 @@ func (w *worker) see(bl *surface.Block, b block, eye int, lit []uint64) {
 			f.Mean[px] = sum * inv
 			f.Sunlit[px] = s.sunlit[p][h] * inv
 		}
-		w.discs(e, eye, m, &bl.Sun[h], f)
+		f.Discs = w.discs(f.Discs[:0], e, eye, m, &bl.Sun[h])
 		w.sink(w.number, f)
 	}
 }
@@ -134,43 +132,72 @@ func (w *worker) sunlit(bl *surface.Block, sf *coeff.SurfaceSample, weight float
 	}
 }
 
-// discs looks for the sun's own disc from the eye. What is opaque takes from
-// its solid angle; glass and cloth take from its luminance.
-func (w *worker) discs(e *coeff.Eye, eye int, m *scene.Moment, rays *surface.SunRays, f *Frame) {
-	f.Disc = Disc{}
-	for b := range f.Discs {
-		f.Discs[b] = Disc{}
-	}
-	if rays.NormalLx <= 0 || r3.Dot(m.Sun, e.View.Direction) <= 0 {
-		return
+// discs looks for the sun's own disc and its images from the eye. What is
+// opaque takes from the solid angle; mirrors, glass and cloth take from the
+// luminance.
+func (w *worker) discs(out []Disc, e *coeff.Eye, eye int, m *scene.Moment, rays *surface.SunRays) []Disc {
+	if rays.NormalLx <= 0 {
+		return out
 	}
 	full := photometry.DiscSolidAngle(photometry.SunDiameterRad)
-	lum := photometry.DiscLuminance(m.SunNormalLx, photometry.SunDiameterRad)
-	var seen, through float64
-	for b := range f.Discs {
-		s := sampling.NewStream(w.cfg.Seed, streamDisc, uint64(eye), uint64(m.Hour), uint64(b))
+	lum := photometry.DiscLuminance(rays.NormalLx, photometry.SunDiameterRad)
+	if r3.Dot(m.Sun, e.View.Direction) > 0 {
 		var open int
 		var tau float64
-		for range discRays {
-			dir, ok := rays.Draw(s.Uint64())
-			if !ok || w.t.World.Blocked(e.View.Position, dir, math.Inf(1)) {
+		for i, dir := range rays.Dirs() {
+			if rays.Visible(i) && !w.t.World.Blocked(e.View.Position, dir, math.Inf(1)) {
+				open++
+				tau += w.t.World.Straight(e.View.Position, dir, math.Inf(1))
+			}
+		}
+		if open > 0 && tau > 0 {
+			share := float64(open) / float64(len(rays.Dirs()))
+			out = append(out, Disc{Dir: m.Sun, OmegaSr: full * share, Luminance: lum * tau / float64(open), Mirror: -1, Via: w.t.World.FirstPane(e.View.Position, m.Sun)})
+		}
+	}
+	first := len(out)
+	w.images = w.finderOf(eye, e.View.Position).Find(m.Sun, rays.Dirs(), rays.Visible, w.images[:0])
+	for _, im := range w.images {
+		if im.Share > 0 && r3.Dot(im.Dir, e.View.Direction) > 0 {
+			out = append(out, Disc{Dir: im.Dir, OmegaSr: full * im.Share, Luminance: lum * im.Luminous, Mirror: im.Part, Via: im.Via})
+		}
+	}
+	return merge(out, first)
+}
+
+// finderOf makes the image finder of an eye, or of sensor k as len(Eyes)+k.
+func (w *worker) finderOf(k int, p r3.Vec) *trace.ImageFinder {
+	if w.finder[k] == nil {
+		w.finder[k] = w.t.World.NewImageFinder(p)
+	}
+	return w.finder[k]
+}
+
+// mergeWithin is the angle within which images in the same mirror are one
+// source: neighbouring facets of a curved mirror show parts of one glare.
+const mergeWithin = 1.1 * photometry.SunDiameterRad
+
+// merge joins images (from index first on) that touch: solid angles add up,
+// flux is kept. In order, so the result is the same on every run.
+func merge(d []Disc, first int) []Disc {
+	for i := first; i < len(d); i++ {
+		for k := i + 1; k < len(d); {
+			if d[i].Mirror != d[k].Mirror || r3.Dot(d[i].Dir, d[k].Dir) < math.Cos(mergeWithin) {
+				k++
 				continue
 			}
-			open++
-			tau += w.t.World.Straight(e.View.Position, dir, math.Inf(1))
+			omega := d[i].OmegaSr + d[k].OmegaSr
+			flux := d[i].OmegaSr*d[i].Luminance + d[k].OmegaSr*d[k].Luminance
+			dir := r3.Add(r3.Scale(d[i].OmegaSr*d[i].Luminance, d[i].Dir), r3.Scale(d[k].OmegaSr*d[k].Luminance, d[k].Dir))
+			if flux > 0 {
+				d[i].Dir, d[i].Luminance = r3.Unit(dir), flux/omega
+			}
+			d[i].OmegaSr = omega
+			d = append(d[:k], d[k+1:]...)
+			k = i + 1
 		}
-		if open == 0 || tau == 0 {
-			continue
-		}
-		share := float64(open) / discRays
-		f.Discs[b] = Disc{Dir: m.Sun, OmegaSr: full * share, Luminance: lum * tau / float64(open)}
-		seen += share
-		through += share * tau / float64(open)
 	}
-	if seen > 0 {
-		n := float64(len(f.Discs))
-		f.Disc = Disc{Dir: m.Sun, OmegaSr: full * seen / n, Luminance: lum * through / seen}
-	}
+	return d
 }
 
 func vec(a [3]float32) r3.Vec {

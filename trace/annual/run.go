@@ -9,17 +9,21 @@ import (
 
 	"squint/scene"
 	"squint/scene/sky"
+	"squint/trace"
 	"squint/trace/coeff"
 	"squint/trace/surface"
 )
 
-// Disc is the sun's disc, or its image, as one viewpoint sees it: a source of
-// its own, with the solid angle that nothing opaque hides, and the luminance
-// that glass and cloth leave.
+// Disc is the sun's disc, or its image in a mirror, as one viewpoint sees it:
+// a source of its own, with the solid angle that nothing opaque hides, and the
+// luminance that mirror, glass and cloth leave. It is found with fixed points
+// of the disc and carries no noise.
 type Disc struct {
 	Dir       r3.Vec // model frame, unit
 	OmegaSr   float64
 	Luminance float64 // cd/m2
+	Mirror    int32   // part of the mirror, -1 for the sun itself
+	Via       int32   // part of the first pane or cloth looked through, -1 for none
 }
 
 // Frame is what one eye sees at one moment. Its slices are reused after Sink
@@ -33,9 +37,7 @@ type Frame struct {
 	Batch [][]float32
 	// Sunlit is the part of Mean that is sun on the first diffuse surface.
 	Sunlit []float32
-	// Disc is the pooled disc of the sun, Discs each batch's own; none is
-	// marked by a zero solid angle.
-	Disc  Disc
+	// Discs are the sun's disc and its images, as far as they are seen.
 	Discs []Disc
 }
 
@@ -142,11 +144,14 @@ type worker struct {
 	sink   Sink
 	lights []surface.Light
 	eye    eyeScratch
+	finder []*trace.ImageFinder // by eye, then by sensor; made when first needed
+	images []trace.Image
 }
 
 func newWorker(t *surface.Transport, r Receivers, cfg Config, number int, sink Sink) *worker {
 	return &worker{t: t, r: r, cfg: cfg, number: number, sink: sink,
-		lights: make([]surface.Light, t.Config.Batches)}
+		lights: make([]surface.Light, t.Config.Batches),
+		finder: make([]*trace.ImageFinder, len(r.Eyes)+len(r.Sensors))}
 }
 
 func (w *worker) run(ctx context.Context, moments []*scene.Moment, b block, d *Daylight) {

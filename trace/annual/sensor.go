@@ -13,7 +13,6 @@ import (
 const (
 	streamSensorSun = 21
 	streamEyeSun    = 22
-	streamDisc      = 23
 )
 
 // sensors reads every sensor against the solved block.
@@ -21,6 +20,7 @@ func (w *worker) sensors(bl *surface.Block, b block, d *Daylight) {
 	batches := len(w.lights)
 	for i, s := range w.r.Sensors {
 		var sum, square, direct surface.Row
+		images := w.imagesOn(bl, i)
 		for batch := range w.lights {
 			var e surface.Row
 			bl.Gather(&w.r.Rows[batch], &w.lights[batch], i, &e)
@@ -32,6 +32,7 @@ func (w *worker) sensors(bl *surface.Block, b block, d *Daylight) {
 				}
 			}
 			for h := range e {
+				e[h] += images[h]
 				sum[h] += e[h]
 				square[h] += e[h] * e[h]
 			}
@@ -47,6 +48,25 @@ func (w *worker) sensors(bl *surface.Block, b block, d *Daylight) {
 			}
 		}
 	}
+}
+
+// imagesOn is the sun that mirrors throw straight on sensor i, lx.
+func (w *worker) imagesOn(bl *surface.Block, i int) (e surface.Row) {
+	s := &w.r.Sensors[i]
+	finder := w.finderOf(len(w.r.Eyes)+i, s.Position)
+	for h := range bl.Moments {
+		rays := &bl.Sun[h]
+		if rays.NormalLx <= 0 {
+			continue
+		}
+		w.images = finder.Find(bl.Moments[h].Sun, rays.Dirs(), rays.Visible, w.images[:0])
+		for _, im := range w.images {
+			if cos := r3.Dot(im.Dir, s.Normal); cos > 0 {
+				e[h] += float32(rays.NormalLx * im.Share * im.Luminous * cos)
+			}
+		}
+	}
+	return e
 }
 
 // sunOn samples the direct sun at p on a plane with unit normal n by one ray

@@ -1,6 +1,6 @@
 package bvh
 
-const binCount = 16
+const binCount = 32
 
 // cut is a plane between two bins of one axis.
 type cut struct {
@@ -39,8 +39,8 @@ func binScale(mid *span, k int, count int) float32 {
 // hierarchies", section 3.
 func (bs *bins) bestCut(ps []prim, mid *span, best *cut) {
 	count := binCount
-	if len(ps) < 16 {
-		count = 4
+	if len(ps) < 64 {
+		count = 8
 	}
 	var lo, scale [4]float32
 	for k := range 3 {

@@ -35,7 +35,7 @@ func (t *Tree) Closest(org, dir [3]float32, tmin, tmax float32) Hit {
 	var r ray
 	if r.aim(&org, &dir, tmin, tmax, t.extent) {
 		t.closest(&r, &hit)
-	} else if scale, ok := r.rescale(tmin, tmax, t.extent); ok {
+	} else if scale, ok := r.rescale(&org, &dir, tmin, tmax, t.extent); ok {
 		t.closest(&r, &hit)
 		hit.T = float32(float64(hit.T) * scale)
 	}
@@ -50,7 +50,7 @@ func (t *Tree) Occluded(org, dir [3]float32, tmin, tmax float32) bool {
 	}
 	var r ray
 	if !r.aim(&org, &dir, tmin, tmax, t.extent) {
-		if _, ok := r.rescale(tmin, tmax, t.extent); !ok {
+		if _, ok := r.rescale(&org, &dir, tmin, tmax, t.extent); !ok {
 			return false
 		}
 	}

@@ -6,10 +6,10 @@
 // GROW adds the box in Y0 to the bin of the axis whose boxes start at the
 // given offset and whose counts at another.
 #define GROW(axis, bin) \
-	INCL    bins_n+64*axis(DI)(bin*4) \
+	INCL    bins_n+128*axis(DI)(bin*4) \
 	SHLQ    $5, bin                   \
-	VMINPS  512*axis(DI)(bin*1), Y0, Y4 \
-	VMOVUPS Y4, 512*axis(DI)(bin*1)
+	VMINPS  1024*axis(DI)(bin*1), Y0, Y4 \
+	VMOVUPS Y4, 1024*axis(DI)(bin*1)
 
 // func fillAVX2(bs *bins, ps *prim, n int, lo, scale *[4]float32)
 TEXT ·fillAVX2(SB), NOSPLIT, $0-40
@@ -21,7 +21,7 @@ TEXT ·fillAVX2(SB), NOSPLIT, $0-40
 	VMOVUPS  (AX), X5
 	VMOVUPS  (BX), X6
 	VPCMPEQD X7, X7, X7
-	VPSRLD   $28, X7, X7 // binCount-1
+	VPSRLD   $27, X7, X7 // binCount-1
 
 loop:
 	VMOVUPS      (SI), Y0

@@ -19,10 +19,12 @@ type query struct {
 var axisAfter = [4]uint8{1, 2, 0, 1}
 
 func (q *query) set(r *ray) {
+	var org, dir [3]float32
 	for k := range 3 {
-		d := math.Float32bits(r.dir[k])
+		d := r.dir[k]
+		org[k], dir[k] = math.Float32frombits(r.org[k]), math.Float32frombits(d)
 		shift := math.Float32frombits(math.Float32bits(r.shift) | d&signBit)
-		q.near[k], q.far[k] = r.org[k]+shift, r.org[k]-shift
+		q.near[k], q.far[k] = org[k]+shift, org[k]-shift
 		q.nrdir[k] = -1 / math.Float32frombits(max(d&^signBit, tinyDir)|d&signBit)
 		q.down[k] = uint8(d >> 31)
 	}
@@ -30,7 +32,7 @@ func (q *query) set(r *ray) {
 	q.tmin, q.tmax = r.tmin, r.tmax
 	q.kz = uint8(r.kz)
 	q.kx, q.ky = axisAfter[q.kz], axisAfter[q.kz+1]
-	q.org = [3]float32{r.org[q.kx], r.org[q.ky], r.org[q.kz]}
+	q.org = [3]float32{org[q.kx], org[q.ky], org[q.kz]}
 	q.nsz = q.nrdir[q.kz]
-	q.sx, q.sy = r.dir[q.kx]*-q.nsz, r.dir[q.ky]*-q.nsz
+	q.sx, q.sy = dir[q.kx]*-q.nsz, dir[q.ky]*-q.nsz
 }

@@ -23,7 +23,7 @@ const (
 
 // ray is a ray fit for traversal. The assembly reads it.
 type ray struct {
-	org, dir   [3]float32
+	org, dir   [3]uint32 // bits of float32
 	tmin, tmax int32   // bits of non-negative float32
 	shift      float32 // how far the origin is off for near and far planes
 	kz         int32   // the axis of the longest component of dir
@@ -32,15 +32,16 @@ type ray struct {
 // aim fills in a ray. It reports false for one that cannot hit or is to be
 // rescaled. extent is the largest absolute coordinate of the tree.
 func (r *ray) aim(org, dir *[3]float32, tmin, tmax, extent float32) bool {
-	// One by one: a wide load would wait for the narrow stores before it.
-	r.org[0], r.org[1], r.org[2] = org[0], org[1], org[2]
-	r.dir[0], r.dir[1], r.dir[2] = dir[0], dir[1], dir[2]
-	ax := math.Float32bits(r.dir[0]) &^ signBit
-	ay := math.Float32bits(r.dir[1]) &^ signBit
-	az := math.Float32bits(r.dir[2]) &^ signBit
+	ox, oy, oz := math.Float32bits(org[0]), math.Float32bits(org[1]), math.Float32bits(org[2])
+	dx, dy, dz := math.Float32bits(dir[0]), math.Float32bits(dir[1]), math.Float32bits(dir[2])
+	// Kept as bits and used again, so that they are copied one by one: a wide
+	// load would wait for the narrow stores before it.
+	r.org[0], r.org[1], r.org[2] = ox, oy, oz
+	r.dir[0], r.dir[1], r.dir[2] = dx, dy, dz
+	ax, ay, az := dx&^signBit, dy&^signBit, dz&^signBit
 	xy := max(ax, ay)
 	m := max(xy, az)
-	o := max(math.Float32bits(r.org[0])&^signBit, math.Float32bits(r.org[1])&^signBit, math.Float32bits(r.org[2])&^signBit)
+	o := max(ox&^signBit, oy&^signBit, oz&^signBit)
 	if m < minDir || m > maxDir || o >= infBits || !(tmin <= tmax) || tmax < 0 {
 		return false
 	}
@@ -56,9 +57,9 @@ func (r *ray) aim(org, dir *[3]float32, tmin, tmax, extent float32) bool {
 
 // rescale is aim for a ray that it refused. It also returns what the T found
 // are to be multiplied by.
-func (r *ray) rescale(tmin, tmax, extent float32) (scale float64, ok bool) {
+func (r *ray) rescale(org, dir *[3]float32, tmin, tmax, extent float32) (scale float64, ok bool) {
 	var m float64
-	for _, d := range r.dir {
+	for _, d := range dir {
 		if !finite(d) {
 			return 0, false
 		}
@@ -68,13 +69,13 @@ func (r *ray) rescale(tmin, tmax, extent float32) (scale float64, ok bool) {
 		return 0, false
 	}
 	_, e := math.Frexp(m)
-	org, dir := r.org, r.dir
+	var unit [3]float32
 	for k, d := range dir {
-		dir[k] = float32(math.Ldexp(float64(d), -e))
+		unit[k] = float32(math.Ldexp(float64(d), -e))
 	}
 	tmin = float32(math.Ldexp(float64(tmin), e))
 	tmax = float32(math.Ldexp(float64(tmax), e))
-	return math.Ldexp(1, -e), r.aim(&org, &dir, tmin, tmax, extent)
+	return math.Ldexp(1, -e), r.aim(org, &unit, tmin, tmax, extent)
 }
 
 func finite(x float32) bool { return x-x == 0 }

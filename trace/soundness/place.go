@@ -1,7 +1,6 @@
 package soundness
 
 import (
-	"fmt"
 	"math"
 
 	"gonum.org/v1/gonum/spatial/r3"
@@ -12,103 +11,157 @@ import (
 	"squint/trace"
 )
 
-// Receivers reports, one error each, viewpoints and work planes that stand
-// inside a wall or another solid, or outside the building. A point is inside a
-// solid where most rays meet the back of an opaque surface first, and outside
-// where most rays upwards meet nothing. A mesh whose normals all point the
-// wrong way is seen as such when every receiver in it is surrounded by backs:
-// one error then names the mesh's normals instead, as a note.
-func Receivers(w *trace.World) (errs []error, notes []string) {
-	file := w.Scene.Project.File
-	insideOut := 0
-	for _, v := range w.Scene.Viewpoints {
-		switch place(w, v.Position) {
-		case inSolid:
-			errs = append(errs, fmt.Errorf("%s:%d: viewpoint %q: [%.2f, %.2f, %.2f] is inside a wall or another solid; move it into the room", file, v.Line, v.Name, v.Position.X, v.Position.Y, v.Position.Z))
-		case outdoors:
-			errs = append(errs, fmt.Errorf("%s:%d: viewpoint %q: [%.2f, %.2f, %.2f] is outside the building, under the open sky; move it into the room, or check unit, up and translate_m of the mesh", file, v.Line, v.Name, v.Position.X, v.Position.Y, v.Position.Z))
-		case thinShell:
-			insideOut++
-		}
-	}
-	for _, p := range w.Scene.WorkPlanes {
-		solid, out := 0, 0
-		for _, s := range p.Sensors {
-			switch place(w, s.Position) {
-			case inSolid:
-				solid++
-			case outdoors:
-				out++
-			case thinShell:
-				insideOut++
-			}
-		}
-		if out*2 > len(p.Sensors) {
-			errs = append(errs, fmt.Errorf("%s:%d: work_plane %q: %d of %d sensors are outside the building, under the open sky; check polygon_m and height_m", file, p.Line, p.Name, out, len(p.Sensors)))
-		} else if solid*2 > len(p.Sensors) {
-			errs = append(errs, fmt.Errorf("%s:%d: work_plane %q: %d of %d sensors are inside a wall or another solid; check polygon_m and height_m", file, p.Line, p.Name, solid, len(p.Sensors)))
-		} else if solid+out > 0 {
-			notes = append(notes, fmt.Sprintf("work plane %q: %d of %d sensors lie inside solids or out of doors (columns, furniture): they count as dark or bright as they are.", p.Name, solid+out, len(p.Sensors)))
-		}
-	}
-	if insideOut > 0 {
-		notes = append(notes, "the room is modelled without wall thickness or with its normals outwards: a receiver inside a solid cannot be told from one in the room.")
-	}
-	return errs, notes
-}
-
 type where int
 
 const (
 	inRoom where = iota
 	inSolid
 	outdoors
-	thinShell // surrounded by backs as far as a room goes
+	underground
+	// thinShell is surrounded by the backs of surfaces that lie as far apart
+	// as walls of a room.
+	thinShell
 )
 
-// place looks around from p in a fixed set of directions.
-func place(w *trace.World, p r3.Vec) where {
-	const n = 64
-	var backs, open, up, near int
-	for i := range n {
-		u, v := sampling.OwenSobol2(uint32(i), 1)
-		d := sampling.UniformSphere(u, v)
-		h, ok := w.Closest(p, d)
-		if d.Z > 0 {
-			up++
-			if !ok {
-				open++
-			}
-		}
-		if !ok || passes(w, &h) {
-			continue
-		}
-		if h.Side == materials.Back && w.Scene.Parts[h.Part].Kind != scene.GroundPlane {
-			backs++
-			if h.T < wallM {
-				near++
-			}
-		}
-	}
-	switch {
-	case open*4 > up*3:
-		return outdoors
-	case backs*4 > n*3 && near*2 > n:
-		return inSolid
-	case backs*4 > n*3:
-		return thinShell
-	}
-	return inRoom
+// Bounds that tell the places apart. Common practice, no published source.
+const (
+	// wallM is the thickness up to which a closed solid is taken for a wall or
+	// a piece of furniture rather than a room modelled inside out.
+	wallM = 1.0
+	// zenithRad is the cone about the zenith whose larger part is roof in any
+	// room, half a metre from an open front too, and sky beside any wall.
+	zenithRad = 20 * math.Pi / 180
+	// openShare of the upper hemisphere is more than a hole in a roof shows,
+	// and less than a wall leaves.
+	openShare = 0.25
+	// backShare of the surfaces seen are backs within a solid. The rest allows
+	// for a stray face.
+	backShare = 0.9
+	// seenShare of all directions must end at a surface to judge by its side.
+	seenShare = 0.25
+)
+
+// maxLayers ends a look through more panes than any building has.
+const maxLayers = 32
+
+// sight is what a look in one direction ends at.
+type sight struct {
+	sky    bool // nothing opaque
+	glazed bool // a pane or cloth was passed on the way
+	hit    trace.Hit
+	distM  float64
 }
 
-// wallM is the thickness up to which a closed solid is taken for a wall or a
-// piece of furniture rather than a room modelled inside out. Common practice,
-// no published source.
-const wallM = 1.0
+// look follows a ray through panes up to the first opaque surface.
+func look(w *trace.World, p, d r3.Vec) sight {
+	s := sight{}
+	for range maxLayers {
+		h, ok := w.Closest(p, d)
+		if !ok {
+			s.sky = true
+			return s
+		}
+		s.distM += h.T
+		if !passes(&h) {
+			s.hit = h
+			return s
+		}
+		s.glazed = true
+		p = w.Offset(h.Point, d)
+	}
+	s.sky = true
+	return s
+}
+
+// place looks around from p in a fixed set of directions. What is seen through
+// a pane is seen from indoors: under a glass roof there is no open sky.
+func place(w *trace.World, p r3.Vec) where {
+	var v survey
+	const pairs = 32
+	for i := range pairs {
+		a, b := sampling.OwenSobol2(uint32(i), 1)
+		v.pair(w, p, sampling.UniformSphere(a, b))
+	}
+	for _, d := range []r3.Vec{{X: 1}, {Y: 1}, {Z: 1}} {
+		v.pair(w, p, d)
+	}
+	switch {
+	case v.soil*2 > v.up:
+		return underground
+	case float64(v.open) > openShare*float64(v.up) && skyAbove(w, p):
+		return outdoors
+	case float64(v.seen) < seenShare*float64(v.looks) || float64(v.backs) < backShare*float64(v.seen):
+		return inRoom
+	case v.chordM < wallM || v.strange*2 > v.backs:
+		return inSolid
+	}
+	return thinShell
+}
+
+// survey sums up what is seen from a point.
+type survey struct {
+	looks, up  int
+	open, soil int // upwards: open sky, the ground from below
+	seen       int // opaque surfaces other than the ground
+	backs      int // of them, from behind
+	strange    int // of the backs, surroundings
+	chordM     float64
+}
+
+// pair looks along d and against it: between two backs lies the inside of a
+// solid, and the shortest such chord is its thickness.
+func (v *survey) pair(w *trace.World, p, d r3.Vec) {
+	chord, backs := 0.0, 0
+	for _, d := range [2]r3.Vec{d, r3.Scale(-1, d)} {
+		s := look(w, p, d)
+		v.looks++
+		if d.Z > 0 {
+			v.up++
+		}
+		if s.sky {
+			if d.Z > 0 && !s.glazed {
+				v.open++
+			}
+			continue
+		}
+		kind, back := w.Scene.Parts[s.hit.Part].Kind, s.hit.Side == materials.Back
+		if kind == scene.GroundPlane {
+			if back && d.Z > 0 && !s.glazed {
+				v.soil++
+			}
+			continue
+		}
+		v.seen++
+		if !back {
+			continue
+		}
+		v.backs++
+		if kind == scene.Surroundings {
+			v.strange++
+		}
+		chord, backs = chord+s.distM, backs+1
+	}
+	if backs == 2 && (v.chordM == 0 || chord < v.chordM) {
+		v.chordM = chord
+	}
+}
+
+// skyAbove reports whether the open sky fills most of a cone about the zenith.
+func skyAbove(w *trace.World, p r3.Vec) bool {
+	const n = 16
+	open := 0
+	for i := range n {
+		a, b := sampling.OwenSobol2(uint32(i), 2)
+		if s := look(w, p, sampling.Cone(a, b, zenithRad)); s.sky && !s.glazed {
+			open++
+		}
+	}
+	return open*2 > n
+}
 
 // passes reports whether the surface lets light straight through: a pane has
 // no inside.
-func passes(w *trace.World, h *trace.Hit) bool {
+func passes(h *trace.Hit) bool {
 	_, through := h.BSDF.Delta(h.Side, math.Max(h.Cos, 0.5))
 	return through > 0
 }

@@ -45,6 +45,9 @@ type Config struct {
 	Batches int // independent repetitions, at least 2
 	// Samples is the number of rays from a texel side over all batches.
 	Samples int
+	// Photons is the number shot from the sun at mirrors, glossy surfaces and
+	// panes at each moment, over all batches; 0 leaves that light out.
+	Photons int
 	Seed    uint64
 	Workers int
 	// Coarsen multiplies every texel edge; 1 where memory allows.
@@ -241,10 +244,11 @@ func share(total, i, parts int) int { return (total*(i+1))/parts - (total*i)/par
 // streamTexel keeps the random streams of texels apart from those of
 // receivers and of the sun.
 const (
-	streamTexel = 1
-	streamSun   = 2
-	streamDisc  = 3
-	streamLook  = 4
+	streamTexel  = 1
+	streamSun    = 2
+	streamDisc   = 3
+	streamLook   = 4
+	streamPhoton = 5
 )
 
 // Compress sorts what was found by texel side and patch and sums equal ones.

@@ -92,9 +92,10 @@ func (t *Transport) Solve(bl *Block, b int, light *Light) {
 	t.sunOn(bl, b, light)
 	rows := &t.rows[b]
 	source := light.Rest
+	copy(source, light.Sun)
+	t.mirrored(bl, b, source)
 	for i := range n {
 		e := &source[i]
-		*e = light.Sun[i]
 		gather(e, bl.Sky, rows.patches[rows.patchStart[i]:rows.patchStart[i+1]], 1)
 		if g := rows.below[i]; g > 0 {
 			AddScaled(e, &bl.Below, g)

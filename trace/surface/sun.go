@@ -14,7 +14,7 @@ import (
 
 // discPoints is the number of points that stand for the sun's disc; a ray
 // takes one of them at random.
-const discPoints = 16
+const discPoints = 32
 
 // SunRays is the sun of one moment: directions spread over its disc, and
 // which of them the ground or the horizon line hides.
@@ -55,6 +55,12 @@ func (s *SunRays) Draw(bits uint64) (r3.Vec, bool) {
 	i := bits % discPoints
 	return s.dirs[i], !s.hidden[i]
 }
+
+// Visible reports whether point i of the disc is above the horizon.
+func (s *SunRays) Visible(i int) bool { return !s.hidden[i] }
+
+// Dirs are the directions to the points of the disc.
+func (s *SunRays) Dirs() []r3.Vec { return s.dirs[:] }
 
 // sunOn samples the direct sun on every active side for all moments of a
 // block in batch b: one ray from a random point of the texel to a random point

@@ -50,6 +50,7 @@ type CauseKind int
 const (
 	Brightness CauseKind = iota // no source stands out, the view as a whole is bright
 	SunDisc
+	MirroredSun
 	SkySeen
 	GroundSeen
 	Sunlit  // sun on a surface
@@ -65,6 +66,8 @@ func (c Cause) String() string {
 	switch c.Kind {
 	case SunDisc:
 		return "the sun's disc" + via
+	case MirroredSun:
+		return "the sun mirrored in " + c.Name + via
 	case SkySeen:
 		return "the sky" + via
 	case GroundSeen:
@@ -83,8 +86,8 @@ type Worst struct {
 	DGP, Ev  float64
 	StdErr   float64
 	Result   glare.Result
-	Lum      []float32 // pooled luminance, the disc not in it
-	Disc     annual.Disc
+	Lum      []float32 // pooled luminance, the sun's discs not in it
+	Discs    []annual.Disc
 	InsideOf *coeff.Eye
 }
 
@@ -94,15 +97,14 @@ const causeFrom = 0.35
 
 // glareSink turns frames into series as they come.
 type glareSink struct {
-	in     *Input
-	eyes   []*coeff.Eye
-	field  *glare.Field
-	opt    glare.Options
-	views  []ViewResult
-	mu     []sync.Mutex // by view
-	cause  []map[Cause]int16
-	work   []sinkScratch // by worker
-	discOf func(e *coeff.Eye, d annual.Disc) []glare.Disc
+	in    *Input
+	eyes  []*coeff.Eye
+	field *glare.Field
+	opt   glare.Options
+	views []ViewResult
+	mu    []sync.Mutex // by view
+	cause []map[Cause]int16
+	work  []sinkScratch // by worker
 }
 
 type sinkScratch struct {
@@ -142,7 +144,7 @@ func (g *glareSink) take(worker int, f *annual.Frame) {
 	w := &g.work[worker]
 	e := g.eyes[f.Eye]
 	v := &g.views[f.Eye]
-	w.discs = toView(w.discs[:0], e, f.Disc)
+	w.discs = toView(w.discs[:0], e, f.Discs)
 	dgp, ev := glare.DGPOnly(g.field, f.Mean, w.discs, g.opt, &w.scratch)
 	se := g.jackknife(w, e, f)
 	h := f.Moment.Hour
@@ -154,7 +156,6 @@ func (g *glareSink) take(worker int, f *annual.Frame) {
 	if dgp < causeFrom && !worst {
 		return
 	}
-	w.discs = toView(w.discs[:0], e, f.Disc)
 	full := glare.Evaluate(g.field, f.Mean, w.discs, g.opt, &w.scratch)
 	if dgp >= causeFrom {
 		c := g.causeOf(e, f, &full)
@@ -168,7 +169,7 @@ func (g *glareSink) take(worker int, f *annual.Frame) {
 	}
 	if worst {
 		v.Worst = &Worst{Moment: f.Moment, DGP: dgp, Ev: ev, StdErr: se, Result: full,
-			Lum: append([]float32(nil), f.Mean...), Disc: f.Disc, InsideOf: e}
+			Lum: append([]float32(nil), f.Mean...), Discs: append([]annual.Disc(nil), f.Discs...), InsideOf: e}
 	}
 }
 
@@ -188,7 +189,6 @@ func (g *glareSink) jackknife(w *sinkScratch, e *coeff.Eye, f *annual.Frame) flo
 		for _, px := range e.Inside {
 			w.rest[px] = max(0, f.Mean[px]*all-batch[px]*without)
 		}
-		w.discs = toView(w.discs[:0], e, withoutBatch(f.Discs, b))
 		d, _ := glare.DGPOnly(g.field, w.rest, w.discs, g.opt, &w.scratch)
 		sum += d
 		square += d * d
@@ -197,29 +197,11 @@ func (g *glareSink) jackknife(w *sinkScratch, e *coeff.Eye, f *annual.Frame) flo
 	return math.Sqrt(math.Max(0, (square/float64(n)-mean*mean)*float64(n-1)))
 }
 
-// withoutBatch pools the discs of all batches but one.
-func withoutBatch(discs []annual.Disc, leave int) annual.Disc {
-	var omega, flux float64
-	var dir r3.Vec
-	for b, d := range discs {
-		if b == leave || d.OmegaSr == 0 {
-			continue
-		}
-		omega += d.OmegaSr
-		flux += d.OmegaSr * d.Luminance
-		dir = d.Dir
+func toView(out []glare.Disc, e *coeff.Eye, discs []annual.Disc) []glare.Disc {
+	for _, d := range discs {
+		out = append(out, glare.Disc{Dir: e.View.Local(d.Dir), OmegaSr: d.OmegaSr, Luminance: d.Luminance})
 	}
-	if omega == 0 {
-		return annual.Disc{}
-	}
-	return annual.Disc{Dir: dir, OmegaSr: omega / float64(len(discs)-1), Luminance: flux / omega}
-}
-
-func toView(out []glare.Disc, e *coeff.Eye, d annual.Disc) []glare.Disc {
-	if d.OmegaSr == 0 {
-		return out
-	}
-	return append(out, glare.Disc{Dir: e.View.Local(d.Dir), OmegaSr: d.OmegaSr, Luminance: d.Luminance})
+	return out
 }
 
 // causeOf names what carries most of the glare.
@@ -233,7 +215,7 @@ func (g *glareSink) causeOf(e *coeff.Eye, f *annual.Frame, r *glare.Result) Caus
 	}
 	top := &r.Sources[0]
 	if top.Disc {
-		return Cause{Kind: SunDisc, Via: g.openingTowards(e, f.Disc.Dir)}
+		return g.causeOfDisc(e, f, top)
 	}
 	// Within the source, the share of each thing seen, weighted by what it
 	// sends to the eye.
@@ -294,23 +276,21 @@ func (g *glareSink) openingOf(part int32) string {
 	return p.Name
 }
 
-// openingTowards names the opening that a direction from the eye leads
-// through.
-func (g *glareSink) openingTowards(e *coeff.Eye, dir r3.Vec) string {
-	for _, o := range g.in.Scene.Openings {
-		r := o.Rect
-		co := r3.Dot(dir, r.Outward)
-		if co <= 0 {
-			continue
-		}
-		t := r3.Dot(r3.Sub(r.Origin, e.View.Position), r.Outward) / co
-		q := r3.Sub(r3.Add(e.View.Position, r3.Scale(t, dir)), r.Origin)
-		a, b := r3.Dot(q, r.Across), r3.Dot(q, r.Up)
-		if t > 0 && a >= 0 && b >= 0 && a <= r.WidthM && b <= r.HeightM {
-			return o.Name
+// causeOfDisc names the disc that a source is: the sun itself or the mirror
+// that shows it.
+func (g *glareSink) causeOfDisc(e *coeff.Eye, f *annual.Frame, source *glare.Source) Cause {
+	best, nearest := 0, -2.0
+	for i, d := range f.Discs {
+		if c := r3.Dot(e.View.Local(d.Dir), source.Dir); c > nearest {
+			best, nearest = i, c
 		}
 	}
-	return ""
+	d := f.Discs[best]
+	c := Cause{Kind: SunDisc, Via: g.openingOf(d.Via)}
+	if d.Mirror >= 0 {
+		c.Kind, c.Name = MirroredSun, g.in.Scene.Parts[d.Mirror].Name
+	}
+	return c
 }
 
 // judgeViews brackets each view's hours over the limits.

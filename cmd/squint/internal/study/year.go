@@ -7,7 +7,6 @@ import (
 	"sync"
 	"sync/atomic"
 
-	"squint/materials"
 	"squint/scene"
 	"squint/scene/sky"
 	"squint/trace"
@@ -21,6 +20,13 @@ import (
 // continuous sky where they see it.
 const sensorPatchFactor = 2
 
+// Photons shot from the sun each moment: enough for a year's verdicts where
+// mirrors matter (design study), few where only panes mirror.
+const (
+	mirrorPhotons = 4000
+	panePhotons   = 800
+)
+
 // year is what the engine computed.
 type year struct {
 	eyes    []*coeff.Eye
@@ -33,6 +39,10 @@ type year struct {
 func computeYear(ctx context.Context, in *Input, opt Options, r *Result) (*year, error) {
 	sim := in.Project.Simulation
 	cfg := surface.Config{Batches: sim.Batches, Samples: sim.TexelSamples, Seed: sim.Seed, Workers: opt.Workers, Coarsen: 1}
+	cfg.Photons = panePhotons
+	if in.World.Mirrors() {
+		cfg.Photons = mirrorPhotons
+	}
 	for _, v := range in.Scene.Viewpoints {
 		cfg.Receivers = append(cfg.Receivers, v.Position)
 	}
@@ -88,9 +98,6 @@ func computeYear(ctx context.Context, in *Input, opt Options, r *Result) (*year,
 		}
 	}
 	r.Settings = Settings{Workers: opt.Workers, TexelSides: t.Len(), Coarsen: cfg.Coarsen, Confidence: confidence, Kernel: bvh.Kernel()}
-	if warnsMirroredSun(in.Scene) {
-		r.Warnings = append(r.Warnings, mirroredSunWarning)
-	}
 	y.glare = newGlareSink(in, y.eyes, max(opt.Workers, 1))
 	acfg := annual.Config{Workers: opt.Workers, Seed: sim.Seed}
 	total := len(in.Climate.Moments)
@@ -182,25 +189,4 @@ func each(ctx context.Context, opt Options, stage Stage, n int, work func(i int)
 		}
 	}
 	return nil
-}
-
-const mirroredSunWarning = "the project has mirroring finishes: the sun that mirrors throw into the room is not yet counted, so that light is missing and glare by mirrored sun is not seen; verdicts hold for the rest of the light only."
-
-// warnsMirroredSun reports whether a mirror other than glass is in the scene.
-func warnsMirroredSun(s *scene.Scene) bool {
-	used := make([]bool, len(s.Finishes))
-	for i := range s.Triangles {
-		used[s.Triangles[i].Finish] = true
-	}
-	for i, f := range s.Finishes {
-		if !used[i] {
-			continue
-		}
-		for _, side := range []materials.Side{materials.Front, materials.Back} {
-			if mirror, through := f.BSDF.Delta(side, 1); (mirror > 0 && through == 0) || f.BSDF.Gloss(side) != nil {
-				return true
-			}
-		}
-	}
-	return false
 }

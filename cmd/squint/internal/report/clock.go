@@ -1,0 +1,55 @@
+package report
+
+import (
+	"fmt"
+	"math"
+	"time"
+
+	"gonum.org/v1/gonum/spatial/r3"
+
+	"squint/glare/daylight"
+	"squint/scene"
+)
+
+// clockHour is the hour that clocks show at the start of a record, 0 to 24; 24
+// is the hour after midnight of a day in daylight saving time, counted to the
+// record's own date.
+func clockHour(c daylight.Calendar, record int) int {
+	return record%24 + int(c.ClockShiftH(record/24))
+}
+
+// clockTime is a moment as the clocks show it.
+func clockTime(c daylight.Calendar, m *scene.Moment) time.Time {
+	return m.Time.Add(time.Duration(c.ClockShiftH(m.Hour/24) * float64(time.Hour)))
+}
+
+// dateWords is such a moment in words: 21 December, 11:30 h.
+func dateWords(t time.Time) string { return t.Format("2 January, 15:04 h") }
+
+// azimuthDeg is the azimuth of a model direction, clockwise from north, 0 to
+// 360; northDeg is the azimuth of the model's +y.
+func azimuthDeg(d r3.Vec, northDeg float64) float64 {
+	az := math.Mod(math.Atan2(d.X, d.Y)*180/math.Pi+northDeg, 360)
+	if az < 0 {
+		az += 360
+	}
+	if az >= 360 { // -1e-15 + 360
+		az = 0
+	}
+	return az
+}
+
+// altitudeDeg is the angle of a unit vector above the horizon.
+func altitudeDeg(d r3.Vec) float64 { return degreesOfSine(d.Z) }
+
+func degreesOfSine(s float64) float64 {
+	return math.Asin(math.Max(-1, math.Min(1, s))) * 180 / math.Pi
+}
+
+// coordinate writes a latitude or longitude: 56.12 N.
+func coordinate(deg float64, positive, negative string) string {
+	if deg < 0 {
+		return fmt.Sprintf("%.2f %s", -deg, negative)
+	}
+	return fmt.Sprintf("%.2f %s", deg, positive)
+}

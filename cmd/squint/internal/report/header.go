@@ -1,0 +1,175 @@
+package report
+
+import (
+	"fmt"
+	"io"
+	"strings"
+
+	"squint/cmd/squint/internal/study"
+	"squint/scene"
+	"squint/scene/project"
+	"squint/scene/weather"
+)
+
+// headerIndent is where the texts of the header begin.
+const headerIndent = 11
+
+// Header prints what is about to be computed: the weather and the moment its
+// records stand for, the geometry, what was noticed, and every setting and
+// default.
+func Header(w io.Writer, in *study.Input) error {
+	var p page
+	pr, f := in.Project, newPaths(in.Project, in.Scene)
+	p.head(title(pr, f))
+	if invented(pr, in.Climate.Year) {
+		p.item(0, inventedWords, warm(), len(inventedWords)+1, "- not those of a real place or building")
+	}
+	p.gap()
+	say := func(word, text string) { p.item(0, word, bold(), headerIndent, f.in(text)) }
+	text, warns := momentText(in.Climate, pr)
+	say("Weather", weatherText(in.Climate.Year))
+	if warns {
+		p.item(0, "Warning", warm(), headerIndent, f.in(text))
+	} else {
+		say("", text)
+	}
+	for i, m := range in.Scene.Meshes {
+		word := ""
+		if i == 0 {
+			word = "Geometry"
+		}
+		say(word, meshText(m))
+	}
+	say("Checked", checkedText(in))
+	say("Criteria", criteriaText(pr.Criteria))
+	say("Settings", settingsText(pr))
+	word := "Defaults"
+	for _, d := range defaultTexts(pr) {
+		say(word, d)
+		word = ""
+	}
+	word = "Notes"
+	for _, n := range in.Notes {
+		say(word, n)
+		word = ""
+	}
+	p.gap()
+	return p.print(w)
+}
+
+func title(p *project.Project, f paths) string {
+	if strings.TrimSpace(p.Title) != "" {
+		return p.Title
+	}
+	return f.of(p.File)
+}
+
+func weatherText(y *weather.Year) string {
+	s := fmt.Sprintf("%s (%s)", y.File, y.Format)
+	if y.Site.Name != "" {
+		s += ": " + y.Site.Name
+	}
+	return s + fmt.Sprintf(", %s, %s, UTC%+g h, %s m above the sea",
+		coordinate(y.Site.LatitudeDeg, "N", "S"), coordinate(y.Site.LongitudeDeg, "E", "W"), y.Site.UTCOffsetH, decimals(y.Site.ElevationM, 0))
+}
+
+func meshText(m scene.MeshSummary) string {
+	size := m.Bounds.Max
+	size.X, size.Y, size.Z = size.X-m.Bounds.Min.X, size.Y-m.Bounds.Min.Y, size.Z-m.Bounds.Min.Z
+	s := fmt.Sprintf("%s (%s): %s, %s x %s x %s m from (%s, %s, %s)", m.File, m.Role, count(m.Triangles, "triangle", "triangles"),
+		fixed(size.X, 2), fixed(size.Y, 2), fixed(size.Z, 2), decimals(m.Bounds.Min.X, 2), decimals(m.Bounds.Min.Y, 2), decimals(m.Bounds.Min.Z, 2))
+	if m.Degenerate > 0 {
+		s += ", " + whole(float64(m.Degenerate)) + " without area left out"
+	}
+	return s
+}
+
+func checkedText(in *study.Input) string {
+	s := count(len(in.Scene.Viewpoints), "viewpoint", "viewpoints")
+	if n := len(in.Scene.WorkPlanes); n > 0 {
+		s += fmt.Sprintf(", %s on %s", count(in.Scene.Sensors(), "sensor", "sensors"), count(n, "work plane", "work planes"))
+	}
+	return s + fmt.Sprintf("; %s in use, %s with daylight", count(len(in.Occupied), "hour", "hours"), whole(float64(len(in.Climate.Moments))))
+}
+
+func criteriaText(c project.Criteria) string {
+	return "EN 17037:2018: protection from glare, " + c.Glare + "; daylight provision, " + c.Provision
+}
+
+// settingsText states every value that does not belong to one of many parts.
+func settingsText(p *project.Project) string {
+	s := p.Simulation
+	return fmt.Sprintf("use %s, %s to %s h%s; north_deg %s; ground reflectance %s; seed %d, batches %d, fisheye_pixels %d, samples_per_pixel %d, sensor_samples %d, texel_m %s, texel_samples %d, memory_mib %d",
+		daysText(p.Occupancy.Days), decimals(p.Occupancy.FromH, 2), decimals(p.Occupancy.ToH, 2), savingText(p.Occupancy),
+		decimals(p.Site.NorthDeg, 3), groundText(p.Ground), s.Seed, s.Batches, s.FisheyePixels, s.SamplesPerPixel, s.SensorSamples,
+		decimals(s.TexelM, 3), s.TexelSamples, s.MemoryMiB)
+}
+
+func daysText(days [7]bool) string {
+	names := [7]string{"mon", "tue", "wed", "thu", "fri", "sat", "sun"}
+	var on []string
+	for i, d := range days {
+		if d {
+			on = append(on, names[i])
+		}
+	}
+	return strings.Join(on, " ")
+}
+
+func savingText(o project.Occupancy) string {
+	s := ""
+	if n := len(o.Holidays); n > 0 {
+		s = ", " + count(n, "holiday", "holidays")
+	}
+	if o.DaylightSavingFrom == nil || o.DaylightSavingTo == nil {
+		return s + ", no daylight saving time"
+	}
+	return s + fmt.Sprintf(", daylight saving time %02d-%02d to %02d-%02d", o.DaylightSavingFrom.Month, o.DaylightSavingFrom.Day, o.DaylightSavingTo.Month, o.DaylightSavingTo.Day)
+}
+
+func groundText(g project.Ground) string {
+	lo, hi := g.Reflectance[0], g.Reflectance[0]
+	for _, r := range g.Reflectance {
+		lo, hi = min(lo, r), max(hi, r)
+	}
+	if lo == hi {
+		return decimals(lo, 3)
+	}
+	return decimals(lo, 3) + " to " + decimals(hi, 3) + " by month"
+}
+
+// defaultTexts are the defaults of the tables that may stand many times: what
+// holds for each item whose table leaves the key out. The single tables' values
+// are in settingsText.
+func defaultTexts(p *project.Project) []string {
+	types := map[string]bool{"": true}
+	for _, f := range p.Finishes {
+		types[f.Type] = true
+	}
+	has := map[string]bool{"mesh": len(p.Meshes) > 0, "finish": len(p.Finishes) > 0, "opening": len(p.Openings) > 0,
+		"light_shelf": len(p.LightShelves) > 0, "roller": len(p.Rollers) > 0, "viewpoint": len(p.Viewpoints) > 0, "work_plane": len(p.WorkPlanes) > 0}
+	keys := map[string][]string{}
+	var order []string
+	for _, k := range project.Defaults() {
+		if !k.List || !has[k.Table] || !types[k.Type] {
+			continue
+		}
+		name := k.Table
+		if k.Type != "" {
+			name += " " + k.Type
+		}
+		if keys[name] == nil {
+			order = append(order, name)
+		}
+		keys[name] = append(keys[name], k.Name+" "+strings.Trim(k.Default, `"`))
+	}
+	var all []string
+	for i, name := range order {
+		s := name + ": " + strings.Join(keys[name], ", ")
+		if i == 0 {
+			s = "where the project leaves the key out; " + s
+		}
+		all = append(all, s)
+	}
+	return all
+}

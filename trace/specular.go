@@ -1,0 +1,244 @@
+package trace
+
+import (
+	"math"
+	"sort"
+
+	"gonum.org/v1/gonum/spatial/r3"
+
+	"squint/materials"
+	"squint/materials/sampling"
+)
+
+// specular lists the facets that mirror, sharply or as a narrow lobe: mirrors,
+// glossy surfaces and panes. Light goes by their geometric normals; a curved
+// mirror is a fine mesh.
+type specular struct {
+	facets []facet
+	groups []orientation
+	group  []int32 // triangle -> group, -1 where it does not mirror
+}
+
+type facet struct {
+	prim   int32
+	areaM2 float64
+	gloss  bool
+	pane   bool // passes light straight as well
+}
+
+// orientation gathers the sharply mirroring facets of one normal: the sun has
+// one image in all of them.
+type orientation struct {
+	normal r3.Vec
+	facets []int32 // indices into facets
+}
+
+// sameNormal is the cosine above which two facets share an image: 0.003
+// degrees, a hundredth of the sun's radius.
+const sameNormal = 1 - 1.4e-9
+
+func (w *World) findSpecular() {
+	sp := &w.specular
+	sp.group = make([]int32, len(w.tris))
+	kinds := map[int32][2]bool{}
+	for i := range w.tris {
+		sp.group[i] = -1
+		k, ok := kinds[w.tris[i].finish]
+		if !ok {
+			k = mirrors(w.tris[i].bsdf)
+			kinds[w.tris[i].finish] = k
+		}
+		sharp, gloss := k[0], k[1]
+		if !sharp && !gloss {
+			continue
+		}
+		v := &w.Scene.Triangles[i].V
+		area := 0.5 * r3.Norm(r3.Cross(r3.Sub(v[1], v[0]), r3.Sub(v[2], v[0])))
+		f := int32(len(sp.facets))
+		sp.facets = append(sp.facets, facet{prim: int32(i), areaM2: area, gloss: gloss, pane: passesStraight(w.tris[i].bsdf)})
+		if sharp {
+			sp.group[i] = sp.groupOf(w.normal[i])
+			g := &sp.groups[sp.group[i]]
+			g.facets = append(g.facets, f)
+		}
+	}
+}
+
+// groupOf finds or adds the orientation of a normal; opposite normals mirror
+// alike.
+func (sp *specular) groupOf(n r3.Vec) int32 {
+	for i := len(sp.groups) - 1; i >= 0; i-- {
+		if math.Abs(r3.Dot(sp.groups[i].normal, n)) >= sameNormal {
+			return int32(i)
+		}
+	}
+	sp.groups = append(sp.groups, orientation{normal: n})
+	return int32(len(sp.groups) - 1)
+}
+
+func mirrors(b materials.BSDF) (kind [2]bool) {
+	for _, side := range []materials.Side{materials.Front, materials.Back} {
+		if m, _ := b.Delta(side, 0.7); m > 0 {
+			kind[0] = true
+		}
+		if b.Gloss(side) != nil {
+			kind[1] = true
+		}
+	}
+	return kind
+}
+
+// Mirrors reports whether anything other than a pane mirrors or shines.
+func (w *World) Mirrors() bool {
+	for _, f := range w.specular.facets {
+		if !f.pane {
+			return true
+		}
+	}
+	return false
+}
+
+// Photons is the light of one moment's sun that mirrors throw on, shot as n
+// stratified photons. Aim prepares it; it is then shot by Shoot.
+type Photons struct {
+	world *World
+	sun   r3.Vec
+	cum   []float64 // cumulative weight by facet
+	live  []int32   // facets facing the sun
+	sides []materials.Side
+}
+
+// Aim weighs the facets by what they mirror of a sun in unit direction sun:
+// projected area times reflectance.
+func (w *World) Aim(sun r3.Vec) *Photons {
+	p := &Photons{world: w, sun: sun}
+	total := 0.0
+	for i := range w.specular.facets {
+		f := &w.specular.facets[i]
+		c := r3.Dot(sun, w.normal[f.prim])
+		side := materials.Front
+		if c < 0 {
+			side, c = materials.Back, -c
+		}
+		share, _ := w.tris[f.prim].bsdf.Delta(side, c)
+		if f.gloss && w.tris[f.prim].bsdf.Gloss(side) != nil {
+			share += 0.5
+		}
+		if weight := f.areaM2 * c * share; weight > 0 {
+			total += weight
+			p.cum = append(p.cum, total)
+			p.live = append(p.live, int32(i))
+			p.sides = append(p.sides, side)
+		}
+	}
+	return p
+}
+
+// Empty reports that no facet mirrors the sun.
+func (p *Photons) Empty() bool { return len(p.live) == 0 }
+
+// Shoot sends n photons for a sun of normalLx, each from a random point of a
+// facet that sees the sun; draw gives directions to points of the disc and
+// whether they are above the horizon. Every diffuse surface that a photon
+// arrives at is reported with the photon's flux in lm; photons go on through
+// glass and by further mirrors, but end at the first diffuse surface, whose
+// exchange with others the surface solution knows.
+//
+// Source: stratified light tracing after Arvo 1986, Backward ray tracing,
+// SIGGRAPH course notes; roulette after Arvo & Kirk 1990, Particle transport
+// and image synthesis, SIGGRAPH.
+func (p *Photons) Shoot(normalLx float64, n int, draw func(bits uint64) (r3.Vec, bool), s *sampling.Stream, deposit func(h *Hit, flux float64)) {
+	if p.Empty() || n <= 0 {
+		return
+	}
+	w := p.world
+	total := p.cum[len(p.cum)-1]
+	shift := s.Float64()
+	for i := range n {
+		x := (float64(i) + shift) / float64(n) * total
+		k := sort.SearchFloat64s(p.cum, x)
+		if k >= len(p.cum) {
+			k = len(p.cum) - 1
+		}
+		f := &w.specular.facets[p.live[k]]
+		chance := p.cum[k]
+		if k > 0 {
+			chance -= p.cum[k-1]
+		}
+		chance /= total
+		dir, up := draw(s.Uint64())
+		v := &w.Scene.Triangles[f.prim].V
+		pos := sampling.Triangle(s.Float64(), s.Float64(), v[0], v[1], v[2])
+		facing := w.normal[f.prim]
+		if p.sides[k] == materials.Back {
+			facing = r3.Scale(-1, facing)
+		}
+		cos := r3.Dot(dir, facing)
+		if !up || cos <= 0 {
+			continue
+		}
+		org := w.Offset(pos, facing)
+		tr := w.Transmittance(org, dir, math.Inf(1))
+		if tr <= 0 {
+			continue
+		}
+		flux := normalLx * tr * f.areaM2 * cos / (float64(n) * chance)
+		h := Hit{Point: pos, Normal: w.normal[f.prim], Cos: cos, Prim: f.prim, Part: w.tris[f.prim].part, Side: p.sides[k], BSDF: w.tris[f.prim].bsdf}
+		p.follow(&h, r3.Scale(-1, dir), flux, true, s, deposit)
+	}
+}
+
+// follow carries a photon that meets h along unit dir. At the first facet
+// only the mirrored and glossy part goes on: what passes it straight is the
+// sun that other estimators know.
+func (p *Photons) follow(h *Hit, dir r3.Vec, flux float64, first bool, s *sampling.Stream, deposit func(h *Hit, flux float64)) {
+	w := p.world
+	for range maxSpecular {
+		if !first {
+			rho, tau := h.BSDF.Lambert(h.Side)
+			if rho > 0 || tau > 0 {
+				deposit(h, flux)
+			}
+		}
+		mirror, through := h.BSDF.Delta(h.Side, h.Cos)
+		if first {
+			through = 0
+		}
+		facing := h.Facing()
+		gloss := 0.0
+		var glossDir r3.Vec
+		if g := h.BSDF.Gloss(h.Side); g != nil {
+			// A lobe is reciprocal: the photon is sampled as a viewer would be.
+			if next, share, ok := glossBounce(g, facing, dir, s); ok {
+				glossDir, gloss = next, share
+			}
+		}
+		sum := mirror + through + gloss
+		if sum <= 0 {
+			return
+		}
+		// Roulette keeps the flux as it is wherever it can.
+		keep := math.Min(1, sum)
+		u := s.Float64()
+		if u >= keep {
+			return
+		}
+		flux *= sum / keep
+		switch u *= sum / keep; {
+		case u < mirror:
+			dir = r3.Add(dir, r3.Scale(2*h.Cos, facing))
+			h.Point = w.Offset(h.Point, facing)
+		case u < mirror+through:
+			h.Point = w.Offset(h.Point, r3.Scale(-1, facing))
+		default:
+			dir = glossDir
+			h.Point = w.Offset(h.Point, facing)
+		}
+		first = false
+		next, ok := w.Closest(h.Point, dir)
+		if !ok {
+			return
+		}
+		*h = next
+	}
+}
