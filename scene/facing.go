@@ -33,19 +33,18 @@ func (b *builder) wrongWay(r system.Rect) bool {
 		if b.s.Parts[t.Part].Kind != Room {
 			continue
 		}
-		var p [3][3]float64 // across, up and outward
+		var local [3]r3.Vec
 		for k, v := range t.V {
-			d := r3.Sub(v, r.Origin)
-			p[k] = [3]float64{r3.Dot(d, r.Across), r3.Dot(d, r.Up), r3.Dot(d, r.Outward)}
-			in, out = math.Max(in, -p[k][2]), math.Max(out, p[k][2])
+			local[k] = r.Local(v)
+			in, out = math.Max(in, -local[k].Z), math.Max(out, local[k].Z)
 		}
-		if least(p, 0) > r.WidthM || most(p, 0) < 0 || least(p, 1) > r.HeightM || most(p, 1) < 0 {
+		if r.Beside(local) {
 			continue
 		}
 		for k := range behind {
 			x := (float64(k%rowsOnGlass) + 0.5) / rowsOnGlass * r.WidthM
 			y := (float64(k/rowsOnGlass) + 0.5) / rowsOnGlass * r.HeightM
-			depth, ok := depthAt(p, x, y)
+			depth, ok := system.DepthAt(local, x, y)
 			behind[k] = behind[k] || ok && depth < -glassGapM
 			before[k] = before[k] || ok && depth > glassGapM
 		}
@@ -63,32 +62,6 @@ func (b *builder) wrongWay(r system.Rect) bool {
 		}
 	}
 	return n > len(before)/2
-}
-
-// depthAt is the third coordinate of a triangle where its first two are x, y.
-func depthAt(p [3][3]float64, x, y float64) (float64, bool) {
-	area := (p[1][0]-p[0][0])*(p[2][1]-p[0][1]) - (p[2][0]-p[0][0])*(p[1][1]-p[0][1])
-	if math.Abs(area) < 1e-12 {
-		return 0, false
-	}
-	depth := 0.0
-	for k := range 3 {
-		a, c := p[(k+1)%3], p[(k+2)%3]
-		w := ((a[0]-x)*(c[1]-y) - (c[0]-x)*(a[1]-y)) / area
-		if w < 0 {
-			return 0, false
-		}
-		depth += w * p[k][2]
-	}
-	return depth, true
-}
-
-func least(p [3][3]float64, axis int) float64 {
-	return math.Min(p[0][axis], math.Min(p[1][axis], p[2][axis]))
-}
-
-func most(p [3][3]float64, axis int) float64 {
-	return math.Max(p[0][axis], math.Max(p[1][axis], p[2][axis]))
 }
 
 // faceOpening finds the rectangle of an opening and sees to it that its

@@ -85,8 +85,8 @@ func runCheck(ctx context.Context, h host, o checkOptions) error {
 	if out == "" {
 		out = defaultOut(o.Project)
 	}
-	if info, err := os.Stat(out); err == nil && !info.IsDir() {
-		return inputError{fmt.Errorf("%s: got a file, want a folder for the results; choose another with --out", out)}
+	if err := canHold(out); err != nil {
+		return inputError{err}
 	}
 	in, err := study.Prepare(fsys, name, o.Workers)
 	if err != nil {
@@ -122,6 +122,20 @@ func runCheck(ctx context.Context, h host, o checkOptions) error {
 		return required(r.Outcome)
 	}
 	return nil
+}
+
+// canHold refuses a folder for results that cannot be made, before the work
+// rather than after it.
+func canHold(dir string) error {
+	for d := filepath.Clean(dir); ; d = filepath.Dir(d) {
+		info, err := os.Stat(d)
+		switch {
+		case err == nil && !info.IsDir():
+			return fmt.Errorf("%s: got a file, want a folder for the results; choose another with --out", d)
+		case err == nil, d == filepath.Dir(d):
+			return nil
+		}
+	}
 }
 
 // defaultOut is the folder of the results where none is given.

@@ -86,14 +86,14 @@ func (b *bars) Report(stage study.Stage, done, total int) {
 	if stage != b.stage || b.bar == nil {
 		b.finish()
 		b.stage, b.done = stage, 0
-		b.bar = b.all.AddBar(int64(total),
+		// A bar made without a total does not complete by itself: the total of
+		// a stage may grow. The next stage or Close completes it.
+		b.bar = b.all.AddBar(0,
 			mpb.PrependDecorators(decor.Name(string(stage), decor.WC{W: 34, C: decor.DindentRight})),
 			mpb.AppendDecorators(decor.Percentage(decor.WC{W: 5}), decor.Elapsed(decor.ET_STYLE_MMSS, decor.WC{W: 7})))
 	}
 	b.done = max(b.done, done)
-	// Not yet complete, even where done equals total: the total of a stage may
-	// grow. The next stage or Close completes it.
-	b.bar.SetTotal(int64(max(total, b.done+1)), false)
+	b.bar.SetTotal(int64(max(total, b.done)), false)
 	b.bar.SetCurrent(int64(b.done))
 }
 

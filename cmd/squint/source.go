@@ -2,6 +2,7 @@ package main
 
 import (
 	"errors"
+	"fmt"
 	"io/fs"
 	"os"
 	"path"
@@ -24,6 +25,9 @@ type source struct {
 
 // openSource finds the root. Problems of the project file are an error.
 func openSource(typed string) (*source, error) {
+	if info, err := os.Stat(typed); err == nil && info.IsDir() {
+		return nil, fmt.Errorf("%s: got a folder, want a project file in it", typed)
+	}
 	abs, err := filepath.Abs(typed)
 	if err != nil {
 		return nil, err
@@ -107,8 +111,7 @@ func (s *source) show(name string) string {
 	return full
 }
 
-// explain puts the shown names in front of the messages that start with one of
-// the project's files.
+// explain puts the shown names into messages that name the project's files.
 func (s *source) explain(err error) error {
 	if err == nil {
 		return nil
@@ -131,13 +134,24 @@ func (s *source) explain(err error) error {
 		}
 		return errors.Join(all...)
 	}
-	text := err.Error()
-	for _, name := range append([]string{s.name}, s.files...) {
-		if rest, ok := strings.CutPrefix(text, name+":"); ok {
-			return shownError{s.show(name) + ":" + rest, err}
-		}
+	// The first colon makes the message's start like its other places.
+	text := strings.TrimPrefix(s.shownNames().Replace(": "+err.Error()), ": ")
+	if text != err.Error() {
+		return shownError{text, err}
 	}
 	return err
+}
+
+// shownNames rewrites the project's files where a message names one as its
+// place: at its start and after a colon.
+func (s *source) shownNames() *strings.Replacer {
+	var pairs []string
+	for _, name := range append([]string{s.name}, s.files...) {
+		for _, end := range []string{":", " "} {
+			pairs = append(pairs, ": "+name+end, ": "+s.show(name)+end)
+		}
+	}
+	return strings.NewReplacer(pairs...)
 }
 
 // shownError is an error in other words.

@@ -23,6 +23,7 @@ var (
 
 // huffman is a canonical code: codes of one length are consecutive numbers.
 type huffman struct {
+	longest int     // code length
 	symbols []int32 // by length, then by symbol
 	first   [huffmanMaxLength + 1]uint64
 	count   [huffmanMaxLength + 1]int
@@ -116,6 +117,7 @@ func readHuffman(packed []byte, first, last int) (h *huffman, used int, err erro
 	for _, l := range lengths {
 		if l > 0 {
 			h.count[l]++
+			h.longest = max(h.longest, int(l))
 		}
 	}
 	n, c := 0, uint64(0)
@@ -193,14 +195,16 @@ func (h *huffman) next(b *bitReader) (symbol int32, ok bool) {
 			return f >> 8, true
 		}
 	}
-	code := uint64(0)
-	for l := 1; l <= huffmanMaxLength; l++ {
-		bit, ok := b.bits(1)
-		if !ok {
-			return 0, false
+	for l := 1; l <= h.longest; l++ {
+		if b.n < uint(l) {
+			// A code of 58 bits may need one more byte than fill had room for.
+			if b.fill(); b.n < uint(l) {
+				return 0, false
+			}
 		}
-		code = code<<1 | bit
+		code := b.hold >> (b.n - uint(l)) & (1<<l - 1)
 		if i := code - h.first[l]; code >= h.first[l] && i < uint64(h.count[l]) {
+			b.n -= uint(l)
 			return h.symbols[h.start[l]+int(i)], true
 		}
 	}

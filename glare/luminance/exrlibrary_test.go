@@ -58,8 +58,10 @@ func TestLibraryFiles(t *testing.T) {
 			func(x, y int) bool { return opaque(x, y) && x >= 4 && x <= 30 && y >= 6 }, 2e-4, true},
 		// 1000.25 times smooth, rounded to float by the writer: 2^-24.
 		{"y_float_piz.exr", 37, 70, func(x, y int) float64 { return 1000.25 * smooth(0, x, y) }, all, 0x1p-23, false},
-		// unsigned integers, of which float keeps 24 bits
+		// unsigned integers, of which float keeps 24 bits; stored as they are
 		{"y_uint_noise_piz.exr", 330, 33, func(x, y int) float64 { return float64(noise(x, y)) }, all, 0x1p-23, false},
+		// more than 2^14 different words in a chunk: sums that wrap
+		{"y_uint_ramp_piz.exr", 900, 33, func(x, y int) float64 { return float64(uint32(x+900*y) ^ noise(x, y)&7) }, all, 0, false},
 		{"y_uint_constant_piz.exr", 37, 45, func(x, y int) float64 { return 7 }, all, 0, false},
 		// Y beside chroma at half resolution; grey, so that Y is that of the
 		// colours, which the library by default rounds to 7 bits of mantissa

@@ -281,11 +281,11 @@ func BenchmarkReadEXR(b *testing.B) {
 }
 
 func BenchmarkReadPIZ(b *testing.B) {
-	file, err := os.ReadFile("testdata/y_uint_noise_piz.exr")
+	file, err := os.ReadFile("testdata/y_uint_ramp_piz.exr")
 	if err != nil {
 		b.Fatal(err)
 	}
-	b.SetBytes(330 * 33 * 4)
+	b.SetBytes(900 * 33 * 4)
 	for b.Loop() {
 		if _, err := ReadEXR(bytes.NewReader(file)); err != nil {
 			b.Fatal(err)

@@ -81,7 +81,7 @@ func (p *parity) judge(t *testing.T, defect float64) {
 		}
 	}
 	_, w := p.rejected(nil)
-	t.Logf("%s: %d cases, worst z %.2f (limit %.2f) at %s: published %.6g, ours %.6g, standard error %.2g, allowed %.2g",
+	t.Logf("%s: %d cases, worst z %.2f (limit %.2f) at %s: wanted %.6g, ours %.6g, standard error %.2g, allowed %.2g",
 		p.group, len(p.rows), w.z(), limit(len(p.rows), w.dof), w.name, w.want, w.got, w.stdErr, w.allow)
 	planted := func(o outcome) outcome { o.got *= 1 + defect; return o }
 	if n, _ := p.rejected(planted); n == 0 {
@@ -90,7 +90,7 @@ func (p *parity) judge(t *testing.T, defect float64) {
 }
 
 func (p *parity) text() string {
-	s := fmt.Sprintf("%-44s %12s %12s %10s %10s %6s\n", "case", "published", "ours", "std err", "allowed", "z")
+	s := fmt.Sprintf("%-44s %12s %12s %10s %10s %6s\n", "case", "wanted", "ours", "std err", "allowed", "z")
 	for _, o := range p.rows {
 		s += fmt.Sprintf("%-44s %12.6g %12.6g %10.2g %10.2g %6.2f\n", o.name, o.want, o.got, o.stdErr, o.allow, o.z())
 	}

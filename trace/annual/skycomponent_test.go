@@ -139,7 +139,7 @@ func TestRoomSkyComponents(t *testing.T) {
 
 // standardSky is sky type 1 to 15 of CIE S 011/E:2003, or 16, with 1 lx on a
 // level plane and the sun at 60 degrees of altitude.
-func standardSky(t *testing.T, kind int, fromFacadeRad float64) *sky.Sky {
+func standardSky(t testing.TB, kind int, fromFacadeRad float64) *sky.Sky {
 	if kind == 16 {
 		return overcast(t)
 	}

@@ -29,7 +29,6 @@ type pair struct {
 	box      span
 	first, n int32 // its triangles in builder.prims
 	right    int32 // 0: not split
-	axis     int32 // across which it is split
 	plan
 }
 
@@ -129,7 +128,7 @@ func (b *builder) split(bs *bins, self, i, j, depth int, box, mid *span) {
 		}
 	}
 	right := self + 2*(m-i)
-	p.right, p.axis = int32(right), c.axis
+	p.right = int32(right)
 	if n >= parallelMin && b.acquire() {
 		b.fork(self+1, i, m, depth+1, c.boxes[0], mids[0], func() {
 			b.split(bs, right, m, j, depth+1, &c.boxes[1], &mids[1])

@@ -37,10 +37,7 @@ func TestPlain(t *testing.T) {
 					if want.Prim >= 0 {
 						hits++
 					}
-					if want.T == 0 {
-						want.T = 0 // -0 is reported as 0
-					}
-					if got := tree.Closest(r.org, r.dir, r.tmin, r.tmax); got != want {
+					if got := tree.Closest(r.org, r.dir, r.tmin, r.tmax); got != want || math.Signbit(float64(got.T)) {
 						t.Fatalf("%v: got %v, want %v", r, got, want)
 					}
 					if got := tree.Occluded(r.org, r.dir, r.tmin, r.tmax); got != (want.Prim >= 0) {

@@ -37,13 +37,14 @@ type Tree struct {
 	stack  int     // most entries that a traversal may stack
 }
 
-// child is a subtree chosen for a node, with the way to it from the node.
+// child is a subtree chosen for a node.
 type child struct {
 	pair int32
 	leaf bool
 	area float32
 }
 
+// emit makes the wide tree that the plans ask for.
 func (b *builder) emit(tris []Triangle) *Tree {
 	t := &Tree{avx2: useAVX2}
 	root := &b.pairs[0]
@@ -59,7 +60,7 @@ func (b *builder) emit(tris []Triangle) *Tree {
 }
 
 // emitNode fills nodes[at] with the children of pair p, or p itself if it is
-// a leaf.
+// a leaf, and returns the depth of the tree from there.
 func (b *builder) emitNode(t *Tree, tris []Triangle, at int, p int32) int {
 	var buf [width]child
 	cs := buf[:0]
@@ -104,7 +105,7 @@ func (b *builder) emitNode(t *Tree, tris []Triangle, at int, p int32) int {
 		n.ref[i] = int32(len(t.nodes))
 		t.nodes = append(t.nodes, node{})
 	}
-	b.orders(&n, cs, p)
+	b.orders(&n, cs)
 	t.nodes[at] = n
 	depth := 0
 	for i := range cs {
@@ -135,6 +136,7 @@ func (b *builder) children(cs []child, p int32, n int) []child {
 	return b.children(cs, q.right, n-l)
 }
 
+// block copies the triangles of q, in the order of their indices.
 func (b *builder) block(tris []Triangle, q *pair) block {
 	var ids [width]int32
 	n := int(q.n)
@@ -157,8 +159,9 @@ func (b *builder) block(tris []Triangle, q *pair) block {
 	return bl
 }
 
-// orders fills in the children's order for each octant.
-func (b *builder) orders(n *node, cs []child, p int32) {
+// orders fills in the children's order for each octant, by the middles of
+// their boxes along its diagonal. Unused places come last.
+func (b *builder) orders(n *node, cs []child) {
 	var key [width]float32
 	for o := range 4 {
 		var idx [width]uint32

@@ -24,9 +24,9 @@ const (
 // ray is a ray fit for traversal. The assembly reads it.
 type ray struct {
 	org, dir   [3]uint32 // bits of float32
-	tmin, tmax int32   // bits of non-negative float32
-	shift      float32 // how far the origin is off for near and far planes
-	kz         int32   // the axis of the longest component of dir
+	tmin, tmax int32     // bits of non-negative float32
+	shift      float32   // how far the origin is off for near and far planes
+	kz         int32     // the axis of the longest component of dir
 }
 
 // aim fills in a ray. It reports false for one that cannot hit or is to be

@@ -18,6 +18,16 @@ func TestTree(t *testing.T) {
 		deep = append(deep, Triangle{{x, 0, 0}, {x, x / 8, 0}, {x, 0, x / 8}})
 	}
 	sets["deep"] = deep
+	rng := rand.New(rand.NewPCG(5, 2))
+	for range 3000 { // where areas and sums overflow
+		var tri Triangle
+		for v := range tri {
+			for k := range 3 {
+				tri[v][k] = float32((rng.Float64()*2 - 1) * math.Pow(10, rng.Float64()*76-38))
+			}
+		}
+		sets["extreme"] = append(sets["extreme"], tri)
+	}
 	for name, tris := range sets {
 		tree := Build(tris, Config{Workers: 1})
 		for _, w := range []int{2, 7} {

@@ -10,13 +10,14 @@ package bvh
 // enters its box.
 type entry struct{ ref, near int32 }
 
-// smallStack serves most trees; a larger one costs time to clear.
+// smallStack serves most trees; a larger one costs time to clear. One entry
+// above those in use is overwritten.
 const smallStack = 96
 
 func (t *Tree) closestGo(r *ray, h *Hit) {
 	var q query
 	q.set(r)
-	if t.stack <= smallStack {
+	if t.stack < smallStack {
 		var s [smallStack]entry
 		t.walkClosest(&q, h, s[:])
 		return
@@ -28,7 +29,7 @@ func (t *Tree) closestGo(r *ray, h *Hit) {
 func (t *Tree) occludedGo(r *ray) bool {
 	var q query
 	q.set(r)
-	if t.stack <= smallStack {
+	if t.stack < smallStack {
 		var s [smallStack]int32
 		return t.walkOccluded(&q, s[:])
 	}
@@ -36,40 +37,50 @@ func (t *Tree) occludedGo(r *ray) bool {
 	return t.walkOccluded(&q, s[:])
 }
 
-func (t *Tree) walkClosest(q *query, h *Hit, stack []entry) {
-	px, py, pz := q.near[0], q.near[1], q.near[2]
-	fx, fy, fz := q.far[0], q.far[1], q.far[2]
+// slabs is the slab test of a node's children: the bits of the T at which the
+// ray enters each box, and a mask of the boxes that it meets before tmax.
+func (q *query) slabs(n *node, near *[width]int32) uint32 {
+	ox, oy, oz := q.near[0], q.near[1], q.near[2]
 	rx, ry, rz := q.nrdir[0], q.nrdir[1], q.nrdir[2]
-	ax, ay, az := q.down[0], 2+q.down[1], 4+q.down[2]
-	octant := q.octant
 	tmin, tmax := q.tmin, q.tmax
+	dx, dy, dz := q.down[0]&1, q.down[1]&1, q.down[2]&1
+	x, y, z := &n.box[dx], &n.box[2+dy], &n.box[4+dz]
+	for i := range near {
+		near[i] = max(intBits((ox-x[i])*rx), intBits((oy-y[i])*ry), intBits((oz-z[i])*rz), tmin)
+	}
+	fx, fy, fz := q.far[0], q.far[1], q.far[2]
+	u, v, w := &n.box[1-dx], &n.box[3-dy], &n.box[5-dz]
+	missed := uint32(0)
+	for i := range near {
+		far := min(intBits((fx-u[i])*rx), intBits((fy-v[i])*ry), intBits((fz-w[i])*rz), tmax)
+		missed |= uint32(uint64(int64(far)-int64(near[i]))>>63) << (i & 7)
+	}
+	return ^missed
+}
+
+func (t *Tree) walkClosest(q *query, h *Hit, stack []entry) {
 	ref, sp := int32(0), 0
+	var near [width]int32
 	for {
 		if ref >= 0 {
 			n := &t.nodes[ref]
-			nx, ny, nz := &n.box[ax], &n.box[ay], &n.box[az]
-			mx, my, mz := &n.box[ax^1], &n.box[ay^1], &n.box[az^1]
-			order := n.order[octant]
+			hits := q.slabs(n, &near)
+			order := n.order[q.octant&7]
 			for range width { // from far to near
 				i := order >> 28 & 7
 				order <<= 4
-				near := max(intBits((px-nx[i])*rx), intBits((py-ny[i])*ry), intBits((pz-nz[i])*rz), tmin)
-				far := min(intBits((fx-mx[i])*rx), intBits((fy-my[i])*ry), intBits((fz-mz[i])*rz), tmax)
-				if near <= far {
-					stack[sp] = entry{n.ref[i], near}
-					sp++
-				}
+				stack[sp] = entry{n.ref[i], near[i]}
+				sp += int(hits >> i & 1)
 			}
 		} else {
 			closestBlock(&t.blocks[^ref>>3], int(^ref&7), q, h)
-			tmax = q.tmax
 		}
 		for {
 			sp--
 			if sp < 0 {
 				return
 			}
-			if stack[sp].near <= tmax {
+			if stack[sp].near <= q.tmax {
 				break
 			}
 		}
@@ -78,24 +89,15 @@ func (t *Tree) walkClosest(q *query, h *Hit, stack []entry) {
 }
 
 func (t *Tree) walkOccluded(q *query, stack []int32) bool {
-	px, py, pz := q.near[0], q.near[1], q.near[2]
-	fx, fy, fz := q.far[0], q.far[1], q.far[2]
-	rx, ry, rz := q.nrdir[0], q.nrdir[1], q.nrdir[2]
-	ax, ay, az := q.down[0], 2+q.down[1], 4+q.down[2]
-	tmin, tmax := q.tmin, q.tmax
 	ref, sp := int32(0), 0
+	var near [width]int32
 	for {
 		if ref >= 0 {
 			n := &t.nodes[ref]
-			nx, ny, nz := &n.box[ax], &n.box[ay], &n.box[az]
-			mx, my, mz := &n.box[ax^1], &n.box[ay^1], &n.box[az^1]
+			hits := q.slabs(n, &near)
 			for i := width - 1; i >= 0; i-- {
-				near := max(intBits((px-nx[i])*rx), intBits((py-ny[i])*ry), intBits((pz-nz[i])*rz), tmin)
-				far := min(intBits((fx-mx[i])*rx), intBits((fy-my[i])*ry), intBits((fz-mz[i])*rz), tmax)
-				if near <= far {
-					stack[sp] = n.ref[i]
-					sp++
-				}
+				stack[sp] = n.ref[i]
+				sp += int(hits >> (i & 7) & 1)
 			}
 		} else {
 			h := Hit{Prim: -1}
@@ -137,14 +139,14 @@ func closestBlock(b *block, last int, q *query, h *Hit) {
 		u := float32(cx*by) - float32(cy*bx)
 		v := float32(ax*cy) - float32(ay*cx)
 		w := float32(bx*ay) - float32(by*ax)
-		if (u < 0 || v < 0 || w < 0) && (u > 0 || v > 0 || w > 0) {
+		if mixed(u, v, w) {
 			continue
 		}
 		if u == 0 || v == 0 || w == 0 {
 			u = cross64(cx, by, cy, bx)
 			v = cross64(ax, cy, ay, cx)
 			w = cross64(bx, ay, by, ax)
-			if (u < 0 || v < 0 || w < 0) && (u > 0 || v > 0 || w > 0) {
+			if mixed(u, v, w) {
 				continue
 			}
 		}
@@ -165,4 +167,11 @@ func closestBlock(b *block, last int, q *query, h *Hit) {
 // cross64 is a*b - c*d of the right sign, zero only if it is.
 func cross64(a, b, c, d float32) float32 {
 	return float32(float64(a)*float64(b) - float64(c)*float64(d))
+}
+
+// mixed tells whether one of u, v, w is negative and one positive. Adding zero
+// makes -0 zero.
+func mixed(u, v, w float32) bool {
+	a, b, c := intBits(u+0), intBits(v+0), intBits(w+0)
+	return min(a, b, c)&-max(a, b, c) < 0
 }

@@ -28,15 +28,22 @@ const (
 	// wallM is the thickness up to which a closed solid is taken for a wall or
 	// a piece of furniture rather than a room modelled inside out.
 	wallM = 1.0
-	// zenithRad is the cone about the zenith whose larger part is roof in any
-	// room, half a metre from an open front too, and sky beside any wall.
-	zenithRad = 20 * math.Pi / 180
+	// zenithRad is a cone about the zenith of which close before a high wall
+	// half is sky, and 0.2 m from the open front of a room 1.6 m above the eye
+	// 0.29: its section with a plane, a disc of radius tan 20 degrees, cut
+	// at 0.2/1.6. zenithShare lies between.
+	zenithRad   = 20 * math.Pi / 180
+	zenithShare = 0.375
 	// openShare of the upper hemisphere is more than a hole in a roof shows,
 	// and less than a wall leaves.
 	openShare = 0.25
-	// backShare of the surfaces seen are backs within a solid. The rest allows
-	// for a stray face.
-	backShare = 0.9
+	// backShare of the surfaces seen are backs within a solid. The rest are
+	// fronts of another solid in the same place, where the two touch.
+	backShare = 0.75
+	// thinShare of the chords within a wall are shorter than wallM: of a slab
+	// 0.67 m thick, h/cos(theta) < 1 m holds for 1 - h = 0.33 of all
+	// directions. Near a corner of a room inside out far fewer are.
+	thinShare = 0.33
 	// seenShare of all directions must end at a surface to judge by its side.
 	seenShare = 0.25
 )
@@ -92,7 +99,7 @@ func place(w *trace.World, p r3.Vec) where {
 		return outdoors
 	case float64(v.seen) < seenShare*float64(v.looks) || float64(v.backs) < backShare*float64(v.seen):
 		return inRoom
-	case v.chordM < wallM || v.strange*2 > v.backs:
+	case float64(v.thin) >= thinShare*float64(v.chords) || v.strange*2 > v.backs:
 		return inSolid
 	}
 	return thinShell
@@ -105,11 +112,12 @@ type survey struct {
 	seen       int // opaque surfaces other than the ground
 	backs      int // of them, from behind
 	strange    int // of the backs, surroundings
-	chordM     float64
+	chords     int // pairs of opposite looks that both end at a back
+	thin       int // of them, shorter than wallM from one to the other
 }
 
 // pair looks along d and against it: between two backs lies the inside of a
-// solid, and the shortest such chord is its thickness.
+// solid.
 func (v *survey) pair(w *trace.World, p, d r3.Vec) {
 	chord, backs := 0.0, 0
 	for _, d := range [2]r3.Vec{d, r3.Scale(-1, d)} {
@@ -141,14 +149,18 @@ func (v *survey) pair(w *trace.World, p, d r3.Vec) {
 		}
 		chord, backs = chord+s.distM, backs+1
 	}
-	if backs == 2 && (v.chordM == 0 || chord < v.chordM) {
-		v.chordM = chord
+	if backs == 2 {
+		v.chords++
+		if chord < wallM {
+			v.thin++
+		}
 	}
 }
 
-// skyAbove reports whether the open sky fills most of a cone about the zenith.
+// skyAbove reports whether the open sky fills its share of a cone about the
+// zenith.
 func skyAbove(w *trace.World, p r3.Vec) bool {
-	const n = 16
+	const n = 32
 	open := 0
 	for i := range n {
 		a, b := sampling.OwenSobol2(uint32(i), 2)
@@ -156,7 +168,7 @@ func skyAbove(w *trace.World, p r3.Vec) bool {
 			open++
 		}
 	}
-	return open*2 > n
+	return float64(open) > zenithShare*n
 }
 
 // passes reports whether the surface lets light straight through: a pane has

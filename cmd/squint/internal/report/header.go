@@ -163,13 +163,12 @@ func defaultTexts(p *project.Project) []string {
 		}
 		keys[name] = append(keys[name], k.Name+" "+strings.Trim(k.Default, `"`))
 	}
-	var all []string
-	for i, name := range order {
-		s := name + ": " + strings.Join(keys[name], ", ")
-		if i == 0 {
-			s = "where the project leaves the key out; " + s
-		}
-		all = append(all, s)
+	if len(order) == 0 {
+		return nil
+	}
+	all := []string{"what holds where the project leaves a key out:"}
+	for _, name := range order {
+		all = append(all, name+": "+strings.Join(keys[name], ", "))
 	}
 	return all
 }

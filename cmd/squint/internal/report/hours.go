@@ -24,6 +24,10 @@ func (t *table) sep() {
 func (t *table) text(s string) {
 	t.sep()
 	s = plain(s)
+	// A spreadsheet would take a name that begins like this for a formula.
+	if s != "" && strings.ContainsRune("=+-@", rune(s[0])) {
+		s = "'" + s
+	}
 	if strings.ContainsAny(s, "\",") {
 		s = `"` + strings.ReplaceAll(s, `"`, `""`) + `"`
 	}
@@ -77,7 +81,7 @@ func (t *table) stamp(r *study.Result, h int) {
 	t.int(rec.Day)
 	t.sep()
 	c := clockHour(r.Calendar, h)
-	t.row = append(t.row, byte('0'+c/10), byte('0'+c%10), ":00"...)
+	t.row = append(append(t.row, byte('0'+c/10), byte('0'+c%10)), ":00"...)
 }
 
 var stampHeads = []string{"record", "month", "day", "clock"}
@@ -188,4 +192,3 @@ func writeSensorHours(w io.Writer, r *study.Result) error {
 	}
 	return t.flush(w, 0)
 }
-

@@ -3,6 +3,7 @@ package report
 import (
 	"cmp"
 	"fmt"
+	"math"
 	"slices"
 	"strings"
 
@@ -99,7 +100,7 @@ func share(x float64) string { return cell(100*x, 1) }
 
 // cell is a number in a table; a dash where there is none.
 func cell(x float64, n int) string {
-	if x != x {
+	if math.IsNaN(x) || math.IsInf(x, 0) {
 		return "-"
 	}
 	return fixed(x, n)
@@ -108,7 +109,7 @@ func cell(x float64, n int) string {
 // spread is a share with its bounds where they differ at the digit shown.
 func spread(b verdict.Bracket) string {
 	lo, mid, hi := share(b.Surely), share(b.Estimate), share(b.Possibly)
-	if lo == mid && mid == hi {
+	if lo == mid && mid == hi || lo == "-" || hi == "-" {
 		return mid
 	}
 	return fmt.Sprintf("%s, %.0f-%.0f", mid, 100*b.Surely, 100*b.Possibly)

@@ -9,6 +9,7 @@ import (
 	"charm.land/lipgloss/v2"
 
 	"squint/cmd/squint/internal/study"
+	"squint/glare"
 	"squint/glare/verdict"
 )
 
@@ -17,9 +18,9 @@ const (
 	verdictIndent = 12
 	// mostInFull is how many verdicts of one outcome are told in full; the
 	// others are named.
-	mostInFull = 4
+	mostInFull = 3
 	// mostNamed is how many are named; the others are counted.
-	mostNamed = 12
+	mostNamed = 8
 )
 
 // Terminal prints the summary of a study whose results were written to
@@ -84,10 +85,14 @@ func glareSection(p *page, r *study.Result) {
 	p.head("Glare")
 	p.para(2, criterion+".")
 	findings(p, all, "viewpoint", "viewpoints", "nearest to the limit")
+	if n := refined(r); n > 0 {
+		p.para(verdictIndent, "Hours near the limit at "+count(n, "viewpoint", "viewpoints")+" were computed again with more samples.")
+	}
 	if w := worstView(r); w != nil {
 		// Not a verdict, but the number people ask for first.
 		p.para(verdictIndent, fmt.Sprintf("The worst hour of all: %s, %s, DGP %s, %s lx at the eye%s.", w.Viewpoint.Name,
-			dateWords(clockTime(r.Calendar, w.Worst.Moment)), plusMinus(w.Worst.DGP, w.Worst.StdErr, 2), whole(w.Worst.Ev), rangeWords(w.Worst.Result.InRange)))
+			dateWords(clockTime(r.Calendar, w.Worst.Moment)), plusMinus(w.Worst.DGP, w.Worst.StdErr, 2), whole(w.Worst.Ev),
+			rangeWords(glare.InRange(w.Worst.DGP, w.Worst.Ev))))
 	}
 }
 
@@ -96,16 +101,30 @@ func rangeWords(in bool) string {
 	if in {
 		return ""
 	}
-	return " (outside the range for which DGP was established, 0.2 to 0.8)"
+	return " (outside the range of the data behind DGP, 0.2 to 0.8 and 380 lx or more)"
 }
 
-// plusMinus is a value with its standard error, which is left out where it is
-// unknown.
+// plusMinus is a value with its standard error, with so many more decimals, up
+// to four, that the error is not 0. An error that is unknown or 0 is left out.
 func plusMinus(x, se float64, n int) string {
-	if !(se >= 0) {
+	if !(se > 0) {
 		return fixed(x, n)
 	}
+	for n < 4 && strings.Trim(fixed(se, n), "0.") == "" {
+		n++
+	}
 	return fixed(x, n) + " ± " + fixed(se, n)
+}
+
+// refined counts the viewpoints that got further looks.
+func refined(r *study.Result) int {
+	n := 0
+	for i := range r.Views {
+		if r.Views[i].Refined > 0 {
+			n++
+		}
+	}
+	return n
 }
 
 func worstView(r *study.Result) *study.ViewResult {

@@ -25,6 +25,9 @@ type ViewResult struct {
 	Cause     []int16   // index into Causes, -1 where DGP is low
 	Causes    []Cause
 
+	// Refined is the number of further looks that hours near the limit got.
+	Refined int
+
 	Worst *Worst // nil where no hour in use has daylight
 
 	// Levels holds the verdict of every EN 17037 level; Asked is the level
@@ -296,18 +299,14 @@ func (g *glareSink) causeOfDisc(e *coeff.Eye, f *annual.Frame, source *glare.Sou
 // judgeViews brackets each view's hours over the limits.
 func (r *Result) judgeViews(y *year) {
 	r.Views = y.glare.views
-	z := verdict.T(confidence, max(len(r.Views), 1), max(r.Project.Simulation.Batches-1, 1))
+	z := r.zViews()
 	r.Settings.ZViews = z
 	for i := range r.Views {
 		v := &r.Views[i]
 		v.sortCauses()
 		v.Asked = -1
-		dgp, se := make([]float32, len(r.Occupied)), make([]float32, len(r.Occupied))
-		for k, h := range r.Occupied {
-			dgp[k], se[k] = v.DGP[h], v.StdErr[h]
-		}
 		for k, l := range verdict.ProtectionLevels {
-			hours := verdict.CountGlare(dgp, se, l.DGP, z)
+			hours := r.glareHours(v, l.DGP, z)
 			when := v.when(r, l.DGP)
 			out := verdict.Glare(fmt.Sprintf("%s, looking %s", v.Viewpoint.Name, r.bearing(v.Viewpoint.Direction)), l, hours, when)
 			v.Hours = append(v.Hours, hours)

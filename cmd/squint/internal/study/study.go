@@ -32,6 +32,7 @@ const (
 	StageSurfaces Stage = "linking the surfaces"
 	StageSensors  Stage = "gathering at the sensors"
 	StageYear     Stage = "the year"
+	StageAgain    Stage = "a closer look at close hours"
 )
 
 // Result is a finished study.
@@ -165,6 +166,9 @@ func Run(ctx context.Context, in *Input, opt Options) (*Result, error) {
 	}
 	y, err := computeYear(ctx, in, opt, r)
 	if err != nil {
+		return nil, err
+	}
+	if err := r.refine(ctx, in, opt, y); err != nil {
 		return nil, err
 	}
 	r.judgeViews(y)

@@ -1,0 +1,128 @@
+package study
+
+import (
+	"context"
+	"fmt"
+
+	"squint/glare/verdict"
+	"squint/materials/sampling"
+)
+
+// refineRounds is the number of times that what is undecided is looked at
+// again, each time with refineFactor times the samples (half the error).
+// After that a verdict stays undecided. The looks are paid for in z.
+const (
+	refineRounds = 2
+	refineFactor = 4
+)
+
+// refine computes anew, with more samples, the hours that leave a view's
+// verdict open: those whose DGP lies within z standard errors of the asked
+// limit. The first look only chooses the hours and is thrown away for them,
+// since a running estimate that decides where to sample more biases the mean.
+func (r *Result) refine(ctx context.Context, in *Input, opt Options, y *year) error {
+	level, ok := verdict.ProtectionByName(in.Project.Criteria.Glare)
+	if !ok {
+		return nil
+	}
+	z := r.zViews()
+	again := opt
+	again.Progress = func(s Stage, done, total int) {
+		if s == StageYear {
+			opt.Progress(StageAgain, done, total)
+		}
+	}
+	factor := 1
+	for round := 1; round <= refineRounds; round++ {
+		factor *= refineFactor
+		var views []int
+		open := map[int]bool{} // records
+		for i := range y.glare.views {
+			v := &y.glare.views[i]
+			hours := r.openHours(v, level.DGP, z)
+			if verdict.AtMost(r.glareHours(v, level.DGP, z).Share, level.TimeShare) != verdict.Undecided {
+				continue
+			}
+			views = append(views, i)
+			for _, h := range hours {
+				open[h] = true
+			}
+		}
+		if len(views) == 0 || len(open) == 0 {
+			return nil
+		}
+		sub := subset(in, views, open, factor, round)
+		closer, err := computeYear(ctx, sub, again, &Result{})
+		if err != nil {
+			return err
+		}
+		for k, i := range views {
+			to, from := &y.glare.views[i], &closer.glare.views[k]
+			for _, h := range r.openHours(to, level.DGP, z) {
+				to.DGP[h], to.StdErr[h], to.Ev[h], to.InRange[h] = from.DGP[h], from.StdErr[h], from.Ev[h], from.InRange[h]
+			}
+			to.Refined = round
+		}
+		r.Notes = append(r.Notes, fmt.Sprintf("look %d: %d hours of %d viewpoints lay too near the limit and were computed again with %d times the samples.", round+1, len(open), len(views), factor))
+	}
+	return nil
+}
+
+// openHours are the hours in use whose DGP may lie on either side of limit.
+func (r *Result) openHours(v *ViewResult, limit, z float64) []int {
+	var out []int
+	for _, h := range r.Occupied {
+		d, e := float64(v.DGP[h]), z*float64(v.StdErr[h])
+		if d-e <= limit && d+e > limit {
+			out = append(out, h)
+		}
+	}
+	return out
+}
+
+// subset is the input reduced to some views and hours, with more samples and
+// streams of its own.
+func subset(in *Input, views []int, open map[int]bool, factor, round int) *Input {
+	sub := *in
+	p := *in.Project
+	p.Simulation.SamplesPerPixel *= factor
+	p.Simulation.TexelSamples *= factor
+	seed := sampling.Stream3(p.Simulation.Seed, streamRefine, uint64(round))
+	p.Simulation.Seed = seed.Uint64()
+	sub.Project = &p
+	s := *in.Scene
+	s.Viewpoints = nil
+	for _, i := range views {
+		s.Viewpoints = append(s.Viewpoints, in.Scene.Viewpoints[i])
+	}
+	s.WorkPlanes = nil
+	sub.Scene = &s
+	c := *in.Climate
+	c.Moments = nil
+	for _, m := range in.Climate.Moments {
+		if open[m.Hour] {
+			c.Moments = append(c.Moments, m)
+		}
+	}
+	sub.Climate = &c
+	return &sub
+}
+
+// streamRefine keeps the seeds of further looks apart from the project's.
+const streamRefine = 31
+
+// zViews is the number of standard errors by which a view's hours are
+// bracketed: all views and all looks together at the confidence.
+func (r *Result) zViews() float64 {
+	looks := len(r.Scene.Viewpoints) * (1 + refineRounds)
+	return verdict.T(confidence, max(looks, 1), max(r.Project.Simulation.Batches-1, 1))
+}
+
+// glareHours counts a view's hours in use over a limit.
+func (r *Result) glareHours(v *ViewResult, limit, z float64) verdict.GlareHours {
+	dgp, se := make([]float32, len(r.Occupied)), make([]float32, len(r.Occupied))
+	for k, h := range r.Occupied {
+		dgp[k], se[k] = v.DGP[h], v.StdErr[h]
+	}
+	return verdict.CountGlare(dgp, se, limit, z)
+}
