@@ -173,9 +173,12 @@ func (b *builder) readMesh(def *project.Mesh) (*mesh.Mesh, error) {
 func (b *builder) addMesh(pm *placed) {
 	m, def := pm.m, pm.def
 	byName := map[string]string{}
+	meant := map[string]bool{} // what a mistyped name probably stands for
 	for _, a := range def.Finishes {
 		if m.GroupIndex(a.Name) < 0 && m.MaterialIndex(a.Name) < 0 {
-			hint := didYouMean(a.Name, append(append([]string{}, m.Groups...), m.Materials...))
+			known := append(append([]string{}, m.Groups...), m.Materials...)
+			hint := didYouMean(a.Name, known)
+			meant[project.Suggest(a.Name, known)] = true
 			missing := ""
 			if m.MissingMTL != "" {
 				missing = fmt.Sprintf("; the material library %s that the mesh names is not there", m.MissingMTL)
@@ -214,6 +217,9 @@ func (b *builder) addMesh(pm *placed) {
 		}
 		if !ok {
 			name, ok = def.Finish, def.Finish != ""
+		}
+		if !ok && (meant[group] || (material != "" && meant[material])) {
+			continue // one message for one slip
 		}
 		if !ok {
 			label := group

@@ -65,7 +65,7 @@ func TestBuildErrors(t *testing.T) {
 		want         []string
 	}{
 		{"unknown group", bare + "finish = \"white\"\n[mesh.finishes]\nflor = \"grey\"\n", files,
-			[]string{`p.toml:25: mesh.finishes: room.obj has no group or material "flor"; did you mean "floor"?; it has groups "floor", "ceiling", "walls" and materials "carpet", "plaster"`}},
+			[]string{`p.toml:25: mesh.finishes: room.obj has no group or material "flor" (did you mean "floor"?); it has groups "floor", "ceiling", "walls" and materials "carpet", "plaster"`}},
 		{"no finish", bare + "[mesh.finishes]\nfloor = \"grey\"\n", files,
 			[]string{`p.toml:19: mesh.finishes: room.obj: no finish for ceiling (material plaster), walls (material plaster); name these groups or materials under [mesh.finishes], or give the mesh one finish; the project has finishes "white", "grey", "clear"`}},
 		{"library not there", bare + "[mesh.finishes]\nwood = \"grey\"\n", map[string]string{"room.obj": "mtllib lost.mtl\n" + files["room.obj"]},

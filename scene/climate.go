@@ -1,6 +1,7 @@
 package scene
 
 import (
+	"errors"
 	"fmt"
 	"io/fs"
 	"math"
@@ -56,6 +57,9 @@ const minSkyLx = 10
 // which viewpoints are judged; it may be nil.
 func ReadClimate(fsys fs.FS, p *project.Project, occupied []bool) (*Climate, error) {
 	y, err := weather.Read(fsys, p.Weather.File)
+	if errors.Is(err, fs.ErrNotExist) {
+		return nil, fmt.Errorf("%s: weather.file: %s is not there; paths count from the project file's folder", p.File, p.Weather.File)
+	}
 	if err != nil {
 		return nil, err
 	}

@@ -118,10 +118,11 @@ func (b *builder) addReceivers() {
 
 func vec(a [3]float64) r3.Vec { return r3.Vec{X: a[0], Y: a[1], Z: a[2]} }
 
-// didYouMean is the ending of a message that lists the known names itself.
+// didYouMean goes after an unknown name in a message that lists the known
+// names itself.
 func didYouMean(unknown string, known []string) string {
 	if s := project.Suggest(unknown, known); s != "" {
-		return fmt.Sprintf("; did you mean %q?", s)
+		return fmt.Sprintf(" (did you mean %q?)", s)
 	}
 	return ""
 }

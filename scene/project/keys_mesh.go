@@ -1,7 +1,7 @@
 package project
 
 var meshKeys = []key[Mesh]{
-	{spec{name: "file", about: "STL, OBJ or glTF file, relative to this file's folder", required: true, form: filePath}, func(m *Mesh) any { return &m.File }},
+	{spec{name: "file", about: "STL or OBJ file, relative to this file's folder", required: true, form: filePath}, func(m *Mesh) any { return &m.File }},
 	{spec{name: "unit", about: "length unit of the file, which does not say it", required: true, choices: []string{"m", "cm", "mm", "ft", "in"}}, func(m *Mesh) any { return &m.Unit }},
 	{spec{name: "up", about: "the file's upward axis", required: true, choices: []string{"y", "z"}}, func(m *Mesh) any { return &m.Up }},
 	{spec{name: "role", about: "what the mesh is", choices: []string{"room", "surroundings"}, def: `"room"`, source: own}, func(m *Mesh) any { return &m.Role }},

@@ -4,7 +4,7 @@ package bvh
 // the former; measured with the assembly kernel.
 const (
 	nodeCost  = 1
-	blockCost = 1.2
+	blockCost = 0.7
 )
 
 // plan holds the cheapest ways to make a subtree of the binary tree into at

@@ -11,13 +11,15 @@
 //
 // Edges and vertices belong to the triangles: a ray through the common edge of
 // two triangles with bit-equal vertices meets at least one of them. So no ray
-// leaves a closed surface whose triangles share their vertices.
+// leaves a closed surface whose triangles share their vertices, if it starts
+// inside. For a ray that starts on a triangle T is zero but for rounding, and
+// the triangle is met or not.
 //
 // Of triangles at the same T the one with the lowest index is reported. The
 // answer is the one that testing every triangle in turn gives, in every bit.
-// The only exception are triangles seen so nearly edge-on that rounding puts
-// their T outside their own box by more than [Tree]'s boxes are held wider, one
-// millionth of the largest coordinate.
+// The exceptions are triangles without area or seen so nearly edge-on that
+// rounding puts their T outside their own box: about one ray in a million on
+// sets made to provoke it.
 //
 // # Method
 //

@@ -123,6 +123,7 @@ func Prepare(fsys fs.FS, name string, workers int) (*Input, error) {
 	if len(errs) > 0 {
 		return nil, errors.Join(errs...)
 	}
+	notes = append(notes, soundness.Openings(in.World)...)
 	in.Notes = append(append(append(in.Notes, s.Notes...), c.Notes...), notes...)
 	return in, nil
 }
