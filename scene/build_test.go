@@ -83,7 +83,7 @@ func TestBuildErrors(t *testing.T) {
 		{"glazing beyond glass", "[[finish]]\nname = \"ice\"\ntype = \"glazing\"\ntransmittance = 0.99\n\n" + bare + "finish = \"white\"\n", files,
 			[]string{`p.toml:19: finish "ice": transmittance: got 0.99`}},
 		{"opening of an unknown group", bare + "finish = \"white\"\n\n[[opening]]\nname = \"w\"\nmesh_group = \"wall\"\n", files,
-			[]string{`p.toml:25: opening "w": mesh_group: no mesh has a group "wall"; did you mean "walls"?; there are "floor", "ceiling", "walls"`}},
+			[]string{`p.toml:25: opening "w": mesh_group: no mesh has a group "wall" (did you mean "walls"?); there are "floor", "ceiling", "walls"`}},
 		{"opening of a group that is no rectangle", bare + "finish = \"white\"\n\n[[opening]]\nname = \"w\"\nmesh_group = \"walls\"\noutward_deg = 180\n", files,
 			[]string{`p.toml:25: opening "w": not plane`}},
 		{"opening of opaque glass", bare + "finish = \"white\"\n\n[[opening]]\nname = \"w\"\nmesh_group = \"glass\"\noutward_deg = 180\n", roomWithGlass().files(),

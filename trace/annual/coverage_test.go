@@ -61,6 +61,9 @@ func TestBatchErrorsCover(t *testing.T) {
 	}
 	w, sensors := office(t, .4)
 	moments := officeMoments(t, 6)
+	if testing.Short() {
+		moments = moments[:3]
+	}
 	est := make([][][]estimate, seeds)
 	for s := range est {
 		est[s] = year(t, w, sensors, moments, effort{batches: 8, texelSamples: 64, sensorSamples: 512, seed: uint64(s)})

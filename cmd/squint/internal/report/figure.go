@@ -101,7 +101,7 @@ func sourcesText(g glare.Result) string {
 		if s.Disc {
 			what = "the sun or its image, " + what
 		}
-		parts = append(parts, fmt.Sprintf("%d %s (%s of the sum over sources)", i+1, what, part(s.Contribution/g.SourceSum)))
+		parts = append(parts, fmt.Sprintf("no. %d: %s (%s of the sum over sources)", i+1, what, part(s.Contribution/g.SourceSum)))
 	}
 	text := "Outlined: sources of glare above " + whole(math.Round(g.ThresholdCdM2)) + " cd/m². " + strings.Join(parts, "; ") + "."
 	if n := len(g.Sources); n > mostMarked {
