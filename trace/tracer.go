@@ -52,6 +52,9 @@ func (t *Tracer) follow(org, dir r3.Vec, scale, throughput float64, depth, split
 		x := t.stack[depth].Exits[i]
 		t.exit(x.Dir, scale*x.Weight, out)
 	}
+	for i := range t.stack[depth].Shines {
+		t.shine(t.stack[depth].Shines[i], scale, s, out)
+	}
 	for i := range t.stack[depth].Landings {
 		t.land(t.stack[depth].Landings[i], scale, throughput, depth, s, out)
 	}
@@ -59,7 +62,7 @@ func (t *Tracer) follow(org, dir r3.Vec, scale, throughput float64, depth, split
 
 func (t *Tracer) exit(dir r3.Vec, scale float64, out []float64) {
 	sc := t.world.Scene
-	hidden := dir.Z <= 0 || (sc.HasHorizon && sc.Horizon.Hides(dir))
+	hidden := t.hidden(dir)
 	for k, m := range t.moments {
 		if hidden {
 			out[k] += scale * sc.GroundReflectance[m.Month] * m.GlobalLx / math.Pi
@@ -108,16 +111,38 @@ func (t *Tracer) land(l Landing, scale, throughput float64, depth int, s *sampli
 	}
 }
 
+// shine adds what a glossy surface shows of the sun.
+func (t *Tracer) shine(x Shine, scale float64, s *sampling.Stream, out []float64) {
+	g := x.Hit.BSDF.Gloss(x.Hit.Side)
+	facing := x.Hit.Facing()
+	p := t.world.Offset(x.Hit.Point, facing)
+	for k, m := range t.moments {
+		if m.SunNormalLx <= 0 {
+			continue
+		}
+		dir := ConeDirection(m.Sun, photometry.SunDiameterRad/2, s.Float64(), s.Float64())
+		f := Shining(g, facing, x.Wo, dir)
+		if f <= 0 || t.hidden(dir) {
+			continue
+		}
+		out[k] += scale * x.Weight * f * m.SunNormalLx * t.world.Transmittance(p, dir, math.Inf(1))
+	}
+}
+
+func (t *Tracer) hidden(dir r3.Vec) bool {
+	sc := t.world.Scene
+	return dir.Z <= 0 || (sc.HasHorizon && sc.Horizon.Hides(dir))
+}
+
 // sun adds weight times the direct sun on the plane n at p, one ray a moment.
 func (t *Tracer) sun(p, n r3.Vec, weight float64, s *sampling.Stream, out []float64) {
-	sc := t.world.Scene
 	for k, m := range t.moments {
 		if m.SunNormalLx <= 0 || r3.Dot(n, m.Sun) <= -0.01 {
 			continue
 		}
 		dir := ConeDirection(m.Sun, photometry.SunDiameterRad/2, s.Float64(), s.Float64())
 		cos := r3.Dot(n, dir)
-		if cos <= 0 || dir.Z <= 0 || (sc.HasHorizon && sc.Horizon.Hides(dir)) {
+		if cos <= 0 || t.hidden(dir) {
 			continue
 		}
 		if tr := t.world.Transmittance(p, dir, math.Inf(1)); tr > 0 {

@@ -29,14 +29,27 @@ type Exit struct {
 	Mirrored bool
 }
 
+// Shine is a glossy surface met by a path. The path goes on along the lobe to
+// whatever it finds but the sun's disc, which is too small to be met by chance:
+// what the lobe shows of the sun is for the caller to add, see Shining.
+// Weight is as in Landing; Wo points back along the path.
+type Shine struct {
+	Hit    Hit
+	Wo     r3.Vec
+	Weight float64
+}
+
 // Found collects what one or more paths met. Reset before reuse.
 type Found struct {
 	Landings []Landing
 	Exits    []Exit
+	Shines   []Shine
 }
 
 // Reset empties f and keeps its memory.
-func (f *Found) Reset() { f.Landings, f.Exits = f.Landings[:0], f.Exits[:0] }
+func (f *Found) Reset() {
+	f.Landings, f.Exits, f.Shines = f.Landings[:0], f.Exits[:0], f.Shines[:0]
+}
 
 // maxSpecular ends chains between facing mirrors; by then roulette has
 // reduced their weight to nothing unless a mirror reflects everything.
@@ -66,6 +79,7 @@ func (w *World) walk(org, dir r3.Vec, weight float64, split, depth int, via int3
 		mirror, through := h.BSDF.Delta(h.Side, h.Cos)
 		facing := h.Facing()
 		if g := h.BSDF.Gloss(h.Side); g != nil {
+			out.Shines = append(out.Shines, Shine{Hit: h, Wo: r3.Scale(-1, dir), Weight: weight})
 			// A glossy lobe is followed like a mirror, one sample of it.
 			if next, share, ok := glossBounce(g, facing, dir, s); ok && weight*share > 0 {
 				if mirror+through <= 0 {
@@ -149,6 +163,19 @@ func glossBounce(g *materials.Gloss, facing, dir r3.Vec, s *sampling.Stream) (ne
 		return r3.Vec{}, 0, false
 	}
 	return r3.Unit(frame.ToWorld(wi)), g.Eval(wo, wi) * wi.Z / pdf, true
+}
+
+// Shining is the luminance per unit of normal illuminance that a glossy lobe
+// shows of a sun in unit direction sun, in 1/sr: BSDF times cosine. facing is
+// the unit normal on the viewer's side, wo points to the viewer. Shadows and
+// panes between surface and sun are not in it.
+func Shining(g *materials.Gloss, facing, wo, sun r3.Vec) float64 {
+	frame := materials.NewFrame(facing)
+	wi := frame.ToLocal(sun)
+	if wi.Z <= 0 {
+		return 0
+	}
+	return g.Eval(frame.ToLocal(wo), wi) * wi.Z
 }
 
 // CosineDirection draws a direction around unit n with density cos/pi.

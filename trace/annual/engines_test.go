@@ -88,7 +88,7 @@ func prepare(t testing.TB, w *trace.World, sensors []scene.Sensor, views []scene
 		rec.Eyes = append(rec.Eyes, e)
 	}
 	for i, sn := range sensors {
-		g := coeff.TraceSensor(tr, sn, i, f.sensorSamples, f.seed, rec.Fine, &found)
+		g, _ := coeff.TraceSensor(tr, sn, i, f.sensorSamples, f.seed, rec.Fine, &found)
 		for b := range g {
 			for _, l := range g[b].Links {
 				tr.Activate([]int32{l.Side})

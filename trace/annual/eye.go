@@ -102,6 +102,9 @@ func (w *worker) render(bl *surface.Block, e *coeff.Eye, eye, batch int, lit []u
 				row[h] += x.Weight * float32(m.Sky.Luminance(x.Dir))
 			}
 		}
+		for _, x := range eb.ShinesOf(p) {
+			w.shine(bl, &x, &random, &row)
+		}
 		if g := eb.Below[p]; g > 0 {
 			surface.AddScaled(&row, &bl.Below, g)
 		}
@@ -129,6 +132,25 @@ func (w *worker) sunlit(bl *surface.Block, sf *coeff.SurfaceSample, weight float
 			row[h] += v
 			lit[h] += v
 		}
+	}
+}
+
+// shine adds the sun as one glossy sample shows it.
+func (w *worker) shine(bl *surface.Block, x *coeff.ShineSample, random *[surface.Width]sampling.Stream, row *surface.Row) {
+	for h := range bl.Sun {
+		rays := &bl.Sun[h]
+		if rays.NormalLx <= 0 {
+			continue
+		}
+		dir, ok := rays.Draw(random[h].Uint64())
+		if !ok {
+			continue
+		}
+		f := float64(x.Weight) * rays.NormalLx * trace.Shining(x.Gloss, x.Facing, x.Wo, dir)
+		if f <= 0 {
+			continue
+		}
+		row[h] += float32(f * w.t.World.Transmittance(x.Point, dir, math.Inf(1)))
 	}
 }
 

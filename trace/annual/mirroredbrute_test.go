@@ -248,12 +248,12 @@ func inParallel(n int, work func(i int)) {
 	wg.Wait()
 }
 
-// richardson extrapolates values of two discs, the second half as wide as the
-// first, to a disc of the sun's size: the error of a widened disc is of second
-// order. Source: Richardson 1911, The approximate arithmetical solution by
+// richardson extrapolates values of two discs, the second with half the radius
+// of the first, to a disc of another radius: the error of a widened disc is of
+// second order. Source: Richardson 1911, The approximate arithmetical solution by
 // finite differences, Phil. Trans. Royal Society A 210.
-func richardson(wide, narrow, narrowRadius float64) float64 {
-	r := photometry.SunDiameterRad / 2 / narrowRadius
+func richardson(wide, narrow, narrowRadius, radius float64) float64 {
+	r := radius / narrowRadius
 	return narrow + (narrow-wide)*(1-r*r)/3
 }
 

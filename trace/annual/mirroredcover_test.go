@@ -19,9 +19,9 @@ import (
 // Standard errors 0.4 times as large must be rejected.
 func TestMirroredErrorsCover(t *testing.T) {
 	const runs = 100
-	others := 300
+	others := 150
 	if testing.Short() {
-		others = 50
+		others = 40
 	}
 	if lo, hi := binomialQuantile(runs, .95, .005), binomialQuantile(runs, .95, .99); lo < 88 || lo > 90 || hi < 98 || hi > 100 {
 		t.Errorf("quantiles of the binomial: %d and %d, want about 89 and 99", lo, hi)

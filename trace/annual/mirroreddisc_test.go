@@ -113,8 +113,8 @@ func TestMirroredDiscCurved(t *testing.T) {
 		{"parabola, 1.2 m", parabolaProfile(.08, deg(.1)), 1.2, 2.6},
 		{"parabola, 1.6 m", parabolaProfile(.08, deg(.1)), 1.6, 2.6},
 		{"flat parabola, enlarged", parabolaProfile(.02, deg(.05)), .7, 2.5},
-		{"parabola, near its focus", parabolaProfile(.04, deg(.1)), .97, 2.64},
-		{"parabola, nearer its focus", parabolaProfile(.04, deg(.1)), 1.1, 2.75},
+		{"parabola, near its focus", parabolaProfile(.04, deg(.1)), .755, 2.656},
+		{"parabola, nearer its focus", parabolaProfile(.04, deg(.1)), .868, 2.754},
 	} {
 		w, shelf := whiteRoom(t, .5, c.p)
 		vp := scene.Viewpoint{Position: r3.Vec{X: 1.8, Y: c.y, Z: c.z}, Direction: r3.Unit(r3.Vec{Y: -1, Z: -.5})}

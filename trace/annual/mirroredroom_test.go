@@ -114,7 +114,7 @@ func runSensors(t testing.TB, s *scene.Scene, moments []*scene.Moment, cfg surfa
 	var found trace.Found
 	var all [][]surface.Gathered
 	for i, sn := range rec.Sensors {
-		g := coeff.TraceSensor(tr, sn, i, samples, cfg.Seed, rec.Fine, &found)
+		g, _ := coeff.TraceSensor(tr, sn, i, samples, cfg.Seed, rec.Fine, &found)
 		for b := range g {
 			for _, l := range g[b].Links {
 				tr.Activate([]int32{l.Side})

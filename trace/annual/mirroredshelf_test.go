@@ -11,6 +11,7 @@ import (
 	"squint/materials"
 	"squint/scene"
 	"squint/scene/sky"
+	"squint/scene/view"
 	"squint/trace"
 	"squint/trace/annual"
 	"squint/trace/coeff"
@@ -115,7 +116,7 @@ func newShelfEngine(t testing.TB, w *trace.World, sensors []scene.Sensor, views 
 	var found trace.Found
 	var rows [][]surface.Gathered
 	for i, sn := range sensors {
-		g := coeff.TraceSensor(tr, sn, i, samples, cfg.Seed, rec.Fine, &found)
+		g, _ := coeff.TraceSensor(tr, sn, i, samples, cfg.Seed, rec.Fine, &found)
 		for b := range g {
 			for _, l := range g[b].Links {
 				tr.Activate([]int32{l.Side})
@@ -164,25 +165,33 @@ func (e shelfEngine) run(t testing.TB, m *scene.Moment) (*annual.Daylight, []pic
 	return d, out
 }
 
-// dgp is that of the pooled picture, its standard error the jackknife over the
-// batches. Source: Tukey 1958, Bias and confidence in not quite large samples,
-// Ann. Math. Statist. 29.
-func (p picture) dgp(f *glare.Field, local func(r3.Vec) r3.Vec) (dgp, ev, stdErr float64) {
+// glimpse is what a picture means to the eye.
+type glimpse struct{ dgp, dgpErr, ev, evErr float64 }
+
+// see evaluates the pooled picture; errors are the jackknife over the batches,
+// and DGP is corrected by it for the bias that noise in bright pixels causes.
+// Source: Tukey 1958, Bias and confidence in not quite large samples, Ann. Math.
+// Statist. 29; Quenouille 1956, Notes on bias in estimation, Biometrika 43.
+func (p picture) see(f *glare.Field, v view.View) glimpse {
 	var discs []glare.Disc
 	for _, d := range p.discs {
-		discs = append(discs, glare.Disc{Dir: local(d.Dir), OmegaSr: d.OmegaSr, Luminance: d.Luminance})
+		discs = append(discs, glare.Disc{Dir: v.Local(d.Dir), OmegaSr: d.OmegaSr, Luminance: d.Luminance})
 	}
 	var s glare.Scratch
-	dgp, ev = glare.DGPOnly(f, p.mean, discs, glare.Options{}, &s)
+	var out glimpse
+	out.dgp, out.ev = glare.DGPOnly(f, p.mean, discs, glare.Options{}, &s)
 	n := float32(len(p.batch))
 	rest := make([]float32, len(p.mean))
-	var a tally
-	for _, b := range p.batch {
+	var a, b tally
+	for _, img := range p.batch {
 		for i := range rest {
-			rest[i] = max(0, (n*p.mean[i]-b[i])/(n-1))
+			rest[i] = max(0, (n*p.mean[i]-img[i])/(n-1))
 		}
-		x, _ := glare.DGPOnly(f, rest, discs, glare.Options{}, &s)
+		x, y := glare.DGPOnly(f, rest, discs, glare.Options{}, &s)
 		a.add(x)
+		b.add(y)
 	}
-	return dgp, ev, a.stdErr() * float64(n-1)
+	out.dgpErr, out.evErr = a.stdErr()*float64(n-1), b.stdErr()*float64(n-1)
+	out.dgp += float64(n-1) * (out.dgp - a.mean())
+	return out
 }

@@ -50,6 +50,9 @@ type Receivers struct {
 	Sensors []scene.Sensor
 	Rows    []surface.Rows // by batch, one receiver per sensor
 	Fine    *sky.Patches   // the patches of Rows
+	// Shines holds by sensor and batch the glossy surfaces that its rays met;
+	// nil where there are none.
+	Shines [][][]coeff.ShineSample
 }
 
 // Daylight is the sensors' year: [sensor][moment], lx.

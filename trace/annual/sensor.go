@@ -11,8 +11,9 @@ import (
 
 // Random streams of this package.
 const (
-	streamSensorSun = 21
-	streamEyeSun    = 22
+	streamSensorSun   = 21
+	streamEyeSun      = 22
+	streamSensorShine = 23
 )
 
 // sensors reads every sensor against the solved block.
@@ -30,6 +31,9 @@ func (w *worker) sensors(bl *surface.Block, b block, d *Daylight) {
 					e[h] += sun
 					direct[h] += sun
 				}
+			}
+			if w.r.Shines != nil {
+				w.sensorShine(bl, i, batch, &e)
 			}
 			for h := range e {
 				e[h] += images[h]
@@ -67,6 +71,21 @@ func (w *worker) imagesOn(bl *surface.Block, i int) (e surface.Row) {
 		}
 	}
 	return e
+}
+
+// sensorShine adds the sun that glossy surfaces throw on sensor i.
+func (w *worker) sensorShine(bl *surface.Block, i, batch int, e *surface.Row) {
+	shines := w.r.Shines[i][batch]
+	if len(shines) == 0 {
+		return
+	}
+	var random [surface.Width]sampling.Stream
+	for h, m := range bl.Moments {
+		random[h] = sampling.NewStream(w.cfg.Seed, streamSensorShine, uint64(i), uint64(m.Hour), uint64(batch))
+	}
+	for k := range shines {
+		w.shine(bl, &shines[k], &random, e)
+	}
 }
 
 // sunOn samples the direct sun at p on a plane with unit normal n by one ray

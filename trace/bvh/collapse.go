@@ -1,7 +1,8 @@
 package bvh
 
-// Costs of visiting a node and of testing a block of triangles, in units of
-// the former; measured with the assembly kernel.
+// Costs of visiting a node and of testing a block of triangles. Rooms of up to
+// 100,000 triangles are traced as fast at 0.5 to 1.2, one of a million faster
+// below 0.9, for it has fewer blocks to fetch (BenchmarkClosest, BenchmarkOccluded).
 const (
 	nodeCost  = 1
 	blockCost = 0.7

@@ -46,6 +46,8 @@ type EyeBatch struct {
 	Surfaces     []SurfaceSample
 	exitStart    []int32
 	Exits        []ExitSample
+	shineStart   []int32
+	Shines       []ShineSample
 	Below        []float32 // by pixel: weight of the endless ground
 }
 
@@ -58,6 +60,27 @@ type SurfaceSample struct {
 	Point  [3]float32
 	Normal [3]float32
 	Ground bool
+}
+
+// ShineSample is a point on a glossy surface, which shows the sun as far as
+// its lobe is wide.
+type ShineSample struct {
+	Point, Facing, Wo r3.Vec
+	Gloss             *materials.Gloss
+	Weight            float32
+}
+
+// Shines turns the glossy surfaces that paths met into samples.
+func Shines(w *trace.World, f *trace.Found, scale float64, out []ShineSample) []ShineSample {
+	for i := range f.Shines {
+		x := &f.Shines[i]
+		facing := x.Hit.Facing()
+		out = append(out, ShineSample{
+			Point: w.Offset(x.Hit.Point, facing), Facing: facing, Wo: x.Wo,
+			Gloss: x.Hit.BSDF.Gloss(x.Hit.Side), Weight: float32(x.Weight * scale),
+		})
+	}
+	return out
 }
 
 // ExitSample is a direction to the sky.
@@ -110,6 +133,7 @@ func TraceEye(t *surface.Transport, v scene.Viewpoint, index int, cfg EyeConfig)
 		eb := &e.Batches[b]
 		eb.surfaceStart = []int32{0}
 		eb.exitStart = []int32{0}
+		eb.shineStart = []int32{0}
 		eb.Below = make([]float32, len(e.Inside))
 		for p, px := range e.Inside {
 			// One scrambled sequence a pixel, its points dealt out to the batches.
@@ -129,7 +153,9 @@ func TraceEye(t *surface.Transport, v scene.Viewpoint, index int, cfg EyeConfig)
 			}
 			if n > 0 {
 				e.add(t, b, p, &found, 1/float64(n))
+				eb.Shines = Shines(t.World, &found, 1/float64(n), eb.Shines)
 			}
+			eb.shineStart = append(eb.shineStart, int32(len(eb.Shines)))
 			eb.surfaceStart = append(eb.surfaceStart, int32(len(eb.Surfaces)))
 			eb.exitStart = append(eb.exitStart, int32(len(eb.Exits)))
 		}
@@ -222,6 +248,11 @@ func (b *EyeBatch) SurfacesOf(p int) []SurfaceSample {
 // ExitsOf are the sky samples of pixel p.
 func (b *EyeBatch) ExitsOf(p int) []ExitSample {
 	return b.Exits[b.exitStart[p]:b.exitStart[p+1]]
+}
+
+// ShinesOf are the glossy samples of pixel p.
+func (b *EyeBatch) ShinesOf(p int) []ShineSample {
+	return b.Shines[b.shineStart[p]:b.shineStart[p+1]]
 }
 
 func f32(v r3.Vec) [3]float32 { return [3]float32{float32(v.X), float32(v.Y), float32(v.Z)} }

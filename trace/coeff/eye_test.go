@@ -110,7 +110,7 @@ func TestSensorWeights(t *testing.T) {
 	tr.Config.Batches = 256
 	patches := sky.NewPatches(1)
 	var found trace.Found
-	g := TraceSensor(tr, scene.Sensor{Position: r3.Vec{}, Normal: r3.Vec{Z: 1}}, 0, 256*256, 1, patches, &found)
+	g, _ := TraceSensor(tr, scene.Sensor{Position: r3.Vec{}, Normal: r3.Vec{Z: 1}}, 0, 256*256, 1, patches, &found)
 	sum, square := make([]float64, patches.Count()), make([]float64, patches.Count())
 	var total float64
 	for b := range g {
@@ -151,7 +151,7 @@ func TestLookingDown(t *testing.T) {
 	tr := open(t, -1, .5)
 	tr.Config.Batches = 256
 	var found trace.Found
-	g := TraceSensor(tr, scene.Sensor{Normal: r3.Vec{Z: -1}}, 0, 256*256, 2, sky.NewPatches(1), &found)
+	g, _ := TraceSensor(tr, scene.Sensor{Normal: r3.Vec{Z: -1}}, 0, 256*256, 2, sky.NewPatches(1), &found)
 	var sum, square, below float64
 	for b := range g {
 		var w float64

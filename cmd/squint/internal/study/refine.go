@@ -58,14 +58,35 @@ func (r *Result) refine(ctx context.Context, in *Input, opt Options, y *year) er
 		}
 		for k, i := range views {
 			to, from := &y.glare.views[i], &closer.glare.views[k]
-			for _, h := range r.openHours(to, level.DGP, z) {
+			hours := r.openHours(to, level.DGP, z)
+			for _, h := range hours {
 				to.DGP[h], to.StdErr[h], to.Ev[h], to.InRange[h] = from.DGP[h], from.StdErr[h], from.Ev[h], from.InRange[h]
 			}
 			to.Refined = round
+			to.lookCloser(from)
 		}
-		r.Notes = append(r.Notes, fmt.Sprintf("look %d: %d hours of %d viewpoints lay too near the limit and were computed again with %d times the samples.", round+1, len(open), len(views), factor))
+		r.Notes = append(r.Notes, fmt.Sprintf("look %d: %s of %s lay too near the limit and were computed again with %d times the samples.", round+1, count(len(open), "hour"), count(len(views), "viewpoint"), factor))
 	}
 	return nil
+}
+
+// lookCloser keeps the worst hour true to the series after some hours were
+// computed again.
+func (v *ViewResult) lookCloser(again *ViewResult) {
+	if v.Worst != nil {
+		h := v.Worst.Moment.Hour
+		v.Worst.DGP, v.Worst.StdErr, v.Worst.Ev = float64(v.DGP[h]), float64(v.StdErr[h]), float64(v.Ev[h])
+	}
+	if again.Worst != nil && (v.Worst == nil || again.Worst.DGP >= v.Worst.DGP) {
+		v.Worst = again.Worst
+	}
+}
+
+func count(n int, what string) string {
+	if n == 1 {
+		return "1 " + what
+	}
+	return fmt.Sprintf("%d %ss", n, what)
 }
 
 // openHours are the hours in use whose DGP may lie on either side of limit.

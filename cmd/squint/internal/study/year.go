@@ -7,6 +7,7 @@ import (
 	"sync"
 	"sync/atomic"
 
+	"squint/materials"
 	"squint/scene"
 	"squint/scene/sky"
 	"squint/trace"
@@ -52,7 +53,9 @@ func computeYear(ctx context.Context, in *Input, opt Options, r *Result) (*year,
 		}
 	}
 	t := surface.NewTransport(in.World, sky.NewPatches(1), cfg)
-	for estimate := memoryMiB(t, sim.Batches, opt.Workers); estimate > float64(sim.MemoryMiB); estimate = memoryMiB(t, sim.Batches, opt.Workers) {
+	// One worker must fit; further ones are added as memory allows, so that
+	// neither texels nor results depend on their number.
+	for estimate := memoryMiB(t, sim.Batches); estimate > float64(sim.MemoryMiB); estimate = memoryMiB(t, sim.Batches) {
 		cfg.Coarsen *= math.Max(1.1, math.Sqrt(estimate/float64(sim.MemoryMiB)))
 		if cfg.Coarsen > 100 {
 			return nil, fmt.Errorf("%s: simulation.memory_mib: got %d, want more: even texels 100 times larger do not fit", in.Project.File, sim.MemoryMiB)
@@ -62,6 +65,7 @@ func computeYear(ctx context.Context, in *Input, opt Options, r *Result) (*year,
 	if cfg.Coarsen > 1 {
 		r.Warnings = append(r.Warnings, fmt.Sprintf("surfaces are cut %.1f times more coarsely than asked, to fit memory_mib = %d.", cfg.Coarsen, sim.MemoryMiB))
 	}
+	opt.Workers = max(1, min(opt.Workers, int(float64(sim.MemoryMiB)/memoryMiB(t, sim.Batches))))
 	y := &year{}
 	if err := traceEyes(ctx, in, t, opt, y); err != nil {
 		return nil, err
@@ -70,10 +74,11 @@ func computeYear(ctx context.Context, in *Input, opt Options, r *Result) (*year,
 	for _, w := range in.Scene.WorkPlanes {
 		rec.Sensors = append(rec.Sensors, w.Sensors...)
 	}
-	found, err := traceSensors(ctx, t, &rec, sim.SensorSamples, sim.Seed, opt)
+	found, shines, err := traceSensors(ctx, t, &rec, sim.SensorSamples, sim.Seed, opt)
 	if err != nil {
 		return nil, err
 	}
+	rec.Shines = shines
 	for _, e := range y.eyes {
 		t.Activate(e.Sides())
 	}
@@ -128,11 +133,11 @@ func (y *year) daylightFactors(ctx context.Context, t *surface.Transport, rec an
 	return nil
 }
 
-// memoryMiB estimates the year's working set: three rows a texel side, batch
-// and worker, two fifths of all sides being reached in a closed room.
-func memoryMiB(t *surface.Transport, batches, workers int) float64 {
+// memoryMiB estimates a worker's working set: three rows a texel side and
+// batch, three fifths of all sides being reached in a closed room.
+func memoryMiB(t *surface.Transport, batches int) float64 {
 	sides := float64(2*t.Texels.Len()) * 0.6
-	return sides * float64(batches*workers) * 3 * surface.Width * 4 / (1 << 20)
+	return sides * float64(batches) * 3 * surface.Width * 4 / (1 << 20)
 }
 
 func traceEyes(ctx context.Context, in *Input, t *surface.Transport, opt Options, y *year) error {
@@ -150,14 +155,22 @@ func traceEyes(ctx context.Context, in *Input, t *surface.Transport, opt Options
 	})
 }
 
-func traceSensors(ctx context.Context, t *surface.Transport, rec *annual.Receivers, samples int, seed uint64, opt Options) ([][]surface.Gathered, error) {
+func traceSensors(ctx context.Context, t *surface.Transport, rec *annual.Receivers, samples int, seed uint64, opt Options) ([][]surface.Gathered, [][][]coeff.ShineSample, error) {
 	out := make([][]surface.Gathered, len(rec.Sensors))
+	shines := make([][][]coeff.ShineSample, len(rec.Sensors))
+	any := false
+	for _, f := range t.World.Scene.Finishes {
+		any = any || f.BSDF.Gloss(materials.Front) != nil || f.BSDF.Gloss(materials.Back) != nil
+	}
 	err := each(ctx, opt, StageSensors, len(rec.Sensors), func(i int) error {
 		var found trace.Found
-		out[i] = coeff.TraceSensor(t, rec.Sensors[i], i, samples, seed, rec.Fine, &found)
+		out[i], shines[i] = coeff.TraceSensor(t, rec.Sensors[i], i, samples, seed, rec.Fine, &found)
 		return nil
 	})
-	return out, err
+	if !any {
+		shines = nil
+	}
+	return out, shines, err
 }
 
 // each runs work for 0..n-1 on the workers and reports progress.
