@@ -10,7 +10,6 @@ import (
 // resolveReferences reports the names that no table defines.
 func (r *reader) resolveReferences(p *Project) {
 	types := map[string]string{}
-	backed := map[string]bool{}
 	var finishes, openings []string
 	for _, f := range p.Finishes {
 		if _, again := types[f.Name]; again || f.Name == "" {
@@ -18,7 +17,6 @@ func (r *reader) resolveReferences(p *Project) {
 		}
 		finishes = append(finishes, f.Name)
 		types[f.Name] = f.Type
-		backed[f.Name] = f.Back != ""
 	}
 	for _, o := range p.Openings {
 		if o.Name == "" || slices.Contains(openings, o.Name) {
@@ -42,9 +40,6 @@ func (r *reader) resolveReferences(p *Project) {
 		case ref.types != nil && types[ref.name] != "" && !slices.Contains(ref.types, types[ref.name]):
 			ref.mark()
 			r.add(ref.line, ref.key, "got %s, which is of type %q, want a finish of type %s", quote(ref.name), types[ref.name], oneOf(ref.types))
-		case ref.key == "finish.back" && backed[ref.name]:
-			ref.mark()
-			r.add(ref.line, ref.key, "got %s, which has a back of its own; want a finish without", quote(ref.name))
 		}
 	}
 }

@@ -16,26 +16,70 @@ type finishType struct {
 	check       func(*reader, *node, *Finish)
 }
 
-var finishBack = key[Finish]{spec{name: "back", about: "finish of the side that the normal points away from; else both sides are alike", refers: "finish", types: opaque}, func(f *Finish) any { return &f.Back }}
+// backOf is the key of the other side, whose finish may be of these types.
+func backOf(types ...string) key[Finish] {
+	return key[Finish]{spec{name: "back", about: "finish of the side that the normal points away from; else both sides are alike", refers: "finish", types: types}, func(f *Finish) any { return &f.Back }}
+}
 
 // opaque are the types that let no light through.
-var opaque = []string{"matte", "mirror"}
+var opaque = []string{"matte", "mirror", "glossy"}
+
+var (
+	// cutOff: below 1 degree nothing would pass at all.
+	cutOff = within{lo: 1, hi: 90}
+	// spread is the range of materials.NewGlossy.
+	spread = within{lo: 0.5, hi: 60}
+	// holes of equal size cover 0.907 of the area where they touch.
+	// Source: densest packing of equal circles, pi/sqrt(12), Thue 1910.
+	holes = within{lo: 0, hi: 0.9}
+	// sheetMM keeps holes too small to be resolved; larger ones are for the mesh.
+	sheetMM = within{lo: 0, hi: 50}
+	holeMM  = within{lo: 0.01, hi: 50}
+)
 
 var finishTypes = []finishType{
 	{"matte", "reflects diffusely", []key[Finish]{
 		{spec{name: "reflectance", about: "diffuse", required: true, in: share}, func(f *Finish) any { return &f.Reflectance }},
-		finishBack,
+		backOf(opaque...),
 	}, nil},
 	{"mirror", "reflects as a mirror, and diffusely", []key[Finish]{
 		{spec{name: "specular_reflectance", about: "as a mirror", required: true, in: share}, func(f *Finish) any { return &f.SpecularReflectance }},
 		{spec{name: "diffuse_reflectance", about: "besides", in: share, def: "0", source: own}, func(f *Finish) any { return &f.DiffuseReflectance }},
-		finishBack,
+		backOf(opaque...),
 	}, checkMirror},
-	{"glazing", "clear panes, both sides alike", []key[Finish]{
+	{"glossy", "reflects in part about the mirror direction, else diffusely", []key[Finish]{
+		{spec{name: "total_reflectance", about: "glossy and diffuse together", required: true, in: share}, func(f *Finish) any { return &f.TotalReflectance }},
+		{spec{name: "specular_share", about: "share of total_reflectance that goes about the mirror direction", required: true, in: share}, func(f *Finish) any { return &f.SpecularShare }},
+		{spec{name: "spread_deg", about: "angle from the mirror direction at which a thin beam from straight ahead has fallen to half its peak", required: true, in: spread}, func(f *Finish) any { return &f.SpreadDeg }},
+		backOf(opaque...),
+	}, nil},
+	{"glazing", "clear panes", []key[Finish]{
 		{spec{name: "transmittance", about: "visible, at normal incidence", in: share}, func(f *Finish) any { return &f.Transmittance }},
 		{spec{name: "panes", about: "number of panes that share the transmittance", in: within{lo: 1, hi: 4}, def: "2", source: usual}, func(f *Finish) any { return &f.Panes }},
 		{spec{name: "table", about: "instead of transmittance: rows of angle of incidence (degrees), transmittance, reflectance"}, func(f *Finish) any { return &f.Table }},
+		backOf("glazing"),
 	}, checkGlazing},
+	{"diffuser", "scatters what it reflects and what it lets through", []key[Finish]{
+		{spec{name: "diffuse_transmittance", about: "share of light that passes scattered", required: true, in: share}, func(f *Finish) any { return &f.DiffuseTransmittance }},
+		{spec{name: "reflectance", about: "diffuse", required: true, in: share}, func(f *Finish) any { return &f.Reflectance }},
+		backOf("diffuser"),
+	}, checkDiffuser},
+	{"cloth", "fabric too fine to be resolved", []key[Finish]{
+		{spec{name: "openness", about: "share of light that passes straight between the threads", required: true, in: share}, func(f *Finish) any { return &f.Openness }},
+		{spec{name: "diffuse_transmittance", about: "share of light that passes scattered", required: true, in: share}, func(f *Finish) any { return &f.DiffuseTransmittance }},
+		{spec{name: "reflectance", about: "diffuse; of both sides without back_reflectance", required: true, in: share}, func(f *Finish) any { return &f.Reflectance }},
+		{spec{name: "back_reflectance", about: "diffuse, of the side that the normal points away from", in: share}, func(f *Finish) any { return &f.BackReflectance }},
+		{spec{name: "cut_off_deg", about: "angle of incidence from which nothing passes straight; without it openness holds at every angle", in: cutOff}, func(f *Finish) any { return &f.CutOffDeg }},
+	}, func(r *reader, n *node, f *Finish) {
+		checkCloth(r, n, "finish", f.Openness, f.DiffuseTransmittance, f.Reflectance, f.BackReflectance)
+	}},
+	{"perforated", "sheet with round holes too small to be resolved", []key[Finish]{
+		{spec{name: "open_share", about: "share of the area that is holes", required: true, in: holes}, func(f *Finish) any { return &f.OpenShare }},
+		{spec{name: "hole_diameter_mm", about: "in millimetres", required: true, in: holeMM}, func(f *Finish) any { return &f.HoleDiameterMM }},
+		{spec{name: "thickness_mm", about: "of the sheet, in millimetres; 0 passes open_share at every angle", required: true, in: sheetMM}, func(f *Finish) any { return &f.ThicknessMM }},
+		{spec{name: "base", about: "finish of the sheet between the holes", required: true, refers: "finish", types: []string{"matte", "mirror", "glossy", "diffuser", "cloth"}}, func(f *Finish) any { return &f.Base }},
+		backOf("perforated"),
+	}, checkPerforated},
 }
 
 func finishTypeNames() []string {
@@ -69,6 +113,7 @@ func finishSection() section {
 		if f.Back != "" && f.Back == f.Name {
 			r.reject(n, name, "back", "got the finish itself; leave it out where both sides are alike")
 		}
+		r.finishes = append(r.finishes, n)
 		keep(r, n, name, &p.Finishes, f, func(f *Finish) string { return f.Name })
 	}
 	return s
@@ -105,12 +150,42 @@ func unknownFinishKeys(r *reader, n *node, f *Finish, known []string) {
 }
 
 // roundOff lets shares that are written with two or three decimals add up to
-// 1 although their binary sum exceeds it.
-const roundOff = 1e-9
+// 1 although their binary sum exceeds it; package materials allows as much.
+const roundOff = 1e-12
 
 func checkMirror(r *reader, n *node, f *Finish) {
 	if sum := f.SpecularReflectance + f.DiffuseReflectance; n.good("specular_reflectance", "diffuse_reflectance") && sum > 1+roundOff {
 		r.reject(n, "finish", "specular_reflectance", "got %g and diffuse_reflectance %g, together %.4g, want at most 1", f.SpecularReflectance, f.DiffuseReflectance, sum)
+	}
+}
+
+func checkDiffuser(r *reader, n *node, f *Finish) {
+	if sum := f.DiffuseTransmittance + f.Reflectance; n.good("diffuse_transmittance", "reflectance") && sum > 1+roundOff {
+		r.reject(n, "finish", "diffuse_transmittance", "got %g and reflectance %g, together %.4g, want at most 1", f.DiffuseTransmittance, f.Reflectance, sum)
+	}
+}
+
+// checkCloth is for cloths and rollers.
+func checkCloth(r *reader, n *node, section string, openness, scattered, front float64, back *float64) {
+	if !n.good("openness", "diffuse_transmittance") {
+		return
+	}
+	check := func(key string, reflectance float64) bool {
+		sum := openness + scattered + reflectance
+		if !n.good(key) || sum <= 1+roundOff {
+			return true
+		}
+		r.reject(n, section, "openness", "got %g, diffuse_transmittance %g and %s %g, together %.4g, want at most 1", openness, scattered, key, reflectance, sum)
+		return false
+	}
+	if check("reflectance", front) && back != nil {
+		check("back_reflectance", *back)
+	}
+}
+
+func checkPerforated(r *reader, n *node, f *Finish) {
+	if f.Base != "" && f.Base == f.Name {
+		r.reject(n, "finish", "base", "got the finish itself; want the finish of the sheet between the holes")
 	}
 }
 

@@ -61,6 +61,7 @@ var simulationKeys = []key[Simulation]{
 	{spec{name: "sensor_samples", about: "directions per sensor, a multiple of batches", in: within{lo: 8, hi: 1 << 24}, def: "4096", source: own}, func(s *Simulation) any { return &s.SensorSamples }},
 	{spec{name: "texel_m", about: "size of the pieces into which surfaces are cut", in: within{lo: 0.01, hi: 2}, def: "0.2", source: own}, func(s *Simulation) any { return &s.TexelM }},
 	{spec{name: "texel_samples", about: "paths per piece, a multiple of batches", in: within{lo: 8, hi: 1 << 20}, def: "256", source: own}, func(s *Simulation) any { return &s.TexelSamples }},
+	{spec{name: "photons", about: "light particles shot from the sun at what mirrors, each hour, over all batches; 0 leaves mirrored sunlight out", in: within{lo: 0, hi: 1 << 24}, def: "4000", source: own}, func(s *Simulation) any { return &s.Photons }},
 	{spec{name: "memory_mib", about: "upper bound of the working memory", in: within{lo: 64, hi: 1 << 20}, def: "1024", source: own}, func(s *Simulation) any { return &s.MemoryMiB }},
 }
 
@@ -79,5 +80,8 @@ func checkSimulation(r *reader, n *node, s *Simulation) {
 			}
 			r.reject(n, "simulation", key, "got %s %d with %d batches, want a multiple, such as %d", c.key, c.value, s.Batches, (c.value/s.Batches+1)*s.Batches)
 		}
+	}
+	if n.good("photons") && s.Photons > 0 && s.Photons < s.Batches {
+		r.reject(n, "simulation", "photons", "got %d with %d batches, want at least one a batch, usually thousands, or 0 to leave mirrored sunlight out", s.Photons, s.Batches)
 	}
 }

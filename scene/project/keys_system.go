@@ -3,6 +3,7 @@ package project
 import (
 	"errors"
 	"math"
+	"slices"
 
 	"gonum.org/v1/gonum/spatial/r3"
 
@@ -66,6 +67,9 @@ func (o Opening) Rect(northDeg float64) (system.Rect, error) {
 	return system.RectFromCorners(c, o.OutwardHint(northDeg))
 }
 
+// board are the types of finish that a light shelf can have.
+var board = []string{"matte", "mirror", "glossy", "perforated"}
+
 var lightShelfKeys = []key[LightShelf]{
 	{spec{name: "name", about: "shown in results", required: true, form: itemName}, func(s *LightShelf) any { return &s.Name }},
 	{spec{name: "opening", about: "at which the shelf is", required: true, refers: "opening"}, func(s *LightShelf) any { return &s.Opening }},
@@ -77,8 +81,8 @@ var lightShelfKeys = []key[LightShelf]{
 	{spec{name: "inside_tilt_deg", about: "from the horizontal; positive lifts the outer edge, which is the one at the glass", in: within{lo: -60, hi: 60}, def: "0", source: own}, func(s *LightShelf) any { return &s.InsideTiltDeg }},
 	{spec{name: "extend_m", about: "beyond the opening, on each side", in: within{hi: 5}, def: "0", source: own}, func(s *LightShelf) any { return &s.ExtendM }},
 	{spec{name: "gap_m", about: "between glass and shelf, on either side", in: within{lo: 0.001, hi: 0.5}, def: "0.01", source: usual}, func(s *LightShelf) any { return &s.GapM }},
-	{spec{name: "top", about: "finish of the upper side", required: true, refers: "finish", types: opaque}, func(s *LightShelf) any { return &s.Top }},
-	{spec{name: "underside", about: "finish of the lower side and of the edges", required: true, refers: "finish", types: opaque}, func(s *LightShelf) any { return &s.Underside }},
+	{spec{name: "top", about: "finish of the upper side", required: true, refers: "finish", types: board}, func(s *LightShelf) any { return &s.Top }},
+	{spec{name: "underside", about: "finish of the lower side and of the edges", required: true, refers: "finish", types: board}, func(s *LightShelf) any { return &s.Underside }},
 }
 
 func checkLightShelf(r *reader, n *node, s *LightShelf) {
@@ -98,24 +102,46 @@ func (s LightShelf) System() system.LightShelf {
 	}
 }
 
+// cloths are the types of finish that a roller can be of.
+var cloths = []string{"cloth", "diffuser", "perforated"}
+
 var rollerKeys = []key[Roller]{
 	{spec{name: "name", about: "shown in results", required: true, form: itemName}, func(ro *Roller) any { return &ro.Name }},
 	{spec{name: "opening", about: "at which the roller is", required: true, refers: "opening"}, func(ro *Roller) any { return &ro.Opening }},
 	{spec{name: "position", about: "side of the glass", choices: []string{"inside", "outside"}, def: `"inside"`, source: usual}, func(ro *Roller) any { return &ro.Position }},
-	{spec{name: "openness", about: "share of light that passes straight between the threads", required: true, in: share}, func(ro *Roller) any { return &ro.Openness }},
-	{spec{name: "diffuse_transmittance", about: "share of light that passes scattered", required: true, in: share}, func(ro *Roller) any { return &ro.DiffuseTransmittance }},
-	{spec{name: "reflectance", about: "diffuse, of either side", required: true, in: share}, func(ro *Roller) any { return &ro.Reflectance }},
+	{spec{name: "cloth", about: "finish of the cloth, its front toward outdoors; instead of the single numbers", refers: "finish", types: cloths}, func(ro *Roller) any { return &ro.Cloth }},
+	{spec{name: "openness", about: "share of light that passes straight between the threads", in: share}, func(ro *Roller) any { return &ro.Openness }},
+	{spec{name: "diffuse_transmittance", about: "share of light that passes scattered", in: share}, func(ro *Roller) any { return &ro.DiffuseTransmittance }},
+	{spec{name: "reflectance", about: "diffuse, of the side toward outdoors; of both without back_reflectance", in: share}, func(ro *Roller) any { return &ro.Reflectance }},
+	{spec{name: "back_reflectance", about: "diffuse, of the side toward indoors", in: share}, func(ro *Roller) any { return &ro.BackReflectance }},
+	{spec{name: "cut_off_deg", about: "angle of incidence from which nothing passes straight; without it openness holds at every angle", in: cutOff}, func(ro *Roller) any { return &ro.CutOffDeg }},
 	{spec{name: "drop", about: "share of the opening's height that is covered, from the top", in: share, def: "1", source: own}, func(ro *Roller) any { return &ro.Drop }},
 	{spec{name: "gap_m", about: "between glass and cloth", in: within{lo: 0.001, hi: 1}, def: "0.05", source: usual}, func(ro *Roller) any { return &ro.GapM }},
 	{spec{name: "drawn", about: "whether the cloth is down", def: "true", source: own}, func(ro *Roller) any { return &ro.Drawn }},
 }
 
 func checkRoller(r *reader, n *node, ro *Roller) {
+	const name = "roller"
 	ro.Line = n.line
 	r.rollers = append(r.rollers, n)
-	if sum := ro.Openness + ro.DiffuseTransmittance + ro.Reflectance; n.good("openness", "diffuse_transmittance", "reflectance") && sum > 1+roundOff {
-		r.reject(n, "roller", "openness", "got %g, diffuse_transmittance %g and reflectance %g, together %.4g, want at most 1", ro.Openness, ro.DiffuseTransmittance, ro.Reflectance, sum)
+	needed := []string{"openness", "diffuse_transmittance", "reflectance"}
+	written := func(key string) bool { return n.has(key) }
+	switch numbers := append(needed[:3:3], "back_reflectance", "cut_off_deg"); {
+	case n.has("cloth") && slices.ContainsFunc(numbers, written):
+		r.reject(n, name, "cloth", "got %s too; want either the cloth's finish or the single numbers", numbers[slices.IndexFunc(numbers, written)])
+		return
+	case n.has("cloth"):
+		return
+	case !slices.ContainsFunc(numbers, written):
+		r.reject(n, name, "cloth", "missing; want a finish's name in quotes, or the single numbers openness, diffuse_transmittance and reflectance")
+		return
 	}
+	for _, key := range needed {
+		if !n.has(key) {
+			r.reject(n, name, key, "missing; want %s", share)
+		}
+	}
+	checkCloth(r, n, name, ro.Openness, ro.DiffuseTransmittance, ro.Reflectance, ro.BackReflectance)
 }
 
 // System is the roller in the units of package system, with the finish given.

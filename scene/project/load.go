@@ -68,6 +68,7 @@ func (r *reader) document(root *node, p *Project) {
 		r.add(0, "viewpoint", "missing; want at least one [[viewpoint]] or [[work_plane]]")
 	}
 	r.resolveReferences(p)
+	r.checkSides(p)
 	r.checkSystems(p)
 }
 

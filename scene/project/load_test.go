@@ -51,6 +51,11 @@ func wantOffice(data string) *Project {
 			{Name: "aluminium", Type: "mirror", SpecularReflectance: .7, DiffuseReflectance: .1, Line: 61},
 			{Name: "double glazing", Type: "glazing", Transmittance: .78, Panes: 2, Line: 67},
 			{Name: "coated", Type: "glazing", Table: [][3]float64{{0, .6, .2}, {60, .5, .3}, {90, 0, 1}}, Line: 72},
+			{Name: "anodised", Type: "glossy", TotalReflectance: .85, SpecularShare: .9, SpreadDeg: 2, Back: "aluminium", Line: 136},
+			{Name: "opal", Type: "diffuser", DiffuseTransmittance: .5, Reflectance: .4, Back: "opal indoors", Line: 144},
+			{Name: "opal indoors", Type: "diffuser", DiffuseTransmittance: .5, Reflectance: .3, Line: 151},
+			{Name: "screen", Type: "cloth", Openness: .05, DiffuseTransmittance: .15, Reflectance: .5, BackReflectance: ptr(.1), CutOffDeg: 65, Line: 157},
+			{Name: "punched", Type: "perforated", OpenShare: .3, HoleDiameterMM: 2, ThicknessMM: 1, Base: "anodised", Line: 166},
 		},
 		Openings: []Opening{
 			{Name: "south", Group: "facade", CornersM: [4][3]float64{{0, 0, .9}, {3.4, 0, .9}, {3.4, 0, 2.7}, {0, 0, 2.7}}, HasCorners: true,
@@ -59,15 +64,17 @@ func wantOffice(data string) *Project {
 		},
 		LightShelves: []LightShelf{{Name: "shelf", Opening: "south", HeightM: 1.2, OutsideDepthM: .6, InsideDepthM: .4, ThicknessM: .05,
 			OutsideTiltDeg: 10, ExtendM: .1, GapM: .01, Top: "aluminium", Underside: "plaster", Line: 92}},
-		Rollers: []Roller{{Name: "screen", Opening: "south", Position: "outside", Openness: .05, DiffuseTransmittance: .1, Reflectance: .5,
-			Drop: .3, GapM: .05, Drawn: true, Line: 103}},
+		Rollers: []Roller{
+			{Name: "screen", Opening: "south", Position: "outside", Openness: .05, DiffuseTransmittance: .1, Reflectance: .5,
+				BackReflectance: ptr(.2), CutOffDeg: 70, Drop: .3, GapM: .05, Drawn: true, Line: 103},
+			{Name: "second", Opening: "south", Position: "inside", Cloth: "screen", Drop: .3, GapM: .05, Drawn: true, Line: 174}},
 		Viewpoints: []Viewpoint{
-			{Name: "desk 1", PositionM: [3]float64{1, 2, 1.2}, AzimuthDeg: ptr(180.0), PitchDeg: -5, Line: 112},
-			{Name: "desk 2", PositionM: [3]float64{1, 3, 1.2}, TowardM: &[3]float64{1, 0, 1.2}, Line: 118},
+			{Name: "desk 1", PositionM: [3]float64{1, 2, 1.2}, AzimuthDeg: ptr(180.0), PitchDeg: -5, Line: 114},
+			{Name: "desk 2", PositionM: [3]float64{1, 3, 1.2}, TowardM: &[3]float64{1, 0, 1.2}, Line: 120},
 		},
-		WorkPlanes: []WorkPlane{{Name: "desks", PolygonM: [][2]float64{{0, 0}, {3.6, 0}, {3.6, 8.2}, {0, 8.2}}, HeightM: .85, PerimeterM: .5, Line: 123}},
+		WorkPlanes: []WorkPlane{{Name: "desks", PolygonM: [][2]float64{{0, 0}, {3.6, 0}, {3.6, 8.2}, {0, 8.2}}, HeightM: .85, PerimeterM: .5, Line: 125}},
 		Criteria:   Criteria{Glare: "medium", Provision: "minimum"},
-		Simulation: Simulation{Seed: 7, Batches: 16, FisheyePixels: 64, SamplesPerPixel: 32, SensorSamples: 4096, TexelM: .2, TexelSamples: 256, MemoryMiB: 1024},
+		Simulation: Simulation{Seed: 7, Batches: 16, FisheyePixels: 64, SamplesPerPixel: 32, SensorSamples: 4096, TexelM: .2, TexelSamples: 256, Photons: 8000, MemoryMiB: 1024},
 	}
 }
 

@@ -11,6 +11,7 @@ type reader struct {
 	dir      string // of the project file, from the root of the file system
 	problems Problems
 	refs     []reference
+	finishes []*node // of Project.Finishes, in step
 	shelves  []*node // of Project.LightShelves, in step
 	rollers  []*node
 	openings []*node

@@ -93,23 +93,35 @@ type Assignment struct {
 	Line   int
 }
 
-// Finish is a surface. Which fields count depends on Type, see Defaults and
-// the finish tables in keys_finish.go; the others are zero.
+// Finish is a surface. Which fields count depends on Type, see the finish
+// tables in keys_finish.go; the others are zero.
 type Finish struct {
 	Name string
-	Type string // "matte", "mirror" or "glazing"
+	Type string // "matte", "mirror", "glossy", "glazing", "diffuser", "cloth" or "perforated"
 
-	Reflectance         float64 // matte: diffuse
+	Reflectance         float64 // matte, diffuser; cloth: front, and back without BackReflectance
 	SpecularReflectance float64 // mirror
 	DiffuseReflectance  float64 // mirror
-	Transmittance       float64 // glazing: visible, at normal incidence
-	Panes               int     // glazing, with Transmittance
+
+	TotalReflectance float64 // glossy
+	SpecularShare    float64 // glossy: share of TotalReflectance in the lobe
+	SpreadDeg        float64 // glossy: from the mirror direction to half the lobe's peak
+
+	Transmittance float64 // glazing: visible, at normal incidence
+	Panes         int     // glazing, with Transmittance
 	// Table, instead of Transmittance, holds rows of angle of incidence
 	// (degrees, rising from 0 to 90), transmittance and reflectance.
 	Table [][3]float64
 
-	Openness             float64 // no type reads it yet
-	DiffuseTransmittance float64 // no type reads it yet
+	Openness             float64  // cloth: share of straight passage
+	DiffuseTransmittance float64  // diffuser, cloth
+	BackReflectance      *float64 // cloth; nil: Reflectance
+	CutOffDeg            float64  // cloth: incidence from which nothing passes straight; 0: none
+
+	OpenShare      float64 // perforated: share of the area that is holes
+	HoleDiameterMM float64 // perforated
+	ThicknessMM    float64 // perforated
+	Base           string  // perforated: finish of the sheet between the holes
 
 	Back string // finish of the side the normal points away from; "": alike
 	Line int
@@ -146,15 +158,19 @@ type LightShelf struct {
 	Line                          int
 }
 
-// Roller is a blind of cloth at an opening.
+// Roller is a blind of cloth at an opening. Its front is toward outdoors. Cloth
+// names a finish; where it is "" the single numbers hold.
 type Roller struct {
 	Name, Opening        string
-	Position             string  // "inside" or "outside"
-	Openness             float64 // share of straight passage
-	DiffuseTransmittance float64
-	Reflectance          float64
-	Drop                 float64 // share of the opening's height that is covered, from the top
-	GapM                 float64 // between glass and cloth
+	Position             string   // "inside" or "outside"
+	Cloth                string   // finish
+	Openness             float64  // share of straight passage
+	DiffuseTransmittance float64  // share that passes scattered
+	Reflectance          float64  // front, and back without BackReflectance
+	BackReflectance      *float64 // nil: Reflectance
+	CutOffDeg            float64  // incidence from which nothing passes straight; 0: none
+	Drop                 float64  // share of the opening's height that is covered, from the top
+	GapM                 float64  // between glass and cloth
 	Drawn                bool
 	Line                 int
 }
@@ -194,5 +210,9 @@ type Simulation struct {
 	SensorSamples   int // a multiple of Batches
 	TexelM          float64
 	TexelSamples    int // a multiple of Batches
-	MemoryMiB       int
+	// Photons is the number of light particles that each hour's sun shoots at
+	// what mirrors, over all batches: 0, which leaves mirrored sunlight out, or
+	// at least Batches.
+	Photons   int
+	MemoryMiB int
 }
