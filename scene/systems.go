@@ -8,7 +8,6 @@ import (
 
 	"gonum.org/v1/gonum/spatial/r3"
 
-	"squint/materials"
 	"squint/scene/project"
 	"squint/scene/system"
 )
@@ -48,18 +47,17 @@ func (b *builder) addSystems() {
 		if !ok || !def.Drawn {
 			continue
 		}
-		cloth, err := materials.NewCloth(materials.Cloth{
-			Openness:             def.Openness,
-			DiffuseTransmittance: def.DiffuseTransmittance,
-			ReflectanceFront:     def.Reflectance,
-			ReflectanceBack:      def.Reflectance,
-		})
-		if err != nil {
-			b.failf(def.Line, "roller %q: %v", def.Name, err)
-			continue
+		name := def.Cloth
+		if name == "" {
+			cloth, err := newCloth(def.Openness, def.DiffuseTransmittance, def.Reflectance, def.BackReflectance, def.CutOffDeg)
+			if err != nil {
+				b.failf(def.Line, "roller %q: %v", def.Name, err)
+				continue
+			}
+			// No finish of the project has a line break in its name.
+			name = "roller\n" + def.Name
+			b.finish[name] = b.intern("roller "+def.Name, cloth)
 		}
-		name := "roller " + def.Name
-		b.finish[name] = b.intern(name, cloth)
 		ro := def.System(name)
 		r := b.s.Openings[k].Rect
 		faces, err := ro.Build(r)

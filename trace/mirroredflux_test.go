@@ -170,3 +170,70 @@ func TestMirroredFlux(t *testing.T) {
 	}
 	mirroredJudge(t, "flux by mirrors", rows, 0.05)
 }
+
+// lobeAlbedo is the share of light arriving along wo that a glossy lobe throws
+// on, by quadrature over the hemisphere in the plane of projected directions
+// (the integral of f cos dw is that of f over the unit disc).
+func lobeAlbedo(g *materials.Gloss, wo r3.Vec) (sum float64) {
+	const n = 1500
+	for i := range n {
+		for k := range n {
+			x, y := 2*(float64(i)+.5)/n-1, 2*(float64(k)+.5)/n-1
+			if z := 1 - x*x - y*y; z > 0 {
+				sum += g.Eval(wo, r3.Vec{X: x, Y: y, Z: math.Sqrt(z)}) * 4 / n / n
+			}
+		}
+	}
+	return sum
+}
+
+// TestMirroredGlossFlux: a glossy sheet throws on the sun's flux times the albedo
+// of its lobe, and a mirror passes on what it gets. The catching sheets stand
+// around; what the lobe throws back to the open south is below 1e-3.
+func TestMirroredGlossFlux(t *testing.T) {
+	const lx = 10000.0
+	sun := mirroredSun(40, 0)
+	var rows []mirroredRow
+	for i, c := range []struct {
+		name                  string
+		share, spread, mirror float64
+	}{
+		{"lobe of 2 degrees", .9, 2, 0},
+		{"lobe of 5 degrees", .6, 5, 0},
+		{"lobe of 5 degrees, then a mirror 0.8", .6, 5, .8},
+	} {
+		f, err := materials.NewGlossy(.8, c.share, c.spread*math.Pi/180)
+		if err != nil {
+			t.Fatal(err)
+		}
+		m := newMirroredModel(t)
+		m.level(f, 0, 1, 0, 1, 0)
+		m.upright(m.matte(.5), -50, 50, 30, -20, 50)
+		m.level(m.matte(.5), -50, 50, -8, 30, 50)
+		if c.mirror > 0 {
+			// In the way of all the light that goes up: its own light returns to a
+			// floor below the sheet.
+			m = newMirroredModel(t)
+			m.level(f, 0, 1, 0, 1, 0)
+			m.level(m.mirror(c.mirror), -50, 50, 1.5, 200, 1)
+			m.level(m.matte(.5), -300, 300, 1, 300, -.5)
+		}
+		const shots = 32
+		sums := make([]float64, shots)
+		mirroredShots(m.world(), sun, lx, shots, 4000, uint64(400+i), func(k int, h *trace.Hit, flux float64) {
+			if h.Part != 0 {
+				sums[k] += flux
+			}
+		})
+		var a mirroredTally
+		for _, x := range sums {
+			a.add(x)
+		}
+		want := lx * sun.Z * lobeAlbedo(f.Gloss(materials.Front), sun)
+		if c.mirror > 0 {
+			want *= c.mirror
+		}
+		rows = append(rows, mirroredRow{c.name, want, a.mean(), a.stdErr(), want * 2e-3, shots - 1})
+	}
+	mirroredJudge(t, "flux by glossy sheets", rows, .05)
+}

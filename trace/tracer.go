@@ -24,6 +24,10 @@ type Tracer struct {
 	world   *World
 	moments []*scene.Moment
 	stack   []Found
+	// Portals aims every second ray from a diffuse surface at the openings
+	// (balance heuristic), where the surface sees any.
+	Portals bool
+	portals Portals
 }
 
 // NewTracer returns a tracer of some moments.
@@ -40,8 +44,8 @@ func (t *Tracer) Luminance(org, dir r3.Vec, weight float64, s *sampling.Stream, 
 	t.follow(org, dir, weight, 1, 0, 1, s, out)
 }
 
-// follow carries scale (the weight that roulette keeps) and throughput (what
-// roulette decides by) apart.
+// follow adds what arrives from dir, times scale and throughput; roulette
+// holds the throughput of what goes on near 1.
 func (t *Tracer) follow(org, dir r3.Vec, scale, throughput float64, depth, split int, s *sampling.Stream, out []float64) {
 	if depth >= len(t.stack) {
 		t.stack = append(t.stack, Found{})
@@ -50,10 +54,10 @@ func (t *Tracer) follow(org, dir r3.Vec, scale, throughput float64, depth, split
 	t.world.Walk(org, dir, 1, split, s, &t.stack[depth])
 	for i := range t.stack[depth].Exits {
 		x := t.stack[depth].Exits[i]
-		t.exit(x.Dir, scale*x.Weight, out)
+		t.exit(x.Dir, scale*throughput*x.Weight, out)
 	}
 	for i := range t.stack[depth].Shines {
-		t.shine(t.stack[depth].Shines[i], scale, s, out)
+		t.shine(t.stack[depth].Shines[i], scale*throughput, s, out)
 	}
 	for i := range t.stack[depth].Landings {
 		t.land(t.stack[depth].Landings[i], scale, throughput, depth, s, out)
@@ -98,17 +102,36 @@ func (t *Tracer) land(l Landing, scale, throughput float64, depth int, s *sampli
 			}
 		}
 		p := t.world.Offset(l.Hit.Point, n)
-		t.sun(p, n, scale*l.Weight*m/math.Pi, s, out)
-		keep := math.Min(1, throughput*l.Weight*m)
-		if depth > 2 {
-			keep = math.Min(keep, 0.9)
-		}
+		t.sun(p, n, scale*throughput*l.Weight*m/math.Pi, s, out)
+		dir, over := t.scatter(p, n, s)
+		next := throughput * l.Weight * m * over
+		keep := math.Min(0.95, next)
 		if keep <= 0 || s.Float64() >= keep {
 			continue
 		}
-		dir := CosineDirection(n, s.Float64(), s.Float64())
-		t.follow(p, dir, scale*l.Weight*m/keep, math.Max(throughput*l.Weight*m, 0.2), depth+1, 0, s, out)
+		t.follow(p, dir, scale, next/keep, depth+1, 0, s, out)
 	}
+}
+
+// scatter draws a direction from a diffuse surface; over is the cosine density
+// over the density drawn from.
+func (t *Tracer) scatter(p, n r3.Vec, s *sampling.Stream) (dir r3.Vec, over float64) {
+	if t.Portals {
+		t.world.portalsSeen(p, n, &t.portals)
+	}
+	if !t.Portals || t.portals.Empty() {
+		return CosineDirection(n, s.Float64(), s.Float64()), 1
+	}
+	if s.Float64() < 0.5 {
+		dir = CosineDirection(n, s.Float64(), s.Float64())
+	} else {
+		dir = t.portals.Sample(p, s)
+	}
+	cos := r3.Dot(dir, n)
+	if cos <= 0 {
+		return dir, 0
+	}
+	return dir, cos / math.Pi / (0.5*cos/math.Pi + 0.5*t.portals.PDF(p, dir))
 }
 
 // shine adds what a glossy surface shows of the sun.
@@ -155,6 +178,7 @@ func (t *Tracer) sun(p, n r3.Vec, weight float64, s *sampling.Stream, out []floa
 // plane with unit normal n, direct sun included.
 func (t *Tracer) Illuminance(p, n r3.Vec, s *sampling.Stream, out []float64) {
 	t.sun(p, n, 1, s, out)
-	dir := CosineDirection(n, s.Float64(), s.Float64())
-	t.follow(t.world.Offset(p, n), dir, math.Pi, 1, 0, 0, s, out)
+	if dir, over := t.scatter(p, n, s); over > 0 {
+		t.follow(t.world.Offset(p, n), dir, math.Pi, over, 0, 0, s, out)
+	}
 }

@@ -51,11 +51,11 @@ func wantOffice(data string) *Project {
 			{Name: "aluminium", Type: "mirror", SpecularReflectance: .7, DiffuseReflectance: .1, Line: 61},
 			{Name: "double glazing", Type: "glazing", Transmittance: .78, Panes: 2, Line: 67},
 			{Name: "coated", Type: "glazing", Table: [][3]float64{{0, .6, .2}, {60, .5, .3}, {90, 0, 1}}, Line: 72},
-			{Name: "anodised", Type: "glossy", TotalReflectance: .85, SpecularShare: .9, SpreadDeg: 2, Back: "aluminium", Line: 136},
-			{Name: "opal", Type: "diffuser", DiffuseTransmittance: .5, Reflectance: .4, Back: "opal indoors", Line: 144},
-			{Name: "opal indoors", Type: "diffuser", DiffuseTransmittance: .5, Reflectance: .3, Line: 151},
-			{Name: "screen", Type: "cloth", Openness: .05, DiffuseTransmittance: .15, Reflectance: .5, BackReflectance: ptr(.1), CutOffDeg: 65, Line: 157},
-			{Name: "punched", Type: "perforated", OpenShare: .3, HoleDiameterMM: 2, ThicknessMM: 1, Base: "anodised", Line: 166},
+			{Name: "anodised", Type: "glossy", TotalReflectance: .85, SpecularShare: .9, SpreadDeg: 2, Back: "aluminium", Line: 138},
+			{Name: "opal", Type: "diffuser", DiffuseTransmittance: .5, Reflectance: .4, Back: "opal indoors", Line: 146},
+			{Name: "opal indoors", Type: "diffuser", DiffuseTransmittance: .5, Reflectance: .3, Line: 153},
+			{Name: "screen", Type: "cloth", Openness: .05, DiffuseTransmittance: .15, Reflectance: .5, BackReflectance: ptr(.1), CutOffDeg: 65, Line: 159},
+			{Name: "punched", Type: "perforated", OpenShare: .3, HoleDiameterMM: 2, ThicknessMM: 1, Base: "anodised", Line: 168},
 		},
 		Openings: []Opening{
 			{Name: "south", Group: "facade", CornersM: [4][3]float64{{0, 0, .9}, {3.4, 0, .9}, {3.4, 0, 2.7}, {0, 0, 2.7}}, HasCorners: true,
@@ -67,7 +67,7 @@ func wantOffice(data string) *Project {
 		Rollers: []Roller{
 			{Name: "screen", Opening: "south", Position: "outside", Openness: .05, DiffuseTransmittance: .1, Reflectance: .5,
 				BackReflectance: ptr(.2), CutOffDeg: 70, Drop: .3, GapM: .05, Drawn: true, Line: 103},
-			{Name: "second", Opening: "south", Position: "inside", Cloth: "screen", Drop: .3, GapM: .05, Drawn: true, Line: 174}},
+			{Name: "second", Opening: "south", Position: "inside", Cloth: "screen", Drop: .3, GapM: .05, Drawn: true, Line: 176}},
 		Viewpoints: []Viewpoint{
 			{Name: "desk 1", PositionM: [3]float64{1, 2, 1.2}, AzimuthDeg: ptr(180.0), PitchDeg: -5, Line: 114},
 			{Name: "desk 2", PositionM: [3]float64{1, 3, 1.2}, TowardM: &[3]float64{1, 0, 1.2}, Line: 120},

@@ -62,6 +62,8 @@ func TestProblems(t *testing.T) {
 		{"seed", "", "[simulation]\nseed = -1\n", ":25: simulation.seed: got -1, want a whole number, 0 or more"},
 		{"whole number", "", "[simulation]\nbatches = 8.0\n", ":25: simulation.batches: got 8.0, want a whole number, 8 to 64"},
 		{"not a multiple", "", "[simulation]\nsamples_per_pixel = 20\n", ":25: simulation.samples_per_pixel: got samples_per_pixel 20 with 8 batches, want a multiple, such as 24"},
+		{"photons", "", "[simulation]\nphotons = 7\n", ":25: simulation.photons: got 7 with 8 batches, want at least one a batch, usually thousands, or 0 to leave mirrored sunlight out"},
+		{"photons below none", "", "[simulation]\nphotons = -1\n", ":25: simulation.photons: got -1, want a whole number, 0 to 16777216"},
 		{"criteria", "", "[criteria]\nglare = \"low\"\n", ":25: criteria.glare: got \"low\", want \"minimum\", \"medium\", \"high\" or \"none\""},
 		// paths
 		{"leaves the root", `"a.stl"`, `"../../a.stl"`, ":4: mesh.file: got \"../../a.stl\", which leaves the folder that the project may read; move the file into it, or start from a folder further up"},
@@ -80,11 +82,11 @@ func TestProblems(t *testing.T) {
 		{"name with a line break", `name = "v"`, `name = "v\nw"`, ":21: viewpoint.name: got \"v\\nw\", want a name of printable characters"},
 		{"not glazing", `glazing = "clear"`, `glazing = "white"`, ":19: opening.glazing: got \"white\", which is of type \"matte\", want a finish of type \"glazing\""},
 		// finishes
-		{"finish type", `type = "matte"`, `type = "mate"`, ":10: finish.type: got \"mate\", want \"matte\", \"mirror\" or \"glazing\"; did you mean \"matte\"?"},
+		{"finish type", `type = "matte"`, `type = "mate"`, ":10: finish.type: got \"mate\", want \"matte\", \"mirror\", \"glossy\", \"glazing\", \"diffuser\", \"cloth\" or \"perforated\"; did you mean \"matte\"?"},
 		{"key of another type", "reflectance = 0.7", "reflectance = 0.7\npanes = 2", ":12: finish.panes: no key of type \"matte\" but of \"glazing\"; want name, type, reflectance, back"},
 		{"mirror", "", "[[finish]]\nname = \"m\"\ntype = \"mirror\"\nspecular_reflectance = 0.9\ndiffuse_reflectance = 0.2\n", ":27: finish.specular_reflectance: got 0.9 and diffuse_reflectance 0.2, together 1.1, want at most 1"},
 		{"own back", "reflectance = 0.7", "reflectance = 0.7\nback = \"white\"", ":12: finish.back: got the finish itself; leave it out where both sides are alike"},
-		{"glazing back", "reflectance = 0.7", "reflectance = 0.7\nback = \"clear\"", ":12: finish.back: got \"clear\", which is of type \"glazing\", want a finish of type \"matte\" or \"mirror\""},
+		{"glazing back", "reflectance = 0.7", "reflectance = 0.7\nback = \"clear\"", ":12: finish.back: got \"clear\", which is of type \"glazing\", want a finish of type \"matte\", \"mirror\" or \"glossy\""},
 		{"back with a back", "", "[[finish]]\nname = \"a\"\ntype = \"matte\"\nreflectance = 0\nback = \"b\"\n[[finish]]\nname = \"b\"\ntype = \"matte\"\nreflectance = 0\nback = \"white\"\n", ":28: finish.back: got \"b\", which has a back of its own; want a finish without"},
 		{"no transmittance", "transmittance = 0.8\n", "", ":12: finish.transmittance: missing; want 0 to 1, or a table"},
 		{"table and transmittance", "transmittance = 0.8", "transmittance = 0.8\ntable = [[0, 1, 0], [90, 0, 1]]", ":16: finish.table: got transmittance too; want one of the two"},
@@ -103,8 +105,16 @@ func TestProblems(t *testing.T) {
 		{"no depth", "", strings.Replace(shelf, "0.5", "0", 1), ":28: light_shelf.outside_depth_m: got no outside_depth_m and no inside_depth_m above 0; want at least one of them"},
 		{"shelf above the opening", "", strings.Replace(shelf, "height_m = 1", "height_m = 1.6", 1), ":27: light_shelf.height_m: got 1.6 m, want -1 m to the opening's height, 1.5 m"},
 		{"shelf far below", "", strings.Replace(shelf, "height_m = 1", "height_m = -1.1", 1), ":27: light_shelf.height_m: got -1.1, want -1 to 20"},
-		{"shelf of glass", "", strings.Replace(shelf, `top = "white"`, `top = "clear"`, 1), ":29: light_shelf.top: got \"clear\", which is of type \"glazing\", want a finish of type \"matte\" or \"mirror\""},
+		{"shelf of glass", "", strings.Replace(shelf, `top = "white"`, `top = "clear"`, 1), ":29: light_shelf.top: got \"clear\", which is of type \"glazing\", want a finish of type \"matte\", \"mirror\", \"glossy\" or \"perforated\""},
 		{"roller", "", strings.Replace(roller, "0.5", "0.9", 1), ":27: roller.openness: got 0.05, diffuse_transmittance 0.1 and reflectance 0.9, together 1.05, want at most 1"},
+		{"roller of nothing", "", "[[roller]]\nname = \"r\"\nopening = \"south\"\n", ":24: roller.cloth: missing; want a finish's name in quotes, or the single numbers openness, diffuse_transmittance and reflectance"},
+		{"roller of half", "", strings.Replace(roller, "reflectance = 0.5\n", "", 1), ":24: roller.reflectance: missing; want 0 to 1"},
+		{"roller of both", "", roller + "cloth = \"white\"\n", ":30: roller.cloth: got openness too; want either the cloth's finish or the single numbers"},
+		{"roller with a cut-off and a cloth", "", "[[roller]]\nname = \"r\"\nopening = \"south\"\ncloth = \"c\"\ncut_off_deg = 60\n[[finish]]\nname = \"c\"\ntype = \"diffuser\"\ndiffuse_transmittance = 0\nreflectance = 0\n", ":27: roller.cloth: got cut_off_deg too; want either the cloth's finish or the single numbers"},
+		{"roller of unknown cloth", "", "[[roller]]\nname = \"r\"\nopening = \"south\"\ncloth = \"cleer\"\n", ":27: roller.cloth: got \"cleer\", want the name of a finish; did you mean \"clear\"?"},
+		{"roller of glass", "", "[[roller]]\nname = \"r\"\nopening = \"south\"\ncloth = \"clear\"\n", ":27: roller.cloth: got \"clear\", which is of type \"glazing\", want a finish of type \"cloth\", \"diffuser\" or \"perforated\""},
+		{"roller's back", "", roller + "back_reflectance = 0.9\n", ":27: roller.openness: got 0.05, diffuse_transmittance 0.1 and back_reflectance 0.9, together 1.05, want at most 1"},
+		{"roller's cut-off", "", roller + "cut_off_deg = 0\n", ":30: roller.cut_off_deg: got 0, want 1 to 90"},
 		{"second roller", "", roller + strings.Replace(roller, `"r"`, `"q"`, 1), ":32: roller.opening: got a second roller inside of opening \"south\"; want one on each side at most"},
 		{"roller through a shelf", "", roller + strings.Replace(shelf, "outside_depth", "inside_depth", 1), ":24: roller.drop: got 1, which reaches the shelf, whose top is 1 m above the opening's lower edge at the cloth; want at most 0.333, or a gap larger than the shelf's reach"},
 		// receivers
@@ -116,25 +126,30 @@ func TestProblems(t *testing.T) {
 		{"two points", "", strings.Replace(plane, ", [4, 4], [0, 4]", "", 1), ":26: work_plane.polygon_m: got 2 points, want 3 to 1000"},
 		{"spacing", "", plane + "spacing_m = 0.001\n", ":27: work_plane.spacing_m: got 0.001, want 0 or at least 0.02"},
 	} {
-		t.Run(c.name, func(t *testing.T) {
-			text := minimal + c.new
-			if c.old != "" {
-				if strings.Count(minimal, c.old) < 1 {
-					t.Fatalf("the minimal project holds no %q", c.old)
-				}
-				text = strings.Replace(minimal, c.old, c.new, 1)
-			}
-			_, err := load(t, text)
-			if err == nil {
-				t.Fatal("got no problem")
-			}
-			want := "dir/office.toml" + strings.ReplaceAll(c.want, "\n", "\ndir/office.toml")
-			// Of the parser's own words and of long lists only the start is ours.
-			open := strings.HasSuffix(c.want, ": ")
-			if got := err.Error(); got != want && !(open && strings.HasPrefix(got, want) && len(got) > len(want)) {
-				t.Errorf("\n got %s\nwant %s", got, want)
-			}
-		})
+		t.Run(c.name, func(t *testing.T) { wantProblem(t, c.old, c.new, c.want) })
+	}
+}
+
+// wantProblem changes the minimal project, old to new, or appends new where
+// old is "", and wants these problems, given without the file's name.
+func wantProblem(t *testing.T, old, new, want string) {
+	t.Helper()
+	text := minimal + new
+	if old != "" {
+		if strings.Count(minimal, old) < 1 {
+			t.Fatalf("the minimal project holds no %q", old)
+		}
+		text = strings.Replace(minimal, old, new, 1)
+	}
+	_, err := load(t, text)
+	if err == nil {
+		t.Fatal("got no problem")
+	}
+	full := "dir/office.toml" + strings.ReplaceAll(want, "\n", "\ndir/office.toml")
+	// Of the parser's own words and of long lists only the start is ours.
+	open := strings.HasSuffix(want, ": ")
+	if got := err.Error(); got != full && !(open && strings.HasPrefix(got, full) && len(got) > len(full)) {
+		t.Errorf("\n got %s\nwant %s", got, full)
 	}
 }
 

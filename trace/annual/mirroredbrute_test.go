@@ -32,7 +32,8 @@ type bruteShelf struct {
 	m       *scene.Moment
 	profile mirroredProfile
 	radii   []float64 // half-angles of the widened discs
-	strips  []int     // directions drawn for each disc at a path's first point
+	strips  []int     // directions drawn for each disc at each point of a path
+	first   bool      // at a path's first point as well
 }
 
 // value is light from sky and directly from the sun, then by way of the mirror
@@ -71,13 +72,17 @@ func (b *bruteShelf) bounce(org, dir r3.Vec) (h trace.Hit, out r3.Vec, passed fl
 
 // mirrored adds scale times the widened suns' illuminance by the mirror on plane
 // n at p.
-func (b *bruteShelf) mirrored(p, n r3.Vec, scale float64, first bool, s *sampling.Stream, out value) {
+func (b *bruteShelf) mirrored(p, n r3.Vec, scale float64, s *sampling.Stream, out value) {
+	low := math.Inf(1)
+	for _, v := range b.profile {
+		low = math.Min(low, v.Z)
+	}
+	if p.Z <= low {
+		return // only the underside is seen from below
+	}
 	lo, hi := b.wedge(p)
 	for k, r := range b.radii {
 		count := b.strips[k]
-		if !first {
-			count = (count + 7) / 8
-		}
 		sin := math.Sin(r)
 		lum := b.m.SunNormalLx / (math.Pi * sin * sin)
 		for i := range count {
@@ -108,7 +113,9 @@ func (b *bruteShelf) illuminance(p, n r3.Vec, s *sampling.Stream, out value) {
 				out[0] += scale * b.m.SunNormalLx * cos * tr
 			}
 		}
-		b.mirrored(p, n, scale, depth == 0, s, out)
+		if depth > 0 || b.first {
+			b.mirrored(p, n, scale, s, out)
+		}
 		h, dir, passed, hit := b.bounce(p, trace.CosineDirection(n, s.Float64(), s.Float64()))
 		if !hit {
 			if dir.Z > 0 {
@@ -192,45 +199,59 @@ func (b *bruteShelf) picture(v view.View, batches, samples, radius int, seed uin
 			out.mean[i] += img[i] / float32(batches)
 		}
 	}
-	out.discs = b.images(v)
+	out.discs = b.images(v.Position, v.Direction)
 	return out
 }
 
-// images is what the eye sees of the true disc in the mirror, taken as one
-// source: a fine grid of lines of sight over the wedge of the shelf.
-func (b *bruteShelf) images(v view.View) []annual.Disc {
-	lo, hi := b.wedge(v.Position)
-	sin := math.Sin(photometry.SunDiameterRad / 2)
-	const across = 64
-	along := int((hi - lo) / 2e-5)
-	cell := 2 * sin / across * (hi - lo) / float64(along)
-	sums := make([]annual.Disc, along)
-	inParallel(along, func(i int) {
-		d := &sums[i]
-		for j := range across {
-			u := b.m.Sun.X + sin*(2*(float64(j)+.5)/across-1)
-			sp, cp := math.Sincos(lo + (hi-lo)*(float64(i)+.5)/float64(along))
-			c := math.Sqrt(1 - u*u)
-			dir := r3.Vec{X: u, Y: -c * cp, Z: c * sp}
-			if _, last, passed, hit := b.bounce(v.Position, dir); !hit && passed < 1 && r3.Dot(last, b.m.Sun) >= math.Cos(photometry.SunDiameterRad/2) {
-				d.OmegaSr += cell
-				d.Luminance += cell * passed
-				d.Dir = r3.Add(d.Dir, r3.Scale(cell*passed, dir))
-			}
+// images is what a point sees of the true disc in the mirror, taken as one
+// source: a fine grid of lines of sight over the part of the wedge in which a
+// coarse one, a tenth of the smallest image here apart, finds it.
+func (b *bruteShelf) images(p, facing r3.Vec) []annual.Disc {
+	const coarse, across, along = 1e-4, 64, 4000
+	lo, hi := b.wedge(p)
+	first, last := math.Inf(1), math.Inf(-1)
+	for psi := lo; psi < hi; psi += coarse {
+		if b.sees(p, psi, 8).OmegaSr > 0 {
+			first, last = math.Min(first, psi), math.Max(last, psi)
 		}
-	})
-	var all annual.Disc
-	for i := range sums {
-		all.OmegaSr += sums[i].OmegaSr
-		all.Luminance += sums[i].Luminance
-		all.Dir = r3.Add(all.Dir, sums[i].Dir)
 	}
-	if all.OmegaSr == 0 || r3.Dot(all.Dir, v.Direction) <= 0 {
+	if first > last {
+		return nil
+	}
+	lo, hi = first-2*coarse, last+2*coarse
+	sums := make([]annual.Disc, along)
+	inParallel(along, func(i int) { sums[i] = b.sees(p, lo+(hi-lo)*(float64(i)+.5)/along, across) })
+	var all annual.Disc
+	for _, d := range sums {
+		all.OmegaSr += d.OmegaSr * (hi - lo) / along
+		all.Luminance += d.Luminance * (hi - lo) / along
+		all.Dir = r3.Add(all.Dir, d.Dir)
+	}
+	if all.OmegaSr == 0 || r3.Dot(all.Dir, facing) <= 0 {
 		return nil
 	}
 	all.Dir = r3.Unit(all.Dir)
 	all.Luminance *= photometry.DiscLuminance(b.m.SunNormalLx, photometry.SunDiameterRad) / all.OmegaSr
 	return []annual.Disc{all}
+}
+
+// sees integrates, over the axis of the shelf, what p sees of the disc at angle
+// psi of the wedge: solid angle by radian, the same times the share the mirror
+// leaves, and its direction.
+func (b *bruteShelf) sees(p r3.Vec, psi float64, across int) (d annual.Disc) {
+	sin := math.Sin(photometry.SunDiameterRad / 2)
+	sp, cp := math.Sincos(psi)
+	for j := range across {
+		u := b.m.Sun.X + sin*(2*(float64(j)+.5)/float64(across)-1)
+		c := math.Sqrt(1 - u*u)
+		dir := r3.Vec{X: u, Y: -c * cp, Z: c * sp}
+		if _, out, passed, hit := b.bounce(p, dir); !hit && passed < 1 && r3.Dot(out, b.m.Sun) >= math.Cos(photometry.SunDiameterRad/2) {
+			d.OmegaSr += 2 * sin / float64(across)
+			d.Luminance += 2 * sin / float64(across) * passed
+			d.Dir = r3.Add(d.Dir, r3.Scale(passed, dir))
+		}
+	}
+	return d
 }
 
 // inParallel works on 0 to n-1 with two goroutines.
@@ -273,7 +294,7 @@ func TestBruteShelfPlane(t *testing.T) {
 		for i := range n {
 			s := sampling.Stream3(7, uint64(i), uint64(k))
 			out := make(value, 5)
-			b.mirrored(r3.Vec{X: 1.8, Y: .86, Z: 2.799}, r3.Vec{Z: -1}, 1, true, &s, out)
+			b.mirrored(r3.Vec{X: 1.8, Y: .86, Z: 2.799}, r3.Vec{Z: -1}, 1, &s, out)
 			a.add(out[1+k])
 		}
 		want := 50 * .9 * math.Sin(deg(40))
