@@ -103,13 +103,16 @@ func (t *Tracer) land(l Landing, scale, throughput float64, depth int, s *sampli
 		}
 		p := t.world.Offset(l.Hit.Point, n)
 		t.sun(p, n, scale*throughput*l.Weight*m/math.Pi, s, out)
-		dir, over := t.scatter(p, n, s)
-		next := throughput * l.Weight * m * over
+		// Roulette before the direction is drawn: a ray aimed at an opening has
+		// little weight and must still be let see the sky.
+		next := throughput * l.Weight * m
 		keep := math.Min(0.95, next)
 		if keep <= 0 || s.Float64() >= keep {
 			continue
 		}
-		t.follow(p, dir, scale, next/keep, depth+1, 0, s, out)
+		if dir, over := t.scatter(p, n, s); over > 0 {
+			t.follow(p, dir, scale, next/keep*over, depth+1, 0, s, out)
+		}
 	}
 }
 

@@ -91,10 +91,12 @@ func TestSides(t *testing.T) {
 // TestTracerFurnace: in a closed shell that lets tau through from luminance 1
 // outside and reflects rho, the luminance is tau/(1-rho) everywhere (exact, L
 // = tau + rho L). Limit 3.6 standard errors for 12 cases. The twin holds the same
-// samples against a value 5 % off.
+// samples against a value 5 % off. With 40,000 samples one case (rho 0.2, point
+// 3) stood at z = -3.61; the same stream's first 2,000,000 give 0.9993 +- 0.0004,
+// so that was chance, and the number of samples was raised, not the seed changed.
 func TestTracerFurnace(t *testing.T) {
 	const limit = 3.6
-	n := 40000
+	n := 160000
 	if testing.Short() {
 		n = 8000
 	}
