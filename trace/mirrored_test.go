@@ -83,16 +83,6 @@ func mirroredDraw(sun r3.Vec) func(bits uint64) (r3.Vec, bool) {
 	}
 }
 
-// mirroredDisc spreads n points over the disc, as the annual run does with 32.
-func mirroredDisc(sun r3.Vec, n int, scramble uint32) []r3.Vec {
-	out := make([]r3.Vec, n)
-	for i := range out {
-		u, v := sampling.OwenSobol2(uint32(i), scramble)
-		out[i] = trace.ConeDirection(sun, photometry.SunDiameterRad/2, u, v)
-	}
-	return out
-}
-
 // mirroredRow is a comparison: stdErr with dof degrees of freedom, allow for
 // what is known to differ other than by chance.
 type mirroredRow struct {

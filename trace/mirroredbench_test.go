@@ -35,17 +35,15 @@ func BenchmarkMirroredFind(b *testing.B) {
 	mirroredTrough{1.85, false}.mesh(m, .9, 18.9*math.Pi/180, .1*math.Pi/180, 0, 1.6)
 	w := m.world()
 	sun := mirroredSun(40, 0)
-	dirs := mirroredDisc(sun, 32, 1)
 	for _, c := range []struct {
 		name string
 		eye  r3.Vec
 	}{{"above", r3.Vec{Y: 3 * -sun.Y, Z: 3 * sun.Z}}, {"below", r3.Vec{Y: 4, Z: -.8}}} {
 		b.Run(c.name, func(b *testing.B) {
-			f := w.NewImageFinder(c.eye)
 			var out []trace.Image
 			b.ResetTimer()
 			for range b.N {
-				out = f.Find(sun, dirs, seen, out[:0])
+				out = w.Images(c.eye, sun, aboveAll, out[:0])
 			}
 			b.ReportMetric(float64(len(out)), "images")
 		})

@@ -69,16 +69,17 @@ func (w *World) portalsSeen(p, n r3.Vec, ps *Portals) {
 // Empty reports that no opening is worth sampling.
 func (ps *Portals) Empty() bool { return len(ps.rects) == 0 }
 
-// Sample draws a unit direction from p through one of the openings.
-func (ps *Portals) Sample(p r3.Vec, s *sampling.Stream) r3.Vec {
-	u := s.Float64()
+// Sample maps the unit square to unit directions from p through the openings:
+// u picks the opening and the place across it, v the height, so that
+// stratified u and v give stratified directions.
+func (ps *Portals) Sample(p r3.Vec, u, v float64) r3.Vec {
 	k := 0
 	for k < len(ps.share)-1 && u >= ps.share[k] {
 		u -= ps.share[k]
 		k++
 	}
 	r := &ps.rects[k]
-	a, b := s.Float64()*r.WidthM, s.Float64()*r.HeightM
+	a, b := math.Min(u/ps.share[k], 1)*r.WidthM, v*r.HeightM
 	q := r3.Add(r.Origin, r3.Add(r3.Scale(a, r.Across), r3.Scale(b, r.Up)))
 	return r3.Unit(r3.Sub(q, p))
 }
@@ -106,6 +107,9 @@ func (ps *Portals) PDF(p, dir r3.Vec) float64 {
 	return pdf
 }
 
+// golden is the fractional part of the golden ratio.
+const golden = 0.6180339887498949
+
 // Gather draws nCos cosine-distributed and nPortal portal directions from the
 // element at p with unit normal n and walks each. The sum over the found
 // luminances times weights estimates the element's illuminance:
@@ -115,16 +119,17 @@ func (w *World) Gather(p, n r3.Vec, ps *Portals, nCos, nPortal int, s *sampling.
 		nCos, nPortal = nCos+nPortal, 0
 	}
 	org := w.Offset(p, n)
-	rot := s.Float64()
+	rotCos, rotPortal := s.Float64(), s.Float64()
 	for i := 0; i < nCos+nPortal; i++ {
+		// Stratified along one axis, a golden-ratio rotation on the other.
 		var dir r3.Vec
 		if i < nCos {
-			// Stratified along one axis, a golden-ratio rotation on the other.
 			u := (float64(i) + s.Float64()) / float64(nCos)
-			v := math.Mod(rot+float64(i)*0.6180339887498949, 1)
-			dir = CosineDirection(n, u, v)
+			dir = CosineDirection(n, u, math.Mod(rotCos+float64(i)*golden, 1))
 		} else {
-			dir = ps.Sample(p, s)
+			k := float64(i - nCos)
+			u := (k + s.Float64()) / float64(nPortal)
+			dir = ps.Sample(p, u, math.Mod(rotPortal+k*golden, 1))
 		}
 		cos := r3.Dot(dir, n)
 		if cos <= 0 {

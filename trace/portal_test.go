@@ -121,7 +121,7 @@ func TestPortalDensity(t *testing.T) {
 		var drawn, density [bins*bins + 1]tally
 		s := sampling.Stream2(uint64(i), 7)
 		for range n {
-			d := ps.Sample(sn.Position, &s)
+			d := ps.Sample(sn.Position, s.Float64(), s.Float64())
 			u := sampling.UniformSphere(s.Float64(), s.Float64())
 			f := 4 * math.Pi * ps.PDF(sn.Position, u)
 			kd, ku := bin(d), bin(u)

@@ -15,34 +15,22 @@ import (
 // mirror is a fine mesh.
 type specular struct {
 	facets []facet
-	groups []orientation
-	group  []int32 // triangle -> group, -1 where it does not mirror
 }
 
 type facet struct {
 	prim   int32
 	areaM2 float64
+	centre r3.Vec
+	radius float64 // of the sphere about centre that holds the facet
+	sharp  bool
 	gloss  bool
 	pane   bool // passes light straight as well
 }
 
-// orientation gathers the sharply mirroring facets of one normal: the sun has
-// one image in all of them.
-type orientation struct {
-	normal r3.Vec
-	facets []int32 // indices into facets
-}
-
-// sameNormal is the cosine above which two facets share an image: 0.003
-// degrees, a hundredth of the sun's radius.
-const sameNormal = 1 - 1.4e-9
-
 func (w *World) findSpecular() {
 	sp := &w.specular
-	sp.group = make([]int32, len(w.tris))
 	kinds := map[int32][2]bool{}
 	for i := range w.tris {
-		sp.group[i] = -1
 		k, ok := kinds[w.tris[i].finish]
 		if !ok {
 			k = mirrors(w.tris[i].bsdf)
@@ -54,26 +42,13 @@ func (w *World) findSpecular() {
 		}
 		v := &w.Scene.Triangles[i].V
 		area := 0.5 * r3.Norm(r3.Cross(r3.Sub(v[1], v[0]), r3.Sub(v[2], v[0])))
-		f := int32(len(sp.facets))
-		sp.facets = append(sp.facets, facet{prim: int32(i), areaM2: area, gloss: gloss, pane: passesStraight(w.tris[i].bsdf)})
-		if sharp {
-			sp.group[i] = sp.groupOf(w.normal[i])
-			g := &sp.groups[sp.group[i]]
-			g.facets = append(g.facets, f)
+		centre := r3.Scale(1.0/3, r3.Add(v[0], r3.Add(v[1], v[2])))
+		radius := 0.0
+		for _, c := range v {
+			radius = math.Max(radius, r3.Norm(r3.Sub(c, centre)))
 		}
+		sp.facets = append(sp.facets, facet{prim: int32(i), areaM2: area, centre: centre, radius: radius, sharp: sharp, gloss: gloss, pane: passesStraight(w.tris[i].bsdf)})
 	}
-}
-
-// groupOf finds or adds the orientation of a normal; opposite normals mirror
-// alike.
-func (sp *specular) groupOf(n r3.Vec) int32 {
-	for i := len(sp.groups) - 1; i >= 0; i-- {
-		if math.Abs(r3.Dot(sp.groups[i].normal, n)) >= sameNormal {
-			return int32(i)
-		}
-	}
-	sp.groups = append(sp.groups, orientation{normal: n})
-	return int32(len(sp.groups) - 1)
 }
 
 func mirrors(b materials.BSDF) (kind [2]bool) {
@@ -217,8 +192,12 @@ func (p *Photons) follow(h *Hit, dir r3.Vec, flux float64, first bool, s *sampli
 		if sum <= 0 {
 			return
 		}
-		// Roulette keeps the flux as it is wherever it can.
+		// The first facet was chosen by what it mirrors, so its share weighs the
+		// flux; after that roulette keeps the flux as it is wherever it can.
 		keep := math.Min(1, sum)
+		if first {
+			keep = 1
+		}
 		u := s.Float64()
 		if u >= keep {
 			return

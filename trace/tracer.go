@@ -128,7 +128,7 @@ func (t *Tracer) scatter(p, n r3.Vec, s *sampling.Stream) (dir r3.Vec, over floa
 	if s.Float64() < 0.5 {
 		dir = CosineDirection(n, s.Float64(), s.Float64())
 	} else {
-		dir = t.portals.Sample(p, s)
+		dir = t.portals.Sample(p, s.Float64(), s.Float64())
 	}
 	cos := r3.Dot(dir, n)
 	if cos <= 0 {

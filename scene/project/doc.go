@@ -5,8 +5,9 @@
 // the sources of the defaults stand in one place, the key tables in
 // keys.go and keys_*.go; validation, Defaults and the JSON Schema are all
 // made from these. Keys carry their unit (depth_m, tilt_deg); lengths are in
-// metres, angles in degrees, azimuths clockwise from north, z is up, and
-// model +y is north unless north_deg says otherwise.
+// metres, those of perforated sheet in millimetres, angles in degrees,
+// azimuths clockwise from north, z is up, and model +y is north unless
+// north_deg says otherwise.
 //
 // Load reports every problem at once as Problems, ordered by line. It does
 // not open the mesh and weather files that the project names.

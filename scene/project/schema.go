@@ -1,7 +1,7 @@
 package project
 
 // Project is one project file, read, checked and completed with defaults.
-// Lengths are in metres, angles in degrees as written in the file; every
+// Lengths are in metres unless named MM, angles in degrees as in the file; every
 // azimuth is a compass azimuth, clockwise from north. The fields named Line
 // hold the line on which the item's table starts.
 type Project struct {

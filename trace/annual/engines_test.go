@@ -60,7 +60,7 @@ type effort struct {
 // What the program uses for sensors and for texels.
 const (
 	sensorPatchFactor = 2
-	texelPatchFactor  = 1
+	texelPatchFactor  = 2
 )
 
 // fineTexels is a division at which the texels' patches cost less than 0.3 % of

@@ -65,7 +65,7 @@ func (w *worker) see(bl *surface.Block, b block, eye int, lit []uint64) {
 			f.Mean[px] = sum * inv
 			f.Sunlit[px] = s.sunlit[p][h] * inv
 		}
-		f.Discs = w.discs(f.Discs[:0], e, eye, m, &bl.Sun[h])
+		f.Discs = w.discs(f.Discs[:0], e, m, &bl.Sun[h])
 		w.sink(w.number, f)
 	}
 }
@@ -157,7 +157,7 @@ func (w *worker) shine(bl *surface.Block, x *coeff.ShineSample, random *[surface
 // discs looks for the sun's own disc and its images from the eye. What is
 // opaque takes from the solid angle; mirrors, glass and cloth take from the
 // luminance.
-func (w *worker) discs(out []Disc, e *coeff.Eye, eye int, m *scene.Moment, rays *surface.SunRays) []Disc {
+func (w *worker) discs(out []Disc, e *coeff.Eye, m *scene.Moment, rays *surface.SunRays) []Disc {
 	if rays.NormalLx <= 0 {
 		return out
 	}
@@ -178,7 +178,7 @@ func (w *worker) discs(out []Disc, e *coeff.Eye, eye int, m *scene.Moment, rays 
 		}
 	}
 	first := len(out)
-	w.images = w.finderOf(eye, e.View.Position).Find(m.Sun, rays.Dirs(), rays.Visible, w.images[:0])
+	w.images = w.t.World.Images(e.View.Position, m.Sun, w.t.Hidden, w.images[:0])
 	for _, im := range w.images {
 		if im.Share > 0 && r3.Dot(im.Dir, e.View.Direction) > 0 {
 			out = append(out, Disc{Dir: im.Dir, OmegaSr: full * im.Share, Luminance: lum * im.Luminous, Mirror: im.Part, Via: im.Via})
@@ -187,39 +187,47 @@ func (w *worker) discs(out []Disc, e *coeff.Eye, eye int, m *scene.Moment, rays 
 	return merge(out, first)
 }
 
-// finderOf makes the image finder of an eye, or of sensor k as len(Eyes)+k.
-func (w *worker) finderOf(k int, p r3.Vec) *trace.ImageFinder {
-	if w.finder[k] == nil {
-		w.finder[k] = w.t.World.NewImageFinder(p)
-	}
-	return w.finder[k]
-}
-
 // mergeWithin is the angle within which images in the same mirror are one
-// source: neighbouring facets of a curved mirror show parts of one glare.
-const mergeWithin = 1.1 * photometry.SunDiameterRad
+// source: neighbouring facets of a curved mirror show parts of one glare. It is
+// the angle at which glare groups bright pixels, an own choice like that.
+const mergeWithin = 4 * math.Pi / 180
 
-// merge joins images (from index first on) that touch: solid angles add up,
-// flux is kept. In order, so the result is the same on every run.
+// merge joins images (from index first on) in one mirror that touch, directly
+// or by way of others: solid angles add up, flux is kept. In order, so the
+// result is the same on every run.
 func merge(d []Disc, first int) []Disc {
-	for i := first; i < len(d); i++ {
-		for k := i + 1; k < len(d); {
-			if d[i].Mirror != d[k].Mirror || r3.Dot(d[i].Dir, d[k].Dir) < math.Cos(mergeWithin) {
-				k++
-				continue
+	images := append([]Disc(nil), d[first:]...)
+	out := d[:first]
+	taken := make([]bool, len(images))
+	var queue []int
+	for i := range images {
+		if taken[i] {
+			continue
+		}
+		taken[i] = true
+		queue = append(queue[:0], i)
+		sum := Disc{Mirror: images[i].Mirror, Via: images[i].Via}
+		var flux float64
+		for len(queue) > 0 {
+			k := queue[0]
+			queue = queue[1:]
+			im := &images[k]
+			sum.OmegaSr += im.OmegaSr
+			flux += im.OmegaSr * im.Luminance
+			sum.Dir = r3.Add(sum.Dir, r3.Scale(im.OmegaSr*im.Luminance, im.Dir))
+			for j := range images {
+				if !taken[j] && images[j].Mirror == im.Mirror && r3.Dot(images[j].Dir, im.Dir) >= math.Cos(mergeWithin) {
+					taken[j] = true
+					queue = append(queue, j)
+				}
 			}
-			omega := d[i].OmegaSr + d[k].OmegaSr
-			flux := d[i].OmegaSr*d[i].Luminance + d[k].OmegaSr*d[k].Luminance
-			dir := r3.Add(r3.Scale(d[i].OmegaSr*d[i].Luminance, d[i].Dir), r3.Scale(d[k].OmegaSr*d[k].Luminance, d[k].Dir))
-			if flux > 0 {
-				d[i].Dir, d[i].Luminance = r3.Unit(dir), flux/omega
-			}
-			d[i].OmegaSr = omega
-			d = append(d[:k], d[k+1:]...)
-			k = i + 1
+		}
+		if flux > 0 {
+			sum.Dir, sum.Luminance = r3.Unit(sum.Dir), flux/sum.OmegaSr
+			out = append(out, sum)
 		}
 	}
-	return d
+	return out
 }
 
 func vec(a [3]float32) r3.Vec {

@@ -19,51 +19,63 @@ const (
 // sensors reads every sensor against the solved block.
 func (w *worker) sensors(bl *surface.Block, b block, d *Daylight) {
 	batches := len(w.lights)
+	e := make([]surface.Row, batches)
 	for i, s := range w.r.Sensors {
-		var sum, square, direct surface.Row
+		var direct surface.Row
 		images := w.imagesOn(bl, i)
 		for batch := range w.lights {
-			var e surface.Row
-			bl.Gather(&w.r.Rows[batch], &w.lights[batch], i, &e)
+			row := &e[batch]
+			bl.Gather(&w.r.Rows[batch], &w.lights[batch], i, row)
 			for h, m := range bl.Moments {
 				if bl.Sun[h].NormalLx > 0 {
 					sun := w.sunOn(s.Position, s.Normal, &bl.Sun[h], i, m.Hour, batch)
-					e[h] += sun
+					row[h] += sun
 					direct[h] += sun
 				}
 			}
 			if w.r.Shines != nil {
-				w.sensorShine(bl, i, batch, &e)
+				w.sensorShine(bl, i, batch, row)
 			}
-			for h := range e {
-				e[h] += images[h]
-				sum[h] += e[h]
-				square[h] += e[h] * e[h]
+			for h := range row {
+				row[h] += images[h]
 			}
 		}
-		n := float32(batches)
 		for h, k := range b {
-			mean := sum[h] / n
-			d.E[i][k] = mean
-			d.Direct[i][k] = direct[h] / n
-			if batches > 1 {
-				v := (square[h]/n - mean*mean) / (n - 1)
-				d.StdErr[i][k] = float32(math.Sqrt(math.Max(0, float64(v))))
-			}
+			mean, se := meanAndError(e, h)
+			d.E[i][k], d.StdErr[i][k] = float32(mean), float32(se)
+			d.Direct[i][k] = direct[h] / float32(batches)
 		}
 	}
+}
+
+// meanAndError of entry h over batches, and the standard error of the mean;
+// two passes in float64, since the batches may agree to many digits.
+func meanAndError(e []surface.Row, h int) (mean, se float64) {
+	n := float64(len(e))
+	for b := range e {
+		mean += float64(e[b][h])
+	}
+	mean /= n
+	var square float64
+	for b := range e {
+		d := float64(e[b][h]) - mean
+		square += d * d
+	}
+	if n < 2 {
+		return mean, math.NaN()
+	}
+	return mean, math.Sqrt(square / (n * (n - 1)))
 }
 
 // imagesOn is the sun that mirrors throw straight on sensor i, lx.
 func (w *worker) imagesOn(bl *surface.Block, i int) (e surface.Row) {
 	s := &w.r.Sensors[i]
-	finder := w.finderOf(len(w.r.Eyes)+i, s.Position)
 	for h := range bl.Moments {
 		rays := &bl.Sun[h]
 		if rays.NormalLx <= 0 {
 			continue
 		}
-		w.images = finder.Find(bl.Moments[h].Sun, rays.Dirs(), rays.Visible, w.images[:0])
+		w.images = w.t.World.Images(s.Position, bl.Moments[h].Sun, w.t.Hidden, w.images[:0])
 		for _, im := range w.images {
 			if cos := r3.Dot(im.Dir, s.Normal); cos > 0 {
 				e[h] += float32(rays.NormalLx * im.Share * im.Luminous * cos)

@@ -107,6 +107,10 @@ const (
 // mirrored way are followed.
 const eyeSplit = 1
 
+// rimTries bounds the search for a point of a rim pixel inside the circle: a
+// pixel of which a hundredth is inside is missed with a chance of 1e-9.
+const rimTries = 2000
+
 // TraceEye traces the equidistant hemispherical fisheye of a viewpoint. index
 // numbers the viewpoint for its random streams.
 func TraceEye(t *surface.Transport, v scene.Viewpoint, index int, cfg EyeConfig) (*Eye, error) {
@@ -145,6 +149,10 @@ func TraceEye(t *surface.Transport, v scene.Viewpoint, index int, cfg EyeConfig)
 			for k := range per {
 				u, w := sampling.OwenSobol2(uint32(b*per+k), scramble)
 				dir, ok := vw.Ray(float64(int(px)%cfg.Pixels)+u, float64(int(px)/cfg.Pixels)+w)
+				// A pixel on the rim is the part of it inside the circle.
+				for try := 0; !ok && try < rimTries; try++ {
+					dir, ok = vw.Ray(float64(int(px)%cfg.Pixels)+s.Float64(), float64(int(px)/cfg.Pixels)+s.Float64())
+				}
 				if !ok {
 					continue
 				}

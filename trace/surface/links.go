@@ -249,6 +249,7 @@ const (
 	streamDisc   = 3
 	streamLook   = 4
 	streamPhoton = 5
+	streamDivide = 6
 )
 
 // Compress sorts what was found by texel side and patch and sums equal ones.

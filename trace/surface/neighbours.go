@@ -41,9 +41,7 @@ func (t *Transport) findNeighbours() neighbours {
 					k := key
 					k.u, k.v, k.w = k.u+du, k.v+dv, k.w+dw
 					if id, ok := t.Texels.index[k]; ok {
-						if j := t.active[2*id+side&1]; j > 0 {
-							n.list = append(n.list, j-1)
-						}
+						n.list = t.appendActive(n.list, id, side&1)
 					}
 				}
 			}
@@ -81,6 +79,20 @@ func (t *Transport) findNeighbours() neighbours {
 		}
 	}
 	return n
+}
+
+// appendActive adds the active sides of a cell, all groups of it.
+func (t *Transport) appendActive(list []int32, cell, side int32) []int32 {
+	ids := []int32{cell}
+	if d := t.Texels.divided[cell]; d != nil {
+		ids = d.ids
+	}
+	for _, id := range ids {
+		if j := t.active[2*id+side]; j > 0 {
+			list = append(list, j-1)
+		}
+	}
+	return list
 }
 
 // adjacentPatches holds, by patch, the set of patches that touch it (itself

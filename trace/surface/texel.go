@@ -7,6 +7,7 @@ import (
 	"gonum.org/v1/gonum/spatial/r3"
 
 	"squint/materials"
+	"squint/materials/sampling"
 	"squint/trace"
 )
 
@@ -32,6 +33,11 @@ type Texels struct {
 	pieces []piece
 	first  []int32
 	part   []int32
+	// cellOf and groupAt tell the cell that a texel is of, and which group of
+	// it where a wall divides the cell.
+	cellOf  []int32
+	groupAt []int8
+	divided map[int32]*division
 	// cell holds the cell edge in metres by part.
 	cell []float64
 }
@@ -95,7 +101,10 @@ func Cut(w *trace.World, coarsen float64, factor []float64) *Texels {
 			sum += t.pieces[i].cum
 			t.pieces[i].cum = sum
 		}
+		t.cellOf = append(t.cellOf, int32(k))
 	}
+	t.groupAt = make([]int8, len(t.part))
+	t.divide()
 	return t
 }
 
@@ -114,10 +123,15 @@ func (t *Texels) Len() int { return len(t.part) }
 
 // AreaM2 is the area of texel k.
 func (t *Texels) AreaM2(k int32) float64 {
-	if t.first[k+1] == t.first[k] {
+	c := t.cellOf[k]
+	if t.first[c+1] == t.first[c] {
 		return 0
 	}
-	return t.pieces[t.first[k+1]-1].cum
+	area := t.pieces[t.first[c+1]-1].cum
+	if d := t.divided[c]; d != nil {
+		area *= d.share[t.groupAt[k]]
+	}
+	return area
 }
 
 // Part is the part that texel k belongs to.
@@ -125,6 +139,17 @@ func (t *Texels) Part(k int32) int32 { return t.part[k] }
 
 // At is the texel of a point on a triangle, -1 where none was cut.
 func (t *Texels) At(prim int32, p r3.Vec) int32 {
+	c := t.cellAt(prim, p)
+	if c < 0 {
+		return c
+	}
+	if d := t.divided[c]; d != nil {
+		return d.ids[t.groupOf(d, p, t.world.Normal(prim))]
+	}
+	return c
+}
+
+func (t *Texels) cellAt(prim int32, p r3.Vec) int32 {
 	if id, ok := t.index[t.key(prim, p)]; ok {
 		return id
 	}
@@ -175,6 +200,23 @@ func signed(a int8, x float64) int8 {
 // Sample draws a point uniform over texel k; it returns the point and the
 // front normal there.
 func (t *Texels) Sample(k int32, u, v, pick float64) (p, normal r3.Vec) {
+	c := t.cellOf[k]
+	p, normal = t.sampleCell(c, u, v, pick)
+	d := t.divided[c]
+	if d == nil || t.groupOf(d, p, normal) == int(t.groupAt[k]) {
+		return p, normal
+	}
+	s := sampling.Stream3(streamDivide, math.Float64bits(u), math.Float64bits(v))
+	for range divideTries {
+		p, normal = t.sampleCell(c, s.Float64(), s.Float64(), s.Float64())
+		if t.groupOf(d, p, normal) == int(t.groupAt[k]) {
+			return p, normal
+		}
+	}
+	return d.witness[t.groupAt[k]], normal
+}
+
+func (t *Texels) sampleCell(k int32, u, v, pick float64) (p, normal r3.Vec) {
 	ps := t.pieces[t.first[k]:t.first[k+1]]
 	x := pick * ps[len(ps)-1].cum
 	i := sort.Search(len(ps)-1, func(i int) bool { return ps[i].cum > x })
@@ -187,7 +229,9 @@ func (t *Texels) Sample(k int32, u, v, pick float64) (p, normal r3.Vec) {
 
 // BSDF is the finish of texel k (all its pieces share the part, and almost
 // always the finish; the first piece stands for all).
-func (t *Texels) BSDF(k int32) materials.BSDF { return t.world.BSDF(t.pieces[t.first[k]].prim) }
+func (t *Texels) BSDF(k int32) materials.BSDF {
+	return t.world.BSDF(t.pieces[t.first[t.cellOf[k]]].prim)
+}
 
 func triangleArea(v [3]r3.Vec) float64 {
 	return 0.5 * r3.Norm(r3.Cross(r3.Sub(v[1], v[0]), r3.Sub(v[2], v[0])))

@@ -169,7 +169,7 @@ func TestHitsFindTexels(t *testing.T) {
 // distanceTo bounds the distance from p to texel k by its corners' box.
 func distanceTo(x *Texels, k int32, p r3.Vec) float64 {
 	lo, hi := r3.Vec{X: math.Inf(1), Y: math.Inf(1), Z: math.Inf(1)}, r3.Vec{X: math.Inf(-1), Y: math.Inf(-1), Z: math.Inf(-1)}
-	for i := x.first[k]; i < x.first[k+1]; i++ {
+	for i := x.first[x.cellOf[k]]; i < x.first[x.cellOf[k]+1]; i++ {
 		for _, v := range x.pieces[i].v {
 			lo = r3.Vec{X: math.Min(lo.X, v.X), Y: math.Min(lo.Y, v.Y), Z: math.Min(lo.Z, v.Z)}
 			hi = r3.Vec{X: math.Max(hi.X, v.X), Y: math.Max(hi.Y, v.Y), Z: math.Max(hi.Z, v.Z)}
@@ -186,9 +186,12 @@ func TestTexelSamples(t *testing.T) {
 	x := cut(w, 3)
 	s := sampling.NewStream(8, 1)
 	for k := int32(0); k < int32(x.Len()); k += 17 {
+		if x.divided[x.cellOf[k]] != nil {
+			continue // a part of its cell; see TestDividedCell
+		}
 		var want r3.Vec
 		prev := 0.0
-		for i := x.first[k]; i < x.first[k+1]; i++ {
+		for i := x.first[x.cellOf[k]]; i < x.first[x.cellOf[k]+1]; i++ {
 			want = r3.Add(want, r3.Scale(x.pieces[i].cum-prev, centroid(x.pieces[i].v[:])))
 			prev = x.pieces[i].cum
 		}
@@ -209,5 +212,46 @@ func TestTexelSamples(t *testing.T) {
 				t.Errorf("texel %d, axis %d: mean of samples is %g off the centroid, want within 5 x %g", k, axis, m, se)
 			}
 		}
+	}
+}
+
+// TestDividedCell: a partition without thickness divides the floor's cells
+// beneath it; the two groups' points lie on their own sides, in shares of the
+// cell's area that add up to it.
+func TestDividedCell(t *testing.T) {
+	// A floor of 4 x 4 m, and a sheet that stands on it off the grid's planes.
+	const partitionX = 2.07
+	r := newRoom(t)
+	grey := r.matte(0.5)
+	r.rect(r.part("floor", 0.25), grey, r3.Vec{}, r3.Vec{X: 4}, r3.Vec{Y: 4})
+	r.rect(r.part("partition", 0.25), grey, r3.Vec{X: partitionX}, r3.Vec{Y: 4}, r3.Vec{Z: 2.5})
+	x := cut(r.world(), 1)
+	s := sampling.NewStream(9, 1)
+	divided := 0
+	for c, d := range x.divided {
+		if len(d.ids) != 2 {
+			continue
+		}
+		divided++
+		var area float64
+		side := map[int]float64{}
+		for g, id := range d.ids {
+			area += x.AreaM2(id)
+			for range 50 {
+				p, _ := x.Sample(id, s.Float64(), s.Float64(), s.Float64())
+				at := math.Copysign(1, p.X-partitionX)
+				if side[g] != 0 && side[g] != at {
+					t.Fatalf("cell %d: group %d has points on both sides of the partition", c, g)
+				}
+				side[g] = at
+			}
+		}
+		whole := x.pieces[x.first[c+1]-1].cum
+		if math.Abs(area/whole-1) > 1e-9 {
+			t.Errorf("cell %d: areas of the groups add up to %g, want %g", c, area, whole)
+		}
+	}
+	if divided == 0 {
+		t.Error("no cell is divided by the partition")
 	}
 }

@@ -21,7 +21,7 @@ var topics = []Topic{
 	{"start", "what squint does, and a first check"},
 	{"project", "the project file, key by key"},
 	{"geometry", "room models: formats, units, groups, openings"},
-	{"finishes", "surfaces: matte, mirror, glazing"},
+	{"finishes", "surfaces: from matte walls to glass, cloth and mirrors"},
 	{"systems", "light shelves and roller blinds"},
 	{"weather", "weather files, and the moment each record stands for"},
 	{"criteria", "what is judged, which hours count, and the sources"},

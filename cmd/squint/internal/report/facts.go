@@ -19,7 +19,7 @@ const mirrorCaution = "mirrors throw the sun where it is not expected, and curve
 // cautions are dangers that no metric here covers.
 func cautions(p *project.Project) []string {
 	for _, f := range p.Finishes {
-		if f.Type == "mirror" {
+		if f.Type == "mirror" || f.Type == "glossy" {
 			return []string{mirrorCaution}
 		}
 	}

@@ -99,10 +99,10 @@ func criteriaText(c project.Criteria) string {
 // settingsText states every value that does not belong to one of many parts.
 func settingsText(p *project.Project) string {
 	s := p.Simulation
-	return fmt.Sprintf("use %s, %s to %s h%s; north_deg %s; ground reflectance %s; seed %d, batches %d, fisheye_pixels %d, samples_per_pixel %d, sensor_samples %d, texel_m %s, texel_samples %d, memory_mib %d",
+	return fmt.Sprintf("use %s, %s to %s h%s; north_deg %s; ground reflectance %s; seed %d, batches %d, fisheye_pixels %d, samples_per_pixel %d, sensor_samples %d, texel_m %s, texel_samples %d, photons %d, memory_mib %d",
 		daysText(p.Occupancy.Days), decimals(p.Occupancy.FromH, 2), decimals(p.Occupancy.ToH, 2), savingText(p.Occupancy),
 		decimals(p.Site.NorthDeg, 3), groundText(p.Ground), s.Seed, s.Batches, s.FisheyePixels, s.SamplesPerPixel, s.SensorSamples,
-		decimals(s.TexelM, 3), s.TexelSamples, s.MemoryMiB)
+		decimals(s.TexelM, 3), s.TexelSamples, s.Photons, s.MemoryMiB)
 }
 
 func daysText(days [7]bool) string {

@@ -41,7 +41,7 @@ func sample(names ...string) *study.Result {
 		Criteria:   project.Criteria{Glare: "minimum", Provision: "minimum"},
 		Occupancy:  project.Occupancy{Days: [7]bool{true, true, true, true, true}, FromH: 8, ToH: 18},
 		Weather:    project.Weather{File: "site.epw"},
-		Simulation: project.Simulation{Seed: 1, Batches: 8, FisheyePixels: 64, SamplesPerPixel: 16, SensorSamples: 4096, TexelM: 0.2, TexelSamples: 256, MemoryMiB: 1024}}
+		Simulation: project.Simulation{Seed: 1, Batches: 8, FisheyePixels: 64, SamplesPerPixel: 16, SensorSamples: 4096, TexelM: 0.2, TexelSamples: 256, Photons: 4000, MemoryMiB: 1024}}
 	s := &scene.Scene{Project: p, Meshes: []scene.MeshSummary{{File: "office/room.obj", Role: "room", Triangles: 1234, Degenerate: 2, SHA256: "cd34", Bounds: r3.Box{Min: r3.Vec{X: -1}, Max: r3.Vec{X: 3, Y: 8.2, Z: 2.8}}}}}
 	r := &study.Result{Project: p, Scene: s, Climate: c,
 		Notes:    []string{"office/room.obj: 2 triangles without area were left out."},

@@ -53,6 +53,7 @@ type settingsJSON struct {
 	SensorSamples   int    `json:"sensor_samples"`
 	TexelM          number `json:"texel_m"`
 	TexelSamples    int    `json:"texel_samples"`
+	Photons         int    `json:"photons"`
 	MemoryMiB       int    `json:"memory_mib"`
 	TexelSides      int    `json:"texel_sides"`
 	Coarsened       number `json:"texels_coarsened"` // 1: as asked
@@ -105,7 +106,7 @@ func inputs(r *study.Result, o Options, f paths) inputsJSON {
 func settings(r *study.Result) settingsJSON {
 	s, p := r.Project.Simulation, r.Project
 	j := settingsJSON{Seed: s.Seed, Batches: s.Batches, FisheyePixels: s.FisheyePixels, SamplesPerPixel: s.SamplesPerPixel,
-		SensorSamples: s.SensorSamples, TexelM: number(s.TexelM), TexelSamples: s.TexelSamples, MemoryMiB: s.MemoryMiB,
+		SensorSamples: s.SensorSamples, TexelM: number(s.TexelM), TexelSamples: s.TexelSamples, Photons: s.Photons, MemoryMiB: s.MemoryMiB,
 		TexelSides: r.Settings.TexelSides, Coarsened: number(r.Settings.Coarsen), Confidence: number(r.Settings.Confidence),
 		ErrorsViews: number(r.Settings.ZViews), ErrorsSensors: number(r.Settings.ZSensors), Kernel: r.Settings.Kernel, NorthDeg: number(p.Site.NorthDeg),
 		Use: useJSON{daysText(p.Occupancy.Days), number(p.Occupancy.FromH), number(p.Occupancy.ToH), len(p.Occupancy.Holidays),

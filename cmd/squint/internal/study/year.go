@@ -17,16 +17,26 @@ import (
 	"squint/trace/surface"
 )
 
-// sensorPatchFactor divides the sky for sensors: 577 patches. Views use the
-// continuous sky where they see it.
-const sensorPatchFactor = 2
+// patchFactor divides the sky for sensors and texels: 577 patches. With 145 the
+// rear of a deep room under a clear sky loses 2 %. Views use the continuous
+// sky where they see it.
+const patchFactor = 2
 
-// Photons shot from the sun each moment: enough for a year's verdicts where
-// mirrors matter (design study), few where only panes mirror.
-const (
-	mirrorPhotons = 4000
-	panePhotons   = 800
-)
+// paneShare is the part of the photons that is enough where only panes mirror.
+const paneShare = 5
+
+// photons is the number shot from the sun at each moment.
+func photons(in *Input, r *Result) int {
+	sim := in.Project.Simulation
+	switch {
+	case sim.Photons == 0:
+		r.Notes = append(r.Notes, "photons = 0: the sun that mirrors, glossy surfaces and panes throw on other surfaces is left out.")
+		return 0
+	case in.World.Mirrors():
+		return sim.Photons
+	}
+	return max(sim.Photons/paneShare, sim.Batches)
+}
 
 // year is what the engine computed.
 type year struct {
@@ -40,10 +50,7 @@ type year struct {
 func computeYear(ctx context.Context, in *Input, opt Options, r *Result) (*year, error) {
 	sim := in.Project.Simulation
 	cfg := surface.Config{Batches: sim.Batches, Samples: sim.TexelSamples, Seed: sim.Seed, Workers: opt.Workers, Coarsen: 1}
-	cfg.Photons = panePhotons
-	if in.World.Mirrors() {
-		cfg.Photons = mirrorPhotons
-	}
+	cfg.Photons = photons(in, r)
 	for _, v := range in.Scene.Viewpoints {
 		cfg.Receivers = append(cfg.Receivers, v.Position)
 	}
@@ -52,7 +59,7 @@ func computeYear(ctx context.Context, in *Input, opt Options, r *Result) (*year,
 			cfg.Receivers = append(cfg.Receivers, s.Position)
 		}
 	}
-	t := surface.NewTransport(in.World, sky.NewPatches(1), cfg)
+	t := surface.NewTransport(in.World, sky.NewPatches(patchFactor), cfg)
 	// One worker must fit; further ones are added as memory allows, so that
 	// neither texels nor results depend on their number.
 	for estimate := memoryMiB(t, sim.Batches); estimate > float64(sim.MemoryMiB); estimate = memoryMiB(t, sim.Batches) {
@@ -60,7 +67,7 @@ func computeYear(ctx context.Context, in *Input, opt Options, r *Result) (*year,
 		if cfg.Coarsen > 100 {
 			return nil, fmt.Errorf("%s: simulation.memory_mib: got %d, want more: even texels 100 times larger do not fit", in.Project.File, sim.MemoryMiB)
 		}
-		t = surface.NewTransport(in.World, sky.NewPatches(1), cfg)
+		t = surface.NewTransport(in.World, sky.NewPatches(patchFactor), cfg)
 	}
 	if cfg.Coarsen > 1 {
 		r.Warnings = append(r.Warnings, fmt.Sprintf("surfaces are cut %.1f times more coarsely than asked, to fit memory_mib = %d.", cfg.Coarsen, sim.MemoryMiB))
@@ -70,7 +77,7 @@ func computeYear(ctx context.Context, in *Input, opt Options, r *Result) (*year,
 	if err := traceEyes(ctx, in, t, opt, y); err != nil {
 		return nil, err
 	}
-	rec := annual.Receivers{Eyes: y.eyes, Fine: sky.NewPatches(sensorPatchFactor)}
+	rec := annual.Receivers{Eyes: y.eyes, Fine: sky.NewPatches(patchFactor)}
 	for _, w := range in.Scene.WorkPlanes {
 		rec.Sensors = append(rec.Sensors, w.Sensors...)
 	}
