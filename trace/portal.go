@@ -81,7 +81,7 @@ func (ps *Portals) Sample(p r3.Vec, u, v float64) r3.Vec {
 	r := &ps.rects[k]
 	a, b := math.Min(u/ps.share[k], 1)*r.WidthM, v*r.HeightM
 	q := r3.Add(r.Origin, r3.Add(r3.Scale(a, r.Across), r3.Scale(b, r.Up)))
-	return r3.Unit(r3.Sub(q, p))
+	return unit(r3.Sub(q, p))
 }
 
 // PDF is the density of Sample per steradian at unit dir from p.
@@ -110,6 +110,11 @@ func (ps *Portals) PDF(p, dir r3.Vec) float64 {
 // golden is the fractional part of the golden ratio.
 const golden = 0.6180339887498949
 
+func frac(x float64) float64 { return x - math.Floor(x) }
+
+// unit is r3.Unit without its guard against overflow, which costs a hypot.
+func unit(v r3.Vec) r3.Vec { return r3.Scale(1/math.Sqrt(r3.Norm2(v)), v) }
+
 // Gather draws nCos cosine-distributed and nPortal portal directions from the
 // element at p with unit normal n and walks each. The sum over the found
 // luminances times weights estimates the element's illuminance:
@@ -125,11 +130,11 @@ func (w *World) Gather(p, n r3.Vec, ps *Portals, nCos, nPortal int, s *sampling.
 		var dir r3.Vec
 		if i < nCos {
 			u := (float64(i) + s.Float64()) / float64(nCos)
-			dir = CosineDirection(n, u, math.Mod(rotCos+float64(i)*golden, 1))
+			dir = CosineDirection(n, u, frac(rotCos+float64(i)*golden))
 		} else {
 			k := float64(i - nCos)
 			u := (k + s.Float64()) / float64(nPortal)
-			dir = ps.Sample(p, u, math.Mod(rotPortal+k*golden, 1))
+			dir = ps.Sample(p, u, frac(rotPortal+k*golden))
 		}
 		cos := r3.Dot(dir, n)
 		if cos <= 0 {

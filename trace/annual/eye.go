@@ -188,9 +188,8 @@ func (w *worker) discs(out []Disc, e *coeff.Eye, m *scene.Moment, rays *surface.
 }
 
 // mergeWithin is the angle within which images in the same mirror are one
-// source: neighbouring facets of a curved mirror show parts of one glare. It is
-// the angle at which glare groups bright pixels, an own choice like that.
-const mergeWithin = 4 * math.Pi / 180
+// source: neighbouring facets of a curved mirror show parts of one image.
+const mergeWithin = 2 * photometry.SunDiameterRad
 
 // merge joins images (from index first on) in one mirror that touch, directly
 // or by way of others: solid angles add up, flux is kept. In order, so the

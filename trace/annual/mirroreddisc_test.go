@@ -97,8 +97,12 @@ func TestMirroredDisc(t *testing.T) {
 // logarithm: Wienold & Christoffersen 2006), half of the bound on DGP's RMSE.
 const curvedOmegaAllow = 0.13
 
+const insideCaustic = "parabola, nearer its focus"
+
 // TestMirroredDiscCurved: images in the facets of a curved shelf are one source,
 // of the solid angle that a fine grid of lines of sight finds, in every run.
+// Inside the caustic of the last case two stretches of the shelf show the sun,
+// 12 degrees apart: the law of reflection has two solutions there.
 func TestMirroredDiscCurved(t *testing.T) {
 	moment := sunMoment(t, 4, deg(40), deg(15), 50000)
 	moment.Occupied = true
@@ -113,7 +117,7 @@ func TestMirroredDiscCurved(t *testing.T) {
 		{"parabola, 1.6 m", parabolaProfile(.08, deg(.1)), 1.6, 2.6},
 		{"flat parabola, enlarged", parabolaProfile(.02, deg(.05)), .7, 2.5},
 		{"parabola, near its focus", parabolaProfile(.04, deg(.1)), .755, 2.656},
-		{"parabola, nearer its focus", parabolaProfile(.04, deg(.1)), .868, 2.754},
+		{insideCaustic, parabolaProfile(.04, deg(.1)), .868, 2.754},
 	} {
 		w, shelf := whiteRoom(t, .5, c.p)
 		vp := scene.Viewpoint{Position: r3.Vec{X: 1.8, Y: c.y, Z: c.z}, Direction: r3.Unit(r3.Vec{Y: -1, Z: -.5})}
@@ -151,8 +155,12 @@ func TestMirroredDiscCurved(t *testing.T) {
 		if rms > curvedOmegaAllow {
 			t.Errorf("%s: solid angle: relative error (RMS of %d runs) %.2f, want at most %.2f", c.name, tries, rms, curvedOmegaAllow)
 		}
-		if counts[1] != tries {
-			t.Errorf("%s: got sources %s in %d runs, want one each", c.name, fmt.Sprint(counts), tries)
+		sources := 1
+		if c.name == insideCaustic {
+			sources = 2
+		}
+		if counts[sources] != tries {
+			t.Errorf("%s: got sources %s in %d runs, want %d each", c.name, fmt.Sprint(counts), tries, sources)
 		}
 		// Half the disc: where the image is taken to be decides its position index.
 		if off > 1.5*photometry.SunDiameterRad {

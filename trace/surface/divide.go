@@ -14,21 +14,26 @@ import (
 type division struct {
 	ids     []int32 // texels, the cell's own first
 	witness []r3.Vec
-	share   []float64 // of the cell's area
-	sign    float64   // the side on which the wall stands: 1 front, -1 back
+	points  [][]surfacePoint // by group, spread over its part of the cell
+	share   []float64        // of the cell's area
+	sign    float64          // the side on which the wall stands: 1 front, -1 back
 }
 
+// surfacePoint is a point with the front normal there.
+type surfacePoint struct{ p, n r3.Vec }
+
 const (
+	// groupPoints stand for a group wherever a random point of it is wanted;
+	// a cell is tried divideTries times to find them.
+	groupPoints = 48
 	// witnesses is the number of points tried in a cell.
 	witnesses = 12
 	// sightM is the height above the surface at which points look at each
 	// other, in metres.
 	sightM = 0.002
 	// maxGroups bounds the texels made of one cell.
-	maxGroups = 4
-	// divideTries bounds the search for a point of a group, which holds at
-	// least one of the witnesses.
-	divideTries = 400
+	maxGroups   = 4
+	divideTries = 1024
 )
 
 // divide looks for cells whose points do not see each other.
@@ -77,11 +82,20 @@ func (t *Texels) split(k int32, pts, normals []r3.Vec, sign float64) *division {
 	}
 	// The shares by many more points: photons are divided by the area.
 	clear(d.share)
-	const many = 512
+	d.points = make([][]surfacePoint, len(d.witness))
 	s := sampling.Stream3(streamDivide, uint64(k), 1)
-	for range many {
+	for range divideTries {
 		p, n := t.sampleCell(k, s.Float64(), s.Float64(), s.Float64())
-		d.share[t.groupOf(d, p, n)] += 1.0 / many
+		g := t.groupOf(d, p, n)
+		d.share[g] += 1.0 / divideTries
+		if len(d.points[g]) < groupPoints {
+			d.points[g] = append(d.points[g], surfacePoint{p, n})
+		}
+	}
+	for g, w := range d.witness {
+		if len(d.points[g]) == 0 {
+			d.points[g] = []surfacePoint{{w, normals[0]}}
+		}
 	}
 	for g := range d.witness {
 		id := k
@@ -93,7 +107,7 @@ func (t *Texels) split(k int32, pts, normals []r3.Vec, sign float64) *division {
 			t.groupAt = append(t.groupAt, int8(g))
 		}
 		d.ids = append(d.ids, id)
-		d.share[g] = math.Max(d.share[g], 1.0/many)
+		d.share[g] = math.Max(d.share[g], 1.0/divideTries)
 	}
 	return d
 }
@@ -104,7 +118,7 @@ func (t *Texels) sees(p, n, q r3.Vec, sign float64) bool {
 	lift := r3.Scale(sign*sightM, n)
 	a, b := r3.Add(p, lift), r3.Add(q, lift)
 	d := r3.Sub(b, a)
-	dist := r3.Norm(d)
+	dist := math.Sqrt(r3.Norm2(d))
 	if dist < sightM {
 		return true
 	}

@@ -301,9 +301,10 @@ func (t *Transport) Hidden(dir r3.Vec) bool {
 	return dir.Z <= 0 || (s.HasHorizon && s.Horizon.Hides(dir))
 }
 
-// sorted orders links by sender, equal ones as they came.
+// sorted orders links by sender; the order of equal ones depends on the input
+// alone, so sums come out the same on every run.
 func sorted(l []Link) []Link {
-	slices.SortStableFunc(l, func(a, b Link) int { return int(a.Side) - int(b.Side) })
+	slices.SortFunc(l, func(a, b Link) int { return int(a.Side) - int(b.Side) })
 	return l
 }
 

@@ -7,7 +7,6 @@ import (
 	"gonum.org/v1/gonum/spatial/r3"
 
 	"squint/materials"
-	"squint/materials/sampling"
 	"squint/trace"
 )
 
@@ -201,19 +200,12 @@ func signed(a int8, x float64) int8 {
 // front normal there.
 func (t *Texels) Sample(k int32, u, v, pick float64) (p, normal r3.Vec) {
 	c := t.cellOf[k]
-	p, normal = t.sampleCell(c, u, v, pick)
-	d := t.divided[c]
-	if d == nil || t.groupOf(d, p, normal) == int(t.groupAt[k]) {
-		return p, normal
+	if d := t.divided[c]; d != nil {
+		points := d.points[t.groupAt[k]]
+		x := points[int(pick*float64(len(points)))]
+		return x.p, x.n
 	}
-	s := sampling.Stream3(streamDivide, math.Float64bits(u), math.Float64bits(v))
-	for range divideTries {
-		p, normal = t.sampleCell(c, s.Float64(), s.Float64(), s.Float64())
-		if t.groupOf(d, p, normal) == int(t.groupAt[k]) {
-			return p, normal
-		}
-	}
-	return d.witness[t.groupAt[k]], normal
+	return t.sampleCell(c, u, v, pick)
 }
 
 func (t *Texels) sampleCell(k int32, u, v, pick float64) (p, normal r3.Vec) {

@@ -9,7 +9,8 @@ import (
 )
 
 // refineRounds is the number of times that what is undecided is looked at
-// again, each time with refineFactor times the samples (half the error).
+// again, each time with refineFactor times the samples (half the error); the
+// surfaces, which add little to a view's error, get them once.
 // After that a verdict stays undecided. The looks are paid for in z.
 const (
 	refineRounds = 2
@@ -107,7 +108,7 @@ func subset(in *Input, views []int, open map[int]bool, factor, round int) *Input
 	sub := *in
 	p := *in.Project
 	p.Simulation.SamplesPerPixel *= factor
-	p.Simulation.TexelSamples *= factor
+	p.Simulation.TexelSamples *= min(factor, refineFactor)
 	seed := sampling.Stream3(p.Simulation.Seed, streamRefine, uint64(round))
 	p.Simulation.Seed = seed.Uint64()
 	sub.Project = &p
