@@ -51,7 +51,15 @@ func checkWorkPlane(r *reader, n *node, w *WorkPlane) {
 var criteriaKeys = []key[Criteria]{
 	{spec{name: "glare", about: "level of protection from glare, EN 17037", choices: levels, def: `"minimum"`, source: "lowest level recommended, " + en17037}, func(c *Criteria) any { return &c.Glare }},
 	{spec{name: "provision", about: "level of daylight provision, EN 17037", choices: levels, def: `"minimum"`, source: "lowest level recommended, " + en17037}, func(c *Criteria) any { return &c.Provision }},
+	{spec{name: "source_rule", about: "what counts as a source of glare: brighter than a fixed luminance, than a multiple of the whole field's mean, or of the mean about the line of sight", choices: sourceRules, def: `"luminance"`, source: pierson}, func(c *Criteria) any { return &c.SourceRule }},
+	{spec{name: "source_luminance", about: "with source_rule luminance, cd/m2", in: within{lo: 100, hi: 100000}, def: "2000", source: pierson}, func(c *Criteria) any { return &c.SourceLuminance }},
+	{spec{name: "source_multiple", about: "with the other two rules", in: within{lo: 1, hi: 20}, def: "4", source: "Wienold & Christoffersen 2006, lower end of the range they give, from memory"}, func(c *Criteria) any { return &c.SourceMultiple }},
 }
+
+// sourceRules are the three published ways of finding sources of glare.
+var sourceRules = []string{"luminance", "field mean", "sight mean"}
+
+const pierson = "Pierson, Wienold & Bodart 2018, LEUKOS, from memory"
 
 var simulationKeys = []key[Simulation]{
 	{spec{name: "seed", about: "of all random numbers", def: "1", source: own}, func(s *Simulation) any { return &s.Seed }},

@@ -199,6 +199,11 @@ type WorkPlane struct {
 type Criteria struct {
 	Glare     string // EN 17037:2018, protection from glare
 	Provision string // EN 17037:2018, daylight provision
+	// SourceRule, "luminance", "field mean" or "sight mean", says what counts as
+	// a source of glare; the numbers belong to the first and to the other two.
+	SourceRule      string
+	SourceLuminance float64 // cd/m2
+	SourceMultiple  float64
 }
 
 // Simulation sets how finely is computed.

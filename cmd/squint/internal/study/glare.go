@@ -10,6 +10,7 @@ import (
 	"squint/glare"
 	"squint/glare/verdict"
 	"squint/scene"
+	"squint/scene/project"
 	"squint/trace/annual"
 	"squint/trace/coeff"
 )
@@ -119,6 +120,7 @@ type sinkScratch struct {
 func newGlareSink(in *Input, eyes []*coeff.Eye, workers int) *glareSink {
 	g := &glareSink{in: in, eyes: eyes, views: make([]ViewResult, len(eyes)), mu: make([]sync.Mutex, len(eyes)),
 		cause: make([]map[Cause]int16, len(eyes)), work: make([]sinkScratch, workers)}
+	g.opt = sourceOptions(in.Project.Criteria)
 	if len(eyes) > 0 {
 		g.field = glare.NewField(eyes[0].View)
 	}
@@ -137,6 +139,18 @@ func newGlareSink(in *Input, eyes []*coeff.Eye, workers int) *glareSink {
 		g.cause[i] = map[Cause]int16{}
 	}
 	return g
+}
+
+// sourceOptions translates the project's rule for sources of glare.
+func sourceOptions(c project.Criteria) glare.Options {
+	o := glare.Options{ThresholdCdM2: c.SourceLuminance, Multiple: c.SourceMultiple}
+	switch c.SourceRule {
+	case "field mean":
+		o.Method = glare.MultipleOfMean
+	case "sight mean":
+		o.Method = glare.MultipleOfTask
+	}
+	return o
 }
 
 // take evaluates one frame: DGP of the pooled image, its standard error by
