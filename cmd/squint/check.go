@@ -9,6 +9,7 @@ import (
 	"io/fs"
 	"os"
 	"path/filepath"
+	"runtime/debug"
 	"strings"
 
 	"github.com/spf13/cobra"
@@ -98,6 +99,8 @@ func runCheck(ctx context.Context, h host, o checkOptions) error {
 	if err := report.Header(h.out, in); err != nil {
 		return err
 	}
+	// The collector works harder as the project's own limit comes near.
+	debug.SetMemoryLimit(int64(in.Project.Simulation.MemoryMiB) << 20)
 	bar := newProgress(h)
 	r, err := study.Run(ctx, in, study.Options{Workers: o.Workers, Progress: bar.Report})
 	bar.Close(err == nil)

@@ -139,11 +139,15 @@ type Gathered struct {
 	Below   float32
 }
 
+// wavePortion is the number of sides traced before their rows are stored.
+const wavePortion = 4096
+
 // Trace walks the rays of all active sides, and of those they reach, until no
 // new side appears. progress, if not nil, hears of the sides done so far.
 func (t *Transport) Trace(ctx context.Context, progress func(done, known int)) error {
 	for t.done < len(t.sides) {
-		wave := t.sides[t.done:len(t.sides):len(t.sides)]
+		// In portions, so that what is found and not yet compressed stays small.
+		wave := t.sides[t.done:min(len(t.sides), t.done+wavePortion)]
 		out := make([][]Gathered, len(wave))
 		if err := parallel(ctx, t.Config.Workers, len(wave), func(found *trace.Found, i int) {
 			out[i] = t.traceSide(wave[i], found)
@@ -156,10 +160,6 @@ func (t *Transport) Trace(ctx context.Context, progress func(done, known int)) e
 				for _, l := range rs[b].Links {
 					t.Activate([]int32{l.Side})
 				}
-			}
-		}
-		for _, rs := range out {
-			for b := range rs {
 				t.rows[b].Add(t, &rs[b])
 			}
 		}
