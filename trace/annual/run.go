@@ -101,7 +101,7 @@ func plan(s *scene.Scene, moments []*scene.Moment) []block {
 // Run computes all moments. sink may be nil when there are no eyes; progress,
 // if not nil, hears of moments done.
 func Run(ctx context.Context, t *surface.Transport, r Receivers, moments []*scene.Moment, cfg Config, sink Sink, progress func(done int)) (*Daylight, error) {
-	d := newDaylight(len(r.Sensors), len(moments))
+	d := NewDaylight(len(r.Sensors), len(moments))
 	blocks := plan(t.World.Scene, moments)
 	var next, done atomic.Int64
 	var wg sync.WaitGroup
@@ -127,7 +127,8 @@ func Run(ctx context.Context, t *surface.Transport, r Receivers, moments []*scen
 	return d, ctx.Err()
 }
 
-func newDaylight(sensors, moments int) *Daylight {
+// NewDaylight holds zeros.
+func NewDaylight(sensors, moments int) *Daylight {
 	d := &Daylight{}
 	for _, p := range []*[][]float32{&d.E, &d.StdErr, &d.Direct} {
 		*p = make([][]float32, sensors)

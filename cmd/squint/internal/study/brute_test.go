@@ -42,6 +42,7 @@ func TestAnnualAgainstBruteForce(t *testing.T) {
 	in.Scene.WorkPlanes = nil
 	moments := spreadMoments(in.Climate.Moments, 20)
 	in.Climate.Moments = moments
+	in.Standings = []Standing{{Scene: in.Scene, World: in.World, Moments: moments}}
 	r, err := Run(context.Background(), in, Options{Workers: runtime.NumCPU()})
 	if err != nil {
 		t.Fatal(err)

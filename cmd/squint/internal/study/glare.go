@@ -102,7 +102,7 @@ const causeFrom = 0.35
 // glareSink turns frames into series as they come.
 type glareSink struct {
 	in    *Input
-	eyes  []*coeff.Eye
+	once  sync.Once
 	field *glare.Field
 	opt   glare.Options
 	views []ViewResult
@@ -111,19 +111,32 @@ type glareSink struct {
 	work  []sinkScratch // by worker
 }
 
+// standingSink serves the frames of one standing, which has eyes and parts of
+// its own.
+type standingSink struct {
+	*glareSink
+	scene *scene.Scene
+	eyes  []*coeff.Eye
+}
+
+func (g *glareSink) sink(s *scene.Scene, eyes []*coeff.Eye) annual.Sink {
+	if len(eyes) > 0 {
+		g.once.Do(func() { g.field = glare.NewField(eyes[0].View) })
+	}
+	return (&standingSink{g, s, eyes}).take
+}
+
 type sinkScratch struct {
 	scratch glare.Scratch
 	rest    []float32 // leave-one-out image
 	discs   []glare.Disc
 }
 
-func newGlareSink(in *Input, eyes []*coeff.Eye, workers int) *glareSink {
-	g := &glareSink{in: in, eyes: eyes, views: make([]ViewResult, len(eyes)), mu: make([]sync.Mutex, len(eyes)),
-		cause: make([]map[Cause]int16, len(eyes)), work: make([]sinkScratch, workers)}
+func newGlareSink(in *Input, workers int) *glareSink {
+	n := len(in.Scene.Viewpoints)
+	g := &glareSink{in: in, views: make([]ViewResult, n), mu: make([]sync.Mutex, n),
+		cause: make([]map[Cause]int16, n), work: make([]sinkScratch, workers)}
 	g.opt = sourceOptions(in.Project.Criteria)
-	if len(eyes) > 0 {
-		g.field = glare.NewField(eyes[0].View)
-	}
 	for i := range g.views {
 		v := &g.views[i]
 		v.Viewpoint = in.Scene.Viewpoints[i]
@@ -157,7 +170,7 @@ func sourceOptions(c project.Criteria) glare.Options {
 // the jackknife over batches, and above causeFrom what carries it.
 // Source of the error: Quenouille 1956, Notes on bias in estimation,
 // Biometrika 43; Tukey 1958 (abstract), Annals of Mathematical Statistics 29.
-func (g *glareSink) take(worker int, f *annual.Frame) {
+func (g *standingSink) take(worker int, f *annual.Frame) {
 	w := &g.work[worker]
 	e := g.eyes[f.Eye]
 	v := &g.views[f.Eye]
@@ -222,7 +235,7 @@ func toView(out []glare.Disc, e *coeff.Eye, discs []annual.Disc) []glare.Disc {
 }
 
 // causeOf names what carries most of the glare.
-func (g *glareSink) causeOf(e *coeff.Eye, f *annual.Frame, r *glare.Result) Cause {
+func (g *standingSink) causeOf(e *coeff.Eye, f *annual.Frame, r *glare.Result) Cause {
 	if len(r.Sources) == 0 {
 		return Cause{Kind: Brightness}
 	}
@@ -259,7 +272,7 @@ func (g *glareSink) causeOf(e *coeff.Eye, f *annual.Frame, r *glare.Result) Caus
 	return best
 }
 
-func (g *glareSink) causeOfPixel(s coeff.Seen, sunlit bool) Cause {
+func (g *standingSink) causeOfPixel(s coeff.Seen, sunlit bool) Cause {
 	c := Cause{Via: g.openingOf(s.Via)}
 	switch s.Part {
 	case coeff.SkySeen:
@@ -269,7 +282,7 @@ func (g *glareSink) causeOfPixel(s coeff.Seen, sunlit bool) Cause {
 		c.Kind = GroundSeen
 		return c
 	}
-	part := g.in.Scene.Parts[s.Part]
+	part := g.scene.Parts[s.Part]
 	if part.Kind == scene.GroundPlane {
 		c.Kind = GroundSeen
 		return c
@@ -282,20 +295,20 @@ func (g *glareSink) causeOfPixel(s coeff.Seen, sunlit bool) Cause {
 }
 
 // openingOf names the opening that a part belongs to.
-func (g *glareSink) openingOf(part int32) string {
+func (g *standingSink) openingOf(part int32) string {
 	if part < 0 {
 		return ""
 	}
-	p := g.in.Scene.Parts[part]
+	p := g.scene.Parts[part]
 	if p.Opening >= 0 {
-		return g.in.Scene.Openings[p.Opening].Name
+		return g.scene.Openings[p.Opening].Name
 	}
 	return p.Name
 }
 
 // causeOfDisc names the disc that a source is: the sun itself or the mirror
 // that shows it.
-func (g *glareSink) causeOfDisc(e *coeff.Eye, f *annual.Frame, source *glare.Source) Cause {
+func (g *standingSink) causeOfDisc(e *coeff.Eye, f *annual.Frame, source *glare.Source) Cause {
 	best, nearest := 0, -2.0
 	for i, d := range f.Discs {
 		if c := r3.Dot(e.View.Local(d.Dir), source.Dir); c > nearest {
@@ -305,7 +318,7 @@ func (g *glareSink) causeOfDisc(e *coeff.Eye, f *annual.Frame, source *glare.Sou
 	d := f.Discs[best]
 	c := Cause{Kind: SunDisc, Via: g.openingOf(d.Via)}
 	if d.Mirror >= 0 {
-		c.Kind, c.Name = MirroredSun, g.in.Scene.Parts[d.Mirror].Name
+		c.Kind, c.Name = MirroredSun, g.scene.Parts[d.Mirror].Name
 	}
 	return c
 }

@@ -6,6 +6,7 @@ import (
 
 	"squint/glare/verdict"
 	"squint/materials/sampling"
+	"squint/scene"
 )
 
 // refineRounds is the number of times that what is undecided is looked at
@@ -112,13 +113,19 @@ func subset(in *Input, views []int, open map[int]bool, factor, round int) *Input
 	seed := sampling.Stream3(p.Simulation.Seed, streamRefine, uint64(round))
 	p.Simulation.Seed = seed.Uint64()
 	sub.Project = &p
-	s := *in.Scene
-	s.Viewpoints = nil
-	for _, i := range views {
-		s.Viewpoints = append(s.Viewpoints, in.Scene.Viewpoints[i])
+	sub.Standings = nil
+	for _, st := range in.Standings {
+		few := Standing{Label: st.Label, World: st.World, Scene: reduced(st.Scene, views)}
+		for _, m := range st.Moments {
+			if open[m.Hour] {
+				few.Moments = append(few.Moments, m)
+			}
+		}
+		if len(few.Moments) > 0 {
+			sub.Standings = append(sub.Standings, few)
+		}
 	}
-	s.WorkPlanes = nil
-	sub.Scene = &s
+	sub.Scene = reduced(in.Scene, views)
 	c := *in.Climate
 	c.Moments = nil
 	for _, m := range in.Climate.Moments {
@@ -128,6 +135,16 @@ func subset(in *Input, views []int, open map[int]bool, factor, round int) *Input
 	}
 	sub.Climate = &c
 	return &sub
+}
+
+// reduced is a scene with some of its viewpoints and no work planes.
+func reduced(s *scene.Scene, views []int) *scene.Scene {
+	r := *s
+	r.WorkPlanes, r.Viewpoints = nil, nil
+	for _, i := range views {
+		r.Viewpoints = append(r.Viewpoints, s.Viewpoints[i])
+	}
+	return &r
 }
 
 // streamRefine keeps the seeds of further looks apart from the project's.

@@ -79,10 +79,21 @@ type Input struct {
 	Scene   *scene.Scene
 	Climate *scene.Climate
 	World   *trace.World
-	Notes   []string
+	// Standings are the ways in which the movable systems stand; each has its
+	// own moments. Scene and World are those of the first.
+	Standings []Standing
+	Notes     []string
 
 	Calendar                  daylight.Calendar
 	Occupied, Clock, Daylight daylight.Hours
+}
+
+// Standing is one way in which the movable systems stand, and when they do.
+type Standing struct {
+	Label   string // "" where nothing moves
+	Scene   *scene.Scene
+	World   *trace.World
+	Moments []*scene.Moment
 }
 
 // Prepare reads everything and checks it. Errors are the user's to mend, all
@@ -119,6 +130,7 @@ func Prepare(fsys fs.FS, name string, workers int) (*Input, error) {
 		m.Occupied = used[m.Hour]
 	}
 	in.World = trace.Accelerate(s, workers)
+	in.Standings = []Standing{{Scene: s, World: in.World, Moments: c.Moments}}
 	errs, notes := soundness.Receivers(in.World)
 	if len(errs) > 0 {
 		return nil, errors.Join(errs...)

@@ -26,13 +26,12 @@ const patchFactor = 2
 const paneShare = 5
 
 // photons is the number shot from the sun at each moment.
-func photons(in *Input, r *Result) int {
+func photons(in *Input, w *trace.World) int {
 	sim := in.Project.Simulation
 	switch {
 	case sim.Photons == 0:
-		r.Notes = append(r.Notes, "photons = 0: the sun that mirrors, glossy surfaces and panes throw on other surfaces is left out.")
 		return 0
-	case in.World.Mirrors():
+	case w.Mirrors():
 		return sim.Photons
 	}
 	return max(sim.Photons/paneShare, sim.Batches)
@@ -40,26 +39,76 @@ func photons(in *Input, r *Result) int {
 
 // year is what the engine computed.
 type year struct {
-	eyes    []*coeff.Eye
 	glare   *glareSink
-	light   *annual.Daylight // [sensor][moment]
+	light   *annual.Daylight // [sensor][moment of the climate]
 	factors []float64        // daylight factor by sensor, share
 	factorE []float64        // its standard error
 }
 
+// computeYear runs every standing of the movable systems over its own moments
+// and puts the results together.
 func computeYear(ctx context.Context, in *Input, opt Options, r *Result) (*year, error) {
+	y := &year{glare: newGlareSink(in, max(opt.Workers, 1))}
+	total := len(in.Climate.Moments)
+	y.light = annual.NewDaylight(in.Scene.Sensors(), total)
+	place := make(map[*scene.Moment]int, total)
+	for i, m := range in.Climate.Moments {
+		place[m] = i
+	}
+	if in.Project.Simulation.Photons == 0 {
+		r.Notes = append(r.Notes, "photons = 0: the sun that mirrors, glossy surfaces and panes throw on other surfaces is left out.")
+	}
+	before := 0
+	for k := range in.Standings {
+		st := &in.Standings[k]
+		if len(st.Moments) == 0 && k > 0 {
+			continue
+		}
+		e, err := newEngine(ctx, in, st, opt, r)
+		if err != nil {
+			return nil, err
+		}
+		if k == 0 {
+			if err := y.daylightFactors(ctx, e); err != nil {
+				return nil, err
+			}
+		}
+		done := before
+		light, err := annual.Run(ctx, e.t, e.rec, st.Moments, e.cfg, y.glare.sink(st.Scene, e.rec.Eyes), func(n int) { opt.Progress(StageYear, done+n, total) })
+		if err != nil {
+			return nil, err
+		}
+		before += len(st.Moments)
+		for i, m := range st.Moments {
+			for s := range light.E {
+				h := place[m]
+				y.light.E[s][h], y.light.StdErr[s][h], y.light.Direct[s][h] = light.E[s][i], light.StdErr[s][i], light.Direct[s][i]
+			}
+		}
+	}
+	return y, nil
+}
+
+// engine is one standing's traced receivers and surfaces.
+type engine struct {
+	t   *surface.Transport
+	rec annual.Receivers
+	cfg annual.Config
+}
+
+func newEngine(ctx context.Context, in *Input, st *Standing, opt Options, r *Result) (*engine, error) {
 	sim := in.Project.Simulation
 	cfg := surface.Config{Batches: sim.Batches, Samples: sim.TexelSamples, Seed: sim.Seed, Workers: opt.Workers, Coarsen: 1}
-	cfg.Photons = photons(in, r)
-	for _, v := range in.Scene.Viewpoints {
+	cfg.Photons = photons(in, st.World)
+	for _, v := range st.Scene.Viewpoints {
 		cfg.Receivers = append(cfg.Receivers, v.Position)
 	}
-	for _, w := range in.Scene.WorkPlanes {
+	for _, w := range st.Scene.WorkPlanes {
 		for _, s := range w.Sensors {
 			cfg.Receivers = append(cfg.Receivers, s.Position)
 		}
 	}
-	t := surface.NewTransport(in.World, sky.NewPatches(patchFactor), cfg)
+	t := surface.NewTransport(st.World, sky.NewPatches(patchFactor), cfg)
 	// One worker must fit; further ones are added as memory allows, so that
 	// neither texels nor results depend on their number.
 	for estimate := memoryMiB(t, sim.Batches); estimate > float64(sim.MemoryMiB); estimate = memoryMiB(t, sim.Batches) {
@@ -67,18 +116,18 @@ func computeYear(ctx context.Context, in *Input, opt Options, r *Result) (*year,
 		if cfg.Coarsen > 100 {
 			return nil, fmt.Errorf("%s: simulation.memory_mib: got %d, want more: even texels 100 times larger do not fit", in.Project.File, sim.MemoryMiB)
 		}
-		t = surface.NewTransport(in.World, sky.NewPatches(patchFactor), cfg)
+		t = surface.NewTransport(st.World, sky.NewPatches(patchFactor), cfg)
 	}
 	if cfg.Coarsen > 1 {
 		r.Warnings = append(r.Warnings, fmt.Sprintf("surfaces are cut %.1f times more coarsely than asked, to fit memory_mib = %d.", cfg.Coarsen, sim.MemoryMiB))
 	}
 	opt.Workers = max(1, min(opt.Workers, int(float64(sim.MemoryMiB)/memoryMiB(t, sim.Batches))))
-	y := &year{}
-	if err := traceEyes(ctx, in, t, opt, y); err != nil {
+	eyes, err := traceEyes(ctx, in, st, t, opt)
+	if err != nil {
 		return nil, err
 	}
-	rec := annual.Receivers{Eyes: y.eyes, Fine: sky.NewPatches(patchFactor)}
-	for _, w := range in.Scene.WorkPlanes {
+	rec := annual.Receivers{Eyes: eyes, Fine: sky.NewPatches(patchFactor)}
+	for _, w := range st.Scene.WorkPlanes {
 		rec.Sensors = append(rec.Sensors, w.Sensors...)
 	}
 	found, shines, err := traceSensors(ctx, t, &rec, sim.SensorSamples, sim.Seed, opt)
@@ -86,7 +135,7 @@ func computeYear(ctx context.Context, in *Input, opt Options, r *Result) (*year,
 		return nil, err
 	}
 	rec.Shines = shines
-	for _, e := range y.eyes {
+	for _, e := range eyes {
 		t.Activate(e.Sides())
 	}
 	for _, g := range found {
@@ -99,7 +148,7 @@ func computeYear(ctx context.Context, in *Input, opt Options, r *Result) (*year,
 	if err := t.Trace(ctx, func(done, known int) { opt.Progress(StageSurfaces, done, known) }); err != nil {
 		return nil, err
 	}
-	for _, e := range y.eyes {
+	for _, e := range eyes {
 		e.Bind(t)
 	}
 	rec.Rows = make([]surface.Rows, sim.Batches)
@@ -109,27 +158,22 @@ func computeYear(ctx context.Context, in *Input, opt Options, r *Result) (*year,
 			rec.Rows[b].Add(t, &g[b])
 		}
 	}
-	r.Settings = Settings{Workers: opt.Workers, TexelSides: t.Len(), Coarsen: cfg.Coarsen, Confidence: confidence, Kernel: bvh.Kernel()}
-	y.glare = newGlareSink(in, y.eyes, max(opt.Workers, 1))
-	acfg := annual.Config{Workers: opt.Workers, Seed: sim.Seed}
-	total := len(in.Climate.Moments)
-	y.light, err = annual.Run(ctx, t, rec, in.Climate.Moments, acfg, y.glare.take, func(done int) { opt.Progress(StageYear, done, total) })
-	if err != nil {
-		return nil, err
-	}
-	return y, y.daylightFactors(ctx, t, rec, acfg)
+	r.Settings.Workers, r.Settings.Confidence, r.Settings.Kernel = opt.Workers, confidence, bvh.Kernel()
+	r.Settings.TexelSides = max(r.Settings.TexelSides, t.Len())
+	r.Settings.Coarsen = math.Max(r.Settings.Coarsen, cfg.Coarsen)
+	return &engine{t: t, rec: rec, cfg: annual.Config{Workers: opt.Workers, Seed: sim.Seed}}, nil
 }
 
 // daylightFactors runs the one moment of the CIE overcast sky.
-func (y *year) daylightFactors(ctx context.Context, t *surface.Transport, rec annual.Receivers, cfg annual.Config) error {
-	if len(rec.Sensors) == 0 {
+func (y *year) daylightFactors(ctx context.Context, e *engine) error {
+	if len(e.rec.Sensors) == 0 {
 		return nil
 	}
 	m, err := scene.Overcast(0)
 	if err != nil {
 		return err
 	}
-	d, err := annual.Run(ctx, t, rec, []*scene.Moment{m}, cfg, nil, nil)
+	d, err := annual.Run(ctx, e.t, e.rec, []*scene.Moment{m}, e.cfg, nil, nil)
 	if err != nil {
 		return err
 	}
@@ -147,17 +191,17 @@ func memoryMiB(t *surface.Transport, batches int) float64 {
 	return sides * float64(batches) * 3 * surface.Width * 4 / (1 << 20)
 }
 
-func traceEyes(ctx context.Context, in *Input, t *surface.Transport, opt Options, y *year) error {
+func traceEyes(ctx context.Context, in *Input, st *Standing, t *surface.Transport, opt Options) ([]*coeff.Eye, error) {
 	sim := in.Project.Simulation
-	views := in.Scene.Viewpoints
-	y.eyes = make([]*coeff.Eye, len(views))
+	views := st.Scene.Viewpoints
+	eyes := make([]*coeff.Eye, len(views))
 	cfg := coeff.EyeConfig{Pixels: sim.FisheyePixels, SamplesPerPixel: sim.SamplesPerPixel, Batches: sim.Batches, Seed: sim.Seed}
-	return each(ctx, opt, StageViews, len(views), func(i int) error {
+	return eyes, each(ctx, opt, StageViews, len(views), func(i int) error {
 		e, err := coeff.TraceEye(t, views[i], i, cfg)
 		if err != nil {
 			return fmt.Errorf("%s:%d: viewpoint %q: %w", in.Project.File, views[i].Line, views[i].Name, err)
 		}
-		y.eyes[i] = e
+		eyes[i] = e
 		return nil
 	})
 }
