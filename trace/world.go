@@ -151,6 +151,11 @@ func (w *World) Blocked(org, dir r3.Vec, tmax float64) bool {
 	return w.opaque.Occluded(f32(org), f32(dir), 0, float32(math.Min(tmax, math.MaxFloat32)))
 }
 
+// Clear reports whether no surface at all stands within tmax along dir.
+func (w *World) Clear(org, dir r3.Vec, tmax float64) bool {
+	return !w.all.Occluded(f32(org), f32(dir), 0, float32(tmax))
+}
+
 // Transmittance is the share of light that passes straight from org along
 // unit dir over the distance tmax (math.Inf(1) for all the way): 0 behind
 // anything opaque, else the product over the panes and cloths crossed.

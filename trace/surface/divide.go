@@ -112,8 +112,9 @@ func (t *Texels) split(k int32, pts, normals []r3.Vec, sign float64) *division {
 	return d
 }
 
-// sees reports whether nothing stands between two points just above their
-// surface.
+// sees reports whether nothing, glass and cloth included, stands between two
+// points just above their surface: the reveal of a window goes on behind the
+// glass, but not its light.
 func (t *Texels) sees(p, n, q r3.Vec, sign float64) bool {
 	lift := r3.Scale(sign*sightM, n)
 	a, b := r3.Add(p, lift), r3.Add(q, lift)
@@ -122,7 +123,7 @@ func (t *Texels) sees(p, n, q r3.Vec, sign float64) bool {
 	if dist < sightM {
 		return true
 	}
-	return !t.world.Blocked(a, r3.Scale(1/dist, d), dist)
+	return t.world.Clear(a, r3.Scale(1/dist, d), dist)
 }
 
 // groupOf is the group of a point: the first whose witness it sees, the
