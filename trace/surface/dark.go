@@ -1,9 +1,24 @@
 package surface
 
-// dropDark forgets the sides that no daylight reaches: those from which no
-// chain of links leads to sky or ground in any batch, such as the insides of
-// walls. They would be solved for zero.
-func (t *Transport) dropDark() {
+import "slices"
+
+// negligible is the share of all light on its way to the receivers that sides
+// passed over may carry together.
+const negligible = 1e-4
+
+// dropDark forgets the sides that do not matter: those that no daylight
+// reaches (no chain of links leads to sky or ground in any batch, as inside
+// walls), and those that together carry less than a share of negligible of
+// what reaches the receivers. direct sides, which receivers see themselves,
+// are kept wherever there is any light.
+func (t *Transport) dropDark(direct int) {
+	lit := t.reached()
+	t.dropFaint(lit, direct)
+	t.keep(lit)
+}
+
+// reached finds the sides from which daylight can be seen, over any chain.
+func (t *Transport) reached() []bool {
 	lit := make([]bool, len(t.sides))
 	for i := range t.sides {
 		for b := range t.rows {
@@ -29,6 +44,95 @@ func (t *Transport) dropDark() {
 			}
 		}
 	}
+	return lit
+}
+
+// dropFaint clears lit for the sides that carry least. What a side carries is
+// its illuminance under a sky and ground of luminance 1 times its importance,
+// the light that a unit of it adds at the receivers, which flows along the
+// links the other way (Smits, Arvo & Salesin 1992, An importance-driven
+// radiosity algorithm, SIGGRAPH).
+func (t *Transport) dropFaint(lit []bool, direct int) {
+	n := len(t.sides)
+	source, importance := make([]float64, n), make([]float64, n)
+	scale := 1 / float64(len(t.rows))
+	for b := range t.rows {
+		r := &t.rows[b]
+		for i := range n {
+			source[i] += float64(r.below[i]) * scale
+			for _, p := range r.patches[r.patchStart[i]:r.patchStart[i+1]] {
+				source[i] += float64(p.W) * scale
+			}
+		}
+	}
+	for i := range min(direct, n) {
+		importance[i] = 1
+	}
+	light := t.propagate(source, scale, false)
+	weight := t.propagate(importance, scale, true)
+	order := make([]int, 0, n)
+	var total float64
+	for i := range n {
+		total += light[i] * weight[i]
+		if i >= direct && lit[i] {
+			order = append(order, i)
+		}
+	}
+	slices.SortFunc(order, func(a, b int) int {
+		x, y := light[a]*weight[a], light[b]*weight[b]
+		switch {
+		case x < y:
+			return -1
+		case x > y:
+			return 1
+		}
+		return a - b
+	})
+	var dropped float64
+	for _, i := range order {
+		dropped += light[i] * weight[i]
+		if dropped > negligible*total {
+			return
+		}
+		lit[i] = false
+	}
+}
+
+// faintSweeps carry light as far as its importance is asked to 1e-4 or so.
+const faintSweeps = 12
+
+// propagate solves x = source + G x, or with the transposed links, by Jacobi's
+// iteration; the ground counts as half reflecting.
+func (t *Transport) propagate(source []float64, scale float64, transposed bool) []float64 {
+	x := slices.Clone(source)
+	for range faintSweeps {
+		next := slices.Clone(source)
+		for b := range t.rows {
+			r := &t.rows[b]
+			for i := range source {
+				for _, l := range r.links[r.linkStart[i]:r.linkStart[i+1]] {
+					flow(next, x, i, int(l.Side), float64(l.W)*scale, transposed)
+				}
+				for _, l := range r.groundLink[r.groundFrom[i]:r.groundFrom[i+1]] {
+					flow(next, x, i, int(l.Side), float64(l.W)*scale/2, transposed)
+				}
+			}
+		}
+		x = next
+	}
+	return x
+}
+
+func flow(next, x []float64, receiver, sender int, w float64, transposed bool) {
+	if transposed {
+		next[sender] += w * x[receiver]
+	} else {
+		next[receiver] += w * x[sender]
+	}
+}
+
+// keep renumbers the sides so that only lit ones remain.
+func (t *Transport) keep(lit []bool) {
 	place := make([]int32, len(t.sides)) // new dense index, -1 where dark
 	var kept []int32
 	for i, side := range t.sides {

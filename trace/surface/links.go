@@ -145,6 +145,7 @@ const wavePortion = 4096
 // Trace walks the rays of all active sides, and of those they reach, until no
 // new side appears. progress, if not nil, hears of the sides done so far.
 func (t *Transport) Trace(ctx context.Context, progress func(done, known int)) error {
+	direct := len(t.sides)
 	for t.done < len(t.sides) {
 		// In portions, so that what is found and not yet compressed stays small.
 		wave := t.sides[t.done:min(len(t.sides), t.done+wavePortion)]
@@ -167,7 +168,7 @@ func (t *Transport) Trace(ctx context.Context, progress func(done, known int)) e
 			progress(t.done, len(t.sides))
 		}
 	}
-	t.dropDark()
+	t.dropDark(direct)
 	t.near = t.findNeighbours()
 	return nil
 }
