@@ -91,19 +91,25 @@ func (w *World) Aim(sun r3.Vec) *Photons {
 	for i := range w.specular.facets {
 		f := &w.specular.facets[i]
 		c := r3.Dot(sun, w.normal[f.prim])
-		side := materials.Front
-		if c < 0 {
-			side, c = materials.Back, -c
-		}
-		share, _ := w.tris[f.prim].bsdf.Delta(side, c)
-		if f.gloss && w.tris[f.prim].bsdf.Gloss(side) != nil {
-			share += 0.5
-		}
-		if weight := f.areaM2 * c * share; weight > 0 {
-			total += weight
-			p.cum = append(p.cum, total)
-			p.live = append(p.live, int32(i))
-			p.sides = append(p.sides, side)
+		for _, side := range [2]materials.Side{materials.Front, materials.Back} {
+			cos := c
+			if side == materials.Back {
+				cos = -c
+			}
+			// A facet edge-on to the disc's centre is lit by a part of it.
+			if cos <= -sunTan {
+				continue
+			}
+			share, _ := w.tris[f.prim].bsdf.Delta(side, math.Max(cos, 0))
+			if f.gloss && w.tris[f.prim].bsdf.Gloss(side) != nil {
+				share += 0.5
+			}
+			if weight := f.areaM2 * math.Max(cos, 0.3*sunTan) * share; weight > 0 {
+				total += weight
+				p.cum = append(p.cum, total)
+				p.live = append(p.live, int32(i))
+				p.sides = append(p.sides, side)
+			}
 		}
 	}
 	return p

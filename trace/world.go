@@ -17,6 +17,7 @@ type World struct {
 
 	tris   []triangle
 	normal []r3.Vec
+	plane  []float64 // of each triangle: its points' product with the normal
 	all    *bvh.Tree // every triangle: closest hits
 	opaque *bvh.Tree // triangles that nothing passes straight: shadow rays
 	clear  *bvh.Tree // triangles that pass light straight: panes, cloth
@@ -59,6 +60,7 @@ func Accelerate(s *scene.Scene, workers int) *World {
 	n := len(s.Triangles)
 	w.tris = make([]triangle, n)
 	w.normal = make([]r3.Vec, n)
+	w.plane = make([]float64, n)
 	all := make([]bvh.Triangle, n)
 	var opaque, clear []bvh.Triangle
 	passes := make([]bool, len(s.Finishes))
@@ -69,6 +71,7 @@ func Accelerate(s *scene.Scene, workers int) *World {
 	for i, t := range s.Triangles {
 		e1, e2 := r3.Sub(t.V[1], t.V[0]), r3.Sub(t.V[2], t.V[0])
 		w.normal[i] = r3.Unit(r3.Cross(e1, e2))
+		w.plane[i] = r3.Dot(t.V[0], w.normal[i])
 		w.tris[i] = triangle{bsdf: s.Finishes[t.Finish].BSDF, finish: t.Finish, part: t.Part}
 		for k, v := range t.V {
 			all[i][k] = [3]float32{float32(v.X), float32(v.Y), float32(v.Z)}
@@ -85,9 +88,10 @@ func Accelerate(s *scene.Scene, workers int) *World {
 	w.all = bvh.Build(all, cfg)
 	w.opaque = bvh.Build(opaque, cfg)
 	w.clear = bvh.Build(clear, cfg)
-	// float32 keeps 24 bits: a start this far off its surface is clear of
-	// rounding at the scene's largest coordinate.
-	w.eps = math.Max(1e-5, extent*math.Ldexp(1, -21))
+	// float32 keeps 24 bits; hits on slender facets err by several units of the
+	// last place. A start this far off its surface is clear of that at the
+	// scene's largest coordinate (slender_test.go).
+	w.eps = math.Max(2e-5, extent*math.Ldexp(1, -18))
 	w.findSpecular()
 	return w
 }
@@ -126,17 +130,31 @@ func (w *World) Normal(prim int32) r3.Vec { return w.normal[prim] }
 // Closest returns the first surface from org along unit dir; false when the
 // ray leaves the scene.
 func (w *World) Closest(org, dir r3.Vec) (Hit, bool) {
-	bh := w.all.Closest(f32(org), f32(dir), 0, math.MaxFloat32)
-	if bh.Prim < 0 {
-		return Hit{}, false
+	o, d := f32(org), f32(dir)
+	for tmin := float32(0); ; {
+		bh := w.all.Closest(o, d, tmin, math.MaxFloat32)
+		if bh.Prim < 0 {
+			return Hit{}, false
+		}
+		h := w.hit(bh, org, dir)
+		if h.T > 0 {
+			return h, true
+		}
+		// The surface that the ray starts on, behind it.
+		tmin = math.Nextafter32(bh.T, math.MaxFloat32)
 	}
-	return w.hit(bh, org, dir), true
 }
 
 func (w *World) hit(bh bvh.Hit, org, dir r3.Vec) Hit {
 	n := w.normal[bh.Prim]
 	c := r3.Dot(dir, n)
 	h := Hit{T: float64(bh.T), Normal: n, Prim: bh.Prim, Part: w.tris[bh.Prim].part, BSDF: w.tris[bh.Prim].bsdf}
+	// The distance to the plane, in double precision: of a slender triangle,
+	// such as a facet of a curved mirror, single precision makes it wrong by more
+	// than the offset at which rays start. Edge-on it cannot be told.
+	if math.Abs(c) > 1e-6 {
+		h.T = (w.plane[bh.Prim] - r3.Dot(org, n)) / c
+	}
 	h.Point = r3.Add(org, r3.Scale(h.T, dir))
 	if c > 0 {
 		h.Side, h.Cos = materials.Back, c

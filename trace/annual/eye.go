@@ -166,15 +166,17 @@ func (w *worker) discs(out []Disc, e *coeff.Eye, m *scene.Moment, rays *surface.
 	if r3.Dot(m.Sun, e.View.Direction) > 0 {
 		var open int
 		var tau float64
+		var seen r3.Vec
 		for i, dir := range rays.Dirs() {
 			if rays.Visible(i) && !w.t.World.Blocked(e.View.Position, dir, math.Inf(1)) {
 				open++
+				seen = dir
 				tau += w.t.World.Straight(e.View.Position, dir, math.Inf(1))
 			}
 		}
 		if open > 0 && tau > 0 {
 			share := float64(open) / float64(len(rays.Dirs()))
-			out = append(out, Disc{Dir: m.Sun, OmegaSr: full * share, Luminance: lum * tau / float64(open), Mirror: -1, Via: w.t.World.FirstPane(e.View.Position, m.Sun)})
+			out = append(out, Disc{Dir: m.Sun, OmegaSr: full * share, Luminance: lum * tau / float64(open), Mirror: -1, Via: w.t.World.FirstPane(e.View.Position, seen)})
 		}
 	}
 	first := len(out)

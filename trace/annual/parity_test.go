@@ -71,6 +71,7 @@ func (p *parity) judge(t *testing.T, defect float64) {
 	if len(p.rows) == 0 {
 		t.Fatalf("%s: no comparisons", p.group)
 	}
+	board.post(p)
 	if testing.Verbose() {
 		t.Logf("%s\n%s", p.group, p.text())
 	}

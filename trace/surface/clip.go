@@ -6,16 +6,16 @@ import (
 	"gonum.org/v1/gonum/spatial/r3"
 )
 
-// clipToGrid cuts a convex polygon along the planes of a cubic grid of the
-// given cell edge (shifted by gridShift) into convex polygons that lie in one
-// cell each. Source: Sutherland & Hodgman 1974, Reentrant Polygon Clipping,
+// clipToGrid cuts a convex polygon along the planes of a grid of the given cell
+// edges along the axes (shifted by gridShift) into convex polygons that lie in
+// one cell each. Source: Sutherland & Hodgman 1974, Reentrant Polygon Clipping,
 // CACM 17(1), applied plane by plane.
-func clipToGrid(poly []r3.Vec, cell float64) [][]r3.Vec {
+func clipToGrid(poly []r3.Vec, cell [3]float64) [][]r3.Vec {
 	out := [][]r3.Vec{poly}
 	for axis := 0; axis < 3; axis++ {
 		var next [][]r3.Vec
 		for _, p := range out {
-			next = slice(next, p, axis, cell)
+			next = slice(next, p, axis, cell[axis])
 		}
 		out = next
 	}

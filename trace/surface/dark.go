@@ -4,7 +4,7 @@ import "slices"
 
 // negligible is the share of all light on its way to the receivers that sides
 // passed over may carry together.
-const negligible = 1e-4
+const negligible = 1e-5
 
 // dropDark forgets the sides that do not matter: those that no daylight
 // reaches (no chain of links leads to sky or ground in any batch, as inside

@@ -19,18 +19,16 @@ func gatherGo(acc *Row, rows []Row, links []Link, scale float32) {
 	}
 }
 
-// settleGo sums |e-old| and e over a row and stores e in old. The order of the
-// sum differs from the assembly's by rounding.
-func settleGo(e, old *Row) (change, total float64) {
-	var c, s float32
+// settleGo adds |e-old| to change and e to total, entry by entry, and stores e
+// in old.
+func settleGo(e, old, change, total *Row) {
 	for i := range e {
 		d := e[i] - old[i]
 		if d < 0 {
 			d = -d
 		}
-		c += d
-		s += e[i]
+		change[i] += d
+		total[i] += e[i]
 		old[i] = e[i]
 	}
-	return float64(c), float64(s)
 }

@@ -8,7 +8,7 @@ import "golang.org/x/sys/cpu"
 func gatherAVX2(acc *Row, rows *Row, links *Link, n int, scale float32)
 
 //go:noescape
-func settleAVX2(e, old *Row) (change, total float32)
+func settleAVX2(e, old, change, total *Row)
 
 // gather adds scale times the linked rows to acc.
 func gather(acc *Row, rows []Row, links []Link, scale float32) {
@@ -22,11 +22,12 @@ func gather(acc *Row, rows []Row, links []Link, scale float32) {
 	gatherGo(acc, rows, links, scale)
 }
 
-// settle stores e in old and returns the summed change and sum.
-func settle(e, old *Row) (change, total float64) {
+// settle adds |e-old| to change and e to total, entry by entry, and stores e
+// in old.
+func settle(e, old, change, total *Row) {
 	if cpu.X86.HasAVX2 {
-		c, t := settleAVX2(e, old)
-		return float64(c), float64(t)
+		settleAVX2(e, old, change, total)
+		return
 	}
-	return settleGo(e, old)
+	settleGo(e, old, change, total)
 }

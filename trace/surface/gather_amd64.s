@@ -51,14 +51,14 @@ done:
 	VZEROUPPER
 	RET
 
-// func settleAVX2(e, old *Row) (change, total float32)
+// func settleAVX2(e, old, change, total *Row)
 //
-// Sums |e-old| and e over a row and stores e in old.
-TEXT ·settleAVX2(SB), NOSPLIT, $0-24
+// Adds |e-old| to change and e to total, entry by entry, and stores e in old.
+TEXT ·settleAVX2(SB), NOSPLIT, $0-32
 	MOVQ e+0(FP), SI
 	MOVQ old+8(FP), DI
-	VXORPS Y10, Y10, Y10
-	VXORPS Y11, Y11, Y11
+	MOVQ change+16(FP), R8
+	MOVQ total+24(FP), R9
 	VPCMPEQD Y12, Y12, Y12
 	VPSRLD $1, Y12, Y12
 	MOVQ $8, CX
@@ -66,22 +66,16 @@ row:
 	VMOVUPS (SI), Y0
 	VSUBPS (DI), Y0, Y1
 	VANDPS Y12, Y1, Y1
-	VADDPS Y1, Y10, Y10
-	VADDPS Y0, Y11, Y11
+	VADDPS (R8), Y1, Y1
+	VMOVUPS Y1, (R8)
+	VADDPS (R9), Y0, Y2
+	VMOVUPS Y2, (R9)
 	VMOVUPS Y0, (DI)
 	ADDQ $32, SI
 	ADDQ $32, DI
+	ADDQ $32, R8
+	ADDQ $32, R9
 	DECQ CX
 	JNZ row
-	VEXTRACTF128 $1, Y10, X1
-	VADDPS X1, X10, X10
-	VHADDPS X10, X10, X10
-	VHADDPS X10, X10, X10
-	VMOVSS X10, change+16(FP)
-	VEXTRACTF128 $1, Y11, X1
-	VADDPS X1, X11, X11
-	VHADDPS X11, X11, X11
-	VHADDPS X11, X11, X11
-	VMOVSS X11, total+20(FP)
 	VZEROUPPER
 	RET

@@ -41,10 +41,12 @@ func TestGatherTwins(t *testing.T) {
 	}
 	e, old := rows[0], rows[1]
 	old2 := old
-	c1, t1 := settle(&e, &old)
-	c2, t2 := settleGo(&e, &old2)
-	if math.Abs(c1-c2) > 1e-4 || math.Abs(t1-t2) > 1e-4 || old != e || old2 != e {
-		t.Fatalf("settle: got %g %g, loop %g %g", c1, t1, c2, t2)
+	change, total := rows[2], rows[3]
+	change2, total2 := change, total
+	settle(&e, &old, &change, &total)
+	settleGo(&e, &old2, &change2, &total2)
+	if change != change2 || total != total2 || old != e || old2 != e {
+		t.Fatalf("settle: got %v, loop %v", change, change2)
 	}
 }
 

@@ -2,6 +2,7 @@ package surface
 
 import (
 	"math"
+	"math/bits"
 	"unsafe"
 
 	"squint/scene"
@@ -73,6 +74,9 @@ type Light struct {
 	Lit []uint64
 	// Sweeps says how often the exchange was iterated.
 	Sweeps int
+	// settled keeps the values of the moments in done.
+	settled []Row
+	done    uint64
 }
 
 // sweepTolerance ends the iteration: the summed change of a sweep relative to
@@ -89,6 +93,10 @@ func (t *Transport) Solve(bl *Block, b int, light *Light) {
 	if len(light.E) != n {
 		light.E, light.Sun, light.Rest, light.Lit = make([]Row, n), make([]Row, n), make([]Row, n), make([]uint64, n)
 	}
+	if len(light.settled) != n {
+		light.settled = make([]Row, n)
+	}
+	light.done = 0
 	t.sunOn(bl, b, light)
 	rows := &t.rows[b]
 	source := light.Rest
@@ -102,8 +110,14 @@ func (t *Transport) Solve(bl *Block, b int, light *Light) {
 		}
 		light.E[i] = *e
 	}
-	for light.Sweeps = 1; light.Sweeps <= maxSweeps; light.Sweeps++ {
-		var change, total float64
+	// Each moment is settled by its own change and keeps the values of that
+	// sweep, so that it does not depend on what shares its block.
+	open := ^uint64(0)
+	for h := len(bl.Moments); h < Width; h++ {
+		open &^= 1 << h
+	}
+	for light.Sweeps = 1; open != 0 && light.Sweeps <= maxSweeps; light.Sweeps++ {
+		var change, total Row
 		for j := range n {
 			i := j
 			if light.Sweeps%2 == 0 {
@@ -112,12 +126,26 @@ func (t *Transport) Solve(bl *Block, b int, light *Light) {
 			e := source[i]
 			gather(&e, light.E, rows.links[rows.linkStart[i]:rows.linkStart[i+1]], 1)
 			gather(&e, light.E, rows.groundLink[rows.groundFrom[i]:rows.groundFrom[i+1]], bl.GroundReflectance)
-			c, s := settle(&e, &light.E[i])
-			change += c
-			total += s
+			settle(&e, &light.E[i], &change, &total)
 		}
-		if change <= sweepTolerance*total {
-			break
+		for h := range bl.Moments {
+			if open&(1<<h) == 0 || change[h] > sweepTolerance*total[h] {
+				continue
+			}
+			open &^= 1 << h
+			if open == 0 {
+				break // the last to settle needs no copy
+			}
+			for i := range n {
+				light.settled[i][h] = light.E[i][h]
+			}
+			light.done |= 1 << h
+		}
+	}
+	for i := range n {
+		for m := light.done; m != 0; m &= m - 1 {
+			h := bits.TrailingZeros64(m)
+			light.E[i][h] = light.settled[i][h]
 		}
 	}
 	for i := range n {

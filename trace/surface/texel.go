@@ -7,6 +7,7 @@ import (
 	"gonum.org/v1/gonum/spatial/r3"
 
 	"squint/materials"
+	"squint/scene"
 	"squint/trace"
 )
 
@@ -37,8 +38,7 @@ type Texels struct {
 	cellOf  []int32
 	groupAt []int8
 	divided map[int32]*division
-	// cell holds the cell edge in metres by part.
-	cell []float64
+	grid    []scene.Grid // by part
 }
 
 type piece struct {
@@ -52,9 +52,9 @@ type piece struct {
 // factor.
 func Cut(w *trace.World, coarsen float64, factor []float64) *Texels {
 	s := w.Scene
-	t := &Texels{world: w, index: map[texelKey]int32{}, cell: make([]float64, len(s.Parts))}
+	t := &Texels{world: w, index: map[texelKey]int32{}, grid: make([]scene.Grid, len(s.Parts))}
 	for i, p := range s.Parts {
-		t.cell[i] = p.TexelM * coarsen * factor[i]
+		t.grid[i] = gridOf(p, coarsen*factor[i])
 	}
 	type owned struct {
 		texel int32
@@ -66,9 +66,12 @@ func Cut(w *trace.World, coarsen float64, factor []float64) *Texels {
 		if !scatters(s.Finishes[tri.Finish].BSDF) {
 			continue
 		}
-		cell := t.cell[tri.Part]
-		poly := []r3.Vec{tri.V[0], tri.V[1], tri.V[2]}
-		for _, cellPoly := range clipToGrid(poly, cell) {
+		grid := &t.grid[tri.Part]
+		poly := []r3.Vec{local(grid, tri.V[0]), local(grid, tri.V[1]), local(grid, tri.V[2])}
+		for _, cellPoly := range clipToGrid(poly, grid.EdgeM) {
+			for k, v := range cellPoly {
+				cellPoly[k] = world(grid, v)
+			}
 			key := t.key(int32(i), centroid(cellPoly))
 			id, ok := t.index[key]
 			if !ok {
@@ -105,6 +108,27 @@ func Cut(w *trace.World, coarsen float64, factor []float64) *Texels {
 	t.groupAt = make([]int8, len(t.part))
 	t.divide()
 	return t
+}
+
+// gridOf is the grid of a part, its cells times coarsen.
+func gridOf(p scene.Part, coarsen float64) scene.Grid {
+	g := scene.Grid{Axes: [3]r3.Vec{{X: 1}, {Y: 1}, {Z: 1}}, EdgeM: [3]float64{p.TexelM, p.TexelM, p.TexelM}}
+	if p.Grid != nil {
+		g = *p.Grid
+	}
+	for i := range g.EdgeM {
+		g.EdgeM[i] *= coarsen
+	}
+	return g
+}
+
+// local turns a vector into the grid's frame, world back.
+func local(g *scene.Grid, v r3.Vec) r3.Vec {
+	return r3.Vec{X: r3.Dot(v, g.Axes[0]), Y: r3.Dot(v, g.Axes[1]), Z: r3.Dot(v, g.Axes[2])}
+}
+
+func world(g *scene.Grid, v r3.Vec) r3.Vec {
+	return r3.Add(r3.Scale(v.X, g.Axes[0]), r3.Add(r3.Scale(v.Y, g.Axes[1]), r3.Scale(v.Z, g.Axes[2])))
 }
 
 // scatters reports whether a finish reflects or transmits diffusely.
@@ -173,9 +197,10 @@ var neighbourCells = [][3]int32{
 func (t *Texels) key(prim int32, p r3.Vec) texelKey {
 	n := t.world.Normal(prim)
 	part := t.world.Part(prim)
-	cell := t.cell[part]
-	at := func(x float64) int32 { return int32(math.Floor(x/cell - gridShift)) }
-	k := texelKey{part: part, u: at(p.X), v: at(p.Y), w: at(p.Z)}
+	grid := &t.grid[part]
+	p, n = local(grid, p), local(grid, n)
+	at := func(x float64, axis int) int32 { return int32(math.Floor(x/grid.EdgeM[axis] - gridShift)) }
+	k := texelKey{part: part, u: at(p.X, 0), v: at(p.Y, 1), w: at(p.Z, 2)}
 	ax, ay, az := math.Abs(n.X), math.Abs(n.Y), math.Abs(n.Z)
 	// The small preference settles ties of 45 degree surfaces.
 	switch {

@@ -71,7 +71,7 @@ func TestClipCovers(t *testing.T) {
 		at := func() r3.Vec { return r3.Vec{X: 3 * s.Float64(), Y: 3 * s.Float64(), Z: 3 * s.Float64()} }
 		tri := [3]r3.Vec{at(), at(), at()}
 		cell := .2 + s.Float64()
-		parts := clipToGrid(tri[:], cell)
+		parts := clipToGrid(tri[:], [3]float64{cell, cell, cell})
 		var area float64
 		for _, p := range parts {
 			for k := 2; k < len(p); k++ {
@@ -142,7 +142,7 @@ func TestHitsFindTexels(t *testing.T) {
 			}
 			hits++
 			k := x.At(h.Prim, h.Point)
-			if x.At(h.Prim, r3.Add(h.Point, r3.Scale(3*x.cell[h.Part], h.Normal))) < 0 {
+			if x.At(h.Prim, r3.Add(h.Point, r3.Scale(3*x.grid[h.Part].EdgeM[0], h.Normal))) < 0 {
 				lost++
 			}
 			switch {

@@ -11,7 +11,8 @@ import (
 
 // refineRounds is the number of times that what is undecided is looked at
 // again, each time with refineFactor times the samples (half the error); the
-// surfaces, which add little to a view's error, get them once.
+// surfaces, dear to trace anew, get them once. Where their noise rules the
+// error, it stays as it is and so does the verdict: undecided.
 // After that a verdict stays undecided. The looks are paid for in z.
 const (
 	refineRounds = 2

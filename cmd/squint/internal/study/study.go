@@ -88,14 +88,6 @@ type Input struct {
 	Occupied, Clock, Daylight daylight.Hours
 }
 
-// Standing is one way in which the movable systems stand, and when they do.
-type Standing struct {
-	Label   string // "" where nothing moves
-	Scene   *scene.Scene
-	World   *trace.World
-	Moments []*scene.Moment
-}
-
 // Prepare reads everything and checks it. Errors are the user's to mend, all
 // of them joined.
 func Prepare(fsys fs.FS, name string, workers int) (*Input, error) {
@@ -130,7 +122,9 @@ func Prepare(fsys fs.FS, name string, workers int) (*Input, error) {
 		m.Occupied = used[m.Hour]
 	}
 	in.World = trace.Accelerate(s, workers)
-	in.Standings = []Standing{{Scene: s, World: in.World, Moments: c.Moments}}
+	if in.Standings, err = standings(fsys, p, s, in.World, c.Moments, workers); err != nil {
+		return nil, err
+	}
 	errs, notes := soundness.Receivers(in.World)
 	if len(errs) > 0 {
 		return nil, errors.Join(errs...)
@@ -175,7 +169,7 @@ func Run(ctx context.Context, in *Input, opt Options) (*Result, error) {
 	r := &Result{
 		Project: in.Project, Scene: in.Scene, Climate: in.Climate,
 		Calendar: in.Calendar, Occupied: in.Occupied, Clock: in.Clock, Daylight: in.Daylight,
-		Notes: in.Notes,
+		Notes: append(append([]string(nil), in.Notes...), hoursByStanding(in.Standings)...),
 	}
 	y, err := computeYear(ctx, in, opt, r)
 	if err != nil {

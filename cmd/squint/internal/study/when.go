@@ -31,6 +31,10 @@ func (v *ViewResult) sortCauses() {
 // mostly is the share of the hours that "mostly" speaks for.
 const mostly = 0.7
 
+// evenMonths is the span of months that glare spread evenly over the year
+// gives.
+const evenMonths = 9
+
 // when says when the hours above a limit fall and what carries them: the
 // shortest span of clock hours and the shortest span of months that hold most
 // of them, and the commonest cause. Empty when there are none.
@@ -64,7 +68,7 @@ func (v *ViewResult) when(r *Result, limit float64) string {
 	fmt.Fprintf(&b, "mostly %d to %d h", from, to+1)
 	if m0 == m1 {
 		fmt.Fprintf(&b, " in %s", months[m0])
-	} else if (m1-m0+12)%12 < 11 {
+	} else if (m1-m0+12)%12 < evenMonths-1 {
 		fmt.Fprintf(&b, " from %s to %s", months[m0], months[m1])
 	} else {
 		b.WriteString(" all year")

@@ -184,11 +184,11 @@ func (y *year) daylightFactors(ctx context.Context, e *engine) error {
 	return nil
 }
 
-// memoryMiB estimates a worker's working set: three rows a texel side and
+// memoryMiB estimates a worker's working set: four rows a texel side and
 // batch, three fifths of all sides being reached in a closed room.
 func memoryMiB(t *surface.Transport, batches int) float64 {
 	sides := float64(2*t.Texels.Len()) * 0.6
-	return sides * float64(batches) * 3 * surface.Width * 4 / (1 << 20)
+	return sides * float64(batches) * 4 * surface.Width * 4 / (1 << 20)
 }
 
 func traceEyes(ctx context.Context, in *Input, st *Standing, t *surface.Transport, opt Options) ([]*coeff.Eye, error) {
