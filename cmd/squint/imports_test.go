@@ -32,6 +32,7 @@ var order = []string{
 	"scene/sizing",
 	"scene/project",
 	"scene",
+	"scene/export",
 	"trace/bvh",
 	"trace",
 	"trace/soundness",
