@@ -48,6 +48,7 @@ func Build(fsys fs.FS, p *project.Project) (*Scene, error) {
 	}
 	b.addOpenings(meshes)
 	b.addSystems()
+	b.addAnidolicCeilings()
 	b.s.Bounds = bounds(b.s.Triangles)
 	b.addGround()
 	b.addReceivers()
@@ -275,6 +276,7 @@ func (b *builder) addOpenings(meshes []*placed) {
 		} else {
 			b.ownGlass(o, len(b.s.Openings)-1)
 		}
+		b.addInnerPane(o, len(b.s.Openings)-1)
 	}
 }
 
@@ -297,7 +299,7 @@ func (b *builder) ownGlass(o *project.Opening, k int) {
 
 func (b *builder) addFaces(faces []system.Face, partOf func(string) int32) {
 	for _, f := range faces {
-		id, ok := b.finish[f.Finish]
+		id, ok := b.sheet(&f)
 		if !ok {
 			continue // the project's own check has said so
 		}

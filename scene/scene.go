@@ -30,9 +30,19 @@ type Part struct {
 	// Opening is the index of the opening that a pane or system belongs to,
 	// -1 where none.
 	Opening int
+	// Grid, where not nil, cuts the part into cells that are not cubes along the
+	// axes, such as long ones along slats; TexelM is then not used.
+	Grid *Grid
 	// TexelM is the edge of the cells, in metres, into which the part is cut
 	// for surface coefficients.
 	TexelM float64
+}
+
+// Grid is a frame of unit vectors at right angles with the cells' edges along
+// them, in metres.
+type Grid struct {
+	Axes  [3]r3.Vec
+	EdgeM [3]float64
 }
 
 // Finish is a named optical surface.

@@ -12,9 +12,10 @@ import (
 	"squint/scene/system"
 )
 
-// addSystems builds the light shelves and rollers at their openings.
+// addSystems builds light shelves, sills, rollers, blinds and louvres at their
+// openings.
 func (b *builder) addSystems() {
-	shelves := map[string]system.LightShelf{}
+	shelves := map[string][]system.LightShelf{}
 	for i := range b.p.LightShelves {
 		def := &b.p.LightShelves[i]
 		k, ok := b.opening(def.Opening)
@@ -22,24 +23,16 @@ func (b *builder) addSystems() {
 			continue // the project's own check has said so
 		}
 		s := def.System()
-		faces, err := s.Build(b.s.Openings[k].Rect)
-		if err != nil {
-			b.failf(def.Line, "light_shelf %q: %v", def.Name, err)
-			continue
+		s.CavityM = b.cavityM(def.Opening)
+		if b.addShelf("light_shelf", def.Name, def.Line, k, s) {
+			shelves[def.Opening] = append(shelves[def.Opening], s)
 		}
-		shelves[def.Opening] = s
-		parts := map[string]int32{}
-		b.addFaces(faces, func(name string) int32 {
-			id, ok := parts[name]
-			if !ok {
-				id = b.part(Part{
-					Name: def.Name + strings.TrimPrefix(name, "shelf"),
-					Kind: System, Opening: k, TexelM: shelfTexel(def),
-				})
-				parts[name] = id
-			}
-			return id
-		})
+	}
+	for i := range b.p.Sills {
+		def := &b.p.Sills[i]
+		if k, ok := b.opening(def.Opening); ok {
+			b.addShelf("sill", def.Name, def.Line, k, def.System())
+		}
 	}
 	for i := range b.p.Rollers {
 		def := &b.p.Rollers[i]
@@ -59,10 +52,11 @@ func (b *builder) addSystems() {
 			b.finish[name] = b.intern("roller "+def.Name, cloth)
 		}
 		ro := def.System(name)
+		ro.CavityM = b.cavityM(def.Opening)
 		r := b.s.Openings[k].Rect
 		faces, err := ro.Build(r)
-		if err == nil {
-			if s, ok := shelves[def.Opening]; ok {
+		for _, s := range shelves[def.Opening] {
+			if err == nil {
 				err = ro.Meets(s, r)
 			}
 		}
@@ -73,10 +67,21 @@ func (b *builder) addSystems() {
 		part := b.part(Part{Name: def.Name, Kind: System, Opening: k, TexelM: systemTexelM})
 		b.addFaces(faces, func(string) int32 { return part })
 	}
+	b.addSlats(shelves)
+}
+
+// cavityM is the distance between the two panes of an opening, 0 for one.
+func (b *builder) cavityM(opening string) float64 {
+	for i := range b.p.Openings {
+		if b.p.Openings[i].Name == opening {
+			return b.p.Openings[i].CavityM
+		}
+	}
+	return 0
 }
 
 // shelfTexel puts at least 4 texels across the shallower part of a shelf.
-func shelfTexel(d *project.LightShelf) float64 {
+func shelfTexel(d system.LightShelf) float64 {
 	least := math.Inf(1)
 	for _, x := range []float64{d.OutsideDepthM, d.InsideDepthM} {
 		if x > 0 {

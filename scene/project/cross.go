@@ -55,6 +55,7 @@ func (ref reference) mark() {
 func (r *reader) checkSystems(p *Project) {
 	rects := map[string]system.Rect{}
 	glass := map[string]string{}
+	mouths := r.mouths(p)
 	for i, o := range p.Openings {
 		n := r.openings[i]
 		if o.MeshGroup != "" {
@@ -62,6 +63,9 @@ func (r *reader) checkSystems(p *Project) {
 				r.reject(n, "opening", "mesh_group", "got %s, which is opening %s already", quote(o.MeshGroup), quote(first))
 			}
 			glass[o.MeshGroup] = o.Name
+		}
+		if o.HasCorners && o.MeshGroup == "" && !n.has("glazing") && !n.has("inner_glazing") && !mouths[o.Name] {
+			r.reject(n, "opening", "glazing", "missing; want a finish's name in quotes")
 		}
 		if !o.HasCorners || !n.good("corners_m", "outward_deg") {
 			continue
@@ -76,8 +80,16 @@ func (r *reader) checkSystems(p *Project) {
 	for i, s := range p.LightShelves {
 		rect, ok := rects[s.Opening]
 		if n := r.shelves[i]; ok && !n.bad {
-			if _, err := s.System().Build(rect); err != nil {
+			if _, err := s.SystemAt(p.opening(s.Opening)).Build(rect); err != nil {
 				r.dimension(n, "light_shelf", err)
+			}
+		}
+	}
+	for i, s := range p.Sills {
+		rect, ok := rects[s.Opening]
+		if n := r.sills[i]; ok && !n.bad {
+			if _, err := s.System().Build(rect); err != nil {
+				r.dimension(n, "sill", err)
 			}
 		}
 	}
@@ -97,11 +109,15 @@ func (r *reader) checkSystems(p *Project) {
 			if s.Opening != ro.Opening || r.shelves[k].bad {
 				continue
 			}
-			if err := ro.System("").Meets(s.System(), rect); err != nil {
+			cloth := ro.System("")
+			cloth.CavityM = p.opening(ro.Opening).CavityM
+			if err := cloth.Meets(s.SystemAt(p.opening(s.Opening)), rect); err != nil {
 				r.dimension(n, "roller", err)
 			}
 		}
 	}
+	r.checkSlats(p, rects)
+	r.checkAnidolic(p, rects)
 }
 
 // dimensionKeys are our keys of the dimensions that package system names.
@@ -109,12 +125,35 @@ var dimensionKeys = map[string]string{
 	"height": "height_m", "outside depth": "outside_depth_m", "inside depth": "inside_depth_m",
 	"outside tilt": "outside_tilt_deg", "inside tilt": "inside_tilt_deg", "thickness": "thickness_m",
 	"extension": "extend_m", "gap": "gap_m", "drop": "drop", "opening": "opening",
+	"stack": "stack", "spacing": "stack_spacing_m",
+	"outside profile": "outside_profile", "outside sagitta": "outside_sagitta_m", "outside focus": "outside_focus_m", "outside polyline": "outside_polyline_m",
+	"inside profile": "inside_profile", "inside sagitta": "inside_sagitta_m", "inside focus": "inside_focus_m", "inside polyline": "inside_polyline_m",
+}
+
+// dimensionKeysOf are those of one table where they differ.
+var dimensionKeysOf = map[string]map[string]string{
+	"sill":    {"outside depth": "depth_m", "outside tilt": "tilt_deg"},
+	"blind":   {"low": "drop", "high": "drop"},
+	"louvres": {"low": "bottom_m", "high": "top_m"},
+}
+
+// slatDimensionKeys are those of blinds and louvres.
+var slatDimensionKeys = map[string]string{
+	"position": "position", "width": "slat_width_mm", "pitch": "pitch_mm", "thickness": "thickness_mm", "sagitta": "sagitta_mm",
+	"tilt": "tilt_deg", "cavity": "position", "gap": "gap_m", "side": "side_gap_m", "opening": "opening",
 }
 
 func (r *reader) dimension(n *node, section string, err error) {
 	var d *system.DimensionError
 	if errors.As(err, &d) {
-		r.reject(n, section, dimensionKeys[d.Dimension], "%s", d.Message)
+		key, ok := dimensionKeysOf[section][d.Dimension]
+		if !ok && (section == "blind" || section == "louvres") {
+			key, ok = slatDimensionKeys[d.Dimension]
+		}
+		if !ok {
+			key = dimensionKeys[d.Dimension]
+		}
+		r.reject(n, section, key, "%s", d.Message)
 		return
 	}
 	r.reject(n, section, "", "%v", err)

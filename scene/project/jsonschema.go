@@ -156,6 +156,9 @@ func valueSchema(k described) object {
 		return list(object{"type": "string", "pattern": day}, 0, 0)
 	case **MonthDay:
 		return object{"type": "string", "pattern": day}
+	case *[]SlatState:
+		o, _ := closed(describe(slatStateKeys)) // without defaults nothing can fail
+		return list(o, 1, 0)
 	case *[]Assignment:
 		return object{"type": "object", "additionalProperties": object{"type": "string"}}
 	}

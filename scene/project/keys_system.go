@@ -17,6 +17,8 @@ var openingKeys = []key[Opening]{
 	{spec{name: "mesh_group", about: "instead of corners_m: the mesh group that is the glass", form: itemName}, func(o *Opening) any { return &o.MeshGroup }},
 	{spec{name: "outward_deg", about: "azimuth to which the opening faces", in: anyAngle}, func(o *Opening) any { return &o.OutwardDeg }},
 	{spec{name: "glazing", about: "finish of the glass; with corners_m a pane is built", refers: "finish", types: []string{"glazing"}}, func(o *Opening) any { return &o.Glazing }},
+	{spec{name: "inner_glazing", about: "finish of a second pane indoors of the first, with a blind between them or without; glazing is then the outer pane alone", refers: "finish", types: []string{"glazing"}}, func(o *Opening) any { return &o.InnerGlazing }},
+	{spec{name: "cavity_m", about: "between the two panes, with inner_glazing", in: within{lo: 0.004, hi: 1}}, func(o *Opening) any { return &o.CavityM }},
 }
 
 func checkOpening(r *reader, n *node, o *Opening) {
@@ -32,8 +34,13 @@ func checkOpening(r *reader, n *node, o *Opening) {
 		r.reject(n, name, "mesh_group", "got corners_m too; want one of the two")
 	case !n.has("corners_m") && !n.has("mesh_group"):
 		r.reject(n, name, "corners_m", "missing; want 4 corners of 3 numbers each, or a mesh_group")
-	case n.has("corners_m") && !n.has("glazing"):
-		r.reject(n, name, "glazing", "missing; want a finish's name in quotes")
+	case n.has("inner_glazing") && !n.has("glazing"):
+		r.reject(n, name, "glazing", "missing; want the outer pane's finish, as inner_glazing is given")
+	}
+	for _, pair := range [][2]string{{"inner_glazing", "cavity_m"}, {"cavity_m", "inner_glazing"}} {
+		if n.has(pair[0]) && !n.has(pair[1]) {
+			r.reject(n, name, pair[0], "got no %s; want both or neither", pair[1])
+		}
 	}
 }
 
@@ -70,7 +77,7 @@ func (o Opening) Rect(northDeg float64) (system.Rect, error) {
 // board are the types of finish that a light shelf can have.
 var board = []string{"matte", "mirror", "glossy", "perforated"}
 
-var lightShelfKeys = []key[LightShelf]{
+var lightShelfKeys = slices.Concat([]key[LightShelf]{
 	{spec{name: "name", about: "shown in results", required: true, form: itemName}, func(s *LightShelf) any { return &s.Name }},
 	{spec{name: "opening", about: "at which the shelf is", required: true, refers: "opening"}, func(s *LightShelf) any { return &s.Opening }},
 	{spec{name: "height_m", about: "of the top at the glass, above the opening's lower edge; 0 is on the transom below it, negative on the wall further down", in: within{lo: -1, hi: 20}, def: "0", source: "on the transom between window and clerestory: " + usual}, func(s *LightShelf) any { return &s.HeightM }},
@@ -83,13 +90,25 @@ var lightShelfKeys = []key[LightShelf]{
 	{spec{name: "gap_m", about: "between glass and shelf, on either side", in: within{lo: 0.001, hi: 0.5}, def: "0.01", source: usual}, func(s *LightShelf) any { return &s.GapM }},
 	{spec{name: "top", about: "finish of the upper side", required: true, refers: "finish", types: board}, func(s *LightShelf) any { return &s.Top }},
 	{spec{name: "underside", about: "finish of the lower side and of the edges", required: true, refers: "finish", types: board}, func(s *LightShelf) any { return &s.Underside }},
-}
+	{spec{name: "stack", about: "number of shelves above each other, the lowest at height_m", in: within{lo: 1, hi: 50}, def: "1", source: own}, func(s *LightShelf) any { return &s.Stack }},
+	{spec{name: "stack_spacing_m", about: "with a stack: from each shelf's top to the next one's", in: within{lo: 0.01, hi: 5}}, func(s *LightShelf) any { return &s.StackSpacingM }},
+},
+	shapeKeys("outside", func(s *LightShelf) *ShelfShape { return &s.OutsideShape }),
+	shapeKeys("inside", func(s *LightShelf) *ShelfShape { return &s.InsideShape }))
 
 func checkLightShelf(r *reader, n *node, s *LightShelf) {
 	s.Line = n.line
 	r.shelves = append(r.shelves, n)
 	if n.good("outside_depth_m", "inside_depth_m") && s.OutsideDepthM == 0 && s.InsideDepthM == 0 {
 		r.reject(n, "light_shelf", "outside_depth_m", "got no outside_depth_m and no inside_depth_m above 0; want at least one of them")
+	}
+	checkShape(r, n, "outside", s.OutsideDepthM, s.OutsideShape)
+	checkShape(r, n, "inside", s.InsideDepthM, s.InsideShape)
+	switch {
+	case s.Stack > 1 && !n.has("stack_spacing_m"):
+		r.reject(n, "light_shelf", "stack_spacing_m", "missing; a stack of %d shelves needs it", s.Stack)
+	case n.has("stack_spacing_m") && s.Stack <= 1 && n.good("stack"):
+		r.reject(n, "light_shelf", "stack_spacing_m", "got no stack of 2 shelves or more; want that, or leave it out")
 	}
 }
 
@@ -99,7 +118,26 @@ func (s LightShelf) System() system.LightShelf {
 		HeightM: s.HeightM, OutsideDepthM: s.OutsideDepthM, InsideDepthM: s.InsideDepthM, ThicknessM: s.ThicknessM,
 		OutsideTiltRad: s.OutsideTiltDeg * math.Pi / 180, InsideTiltRad: s.InsideTiltDeg * math.Pi / 180,
 		ExtendM: s.ExtendM, GapM: s.GapM, Top: s.Top, Underside: s.Underside,
+		OutsideProfile: s.OutsideShape.system(), InsideProfile: s.InsideShape.system(),
+		Stack: s.Stack, SpacingM: s.StackSpacingM,
 	}
+}
+
+// SystemAt is System at that opening, whose second pane it keeps clear of.
+func (s LightShelf) SystemAt(o *Opening) system.LightShelf {
+	shelf := s.System()
+	shelf.CavityM = o.CavityM
+	return shelf
+}
+
+// opening of that name; an empty one where there is none.
+func (p *Project) opening(name string) *Opening {
+	for i := range p.Openings {
+		if p.Openings[i].Name == name {
+			return &p.Openings[i]
+		}
+	}
+	return &Opening{}
 }
 
 // cloths are the types of finish that a roller can be of.

@@ -13,8 +13,12 @@ type reader struct {
 	refs     []reference
 	finishes []*node // of Project.Finishes, in step
 	shelves  []*node // of Project.LightShelves, in step
+	sills    []*node
 	rollers  []*node
+	blinds   []*node
+	louvres  []*node
 	openings []*node
+	anidolic []*node // of Project.AnidolicCeilings, in step
 }
 
 // reference is a name that must exist.
@@ -208,6 +212,8 @@ func (r *reader) set(n *node, key string, s *spec, field any) string {
 			return wrong()
 		}
 		*f = &d
+	case *[]SlatState:
+		return r.slatStates(n, key, wrong, f)
 	case *[]Assignment:
 		if n.table == nil {
 			return wrong()

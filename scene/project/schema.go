@@ -16,13 +16,17 @@ type Project struct {
 	Horizon   []HorizonPoint // by rising azimuth; none: a flat horizon
 	Occupancy Occupancy
 
-	Meshes       []Mesh
-	Finishes     []Finish
-	Openings     []Opening
-	LightShelves []LightShelf
-	Rollers      []Roller
-	Viewpoints   []Viewpoint
-	WorkPlanes   []WorkPlane
+	Meshes           []Mesh
+	Finishes         []Finish
+	Openings         []Opening
+	LightShelves     []LightShelf
+	Sills            []Sill
+	Rollers          []Roller
+	Blinds           []Blind
+	Louvres          []Louvres
+	AnidolicCeilings []AnidolicCeiling
+	Viewpoints       []Viewpoint
+	WorkPlanes       []WorkPlane
 
 	Criteria   Criteria
 	Simulation Simulation
@@ -141,7 +145,11 @@ type Opening struct {
 	// one that lies flat, which faces up.
 	OutwardDeg *float64
 	Glazing    string // finish; with a mesh group "" keeps the mesh's own
-	Line       int
+	// InnerGlazing is the finish of a second pane, CavityM indoors of the
+	// first; "" for none.
+	InnerGlazing string
+	CavityM      float64
+	Line         int
 }
 
 // LightShelf is a shelf at an opening; system.LightShelf says what each
@@ -154,8 +162,20 @@ type LightShelf struct {
 	OutsideTiltDeg, InsideTiltDeg float64 // from the horizontal, positive lifts the outer edge
 	ExtendM                       float64 // beyond the opening, on each side
 	GapM                          float64 // between glass and shelf
+	OutsideShape, InsideShape     ShelfShape
+	Stack                         int     // shelves above each other, the lowest at HeightM
+	StackSpacingM                 float64 // from top to top
 	Top, Underside                string  // finishes
 	Line                          int
+}
+
+// ShelfShape is the shape of a shelf's top; system.Profile says what each
+// dimension means.
+type ShelfShape struct {
+	Profile   string // "flat", "arc", "parabola" or "polyline"
+	SagittaM  float64
+	FocusM    float64
+	PolylineM [][2]float64
 }
 
 // Roller is a blind of cloth at an opening. Its front is toward outdoors. Cloth
@@ -173,6 +193,28 @@ type Roller struct {
 	GapM                 float64  // between glass and cloth
 	Drawn                bool
 	Line                 int
+}
+
+// AnidolicCeiling is an anidolic ceiling whose duct starts at an opening;
+// system.AnidolicCeiling says what each dimension means.
+type AnidolicCeiling struct {
+	Name, Opening      string
+	AxisTiltDeg        float64 // altitude of the collector's axis
+	AcceptanceDeg      float64 // half-angle above the axis
+	AcceptanceBelowDeg float64 // half-angle below it
+	CollectorShare     float64 // of its full reach
+	CollectorSpaceM    float64 // before the facade; 0: not limited
+	DuctLengthM        float64 // from the glass to the outlet's far end
+	DuctHeightM        float64 // 0: the opening's less the gaps
+	OutletLengthM      float64 // 0: that which fits the duct
+	OutletCutOffDeg    float64 // below the horizontal
+	GapM               float64 // between the opening's edges and the duct
+	Reflector, Casing  string  // finishes
+	// Finishes of panes and of the cloth over the entrance; "" for none.
+	EntranceGlazing, OutletGlazing, Roller string
+	RollerDrawn                            bool
+	RollerFollow                           string // "acceptance"; "": the cloth stays as it is
+	Line                                   int
 }
 
 // Viewpoint is an eye. Exactly one of AzimuthDeg and TowardM is set.

@@ -110,6 +110,8 @@ func (s *spec) want(field any) string {
 		return `a list of days such as "12-25", month first`
 	case **MonthDay:
 		return `a day such as "03-29", month first`
+	case *[]SlatState:
+		return "a list of tables such as { name = \"open\", tilt_deg = 0 }"
 	case *[]Assignment:
 		return "a table of group or material names and finishes"
 	}

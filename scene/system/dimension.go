@@ -4,8 +4,13 @@ import "fmt"
 
 // DimensionError is a dimension that a system cannot have.
 type DimensionError struct {
-	// Dimension is "height", "thickness", "gap", "extension", "outside depth",
-	// "inside depth", "outside tilt", "inside tilt", "drop" or "opening".
+	// Dimension is "height", "thickness", "gap", "extension", "drop", "opening",
+	// "stack", "spacing", "position", "width", "pitch", "sagitta", "facet",
+	// "tilt", "cavity", "side", "low" or "high"; of the parts of a shelf
+	// "outside" or "inside" with "depth", "tilt", "profile", "sagitta", "focus"
+	// or "polyline" after it; of an anidolic ceiling "axis tilt", "acceptance",
+	// "collector share", "collector space", "duct height", "duct length",
+	// "outlet length", "outlet cut-off" or "facet error".
 	Dimension string
 	Message   string // what was got and the limit
 }

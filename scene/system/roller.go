@@ -9,7 +9,8 @@ import (
 type Roller struct {
 	Outside bool
 	Drop    float64 // share of the opening's height that is covered, 0 to 1, from the top
-	GapM    float64 // between the plane of the glass and the cloth, above 0
+	GapM    float64 // between the glass on the cloth's side and the cloth, above 0
+	CavityM float64 // of an inner pane indoors of the plane of the glass; 0: one pane
 	Raised  bool    // the cloth is rolled up
 	Cloth   string  // finish
 }
@@ -37,7 +38,17 @@ func (ro Roller) outM() float64 {
 	if ro.Outside {
 		return ro.GapM
 	}
-	return -ro.GapM
+	return -ro.GapM - ro.CavityM
+}
+
+// hung is where the drawn cloth hangs.
+func (ro Roller) hung(r Rect) (position string, z zone) {
+	out := math.Abs(ro.outM())
+	position = Inside
+	if ro.Outside {
+		position = Outside
+	}
+	return position, zone{out, out, r.HeightM * (1 - ro.Drop), r.HeightM}
 }
 
 // Meets returns an error, which says what would be clear, where the drawn
@@ -47,25 +58,10 @@ func (ro Roller) Meets(s LightShelf, r Rect) error {
 	if err != nil || cloth == nil {
 		return err
 	}
-	depth := s.InsideDepthM
-	if ro.Outside {
-		depth = s.OutsideDepthM
-	}
-	if depth == 0 {
-		return nil
-	}
-	if err := s.check(r); err != nil {
+	_, z := ro.hung(r)
+	high, ok, err := s.meets(r, ro.Outside, z)
+	if err != nil || !ok {
 		return err
-	}
-	p, err := s.section(r, ro.Outside)
-	if err != nil {
-		return err
-	}
-	high, ok := highest(p, ro.GapM)
-	low := r.HeightM * (1 - ro.Drop)
-	// A cloth that ends on the shelf's top touches it and no more.
-	if !ok || low >= high-touchM {
-		return nil
 	}
 	return dimension("drop", "got %g, which reaches the shelf, whose top is %.4g m above the opening's lower edge at the cloth; want at most %.3g, or a gap larger than the shelf's reach",
 		ro.Drop, high, math.Floor(1000*max(0, 1-high/r.HeightM))/1000)
@@ -73,21 +69,3 @@ func (ro Roller) Meets(s LightShelf, r Rect) error {
 
 // touchM is far below what can be built, far above rounding.
 const touchM = 1e-6
-
-// highest is the top of a convex section at a distance from the glass.
-func highest(section [4][2]float64, out float64) (float64, bool) {
-	high, ok := math.Inf(-1), false
-	for i, a := range section {
-		b := section[(i+1)%4]
-		if lo, hi := min(a[0], b[0]), max(a[0], b[0]); out < lo || out > hi {
-			continue
-		}
-		ok = true
-		if a[0] == b[0] {
-			high = max(high, a[1], b[1])
-			continue
-		}
-		high = max(high, a[1]+(b[1]-a[1])*(out-a[0])/(b[0]-a[0]))
-	}
-	return high, ok
-}

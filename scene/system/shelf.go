@@ -1,10 +1,6 @@
 package system
 
-import (
-	"math"
-
-	"gonum.org/v1/gonum/spatial/r3"
-)
+import "math"
 
 // LightShelf is a shelf in two parts, one outdoors and one indoors of the
 // glass, either of which may be missing. Lengths are in metres, angles in
@@ -26,7 +22,20 @@ type LightShelf struct {
 	OutsideTiltRad, InsideTiltRad float64
 	ExtendM                       float64 // beyond the opening, on each side
 	GapM                          float64 // between the plane of the glass and either part
-	Top, Underside                string  // finishes; the edges take Underside's
+	// CavityM is the distance of an inner pane indoors of the plane of the
+	// glass, from which the indoor part then keeps GapM; its depth counts from
+	// the plane of the glass all the same. 0: one pane.
+	CavityM float64
+	// OutsideProfile and InsideProfile shape the tops; the tilt is that of the
+	// straight line from the glass to the far edge. The underside follows the
+	// top at ThicknessM.
+	OutsideProfile, InsideProfile Profile
+	// Stack is the number of shelves, each SpacingM above the one below, the
+	// lowest at HeightM; 0 and 1 are one shelf.
+	Stack          int
+	SpacingM       float64
+	FacetRad       float64 // most between facet and curve; 0: MirrorFacetRad
+	Top, Underside string  // finishes; the edges take Underside's
 }
 
 // Limits of a shelf. The tilts are counted from the horizontal. Common
@@ -41,38 +50,45 @@ const (
 	// minHeightM: further below its opening a shelf belongs to another one.
 	minHeightM    = -1.0
 	maxThicknessM = 0.5
+	maxStack      = 50
 )
 
-// Build makes the closed surface of each part: 12 faces, their fronts away
-// from the part, the outdoor part first. The end at the glass is cut parallel
-// to the glass, GapM away from it, so that the glass is never touched; the far
-// end is square to the top.
+// Build makes the closed surface of each part, fronts away from the part: the
+// lowest shelf first, the outdoor part before the indoor one; 12 faces for a
+// flat part. The end at the glass is cut parallel to the glass, GapM away from
+// it, so that the glass is never touched; the far end is square to the tilted
+// line. A curved top is flat facets, off the curve by at most FacetRad.
 //
 // An error names the dimension and its limit: a height above the
 // opening or more than 1 m below it, a thickness that is not positive or above
 // 0.5 m, no depth, a negative length, a gap that is not positive, a tilt beyond
 // 60 degrees or 75 from the glass's normal, a part so steep or shallow that
-// nothing of it is left clear of the glass, an opening within 15 degrees of
-// flat. Whether a part meets the room's ceiling
-// or walls cannot be known here.
+// nothing of it is left clear of the glass, a hollow whose edges rise beyond 60
+// degrees from the line, stacked shelves that touch, an opening within 15
+// degrees of flat. Whether a part meets the room's ceiling or walls cannot be
+// known here.
 func (s LightShelf) Build(r Rect) ([]Face, error) {
 	if err := s.check(r); err != nil {
 		return nil, err
 	}
+	const top, underside, edge = "shelf/top", "shelf/underside", "shelf/edge"
+	finishes := [4]string{s.Top, s.Underside, s.Underside, s.Underside}
 	var faces []Face
-	if s.OutsideDepthM > 0 {
-		p, err := s.section(r, true)
-		if err != nil {
-			return nil, err
+	for i := range max(1, s.Stack) {
+		for _, outside := range []bool{true, false} {
+			b, ok, err := s.section(r, outside, float64(i)*s.SpacingM)
+			if err != nil {
+				return nil, err
+			}
+			if !ok {
+				continue
+			}
+			side := 1.0
+			if !outside {
+				side = -1
+			}
+			faces = append(faces, b.extrude(r, side, -s.ExtendM, r.WidthM+s.ExtendM, finishes, [3]string{top, edge, underside})...)
 		}
-		faces = append(faces, s.prism(r, p, true)...)
-	}
-	if s.InsideDepthM > 0 {
-		p, err := s.section(r, false)
-		if err != nil {
-			return nil, err
-		}
-		faces = append(faces, s.prism(r, p, false)...)
 	}
 	return faces, nil
 }
@@ -100,6 +116,23 @@ func (s LightShelf) check(r Rect) error {
 	if !(s.ThicknessM > 0 && s.ThicknessM <= maxThicknessM) {
 		return dimension("thickness", "got %g m, want above 0 m and at most %g m", s.ThicknessM, maxThicknessM)
 	}
+	if !(s.CavityM >= 0 && s.CavityM <= maxDepthM) {
+		return dimension("cavity", "got %g m, want 0 to %g m", s.CavityM, maxDepthM)
+	}
+	if !(s.FacetRad >= 0 && s.FacetRad <= math.Pi/4) {
+		return dimension("facet", "got %g degrees, want 0 to 45", deg(s.FacetRad))
+	}
+	if !(s.Stack >= 0 && s.Stack <= maxStack) {
+		return dimension("stack", "got %d, want 1 to %d", s.Stack, maxStack)
+	}
+	if s.Stack > 1 {
+		if !(s.SpacingM > 0 && s.SpacingM <= maxDepthM) {
+			return dimension("spacing", "got %g m, want above 0 m between stacked shelves", s.SpacingM)
+		}
+		if top := s.HeightM + float64(s.Stack-1)*s.SpacingM; top > r.HeightM+touchM {
+			return dimension("spacing", "got %g m, with which the uppermost of %d shelves is at %.4g m, want at most the opening's height, %.4g m", s.SpacingM, s.Stack, top, r.HeightM)
+		}
+	}
 	lean := r.LeanRad()
 	if !(math.Abs(lean) <= maxLeanRad) {
 		return dimension("opening", "leans %.1f degrees from upright, want at most %.0f for a light shelf", deg(lean), deg(maxLeanRad))
@@ -121,57 +154,76 @@ func (s LightShelf) check(r Rect) error {
 	return nil
 }
 
-// section is a part seen along Across: out and up in metres of near top, far
-// top, far underside, near underside, out counted away from the glass on the
-// part's own side.
-func (s LightShelf) section(r Rect, outside bool) ([4][2]float64, error) {
+// section is a part seen along Across, raised by liftM; false where there is
+// none. Out is counted away from the glass on the part's own side.
+func (s LightShelf) section(r Rect, outside bool, liftM float64) (body, bool, error) {
 	// turn is the slope of the part in the rectangle's own frame, positive
 	// where it rises away from the glass.
-	turn, depth, what := s.OutsideTiltRad-r.LeanRad(), s.OutsideDepthM, "outside"
+	turn, depth, what, gap, profile := s.OutsideTiltRad-r.LeanRad(), s.OutsideDepthM, "outside", s.GapM, s.OutsideProfile
 	if !outside {
-		turn, depth, what = -(s.InsideTiltRad - r.LeanRad()), s.InsideDepthM, "inside"
+		turn, depth, what, gap, profile = -(s.InsideTiltRad - r.LeanRad()), s.InsideDepthM, "inside", s.CavityM+s.GapM, s.InsideProfile
+	}
+	if depth == 0 {
+		return body{}, false, nil
+	}
+	facet := s.FacetRad
+	if facet == 0 {
+		facet = MirrorFacetRad
+	}
+	line, err := profile.line(what, depth, facet)
+	if err != nil {
+		return body{}, false, err
 	}
 	sin, cos := math.Sincos(turn)
-	// The underside runs ThicknessM below the top, square to it, and so is
-	// ThicknessM*sin further out at the same length along the part.
-	nearTop, nearUnder := s.GapM/cos, (s.GapM-s.ThicknessM*sin)/cos
-	if least := max(nearTop, nearUnder); depth <= least+1e-6 {
-		return [4][2]float64{}, dimension(what+" depth", "got %g m, want above %.4g m: with a gap of %g m, a thickness of %g m and this tilt nothing of the shelf stays clear of the glass", depth, least, s.GapM, s.ThicknessM)
+	// The underside runs ThicknessM below the top, square to the line, and so
+	// is ThicknessM*sin further out at the same length along the part.
+	if least := max(gap/cos, (gap-s.ThicknessM*sin)/cos); depth <= least+touchM {
+		return body{}, false, dimension(what+" depth", "got %g m, want above %.4g m: with a gap of %g m, a thickness of %g m and this tilt nothing of the shelf stays clear of the glass", depth, least, gap, s.ThicknessM)
 	}
-	top := func(l float64) [2]float64 { return [2]float64{l * cos, s.HeightM + l*sin} }
-	under := func(l float64) [2]float64 {
-		p := top(l)
-		return [2]float64{p[0] + s.ThicknessM*sin, p[1] - s.ThicknessM*cos}
+	lower := make([][2]float64, len(line))
+	for i, p := range line {
+		lower[i] = [2]float64{p[0], p[1] - s.ThicknessM}
 	}
-	return [4][2]float64{top(nearTop), top(depth), under(depth), under(nearUnder)}, nil
+	up := s.HeightM + liftM
+	top, ok1 := cut(line, sin, cos, up, gap)
+	under, ok2 := cut(lower, sin, cos, up, gap)
+	if !ok1 || !ok2 {
+		return body{}, false, dimension(what+" profile", "with this tilt and a gap of %g m its hollow comes too near the glass; want less tilt or a flatter hollow", gap)
+	}
+	b := body{top, under}
+	if s.Stack > 1 {
+		for _, p := range b.ring() {
+			if low, high, ok := b.span(p[0]); ok && high-low > s.SpacingM-touchM {
+				return body{}, false, dimension("spacing", "got %g m, want more than %.4g m, the height of a shelf %s, so that stacked shelves do not touch", s.SpacingM, high-low, what)
+			}
+		}
+	}
+	return b, true, nil
 }
 
-// prism extrudes a section along Across.
-func (s LightShelf) prism(r Rect, section [4][2]float64, outside bool) []Face {
-	// Seen from the high-Across end with the glass on the left, which is
-	// where outdoors lies to the right, the section runs clockwise; the
-	// indoor part is its mirror image.
-	lo, hi := -s.ExtendM, r.WidthM+s.ExtendM
-	side := 1.0
-	if !outside {
-		side = -1
-		lo, hi = hi, lo
+// meets returns the highest point of the shelves on one side of the glass that
+// lies in a zone there.
+func (s LightShelf) meets(r Rect, outside bool, z zone) (high float64, ok bool, err error) {
+	if s.OutsideDepthM == 0 && outside || s.InsideDepthM == 0 && !outside {
+		return 0, false, nil
 	}
-	at := func(i int, across float64) r3.Vec {
-		return r.Point(across, section[i][1], side*section[i][0])
+	if err := s.check(r); err != nil {
+		return 0, false, err
 	}
-	const top, underside, edge = "shelf/top", "shelf/underside", "shelf/edge"
-	var faces []Face
-	for i, part := range []string{top, edge, underside, edge} {
-		finish := s.Underside
-		if part == top {
-			finish = s.Top
+	high = math.Inf(-1)
+	for i := range max(1, s.Stack) {
+		b, has, err := s.section(r, outside, float64(i)*s.SpacingM)
+		if err != nil {
+			return 0, false, err
 		}
-		k := (i + 1) % 4
-		faces = append(faces, quad(at(i, lo), at(i, hi), at(k, hi), at(k, lo), finish, part)...)
+		if !has {
+			continue
+		}
+		if h, in := b.meets(z); in {
+			high, ok = max(high, h), true
+		}
 	}
-	faces = append(faces, quad(at(0, lo), at(1, lo), at(2, lo), at(3, lo), s.Underside, edge)...)
-	return append(faces, quad(at(3, hi), at(2, hi), at(1, hi), at(0, hi), s.Underside, edge)...)
+	return high, ok, nil
 }
 
 func deg(rad float64) float64 { return rad * 180 / math.Pi }
