@@ -23,12 +23,13 @@ type summary struct {
 	Title    string `json:"title"`
 	Invented bool   `json:"invented"`
 
-	Outcome  string        `json:"outcome"` // of all verdicts asked for; "none" if none was
-	Verdicts []verdictJSON `json:"verdicts"`
-	Caveat   string        `json:"caveat"`
-	Warnings []string      `json:"warnings"`
-	Cautions []string      `json:"cautions"`
-	Notes    []string      `json:"notes"`
+	Outcome   string        `json:"outcome"` // of all verdicts asked for; "none" if none was
+	Verdicts  []verdictJSON `json:"verdicts"`
+	Caveat    string        `json:"caveat"`
+	Warnings  []string      `json:"warnings"`
+	Cautions  []string      `json:"cautions"`
+	Notes     []string      `json:"notes"`
+	Positions []string      `json:"positions"`
 
 	Views      []viewJSON  `json:"views"`
 	WorkPlanes []planeJSON `json:"work_planes"`
@@ -71,7 +72,7 @@ func writeSummary(w io.Writer, r *study.Result, o Options, files []string) error
 		Title: title(r.Project, f), Invented: invented(r.Project, r.Climate.Year),
 		Outcome: r.Outcome.String(), Verdicts: toVerdicts(r.Verdicts), Caveat: verdict.Caveat,
 		Warnings: texts(warnings(r.Warnings, r.Climate, r.Project), f),
-		Cautions: texts(cautions(r.Project), f), Notes: texts(r.Notes, f),
+		Cautions: texts(cautions(r.Project), f), Notes: texts(r.Notes, f), Positions: texts(r.Positions, f),
 		Views: viewsJSON(r, files), WorkPlanes: planesJSON(r),
 		Hours:  hoursJSON{Occupied: len(r.Occupied), Clock: len(r.Clock), Daylight: len(r.Daylight)},
 		Inputs: inputs(r, o, f), Settings: settings(r), Files: append([]string{}, files...),

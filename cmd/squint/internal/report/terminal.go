@@ -33,6 +33,7 @@ func Terminal(w io.Writer, r *study.Result, resultsDir string, elapsed time.Dura
 	glareSection(&p, r)
 	provisionSection(&p, r)
 	planeSection(&p, r)
+	positionSection(&p, r)
 	trustSection(&p, r, f)
 	whereSection(&p, r, resultsDir, elapsed)
 	return p.print(w)
@@ -215,6 +216,23 @@ func join(a, b string) string {
 		return a
 	}
 	return a + " " + b
+}
+
+// positionSection tells the hours of what moves, the first of many positions.
+func positionSection(p *page, r *study.Result) {
+	if len(r.Positions) == 0 {
+		return
+	}
+	const most = 8
+	p.gap()
+	p.head("Positions")
+	for i, t := range r.Positions {
+		if i == most {
+			p.para(2, fmt.Sprintf("and %d more, see %s.", len(r.Positions)-most, SummaryFile))
+			break
+		}
+		p.item(2, "", lipgloss.NewStyle(), 2, t)
+	}
 }
 
 // trustSection says what limits the verdicts.

@@ -47,6 +47,9 @@ type Result struct {
 	Views  []ViewResult
 	Planes []PlaneResult
 
+	// Positions says how long what moves stands in each of its positions.
+	Positions []string
+
 	// Outcome combines the asked criteria; Verdicts are those, first what
 	// fails.
 	Outcome  verdict.Outcome
@@ -169,7 +172,7 @@ func Run(ctx context.Context, in *Input, opt Options) (*Result, error) {
 	r := &Result{
 		Project: in.Project, Scene: in.Scene, Climate: in.Climate,
 		Calendar: in.Calendar, Occupied: in.Occupied, Clock: in.Clock, Daylight: in.Daylight,
-		Notes: append(append([]string(nil), in.Notes...), hoursByStanding(in.Standings)...),
+		Notes: in.Notes, Positions: hoursByStanding(in.Standings),
 	}
 	y, err := computeYear(ctx, in, opt, r)
 	if err != nil {
