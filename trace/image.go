@@ -76,21 +76,9 @@ var sunTan = math.Tan(photometry.SunDiameterRad / 2)
 
 // facetImage adds what facet f shows of the disc, whose image stands at dir.
 func (w *World) facetImage(f *facet, p, n, dir r3.Vec, hidden func(dir r3.Vec) bool, out []Image) []Image {
-	frame := materials.NewFrame(dir)
-	v := &w.Scene.Triangles[f.prim].V
-	// Planes through the eye and the facet's edges, as linear functions of the
-	// tangent plane's coordinates, positive inside.
-	var edge [3][3]float64
-	for i := range edge {
-		a, b, c := r3.Sub(v[i], p), r3.Sub(v[(i+1)%3], p), r3.Sub(v[(i+2)%3], p)
-		m := r3.Cross(a, b)
-		if r3.Dot(m, c) < 0 {
-			m = r3.Scale(-1, m)
-		}
-		edge[i] = [3]float64{r3.Dot(m, frame.T), r3.Dot(m, frame.B), r3.Dot(m, dir)}
-	}
+	frame, edge := w.edges(f, p, dir)
 	var buffer [2][discCorners + 4][2]float64
-	poly := cutDisc(edge, &buffer)
+	poly := cutDisc(edge, discCorners, &buffer)
 	area, cx, cy := polygon(poly)
 	if area <= 0 {
 		return out
@@ -139,14 +127,31 @@ func (w *World) facetImage(f *facet, p, n, dir r3.Vec, hidden func(dir r3.Vec) b
 	})
 }
 
-// cutDisc cuts the disc's polygon by three half planes. Source: Sutherland &
-// Hodgman 1974, Reentrant Polygon Clipping, CACM 17(1).
-func cutDisc(edge [3][3]float64, buffer *[2][discCorners + 4][2]float64) [][2]float64 {
+// edges are the planes through the eye p and the facet's edges, as linear
+// functions of the coordinates of the tangent plane at dir, positive inside.
+func (w *World) edges(f *facet, p, dir r3.Vec) (frame materials.Frame, edge [3][3]float64) {
+	frame = materials.NewFrame(dir)
+	v := &w.Scene.Triangles[f.prim].V
+	for i := range edge {
+		a, b, c := r3.Sub(v[i], p), r3.Sub(v[(i+1)%3], p), r3.Sub(v[(i+2)%3], p)
+		m := r3.Cross(a, b)
+		if r3.Dot(m, c) < 0 {
+			m = r3.Scale(-1, m)
+		}
+		edge[i] = [3]float64{r3.Dot(m, frame.T), r3.Dot(m, frame.B), r3.Dot(m, dir)}
+	}
+	return frame, edge
+}
+
+// cutDisc cuts the polygon of n corners (at most discCorners) that stands
+// for the disc by three half planes. Source: Sutherland & Hodgman 1974,
+// Reentrant Polygon Clipping, CACM 17(1).
+func cutDisc(edge [3][3]float64, n int, buffer *[2][discCorners + 4][2]float64) [][2]float64 {
 	// A regular polygon of n corners and radius r has n/2 r^2 sin(2 pi/n).
-	r := sunTan * math.Sqrt(2*math.Pi/(discCorners*math.Sin(2*math.Pi/discCorners)))
+	r := sunTan * math.Sqrt(2*math.Pi/(float64(n)*math.Sin(2*math.Pi/float64(n))))
 	poly, other := buffer[0][:0], buffer[1][:0]
-	for i := range discCorners {
-		s, c := math.Sincos(2 * math.Pi * (float64(i) + 0.5) / discCorners)
+	for i := range n {
+		s, c := math.Sincos(2 * math.Pi * (float64(i) + 0.5) / float64(n))
 		poly = append(poly, [2]float64{r * c, r * s})
 	}
 	for _, e := range edge {

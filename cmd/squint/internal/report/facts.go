@@ -13,8 +13,9 @@ func invented(p *project.Project, y *weather.Year) bool { return p.Invented || y
 
 // mirrorCaution is common practice, no published source.
 const mirrorCaution = "mirrors throw the sun where it is not expected, and curved or tilted ones can " +
-	"concentrate it: burns, fire and injured eyes are possible, and drivers or people at machines can be " +
-	"dazzled. This study does not look for that; have it looked into before anything is built."
+	"concentrate it: burns, fire and injured eyes are possible, and neighbours, drivers or people at machines " +
+	"can be dazzled. The greatest concentration is computed for the surfaces as they are drawn and judged by no " +
+	"limit; have it looked into before anything is built."
 
 // cautions are dangers that no metric here covers.
 func cautions(p *project.Project) []string {

@@ -34,6 +34,8 @@ type summary struct {
 	Views      []viewJSON  `json:"views"`
 	WorkPlanes []planeJSON `json:"work_planes"`
 
+	Hazard *hazardJSON `json:"sun_in_mirrors"` // null where nothing but panes mirrors
+
 	Hours    hoursJSON    `json:"hours"`
 	Inputs   inputsJSON   `json:"inputs"`
 	Settings settingsJSON `json:"settings"`
@@ -73,7 +75,7 @@ func writeSummary(w io.Writer, r *study.Result, o Options, files []string) error
 		Outcome: r.Outcome.String(), Verdicts: toVerdicts(r.Verdicts), Caveat: verdict.Caveat,
 		Warnings: texts(warnings(r.Warnings, r.Climate, r.Project), f),
 		Cautions: texts(cautions(r.Project), f), Notes: texts(r.Notes, f), Positions: texts(r.Positions, f),
-		Views: viewsJSON(r, files), WorkPlanes: planesJSON(r),
+		Views: viewsJSON(r, files), WorkPlanes: planesJSON(r), Hazard: hazards(r),
 		Hours:  hoursJSON{Occupied: len(r.Occupied), Clock: len(r.Clock), Daylight: len(r.Daylight)},
 		Inputs: inputs(r, o, f), Settings: settings(r), Files: append([]string{}, files...),
 	}

@@ -33,6 +33,7 @@ func Terminal(w io.Writer, r *study.Result, resultsDir string, elapsed time.Dura
 	glareSection(&p, r)
 	provisionSection(&p, r)
 	planeSection(&p, r)
+	hazardSection(&p, r)
 	positionSection(&p, r)
 	trustSection(&p, r, f)
 	whereSection(&p, r, resultsDir, elapsed)

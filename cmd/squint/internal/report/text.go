@@ -25,7 +25,7 @@ func plain(s string) string {
 }
 
 // units stay on the line of their number.
-var units = map[string]bool{"lx": true, "m": true, "h": true, "px": true, "MiB": true, "W/m2": true, "±": true}
+var units = map[string]bool{"lx": true, "m": true, "h": true, "px": true, "MiB": true, "W/m2": true, "kW/m2": true, "±": true}
 
 // words splits a text into pieces that may stand at a line's start.
 func words(s string) []string {

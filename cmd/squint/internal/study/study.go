@@ -33,6 +33,7 @@ const (
 	StageSensors  Stage = "gathering at the sensors"
 	StageYear     Stage = "the year"
 	StageAgain    Stage = "a closer look at close hours"
+	StageHazard   Stage = "looking for sun that mirrors concentrate"
 )
 
 // Result is a finished study.
@@ -49,6 +50,9 @@ type Result struct {
 
 	// Positions says how long what moves stands in each of its positions.
 	Positions []string
+
+	// Hazard is nil where nothing but panes mirrors or shines.
+	Hazard *Hazard
 
 	// Outcome combines the asked criteria; Verdicts are those, first what
 	// fails.
@@ -179,6 +183,9 @@ func Run(ctx context.Context, in *Input, opt Options) (*Result, error) {
 		return nil, err
 	}
 	if err := r.refine(ctx, in, opt, y); err != nil {
+		return nil, err
+	}
+	if r.Hazard, err = hazard(ctx, in, opt); err != nil {
 		return nil, err
 	}
 	r.judgeViews(y)
