@@ -8,7 +8,6 @@ import (
 	"strconv"
 	"strings"
 	"testing"
-	"time"
 
 	"gonum.org/v1/gonum/spatial/r3"
 
@@ -139,24 +138,7 @@ func wide() *study.Result {
 	return r
 }
 
-// TestSensorHoursFast: 8760 x 380 values. The goal is 1 s on a quiet machine;
-// the bound leaves room for a busy one.
-func TestSensorHoursFast(t *testing.T) {
-	if testing.Short() {
-		t.Skip("measures time")
-	}
-	r := wide()
-	start := time.Now()
-	if err := writeSensorHours(io.Discard, r); err != nil {
-		t.Fatal(err)
-	}
-	d := time.Since(start)
-	t.Logf("8760 x 380 values in %v", d)
-	if d > 4*time.Second {
-		t.Errorf("took %v, want about 1 s", d)
-	}
-}
-
+// BenchmarkSensorHours writes 8760 x 380 values.
 func BenchmarkSensorHours(b *testing.B) {
 	r := wide()
 	b.ReportAllocs()
