@@ -42,6 +42,7 @@ func Build(fsys fs.FS, p *project.Project) (*Scene, error) {
 	if len(b.errs) > 0 {
 		return nil, errors.Join(b.errs...)
 	}
+	b.noteSoiling()
 	meshes := b.readMeshes()
 	if len(b.errs) > 0 {
 		return nil, errors.Join(b.errs...)

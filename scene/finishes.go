@@ -58,7 +58,11 @@ func (fs finishes) side(f *project.Finish, isBase bool) (materials.BSDF, error) 
 	if err != nil {
 		return fs.fail(f, err)
 	}
-	return b, nil
+	factor, err := soilFactor(fs.p.Simulation.Soiling, f)
+	if err != nil {
+		return fs.fail(f, err)
+	}
+	return materials.Soiled(b, factor), nil
 }
 
 func (fs finishes) model(f *project.Finish, isBase bool) (materials.BSDF, error) {

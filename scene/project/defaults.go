@@ -11,6 +11,7 @@ type Key struct {
 	Required bool
 	Default  string // as TOML; "" for none
 	Source   string // of the default
+	quiet    bool
 }
 
 // Keys are all keys, in the schema's order.
@@ -22,11 +23,12 @@ func Keys() []Key {
 	return list
 }
 
-// Defaults are the keys that have a default value.
+// Defaults are the keys whose default a run has to state: all but those whose
+// default leaves everything as it would be without the key.
 func Defaults() []Key {
 	var list []Key
 	for _, k := range Keys() {
-		if k.Default != "" {
+		if k.Default != "" && !k.quiet {
 			list = append(list, k)
 		}
 	}
@@ -38,7 +40,7 @@ func keysOf(s section) []Key {
 	add := func(kind string, keys []described) {
 		for _, k := range keys {
 			list = append(list, Key{Table: s.name, List: s.list, Type: kind, Name: k.name, About: k.about,
-				Want: k.want(k.field), Required: k.required, Default: k.def, Source: k.source})
+				Want: k.want(k.field), Required: k.required, Default: k.def, Source: k.source, quiet: k.quiet})
 		}
 	}
 	add("", s.keys)

@@ -151,6 +151,11 @@ func TestSchemaAgreesWithLoad(t *testing.T) {
 		{"shelf on the transom", "height_m = 1.2", "height_m = 0", true},
 		{"shelf far below", "height_m = 1.2", "height_m = -1.5", false},
 		{"day", `"mon"`, `"monday"`, false},
+		{"loss", "loss_per_month = 0.02", "loss_per_month = 0.1", true},
+		{"loss of more than a tenth", "loss_per_month = 0.02", "loss_per_month = 0.11", false},
+		{"cleaned twice a month", "cleaning_months = 6", "cleaning_months = 0.5", false},
+		{"soiling", "photons = 8000", "photons = 8000\nsoiling = \"neglected\"", true},
+		{"another soiling", "photons = 8000", "photons = 8000\nsoiling = \"dirty\"", false},
 	} {
 		t.Run(c.name, func(t *testing.T) {
 			changed := strings.Replace(whole, c.old, c.new, 1)

@@ -6,6 +6,8 @@ import "strings"
 var finishCommon = []key[Finish]{
 	{spec{name: "name", about: "by which meshes, openings and systems call it", required: true, form: itemName}, func(f *Finish) any { return &f.Name }},
 	{spec{name: "type", about: "decides which further keys there are", required: true, choices: finishTypeNames()}, func(f *Finish) any { return &f.Type }},
+	{spec{name: "loss_per_month", about: "dirt: share of its light that the finish loses more with each month since the last cleaning; counts as simulation.soiling says", in: monthlyLoss, def: "0", source: own, quiet: true}, func(f *Finish) any { return &f.LossPerMonth }},
+	{spec{name: "cleaning_months", about: "months from cleaning to cleaning; with loss_per_month", in: within{lo: 1, hi: 12}, def: "12", source: usual, quiet: true}, func(f *Finish) any { return &f.CleaningMonths }},
 }
 
 // finishType is one type of finish and the keys that it has beside the
@@ -35,6 +37,8 @@ var (
 	// sheetMM keeps holes too small to be resolved; larger ones are for the mesh.
 	sheetMM = within{lo: 0, hi: 50}
 	holeMM  = within{lo: 0.01, hi: 50}
+	// monthlyLoss: more would leave nothing after ten months; own choice.
+	monthlyLoss = within{lo: 0, hi: 0.1}
 )
 
 var finishTypes = []finishType{
@@ -99,6 +103,7 @@ func finishSection() section {
 	s.read = func(r *reader, n *node, p *Project) {
 		f := Finish{Line: n.line}
 		decode(r, n, name, finishCommon, &f)
+		checkSoiling(r, n, &f)
 		known := names(finishCommon)
 		for _, t := range finishTypes {
 			if t.name == f.Type {
@@ -152,6 +157,14 @@ func unknownFinishKeys(r *reader, n *node, f *Finish, known []string) {
 // roundOff lets shares that are written with two or three decimals add up to
 // 1 although their binary sum exceeds it; package materials allows as much.
 const roundOff = 1e-12
+
+// checkSoiling: dirt cannot take more than all light, as materials.NewSoiling
+// has it.
+func checkSoiling(r *reader, n *node, f *Finish) {
+	if all := f.LossPerMonth * float64(f.CleaningMonths); n.good("loss_per_month", "cleaning_months") && all > 1+roundOff {
+		r.reject(n, "finish", "loss_per_month", "got %g with cleaning_months %d, together %.4g, want at most 1; dirt cannot take more than all light", f.LossPerMonth, f.CleaningMonths, all)
+	}
+}
 
 func checkMirror(r *reader, n *node, f *Finish) {
 	if sum := f.SpecularReflectance + f.DiffuseReflectance; n.good("specular_reflectance", "diffuse_reflectance") && sum > 1+roundOff {

@@ -61,6 +61,9 @@ var sourceRules = []string{"luminance", "field mean", "sight mean"}
 
 const pierson = "Pierson, Wienold & Bodart 2018, LEUKOS, from memory"
 
+// soilings are what Simulation.Soiling may be.
+var soilings = []string{"clean", "average", "neglected"}
+
 var simulationKeys = []key[Simulation]{
 	{spec{name: "seed", about: "of all random numbers", def: "1", source: own}, func(s *Simulation) any { return &s.Seed }},
 	{spec{name: "batches", about: "independent repetitions that give the confidence", in: within{lo: 8, hi: 64}, def: "8", source: own}, func(s *Simulation) any { return &s.Batches }},
@@ -71,6 +74,7 @@ var simulationKeys = []key[Simulation]{
 	{spec{name: "texel_samples", about: "paths per piece, a multiple of batches", in: within{lo: 8, hi: 1 << 20}, def: "256", source: own}, func(s *Simulation) any { return &s.TexelSamples }},
 	{spec{name: "photons", about: "light particles shot from the sun at what mirrors, each hour, over all batches; 0 leaves mirrored sunlight out", in: within{lo: 0, hi: 1 << 24}, def: "4000", source: own}, func(s *Simulation) any { return &s.Photons }},
 	{spec{name: "memory_mib", about: "upper bound of the working memory", in: within{lo: 64, hi: 1 << 20}, def: "1024", source: own}, func(s *Simulation) any { return &s.MemoryMiB }},
+	{spec{name: "soiling", about: "how dirty finishes with a loss_per_month are, the same all the year: not at all, as their mean over the year, or as just before cleaning", choices: soilings, def: `"clean"`, source: own}, func(s *Simulation) any { return &s.Soiling }},
 }
 
 func checkSimulation(r *reader, n *node, s *Simulation) {

@@ -46,16 +46,17 @@ func wantOffice(data string) *Project {
 			{File: "dir/city/blocks.stl", Unit: "m", Up: "z", Role: "surroundings", Finish: "carpet", Line: 43},
 		},
 		Finishes: []Finish{
-			{Name: "plaster", Type: "matte", Reflectance: .8, Back: "carpet", Line: 50},
-			{Name: "carpet", Type: "matte", Reflectance: .2, Line: 56},
-			{Name: "aluminium", Type: "mirror", SpecularReflectance: .7, DiffuseReflectance: .1, Line: 61},
-			{Name: "double glazing", Type: "glazing", Transmittance: .78, Panes: 2, Line: 67},
-			{Name: "coated", Type: "glazing", Table: [][3]float64{{0, .6, .2}, {60, .5, .3}, {90, 0, 1}}, Line: 72},
-			{Name: "anodised", Type: "glossy", TotalReflectance: .85, SpecularShare: .9, SpreadDeg: 2, Back: "aluminium", Line: 138},
-			{Name: "opal", Type: "diffuser", DiffuseTransmittance: .5, Reflectance: .4, Back: "opal indoors", Line: 146},
-			{Name: "opal indoors", Type: "diffuser", DiffuseTransmittance: .5, Reflectance: .3, Line: 153},
-			{Name: "screen", Type: "cloth", Openness: .05, DiffuseTransmittance: .15, Reflectance: .5, BackReflectance: ptr(.1), CutOffDeg: 65, Line: 159},
-			{Name: "punched", Type: "perforated", OpenShare: .3, HoleDiameterMM: 2, ThicknessMM: 1, Base: "anodised", Line: 168},
+			{Name: "plaster", Type: "matte", Reflectance: .8, Back: "carpet", CleaningMonths: 12, Line: 50},
+			{Name: "carpet", Type: "matte", Reflectance: .2, CleaningMonths: 12, Line: 56},
+			{Name: "aluminium", Type: "mirror", SpecularReflectance: .7, DiffuseReflectance: .1, CleaningMonths: 12, Line: 61},
+			{Name: "double glazing", Type: "glazing", Transmittance: .78, Panes: 2, CleaningMonths: 12, Line: 67},
+			{Name: "coated", Type: "glazing", Table: [][3]float64{{0, .6, .2}, {60, .5, .3}, {90, 0, 1}}, CleaningMonths: 12, Line: 72},
+			{Name: "anodised", Type: "glossy", TotalReflectance: .85, SpecularShare: .9, SpreadDeg: 2, Back: "aluminium", CleaningMonths: 12, Line: 138},
+			{Name: "opal", Type: "diffuser", DiffuseTransmittance: .5, Reflectance: .4, Back: "opal indoors", CleaningMonths: 12, Line: 146},
+			{Name: "opal indoors", Type: "diffuser", DiffuseTransmittance: .5, Reflectance: .3, CleaningMonths: 12, Line: 153},
+			{Name: "screen", Type: "cloth", Openness: .05, DiffuseTransmittance: .15, Reflectance: .5, BackReflectance: ptr(.1), CutOffDeg: 65, CleaningMonths: 12, Line: 159},
+			{Name: "punched", Type: "perforated", OpenShare: .3, HoleDiameterMM: 2, ThicknessMM: 1, Base: "anodised", CleaningMonths: 12, Line: 168},
+			{Name: "pane", Type: "glazing", Transmittance: .9, Panes: 1, LossPerMonth: .02, CleaningMonths: 6, Line: 243},
 		},
 		Openings: []Opening{
 			{Name: "south", Group: "facade", CornersM: [4][3]float64{{0, 0, .9}, {3.4, 0, .9}, {3.4, 0, 2.7}, {0, 0, 2.7}}, HasCorners: true,
@@ -90,7 +91,7 @@ func wantOffice(data string) *Project {
 		},
 		WorkPlanes: []WorkPlane{{Name: "desks", PolygonM: [][2]float64{{0, 0}, {3.6, 0}, {3.6, 8.2}, {0, 8.2}}, HeightM: .85, PerimeterM: .5, Line: 125}},
 		Criteria:   Criteria{Glare: "medium", Provision: "minimum", SourceRule: "luminance", SourceLuminance: 2000, SourceMultiple: 4},
-		Simulation: Simulation{Seed: 7, Batches: 16, FisheyePixels: 64, SamplesPerPixel: 32, SensorSamples: 4096, TexelM: .2, TexelSamples: 256, Photons: 8000, MemoryMiB: 1024},
+		Simulation: Simulation{Seed: 7, Batches: 16, FisheyePixels: 64, SamplesPerPixel: 32, SensorSamples: 4096, TexelM: .2, TexelSamples: 256, Photons: 8000, MemoryMiB: 1024, Soiling: "clean"},
 	}
 }
 

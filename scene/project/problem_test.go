@@ -83,7 +83,7 @@ func TestProblems(t *testing.T) {
 		{"not glazing", `glazing = "clear"`, `glazing = "white"`, ":19: opening.glazing: got \"white\", which is of type \"matte\", want a finish of type \"glazing\""},
 		// finishes
 		{"finish type", `type = "matte"`, `type = "mate"`, ":10: finish.type: got \"mate\", want \"matte\", \"mirror\", \"glossy\", \"glazing\", \"diffuser\", \"cloth\" or \"perforated\"; did you mean \"matte\"?"},
-		{"key of another type", "reflectance = 0.7", "reflectance = 0.7\npanes = 2", ":12: finish.panes: no key of type \"matte\" but of \"glazing\"; want name, type, reflectance, back"},
+		{"key of another type", "reflectance = 0.7", "reflectance = 0.7\npanes = 2", ":12: finish.panes: no key of type \"matte\" but of \"glazing\"; want name, type, loss_per_month, cleaning_months, reflectance, back"},
 		{"mirror", "", "[[finish]]\nname = \"m\"\ntype = \"mirror\"\nspecular_reflectance = 0.9\ndiffuse_reflectance = 0.2\n", ":27: finish.specular_reflectance: got 0.9 and diffuse_reflectance 0.2, together 1.1, want at most 1"},
 		{"own back", "reflectance = 0.7", "reflectance = 0.7\nback = \"white\"", ":12: finish.back: got the finish itself; leave it out where both sides are alike"},
 		{"glazing back", "reflectance = 0.7", "reflectance = 0.7\nback = \"clear\"", ":12: finish.back: got \"clear\", which is of type \"glazing\", want a finish of type \"matte\", \"mirror\" or \"glossy\""},

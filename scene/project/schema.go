@@ -128,7 +128,12 @@ type Finish struct {
 	Base           string  // perforated: finish of the sheet between the holes
 
 	Back string // finish of the side the normal points away from; "": alike
-	Line int
+
+	// Dirt, of which Simulation.Soiling says how much counts; materials.Soiling
+	// says what the two mean. A back has its own, and so has a base.
+	LossPerMonth   float64
+	CleaningMonths int
+	Line           int
 }
 
 // Opening is a rectangular window, given by its corners or found in a mesh.
@@ -262,4 +267,5 @@ type Simulation struct {
 	// at least Batches.
 	Photons   int
 	MemoryMiB int
+	Soiling   string // "clean", "average" or "neglected"; the same in every month
 }

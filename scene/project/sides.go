@@ -3,8 +3,8 @@ package project
 import "fmt"
 
 // checkSides reports the backs and bases that make no surface: finishes whose
-// own back would never be seen, and two sides that let different light
-// through.
+// own back would never be seen, two sides that let different light through,
+// and dirt that would count twice.
 func (r *reader) checkSides(p *Project) {
 	find := map[string]*Finish{}
 	broken := map[string]bool{}
@@ -18,6 +18,7 @@ func (r *reader) checkSides(p *Project) {
 	for i := range p.Finishes {
 		f, n := &p.Finishes[i], r.finishes[i]
 		back, base := find[f.Back], find[f.Base]
+		r.checkBaseSoiling(n, f, base, find)
 		if back == nil || !n.good("back", "base") {
 			continue
 		}
@@ -39,6 +40,20 @@ func (r *reader) checkSides(p *Project) {
 	}
 }
 
+// checkBaseSoiling wants dirt on a perforated sheet or on its base, which stands
+// for the same sheet, not on both.
+func (r *reader) checkBaseSoiling(n *node, f, base *Finish, find map[string]*Finish) {
+	if base == nil || !(f.LossPerMonth > 0) || !n.good("base", "loss_per_month") {
+		return
+	}
+	for _, under := range []*Finish{base, find[base.Back]} {
+		if under != nil && under.LossPerMonth > 0 {
+			r.reject(n, "finish", "loss_per_month", "got %g, but the base's finish %s has a loss_per_month too, and both would count; leave one of the two out", f.LossPerMonth, quote(under.Name))
+			return
+		}
+	}
+}
+
 // passage is a value that decides what a finish lets through.
 type passage struct {
 	what  string
@@ -48,26 +63,41 @@ type passage struct {
 // passages lists them, for finishes of one type in one order; none where the
 // finish is opaque.
 func passages(f, base *Finish) []passage {
+	list := soilPassages(f, "")
 	switch f.Type {
 	case "diffuser":
-		return []passage{{"diffuse_transmittance", f.DiffuseTransmittance}}
+		return append(list, passage{"diffuse_transmittance", f.DiffuseTransmittance})
 	case "cloth":
-		return []passage{{"openness", f.Openness}, {"diffuse_transmittance", f.DiffuseTransmittance}, {"cut_off_deg", f.CutOffDeg}}
+		return append(list, passage{"openness", f.Openness}, passage{"diffuse_transmittance", f.DiffuseTransmittance}, passage{"cut_off_deg", f.CutOffDeg})
 	case "glazing":
-		list := []passage{{"transmittance", f.Transmittance}, {"panes", float64(f.Panes)}, {"number of rows", float64(len(f.Table))}}
+		list = append(list, passage{"transmittance", f.Transmittance}, passage{"panes", float64(f.Panes)}, passage{"number of rows", float64(len(f.Table))})
 		for i, row := range f.Table {
 			list = append(list, passage{fmt.Sprintf("angle in row %d", i+1), row[0]}, passage{fmt.Sprintf("transmittance in row %d", i+1), row[1]})
 		}
 		return list
 	case "perforated":
-		list := []passage{{"open_share", f.OpenShare}, {"hole_diameter_mm", f.HoleDiameterMM}, {"thickness_mm", f.ThicknessMM}}
+		list = append(list, passage{"open_share", f.OpenShare}, passage{"hole_diameter_mm", f.HoleDiameterMM}, passage{"thickness_mm", f.ThicknessMM})
 		if base == nil {
 			return list
 		}
-		return append(list, passage{"openness of the base", base.Openness},
+		list = append(list, passage{"openness of the base", base.Openness},
 			passage{"diffuse_transmittance of the base", base.DiffuseTransmittance}, passage{"cut_off_deg of the base", base.CutOffDeg})
+		if base.Openness+base.DiffuseTransmittance > 0 {
+			list = append(list, soilPassages(base, " of the base")...)
+		}
+		return list
 	}
 	return nil
+}
+
+// soilPassages: dirt takes from what passes, too. Without a loss the interval
+// does not matter.
+func soilPassages(f *Finish, of string) []passage {
+	months := f.CleaningMonths
+	if f.LossPerMonth == 0 {
+		months = 0
+	}
+	return []passage{{"loss_per_month" + of, f.LossPerMonth}, {"cleaning_months" + of, float64(months)}}
 }
 
 // differing says which value of the front is another one on the back; "" for

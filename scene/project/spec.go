@@ -13,6 +13,7 @@ type spec struct {
 	required bool
 	def      string // the default as TOML; "" for none
 	source   string // of the default
+	quiet    bool   // the default changes nothing: it is no news
 	in       within // range of each number
 	choices  []string
 	refers   string   // "finish" or "opening": the value is the name of one
