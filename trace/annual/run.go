@@ -150,11 +150,14 @@ type worker struct {
 	lights []surface.Light
 	eye    eyeScratch
 	images []trace.Image
+	// catcher is nil where no light comes by several mirrors.
+	catcher *catcher
 }
 
 func newWorker(t *surface.Transport, r Receivers, cfg Config, number int, sink Sink) *worker {
 	return &worker{t: t, r: r, cfg: cfg, number: number, sink: sink,
-		lights: make([]surface.Light, t.Config.Batches)}
+		lights:  make([]surface.Light, t.Config.Batches),
+		catcher: newCatcher(t.World, t.Config.Photons, r.Sensors)}
 }
 
 func (w *worker) run(ctx context.Context, moments []*scene.Moment, b block, d *Daylight) {

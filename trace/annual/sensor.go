@@ -14,11 +14,20 @@ const (
 	streamSensorSun   = 21
 	streamEyeSun      = 22
 	streamSensorShine = 23
+	streamChain       = 24
 )
 
 // sensors reads every sensor against the solved block.
 func (w *worker) sensors(bl *surface.Block, b block, d *Daylight) {
 	batches := len(w.lights)
+	var chains [][]surface.Row
+	if w.catcher != nil {
+		chains = make([][]surface.Row, batches)
+		for batch := range chains {
+			chains[batch] = make([]surface.Row, len(w.r.Sensors))
+			w.catcher.catch(w, bl, batch, chains[batch])
+		}
+	}
 	e := make([]surface.Row, batches)
 	for i, s := range w.r.Sensors {
 		var direct surface.Row
@@ -38,6 +47,9 @@ func (w *worker) sensors(bl *surface.Block, b block, d *Daylight) {
 			}
 			for h := range row {
 				row[h] += images[h]
+				if chains != nil {
+					row[h] += chains[batch][i][h]
+				}
 			}
 		}
 		for h, k := range b {
