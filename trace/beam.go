@@ -25,6 +25,8 @@ type Beam struct {
 	// back.
 	Source     int32
 	SourceBack bool
+
+	at Hit // what Hit points to
 }
 
 // Only keeps the panes alone among the facets aimed at, or all but those.
@@ -54,10 +56,10 @@ func (p *Photons) WeightM2() float64 {
 	return p.cum[len(p.cum)-1]
 }
 
-// Beams sends n photons as Shoot does, and reports every piece of their ways
-// between the first mirror and the first surface that neither mirrors, shines
-// nor lets them through. At each surface the share that goes on does so by
-// roulette.
+// Beams sends n photons, each from a random point of a facet that sees the sun,
+// and reports every piece of their ways between the first mirror and the first
+// surface that neither mirrors, shines nor lets them through. At each surface
+// the share that goes on does so by roulette. What report gets is used again.
 func (p *Photons) Beams(n int, draw func(bits uint64) (r3.Vec, bool), s *sampling.Stream, report func(b *Beam)) {
 	if p.Empty() || n <= 0 {
 		return
@@ -65,6 +67,8 @@ func (p *Photons) Beams(n int, draw func(bits uint64) (r3.Vec, bool), s *samplin
 	w := p.world
 	total := p.cum[len(p.cum)-1]
 	shift := s.Float64()
+	var b Beam
+	var h Hit
 	for i := range n {
 		x := (float64(i) + shift) / float64(n) * total
 		k := min(sort.SearchFloat64s(p.cum, x), len(p.cum)-1)
@@ -90,8 +94,8 @@ func (p *Photons) Beams(n int, draw func(bits uint64) (r3.Vec, bool), s *samplin
 		if tr <= 0 {
 			continue
 		}
-		h := Hit{Point: pos, Normal: w.normal[f.prim], Cos: cos, Prim: f.prim, Part: w.tris[f.prim].part, Side: p.sides[k], BSDF: w.tris[f.prim].bsdf}
-		b := Beam{Dir: r3.Scale(-1, dir), FluxM2: tr * f.areaM2 * cos / (float64(n) * chance), Source: h.Part, SourceBack: back}
+		h = Hit{Point: pos, Normal: w.normal[f.prim], Cos: cos, Prim: f.prim, Part: w.tris[f.prim].part, Side: p.sides[k], BSDF: w.tris[f.prim].bsdf}
+		b = Beam{Dir: r3.Scale(-1, dir), FluxM2: tr * f.areaM2 * cos / (float64(n) * chance), Source: h.Part, SourceBack: back}
 		w.goOn(&h, &b, s, report)
 	}
 }
@@ -119,7 +123,7 @@ func (w *World) goOn(h *Hit, b *Beam, s *sampling.Stream, report func(b *Beam)) 
 			return
 		}
 		// The first facet was chosen by what it mirrors: its share weighs the
-		// flux, as in follow.
+		// flux; after that roulette keeps the flux as it is wherever it can.
 		keep := 1.0
 		if !first {
 			keep = math.Min(1, sum)
@@ -146,7 +150,8 @@ func (w *World) goOn(h *Hit, b *Beam, s *sampling.Stream, report func(b *Beam)) 
 		next, ok := w.Closest(b.From, b.Dir)
 		b.Hit, b.LengthM = nil, math.Inf(1)
 		if ok {
-			b.Hit, b.LengthM = &next, next.T
+			b.at = next
+			b.Hit, b.LengthM = &b.at, next.T
 		}
 		report(b)
 		if !ok {

@@ -2,7 +2,6 @@ package trace
 
 import (
 	"math"
-	"sort"
 
 	"gonum.org/v1/gonum/spatial/r3"
 
@@ -129,101 +128,12 @@ func (p *Photons) Empty() bool { return len(p.live) == 0 }
 // SIGGRAPH course notes; roulette after Arvo & Kirk 1990, Particle transport
 // and image synthesis, SIGGRAPH.
 func (p *Photons) Shoot(normalLx float64, n int, draw func(bits uint64) (r3.Vec, bool), s *sampling.Stream, deposit func(h *Hit, flux float64)) {
-	if p.Empty() || n <= 0 {
-		return
-	}
-	w := p.world
-	total := p.cum[len(p.cum)-1]
-	shift := s.Float64()
-	for i := range n {
-		x := (float64(i) + shift) / float64(n) * total
-		k := sort.SearchFloat64s(p.cum, x)
-		if k >= len(p.cum) {
-			k = len(p.cum) - 1
-		}
-		f := &w.specular.facets[p.live[k]]
-		chance := p.cum[k]
-		if k > 0 {
-			chance -= p.cum[k-1]
-		}
-		chance /= total
-		dir, up := draw(s.Uint64())
-		v := &w.Scene.Triangles[f.prim].V
-		pos := sampling.Triangle(s.Float64(), s.Float64(), v[0], v[1], v[2])
-		facing := w.normal[f.prim]
-		if p.sides[k] == materials.Back {
-			facing = r3.Scale(-1, facing)
-		}
-		cos := r3.Dot(dir, facing)
-		if !up || cos <= 0 {
-			continue
-		}
-		org := w.Offset(pos, facing)
-		tr := w.Transmittance(org, dir, math.Inf(1))
-		if tr <= 0 {
-			continue
-		}
-		flux := normalLx * tr * f.areaM2 * cos / (float64(n) * chance)
-		h := Hit{Point: pos, Normal: w.normal[f.prim], Cos: cos, Prim: f.prim, Part: w.tris[f.prim].part, Side: p.sides[k], BSDF: w.tris[f.prim].bsdf}
-		p.follow(&h, r3.Scale(-1, dir), flux, true, s, deposit)
-	}
-}
-
-// follow carries a photon that meets h along unit dir. At the first facet
-// only the mirrored and glossy part goes on: what passes it straight is the
-// sun that other estimators know.
-func (p *Photons) follow(h *Hit, dir r3.Vec, flux float64, first bool, s *sampling.Stream, deposit func(h *Hit, flux float64)) {
-	w := p.world
-	for range maxSpecular {
-		if !first {
-			rho, tau := h.BSDF.Lambert(h.Side)
-			if rho > 0 || tau > 0 {
-				deposit(h, flux)
-			}
-		}
-		mirror, through := h.BSDF.Delta(h.Side, h.Cos)
-		if first {
-			through = 0
-		}
-		facing := h.Facing()
-		gloss := 0.0
-		var glossDir r3.Vec
-		if g := h.BSDF.Gloss(h.Side); g != nil {
-			// A lobe is reciprocal: the photon is sampled as a viewer would be.
-			if next, share, ok := glossBounce(g, facing, dir, s); ok {
-				glossDir, gloss = next, share
-			}
-		}
-		sum := mirror + through + gloss
-		if sum <= 0 {
+	p.Beams(n, draw, s, func(b *Beam) {
+		if b.Hit == nil {
 			return
 		}
-		// The first facet was chosen by what it mirrors, so its share weighs the
-		// flux; after that roulette keeps the flux as it is wherever it can.
-		keep := math.Min(1, sum)
-		if first {
-			keep = 1
+		if rho, tau := b.Hit.BSDF.Lambert(b.Hit.Side); rho > 0 || tau > 0 {
+			deposit(b.Hit, normalLx*b.FluxM2)
 		}
-		u := s.Float64()
-		if u >= keep {
-			return
-		}
-		flux *= sum / keep
-		switch u *= sum / keep; {
-		case u < mirror:
-			dir = r3.Add(dir, r3.Scale(2*h.Cos, facing))
-			h.Point = w.Offset(h.Point, facing)
-		case u < mirror+through:
-			h.Point = w.Offset(h.Point, r3.Scale(-1, facing))
-		default:
-			dir = glossDir
-			h.Point = w.Offset(h.Point, facing)
-		}
-		first = false
-		next, ok := w.Closest(h.Point, dir)
-		if !ok {
-			return
-		}
-		*h = next
-	}
+	})
 }
