@@ -14,7 +14,6 @@ import (
 
 	"github.com/spf13/cobra"
 
-	"squint/cmd/squint/demo"
 	"squint/cmd/squint/internal/report"
 	"squint/cmd/squint/internal/study"
 	"squint/glare/verdict"
@@ -22,7 +21,7 @@ import (
 
 // checkOptions are the command line of check.
 type checkOptions struct {
-	Project    string // "" for the demo
+	pick
 	Out        string // "" for the default
 	Workers    int
 	RequireMet bool
@@ -38,7 +37,8 @@ func newCheck(h host, run func(context.Context, host, checkOptions) error) *cobr
 		Long: `Check computes a year of daylight at every work plane and of glare at every
 viewpoint, holds them against the project's criteria, and writes the evidence
 into a folder. Without a project it checks the demo that comes with the program,
-an invented drawing office with light shelves.
+an invented drawing office without and with daylighting systems. Of a project
+with alternatives it checks each and compares them.
 
 Exit status:
 ` + strings.TrimRight(statusTable(), "\n"),
@@ -65,6 +65,7 @@ Exit status:
 		},
 	}
 	f := cmd.Flags()
+	o.pick.flags(f, "by default all")
 	f.StringVar(&o.Out, "out", "", "`folder` of the results; else results/NAME beside\nthe project file, results/demo here for the demo")
 	f.IntVar(&o.Workers, "workers", h.cpus, "`number` of threads, by default one for each CPU; the\nresults do not depend on it")
 	f.BoolVar(&o.RequireMet, "require-met", false, "end with another exit status where a criterion is\nnot met or undecided")
@@ -74,14 +75,6 @@ Exit status:
 
 func runCheck(ctx context.Context, h host, o checkOptions) error {
 	start := h.now()
-	fsys, name, explain := demo.FS(), demo.Project, func(err error) error { return err }
-	if o.Project != "" {
-		s, err := openSource(o.Project)
-		if err != nil {
-			return inputError{err}
-		}
-		fsys, name, explain = s, s.name, s.explain
-	}
 	out := o.Out
 	if out == "" {
 		out = defaultOut(o.Project)
@@ -89,16 +82,86 @@ func runCheck(ctx context.Context, h host, o checkOptions) error {
 	if err := canHold(out); err != nil {
 		return inputError{err}
 	}
-	in, err := study.Prepare(fsys, name, o.Workers)
+	d, err := o.open()
 	if err != nil {
-		return inputError{explain(err)}
-	}
-	if o.Seed != nil {
-		in.Project.Simulation.Seed = *o.Seed
-	}
-	if err := report.Header(h.out, in); err != nil {
 		return err
 	}
+	inputs, err := o.prepare(d)
+	if err != nil {
+		return err
+	}
+	names := make([]string, len(inputs))
+	for i, in := range inputs {
+		names[i] = in.Project.Alternative
+	}
+	folders := report.Folders(names)
+	if !compares(inputs) {
+		folders[0] = ""
+	}
+	var headers report.Headers
+	var done []report.Design
+	for i, in := range inputs {
+		if err := headers.Print(h.out, in); err != nil {
+			return err
+		}
+		began := h.now()
+		r, err := runStudy(ctx, h, in, o, d)
+		if err != nil {
+			return err
+		}
+		inputs[i] = nil // what was traced is not needed any more
+		folder := filepath.Join(out, folders[i])
+		weather, err := hashOf(d.fsys, r.Project.Weather.File)
+		if err != nil {
+			return err
+		}
+		if err := report.Write(folder, r, report.Options{Version: h.version, WeatherSHA256: weather}); err != nil {
+			return fmt.Errorf("results: %w", err)
+		}
+		done = append(done, report.Design{Result: r, Folder: folders[i]})
+		if folders[i] == "" {
+			err = report.Terminal(h.out, r, folder, h.now().Sub(start))
+		} else {
+			err = report.Brief(h.out, r, folder, h.now().Sub(began))
+		}
+		if err != nil {
+			return err
+		}
+	}
+	if folders[0] != "" {
+		if err := report.WriteComparison(out, done); err != nil {
+			return fmt.Errorf("results: %w", err)
+		}
+		if err := report.Compare(h.out, done, out, h.now().Sub(start)); err != nil {
+			return err
+		}
+	}
+	if o.RequireMet {
+		return required(done)
+	}
+	return nil
+}
+
+// compares is whether there is more than one design, or one of several.
+func compares(inputs []*study.Input) bool { return inputs[0].Project.Alternative != "" }
+
+// prepare reads all designs before the first is computed.
+func (o checkOptions) prepare(d designs) ([]*study.Input, error) {
+	var inputs []*study.Input
+	for _, p := range d.all {
+		in, err := study.Prepare(d.fsys, p, o.Workers)
+		if err != nil {
+			return nil, inputError{d.explain(err)}
+		}
+		if o.Seed != nil {
+			in.Project.Simulation.Seed = *o.Seed
+		}
+		inputs = append(inputs, in)
+	}
+	return inputs, nil
+}
+
+func runStudy(ctx context.Context, h host, in *study.Input, o checkOptions, d designs) (*study.Result, error) {
 	// The collector works harder as the project's own limit comes near.
 	debug.SetMemoryLimit(int64(in.Project.Simulation.MemoryMiB) << 20)
 	bar := newProgress(h)
@@ -106,25 +169,12 @@ func runCheck(ctx context.Context, h host, o checkOptions) error {
 	bar.Close(err == nil)
 	// A stop in the last moments of a run counts as well.
 	if stopped := ctx.Err(); stopped != nil {
-		return stopped
+		return nil, stopped
 	}
 	if err != nil {
-		return inputError{explain(err)}
+		return nil, inputError{d.explain(err)}
 	}
-	weather, err := hashOf(fsys, in.Project.Weather.File)
-	if err != nil {
-		return err
-	}
-	if err := report.Write(out, r, report.Options{Version: h.version, WeatherSHA256: weather}); err != nil {
-		return fmt.Errorf("results: %w", err)
-	}
-	if err := report.Terminal(h.out, r, out, h.now().Sub(start)); err != nil {
-		return err
-	}
-	if o.RequireMet {
-		return required(r.Outcome)
-	}
-	return nil
+	return r, nil
 }
 
 // canHold refuses a folder for results that cannot be made, before the work
@@ -153,15 +203,21 @@ func defaultOut(project string) string {
 	return filepath.Join(filepath.Dir(project), "results", name)
 }
 
-// required is the end of a run that must be met.
-func required(o verdict.Outcome) error {
-	switch o {
-	case verdict.Met:
-		return nil
-	case verdict.NotMet:
-		return verdictError{statusNotMet}
+// required is the end of a run that must be met, by every design.
+func required(all []report.Design) error {
+	worst := verdict.Met
+	for _, d := range all {
+		switch o := d.Result.Outcome; {
+		case o == verdict.NotMet:
+			return verdictError{statusNotMet}
+		case o != verdict.Met:
+			worst = o
+		}
 	}
-	return verdictError{statusUndecided}
+	if worst != verdict.Met {
+		return verdictError{statusUndecided}
+	}
+	return nil
 }
 
 func hashOf(fsys fs.FS, name string) (string, error) {

@@ -13,10 +13,9 @@ import (
 
 	"github.com/spf13/cobra"
 
-	"squint/cmd/squint/demo"
+	"squint/cmd/squint/internal/report"
 	"squint/scene"
 	"squint/scene/export"
-	"squint/scene/project"
 )
 
 // Names of the files that export writes.
@@ -33,7 +32,7 @@ var exportFormats = []string{"obj", "stl", "gltf"}
 
 // exportOptions are the command line of export.
 type exportOptions struct {
-	Project string // "" for the demo
+	pick
 	Out     string // "" for the default
 	Formats []string
 	Ground  bool
@@ -59,6 +58,9 @@ project it writes the demo. "squint guide export" says what the files hold.`,
 			if cmd.Flags().Changed("out") && o.Out == "" {
 				return usageError{errors.New("--out: got an empty path, want a folder")}
 			}
+			if len(o.Alternatives) > 1 {
+				return usageError{fmt.Errorf("--alternative: got %d, want one, as a folder holds one scene", len(o.Alternatives))}
+			}
 			if len(o.Formats) == 0 {
 				return usageError{fmt.Errorf("--format: got none, want one or more of %s", strings.Join(exportFormats, ", "))}
 			}
@@ -71,6 +73,7 @@ project it writes the demo. "squint guide export" says what the files hold.`,
 		},
 	}
 	f := cmd.Flags()
+	o.pick.flags(f, "by default the first")
 	f.StringVar(&o.Out, "out", "", "`folder` of the files; else export/NAME beside the\nproject file, export/demo here for the demo")
 	f.StringSliceVar(&o.Formats, "format", exportFormats, "`formats` to write, with commas between")
 	f.BoolVar(&o.Ground, "ground", false, "also the ground, as far as the model shades it")
@@ -78,14 +81,6 @@ project it writes the demo. "squint guide export" says what the files hold.`,
 }
 
 func runExport(ctx context.Context, h host, o exportOptions) error {
-	fsys, name, explain := demo.FS(), demo.Project, func(err error) error { return err }
-	if o.Project != "" {
-		s, err := openSource(o.Project)
-		if err != nil {
-			return inputError{err}
-		}
-		fsys, name, explain = s, s.name, s.explain
-	}
 	out := o.Out
 	if out == "" {
 		// As check's, under another name.
@@ -95,13 +90,16 @@ func runExport(ctx context.Context, h host, o exportOptions) error {
 	if err := canHold(out); err != nil {
 		return inputError{err}
 	}
-	p, err := project.Load(fsys, name)
+	d, err := o.open()
 	if err != nil {
-		return inputError{explain(err)}
+		return err
 	}
-	s, err := scene.Build(fsys, p)
+	if a := d.all[0].Alternative; a != "" && o.Out == "" {
+		out = filepath.Join(out, report.Slug(a))
+	}
+	s, err := scene.Build(d.fsys, d.all[0])
 	if err != nil {
-		return inputError{explain(err)}
+		return inputError{d.explain(err)}
 	}
 	files, notes, err := exportFiles(s, o)
 	if err != nil {

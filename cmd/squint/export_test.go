@@ -24,8 +24,8 @@ func TestExportFlags(t *testing.T) {
 		want any // nil for a usage error
 	}{
 		{"export", exportOptions{Formats: all}},
-		{"export a.toml", exportOptions{Project: "a.toml", Formats: all}},
-		{"export --out x --ground a.toml", exportOptions{Project: "a.toml", Out: "x", Formats: all, Ground: true}},
+		{"export a.toml", exportOptions{pick: pick{Project: "a.toml"}, Formats: all}},
+		{"export --out x --ground a.toml", exportOptions{pick: pick{Project: "a.toml"}, Out: "x", Formats: all, Ground: true}},
 		{"export --format gltf,obj", exportOptions{Formats: []string{"gltf", "obj"}}},
 		{"export --format stl --format obj", exportOptions{Formats: []string{"stl", "obj"}}},
 		{"export a.toml b.toml", nil},
@@ -111,7 +111,7 @@ func TestExportNotes(t *testing.T) {
 			want   bool
 		}{{"stl", c.want}, {"gltf", c.want}, {"obj", false}} {
 			var out bytes.Buffer
-			o := exportOptions{Project: file, Out: filepath.Join(dir, "out"), Formats: []string{f.format}}
+			o := exportOptions{pick: pick{Project: file}, Out: filepath.Join(dir, "out"), Formats: []string{f.format}}
 			if err := runExport(context.Background(), testHost(&out, io.Discard), o); err != nil {
 				t.Fatal(err)
 			}

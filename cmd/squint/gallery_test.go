@@ -264,7 +264,11 @@ func TestGallery(t *testing.T) {
 			if run {
 				files = whole
 			}
-			in, err := study.Prepare(files, g.name+".toml", runtime.NumCPU())
+			p, err := project.Load(files, g.name+".toml")
+			if err != nil {
+				t.Fatal(err)
+			}
+			in, err := study.Prepare(files, p, runtime.NumCPU())
 			if err != nil {
 				t.Fatal(err)
 			}

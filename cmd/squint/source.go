@@ -7,6 +7,7 @@ import (
 	"os"
 	"path"
 	"path/filepath"
+	"slices"
 	"strings"
 
 	"squint/scene/project"
@@ -36,13 +37,16 @@ func openSource(typed string) (*source, error) {
 	volume := filepath.VolumeName(abs) + string(filepath.Separator)
 	s := &source{root: volume, typed: typed}
 	s.name = s.slash(abs)
-	p, err := project.Load(s, s.name)
+	all, err := project.LoadAll(s, s.name)
 	if err != nil {
 		return nil, s.explain(err)
 	}
-	s.files = []string{p.Weather.File}
-	for _, m := range p.Meshes {
-		s.files = append(s.files, m.File)
+	for _, p := range all {
+		for _, f := range append([]string{p.Weather.File}, meshFiles(p)...) {
+			if !slices.Contains(s.files, f) {
+				s.files = append(s.files, f)
+			}
+		}
 	}
 	root := path.Dir(s.name)
 	for _, f := range s.files {
@@ -54,6 +58,13 @@ func openSource(typed string) (*source, error) {
 	}
 	s.name = within(root, s.name)
 	return s, nil
+}
+
+func meshFiles(p *project.Project) (list []string) {
+	for _, m := range p.Meshes {
+		list = append(list, m.File)
+	}
+	return list
 }
 
 // slash is a path below the root, from there.

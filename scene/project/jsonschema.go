@@ -54,6 +54,9 @@ func (s section) needed() bool {
 }
 
 func tableSchema(s section) (object, error) {
+	if s.optional() {
+		s.keys = append(s.keys[:len(s.keys):len(s.keys)], onlySpec)
+	}
 	if s.variants == nil {
 		return closed(s.keys)
 	}
@@ -156,6 +159,8 @@ func valueSchema(k described) object {
 		return list(object{"type": "string", "pattern": day}, 0, 0)
 	case **MonthDay:
 		return object{"type": "string", "pattern": day}
+	case *[]string:
+		return list(object{"type": "string"}, 1, 0)
 	case *[]SlatState:
 		o, _ := closed(describe(slatStateKeys)) // without defaults nothing can fail
 		return list(o, 1, 0)

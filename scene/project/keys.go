@@ -85,6 +85,8 @@ const (
 // sections is the whole schema, in the order in which a file is best written.
 func sections() []section {
 	return []section{
+		many(alternativeTable, "a design to compare with the others", alternativeKeys, func(p *Project) *[]Alternative { return &p.Alternatives },
+			func(a *Alternative) string { return a.Name }, checkAlternative),
 		one("site", "how the model lies; overrides of the weather file's header", siteKeys, func(p *Project) *Site { return &p.Site }, nil),
 		one("weather", "the weather file", weatherKeys, func(p *Project) *Weather { return &p.Weather }, nil),
 		one("ground", "the ground around the building", groundKeys, func(p *Project) *Ground { return &p.Ground }, checkGround),

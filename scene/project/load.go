@@ -7,6 +7,7 @@ import (
 	"io"
 	"io/fs"
 	"path"
+	"slices"
 )
 
 // maxBytes bounds a project file; a thousand viewpoints need some 100 kB.
@@ -14,13 +15,24 @@ const maxBytes = 4 << 20
 
 // Load reads the project file of that name, checks it and completes it with
 // the defaults. Paths in it are relative to the file's folder; those of the
-// Project are slash separated and start at the root of fsys.
+// Project are slash separated and start at the root of fsys. Of a file with
+// alternatives it checks all and returns the first.
 //
 // What is wrong with the file comes as Problems, all of it at once, by line;
 // of TOML that cannot be parsed only the first error. A file that cannot be
 // read is one Problem that wraps the cause, such as fs.ErrNotExist. Mesh and
 // weather files are not opened.
 func Load(fsys fs.FS, name string) (*Project, error) {
+	all, err := LoadAll(fsys, name)
+	if err != nil {
+		return nil, err
+	}
+	return all[0], nil
+}
+
+// LoadAll is Load for every alternative, in the file's order: at least one
+// project.
+func LoadAll(fsys fs.FS, name string) ([]*Project, error) {
 	data, err := read(fsys, name)
 	if err != nil {
 		return nil, Problems{{File: name, Message: "cannot be read: " + err.Error(), Err: err}}
@@ -28,19 +40,36 @@ func Load(fsys fs.FS, name string) (*Project, error) {
 	if len(data) > maxBytes {
 		return nil, Problems{{File: name, Message: fmt.Sprintf("larger than %d MiB, which no project file is", maxBytes>>20)}}
 	}
-	root, problem := parse(data)
-	if problem != nil {
-		problem.File = name
-		return nil, Problems{*problem}
-	}
 	hash := sha256.Sum256(data)
-	r := &reader{file: name, dir: path.Dir(name)}
-	p := &Project{File: name, Hash: hex.EncodeToString(hash[:])}
-	r.document(root, p)
-	if len(r.problems) > 0 {
-		return nil, r.problems.sorted()
+	var all []*Project
+	var problems Problems
+	names := []string{""}
+	for i := 0; i < len(names); i++ {
+		// Reading marks the tree, so each alternative has its own.
+		root, problem := parse(data)
+		if problem != nil {
+			problem.File = name
+			return nil, Problems{*problem}
+		}
+		known := alternativesOf(root)
+		if i == 0 && len(known) > 0 {
+			names = known
+		}
+		r := &reader{file: name, dir: path.Dir(name)}
+		p := &Project{File: name, Hash: hex.EncodeToString(hash[:]), Alternative: names[i]}
+		r.choose(root, p.Alternative, known)
+		r.document(root, p)
+		for _, found := range r.problems {
+			if !slices.Contains(problems, found) {
+				problems = append(problems, found)
+			}
+		}
+		all = append(all, p)
 	}
-	return p, nil
+	if len(problems) > 0 {
+		return nil, problems.sorted()
+	}
+	return all, nil
 }
 
 func read(fsys fs.FS, name string) ([]byte, error) {

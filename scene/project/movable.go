@@ -161,6 +161,28 @@ func WithStates(p *Project, choice map[string]string) *Project {
 	return &q
 }
 
+// HoldStates is WithStates, and what follows the sun stays in the state chosen.
+func HoldStates(p *Project, choice map[string]string) *Project {
+	q := WithStates(p, choice)
+	held := func(name string) bool { _, ok := choice[name]; return ok }
+	for i := range q.Blinds {
+		if held(q.Blinds[i].Name) {
+			q.Blinds[i].Follow = ""
+		}
+	}
+	for i := range q.Louvres {
+		if held(q.Louvres[i].Name) {
+			q.Louvres[i].Follow = ""
+		}
+	}
+	for i := range q.AnidolicCeilings {
+		if held(q.AnidolicCeilings[i].Name) {
+			q.AnidolicCeilings[i].RollerFollow = ""
+		}
+	}
+	return q
+}
+
 func (s *Slats) stand(state string) {
 	for _, st := range s.positions() {
 		if st.Name == state {

@@ -30,6 +30,9 @@ type Project struct {
 
 	Criteria   Criteria
 	Simulation Simulation
+
+	Alternatives []Alternative // of the file; none: it has one design
+	Alternative  string        // the name of this one; "" without alternatives
 }
 
 // Site says how the model lies and, where the weather file's header is wrong

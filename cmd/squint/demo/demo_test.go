@@ -10,7 +10,7 @@ import (
 )
 
 func TestFoldersAreFileSystems(t *testing.T) {
-	if err := fstest.TestFS(demo.FS(), demo.Project, "room.obj", "room.mtl", "shed.obj", "skerrow.epw"); err != nil {
+	if err := fstest.TestFS(demo.FS(), demo.Project, "room.obj", "frames.obj", "frames-mouth.obj", "room.mtl", "shed.obj", "skerrow.epw"); err != nil {
 		t.Error(err)
 	}
 	if err := fstest.TestFS(demo.Starter(), demo.StarterProject, "room.obj", "room.mtl", "site.epw"); err != nil {

@@ -45,7 +45,7 @@ func TestFilesAreCurrent(t *testing.T) {
 			}
 		}
 	}
-	if seen != 9 {
-		t.Errorf("compared %d files, want 9", seen)
+	if seen != 11 {
+		t.Errorf("compared %d files, want 11", seen)
 	}
 }

@@ -58,6 +58,8 @@ func texts() (map[string][]byte, error) {
 		mtl    bool
 	}{
 		{"files/room.obj", officeSolids(), true},
+		{"files/frames.obj", plainFrames(), false},
+		{"files/frames-mouth.obj", mouthFrames(), false},
 		{"files/shed.obj", shedSolids(), false},
 		{"starter/room.obj", starterSolids(), true},
 	} {

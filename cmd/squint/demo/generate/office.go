@@ -22,20 +22,18 @@ const (
 	windowHead     = 2000
 	clerestorySill = 2100
 	clerestoryHead = 2900
+	// Of the anidolic ceiling the clerestory is lower, for the duct's mouth.
+	lowHead   = 2450
+	mouthSill = 2530
 	glassY         = -150 // the plane of the glass, in the middle of the wall
 	frameHalf      = 30   // the frame's depth either side of the glass
 	frameIntoWall  = 10   // bodies overlap, so that no two faces share a plane
 	glassIntoFrame = 5
 )
 
-// officeSolids is the building, its frames and its furniture.
+// officeSolids is the building with its furniture, without frames.
 func officeSolids() []solid {
 	all := []solid{officeShell()}
-	for bay := range bays {
-		all = append(all, frame(fmt.Sprintf("frame_%d", bay+1), bay*bayMM+glassFrom, bay*bayMM+glassTo,
-			[][2]int{{windowSill, windowHead}, {clerestorySill, clerestoryHead}},
-			point{bay*bayMM + holeFrom, glassY, holeSill}, point{bay*bayMM + holeTo, glassY, holeHead}))
-	}
 	for _, d := range desks() {
 		all = append(all, d.solids()...)
 	}
@@ -44,6 +42,25 @@ func officeSolids() []solid {
 			point{x, 8250, -5}, point{x + 2000, 8950, 780}, "plan_chests", "oak"))
 	}
 	return all
+}
+
+// frameSolids are the frames of all bays, around panes of the heights given.
+func frameSolids(panes ...[2]int) (all []solid) {
+	for bay := range bays {
+		all = append(all, frame(fmt.Sprintf("frame_%d", bay+1), bay*bayMM+glassFrom, bay*bayMM+glassTo, panes,
+			point{bay*bayMM + holeFrom, glassY, holeSill}, point{bay*bayMM + holeTo, glassY, holeHead}))
+	}
+	return all
+}
+
+// plainFrames hold a window and a clerestory, mouthFrames a lower clerestory
+// and the mouth of a duct above it.
+func plainFrames() []solid {
+	return frameSolids([2]int{windowSill, windowHead}, [2]int{clerestorySill, clerestoryHead})
+}
+
+func mouthFrames() []solid {
+	return frameSolids([2]int{windowSill, windowHead}, [2]int{clerestorySill, lowHead}, [2]int{mouthSill, clerestoryHead})
 }
 
 // officeShell is floor, walls and roof as one closed body.

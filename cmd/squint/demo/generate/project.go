@@ -32,6 +32,8 @@ func demoProject() ([]byte, error) {
 		North        int
 		Windows      []pane
 		Clerestories []pane
+		Lowered      []pane // clerestories under the mouths of ducts
+		Mouths       []pane
 		Rollers      []pane
 		Views        []view
 	}
@@ -47,10 +49,12 @@ func demoProject() ([]byte, error) {
 		if group == "lower west" {
 			data.Rollers = append(data.Rollers, w)
 		}
-		data.Clerestories = append(data.Clerestories, pane{
-			fmt.Sprintf("clerestory %d", bay+1), "clerestories",
-			corners(x0, x1, clerestorySill, clerestoryHead), bay + 1,
-		})
+		above := func(to *[]pane, name, group string, z0, z1 int) {
+			*to = append(*to, pane{fmt.Sprintf("%s %d", name, bay+1), group, corners(x0, x1, z0, z1), bay + 1})
+		}
+		above(&data.Clerestories, "clerestory", "clerestories", clerestorySill, clerestoryHead)
+		above(&data.Lowered, "clerestory", "clerestories", clerestorySill, lowHead)
+		above(&data.Mouths, "mouth", "mouths", mouthSill, clerestoryHead)
 	}
 	for _, d := range desks() {
 		v := view{Name: fmt.Sprintf("desk %d", d.number), Note: d.note, Position: triple(d.eye())}

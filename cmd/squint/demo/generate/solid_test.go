@@ -56,7 +56,7 @@ func volumeM3(s solid) float64 {
 }
 
 func allSolids() map[string][]solid {
-	return map[string][]solid{"office": officeSolids(), "shed": shedSolids(), "starter": starterSolids()}
+	return map[string][]solid{"office": officeSolids(), "frames": plainFrames(), "mouths": mouthFrames(), "shed": shedSolids(), "starter": starterSolids()}
 }
 
 func TestSolidsAreClosedAndLookOutward(t *testing.T) {
@@ -103,7 +103,7 @@ func TestVolumes(t *testing.T) {
 	}{
 		{"shell", officeShell(), 12.6*9.6*3.8 - 12*9*3.2 - 6*1.6*2.1*0.3},
 		{"shed", shedSolids()[0], 17 * (9*4.45 + 9*2.0/2)},
-		{"frame", officeSolids()[1], 0.06 * (1.62*2.12 - 1.49*(1.09+0.79))},
+		{"frame", plainFrames()[0], 0.06 * (1.62*2.12 - 1.49*(1.09+0.79))},
 	} {
 		// 1e-9 m3: rounding of sums of a few thousand float64 terms.
 		if got := volumeM3(c.s); got < c.want-1e-9 || got > c.want+1e-9 {
@@ -185,7 +185,7 @@ func TestReceiversStandFree(t *testing.T) {
 		eyes, sensors  int // at least
 		lengthM, wideM float64
 	}{
-		{demo.FS(), demo.Project, officeSolids(), 12, 200, 12, 9},
+		{demo.FS(), demo.Project, append(officeSolids(), plainFrames()...), 12, 200, 12, 9},
 		{demo.Starter(), demo.StarterProject, starterSolids(), 2, 50, 4, 6},
 	} {
 		p, err := project.Load(c.fsys, c.project)

@@ -63,26 +63,34 @@ func leaks(s *scene.Scene, tris []scene.Triangle, from r3.Vec, rays int) int {
 	return n
 }
 
-func load(t *testing.T, fsys fs.FS, name string) *scene.Scene {
+// load builds the designs of a project, by name.
+func load(t *testing.T, fsys fs.FS, name string) map[string]*scene.Scene {
 	t.Helper()
-	p, err := project.Load(fsys, name)
+	all, err := project.LoadAll(fsys, name)
 	if err != nil {
 		t.Fatal(err)
 	}
-	s, err := scene.Build(fsys, p)
-	if err != nil {
-		t.Fatal(err)
+	scenes := map[string]*scene.Scene{}
+	for _, p := range all {
+		s, err := scene.Build(fsys, p)
+		if err != nil {
+			t.Fatal(err)
+		}
+		scenes[p.Alternative] = s
 	}
-	return s
+	return scenes
 }
 
 // Seen from indoors the room has no gap besides its glass.
 func TestRoomsAreTight(t *testing.T) {
-	s := load(t, demo.FS(), demo.Project)
+	designs := load(t, demo.FS(), demo.Project)
 	eye := r3.Vec{X: 6.1, Y: 2.9, Z: 1.6}
-	if n := leaks(s, s.Triangles, eye, 3000); n != 0 {
-		t.Errorf("demo: %d of 3000 rays escape past the glass", n)
+	for name, s := range designs {
+		if n := leaks(s, s.Triangles, eye, 3000); n != 0 {
+			t.Errorf("demo, %s: %d of 3000 rays escape past the glass", name, n)
+		}
 	}
+	s := designs["bare"]
 	// Twin: without the panes rays must escape.
 	var open []scene.Triangle
 	for _, tri := range s.Triangles {
@@ -93,7 +101,7 @@ func TestRoomsAreTight(t *testing.T) {
 	if leaks(s, open, eye, 3000) == 0 {
 		t.Error("demo without glass: no ray escapes; the test cannot fail")
 	}
-	starter := load(t, demo.Starter(), demo.StarterProject)
+	starter := load(t, demo.Starter(), demo.StarterProject)[""]
 	if n := leaks(starter, starter.Triangles, r3.Vec{X: 2.1, Y: 2.9, Z: 1.6}, 3000); n != 0 {
 		t.Errorf("starter: %d of 3000 rays escape past the glass", n)
 	}
@@ -102,7 +110,7 @@ func TestRoomsAreTight(t *testing.T) {
 // Every window looks out along -y, 165 degrees from north in the demo, and has
 // its shelf clear of the frames.
 func TestOpeningsAndShelves(t *testing.T) {
-	s := load(t, demo.FS(), demo.Project)
+	s := load(t, demo.FS(), demo.Project)["white shelf"]
 	if len(s.Openings) != 2*bays {
 		t.Fatalf("%d openings, want %d", len(s.Openings), 2*bays)
 	}
@@ -118,7 +126,7 @@ func TestOpeningsAndShelves(t *testing.T) {
 			t.Errorf("%s: %g by %g m", o.Name, w, h)
 		}
 	}
-	frames := officeSolids()[1 : 1+bays]
+	frames := plainFrames()
 	shelves := 0
 	for _, tri := range s.Triangles {
 		if s.Parts[tri.Part].Kind != scene.System {

@@ -3,6 +3,7 @@ package report
 import (
 	"fmt"
 	"io"
+	"slices"
 	"strings"
 
 	"squint/cmd/squint/internal/study"
@@ -14,47 +15,75 @@ import (
 // headerIndent is where the texts of the header begin.
 const headerIndent = 11
 
-// Header prints what is about to be computed: the weather and the moment its
-// records stand for, the geometry, what was noticed, and every setting and
-// default.
-func Header(w io.Writer, in *study.Input) error {
+// Headers prints what is about to be computed; of further alternatives only
+// what it has not said yet.
+type Headers struct{ said map[string]bool }
+
+// Print tells the weather and the moment its records stand for, the geometry,
+// what was noticed, and every setting and default.
+func (hs *Headers) Print(w io.Writer, in *study.Input) error {
 	var p page
 	pr, f := in.Project, newPaths(in.Project, in.Scene)
-	p.head(title(pr, f))
-	if invented(pr, in.Climate.Year) {
-		p.item(0, inventedWords, warm(), len(inventedWords)+1, "- not those of a real place or building")
+	if hs.said == nil {
+		hs.said = map[string]bool{}
+		p.head(title(pr, f))
+		if invented(pr, in.Climate.Year) {
+			p.item(0, inventedWords, warm(), len(inventedWords)+1, "- not those of a real place or building")
+		}
+		p.gap()
 	}
-	p.gap()
-	say := func(word, text string) { p.item(0, word, bold(), headerIndent, f.in(text)) }
+	if k := alternativeOf(pr); k >= 0 {
+		p.item(0, "Design", bold(), headerIndent, designText(pr, k))
+	}
+	say := func(word, text string) {
+		if text = f.in(text); !hs.said[text] {
+			hs.said[text] = true
+			p.item(0, word, bold(), headerIndent, text)
+		}
+	}
+	list := func(word string, texts []string) {
+		for _, t := range texts {
+			if !hs.said[f.in(t)] {
+				say(word, t)
+				word = ""
+			}
+		}
+	}
 	text, warns := momentText(in.Climate, pr)
 	say("Weather", weatherText(in.Climate.Year))
-	if warns {
-		p.item(0, "Warning", warm(), headerIndent, f.in(text))
-	} else {
+	if !warns {
 		say("", text)
+	} else if !hs.said[f.in(text)] {
+		hs.said[f.in(text)] = true
+		p.item(0, "Warning", warm(), headerIndent, f.in(text))
 	}
-	for i, m := range in.Scene.Meshes {
-		word := ""
-		if i == 0 {
-			word = "Geometry"
-		}
-		say(word, meshText(m))
+	var meshes []string
+	for _, m := range in.Scene.Meshes {
+		meshes = append(meshes, meshText(m))
 	}
+	list("Geometry", meshes)
 	say("Checked", checkedText(in))
 	say("Criteria", criteriaText(pr.Criteria))
 	say("Settings", settingsText(pr))
-	word := "Defaults"
-	for _, d := range defaultTexts(pr) {
-		say(word, d)
-		word = ""
-	}
-	word = "Notes"
-	for _, n := range in.Notes {
-		say(word, n)
-		word = ""
-	}
+	list("Defaults", defaultTexts(pr))
+	list("Notes", in.Notes)
 	p.gap()
 	return p.print(w)
+}
+
+// alternativeOf is the place of the project's alternative among those of its
+// file, -1 for a project of one design.
+func alternativeOf(p *project.Project) int {
+	return slices.IndexFunc(p.Alternatives, func(a project.Alternative) bool { return a.Name == p.Alternative })
+}
+
+func designText(p *project.Project, k int) string {
+	a := p.Alternatives[k]
+	s := fmt.Sprintf("%s, %d of %d", a.Name, k+1, len(p.Alternatives))
+	if a.About != "" {
+		s += ": " + a.About
+	}
+	return s
 }
 
 func title(p *project.Project, f paths) string {

@@ -8,6 +8,9 @@ import (
 // longestSlug leaves room for endings on every file system.
 const longestSlug = 60
 
+// Slug is a file name for one name.
+func Slug(name string) string { return slugs([]string{name}, "design")[0] }
+
 // slugs are file names for names, each its own even where a file system does
 // not tell capitals from small letters. They depend on the names and their
 // order alone.

@@ -164,7 +164,7 @@ func TestHeader(t *testing.T) {
 	in := &study.Input{Project: r.Project, Scene: r.Scene, Climate: r.Climate, Notes: r.Notes, Occupied: r.Occupied}
 	var b bytes.Buffer
 	t.Setenv("CLICOLOR_FORCE", "")
-	if err := Header(&b, in); err != nil {
+	if err := new(Headers).Print(&b, in); err != nil {
 		t.Fatal(err)
 	}
 	sound(t, b.String())

@@ -32,7 +32,7 @@ func TestAnnualAgainstBruteForce(t *testing.T) {
 	if os.Getenv("SQUINT_LONG") == "" {
 		t.Skip("takes minutes; set SQUINT_LONG=1, as .ci/run does")
 	}
-	in, err := Prepare(demo.FS(), demo.Project, runtime.NumCPU())
+	in, err := prepareFile(demo.FS(), demo.Project, "white shelf", runtime.NumCPU())
 	if err != nil {
 		t.Fatal(err)
 	}

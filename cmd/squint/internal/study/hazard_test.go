@@ -266,7 +266,7 @@ func TestHazardDeterminism(t *testing.T) {
 // TestHazardPlaces: the demo's workstations are indoors, the yard is not, and
 // suns between the records run through those of the records.
 func TestHazardPlaces(t *testing.T) {
-	in, err := Prepare(demo.FS(), demo.Project, 2)
+	in, err := prepareFile(demo.FS(), demo.Project, "white shelf", 2)
 	if err != nil {
 		t.Fatal(err)
 	}

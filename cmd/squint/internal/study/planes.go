@@ -18,6 +18,11 @@ type PlaneResult struct {
 	DA, CDA []float64 // by sensor, shares
 	UDI     []daylight.UsefulShares
 
+	// Rear are the sensors furthest from the glass, a third of them, and RearDA
+	// their mean autonomy: the light that a system is to bring there.
+	Rear   []int
+	RearDA float64
+
 	MeanDA, MeanCDA float64
 	MeanUDI         daylight.UsefulShares
 
@@ -74,6 +79,10 @@ func (r *Result) judgePlane(p *PlaneResult, z float64) {
 	}
 	p.MeanDA, p.MeanCDA = mean(p.DA), mean(p.CDA)
 	p.MeanUDI = meanUDI(p.UDI)
+	p.Rear = rear(p.Plane.Sensors, r.Scene.Openings)
+	for _, s := range p.Rear {
+		p.RearDA += p.DA[s] / float64(len(p.Rear))
+	}
 	p.Factors = daylight.Factors(p.Factor)
 	plane := daylight.Plane{E: p.E, SE: p.StdErr, Z: z}
 	p.SDA = daylight.SDA(plane, r.Clock, daylight.DefaultSpatial)

@@ -8,6 +8,7 @@ import (
 
 	"gonum.org/v1/gonum/spatial/r3"
 
+	"squint/glare/daylight"
 	"squint/scene"
 	"squint/scene/project"
 	"squint/trace"
@@ -104,6 +105,21 @@ func hoursByStanding(all []Standing) []string {
 		out = append(out, fmt.Sprintf("%s: %d hours with daylight, %d of them in use.", s.Label, len(s.Moments), used))
 	}
 	return out
+}
+
+// standingByHour are the labels and which of them holds at each record.
+func standingByHour(all []Standing) (labels []string, at []int16) {
+	at = make([]int16, daylight.HoursPerYear)
+	for h := range at {
+		at[h] = -1
+	}
+	for k, s := range all {
+		labels = append(labels, s.Label)
+		for _, m := range s.Moments {
+			at[m.Hour] = int16(k)
+		}
+	}
+	return labels, at
 }
 
 func openingOf(s *scene.Scene, name string) (int, bool) {

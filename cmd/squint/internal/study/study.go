@@ -50,6 +50,10 @@ type Result struct {
 
 	// Positions says how long what moves stands in each of its positions.
 	Positions []string
+	// Standings are the labels of the combinations of positions, and Standing
+	// the index among them by record; -1 without daylight.
+	Standings []string
+	Standing  []int16
 
 	// Hazard is nil where nothing but panes mirrors or shines.
 	Hazard *Hazard
@@ -95,13 +99,9 @@ type Input struct {
 	Occupied, Clock, Daylight daylight.Hours
 }
 
-// Prepare reads everything and checks it. Errors are the user's to mend, all
-// of them joined.
-func Prepare(fsys fs.FS, name string, workers int) (*Input, error) {
-	p, err := project.Load(fsys, name)
-	if err != nil {
-		return nil, err
-	}
+// Prepare reads everything that a project names and checks it. Errors are the
+// user's to mend, all of them joined.
+func Prepare(fsys fs.FS, p *project.Project, workers int) (*Input, error) {
 	s, err := scene.Build(fsys, p)
 	if err != nil {
 		return nil, err
@@ -178,6 +178,7 @@ func Run(ctx context.Context, in *Input, opt Options) (*Result, error) {
 		Calendar: in.Calendar, Occupied: in.Occupied, Clock: in.Clock, Daylight: in.Daylight,
 		Notes: in.Notes, Positions: hoursByStanding(in.Standings),
 	}
+	r.Standings, r.Standing = standingByHour(in.Standings)
 	y, err := computeYear(ctx, in, opt, r)
 	if err != nil {
 		return nil, err

@@ -9,6 +9,7 @@ import (
 	"testing/fstest"
 
 	"squint/cmd/squint/demo"
+	"squint/scene/project"
 )
 
 // tinyProject is a room of 4 by 4 m with one window to the south, a pair of
@@ -135,7 +136,7 @@ func tiny(t testing.TB, texelM float64, memoryMiB int) *Input {
 		"room.obj":     {Data: []byte(tinyRoom())},
 		"site.epw":     {Data: tinyYear(t)},
 	}
-	in, err := Prepare(fsys, "project.toml", 1)
+	in, err := prepareFile(fsys, "project.toml", "", 1)
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -150,4 +151,18 @@ func study(t testing.TB, in *Input, workers int) *Result {
 		t.Fatal(err)
 	}
 	return r
+}
+
+// prepareFile prepares one design of a project file.
+func prepareFile(fsys fs.FS, name, alternative string, workers int) (*Input, error) {
+	all, err := project.LoadAll(fsys, name)
+	if err != nil {
+		return nil, err
+	}
+	for _, p := range all {
+		if p.Alternative == alternative {
+			return Prepare(fsys, p, workers)
+		}
+	}
+	return nil, fmt.Errorf("%s: there is no alternative %q", name, alternative)
 }
