@@ -39,7 +39,7 @@ func (b *builder) addAnidolicCeilings() {
 			}
 			id, ok := parts[name]
 			if !ok {
-				id = b.part(Part{Name: def.Name + strings.TrimPrefix(name, "anidolic"), Kind: System, Opening: k, TexelM: systemTexelM})
+				id = b.part(Part{Name: def.Name + strings.TrimPrefix(name, "anidolic"), Kind: System, Opening: k, TexelM: b.p.Simulation.TexelM})
 				parts[name] = id
 			}
 			return id

@@ -35,13 +35,11 @@ const (
 // part of the disc: one mirror, straight passage through any number of panes.
 // The part of the disc that a facet covers is computed; the part of it that
 // something hides is found by imageRays lines of sight spread over it. hidden
-// tells directions that look at the ground or behind the horizon line.
-func (w *World) Images(p, sun r3.Vec, hidden func(dir r3.Vec) bool, out []Image) []Image {
-	for k := range w.specular.facets {
+// tells directions that look at the ground or behind the horizon line. facets
+// are those to look at, as MirrorsFrom finds them.
+func (w *World) Images(p, sun r3.Vec, facets []int32, hidden func(dir r3.Vec) bool, out []Image) []Image {
+	for _, k := range facets {
 		f := &w.specular.facets[k]
-		if !f.sharp {
-			continue
-		}
 		n := w.normal[f.prim]
 		side := materials.Front
 		cs, ce := r3.Dot(sun, n), r3.Dot(r3.Sub(p, f.centre), n)

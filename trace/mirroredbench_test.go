@@ -41,9 +41,10 @@ func BenchmarkMirroredFind(b *testing.B) {
 	}{{"above", r3.Vec{Y: 3 * -sun.Y, Z: 3 * sun.Z}}, {"below", r3.Vec{Y: 4, Z: -.8}}} {
 		b.Run(c.name, func(b *testing.B) {
 			var out []trace.Image
+			facets := w.MirrorsFrom(c.eye)
 			b.ResetTimer()
 			for range b.N {
-				out = w.Images(c.eye, sun, aboveAll, out[:0])
+				out = w.Images(c.eye, sun, facets, aboveAll, out[:0])
 			}
 			b.ReportMetric(float64(len(out)), "images")
 		})

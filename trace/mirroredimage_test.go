@@ -20,7 +20,8 @@ func aboveAll(r3.Vec) bool { return false }
 
 // findImages looks for the sun's images.
 func findImages(m *mirroredModel, eye, sun r3.Vec) []trace.Image {
-	return m.world().Images(eye, sun, aboveAll, nil)
+	w := m.world()
+	return w.Images(eye, sun, w.MirrorsFrom(eye), aboveAll, nil)
 }
 
 // TestMirroredImage: what an eye 1 m above a level mirror sees of the sun in

@@ -180,7 +180,7 @@ func (w *worker) discs(out []Disc, e *coeff.Eye, m *scene.Moment, rays *surface.
 		}
 	}
 	first := len(out)
-	w.images = w.t.World.Images(e.View.Position, m.Sun, w.t.Hidden, w.images[:0])
+	w.images = w.t.World.Images(e.View.Position, m.Sun, e.Mirrors, w.t.Hidden, w.images[:0])
 	for _, im := range w.images {
 		if im.Share > 0 && r3.Dot(im.Dir, e.View.Direction) > 0 {
 			out = append(out, Disc{Dir: im.Dir, OmegaSr: full * im.Share, Luminance: lum * im.Luminous, Mirror: im.Part, Via: im.Via})

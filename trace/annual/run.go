@@ -103,6 +103,7 @@ func plan(s *scene.Scene, moments []*scene.Moment) []block {
 func Run(ctx context.Context, t *surface.Transport, r Receivers, moments []*scene.Moment, cfg Config, sink Sink, progress func(done int)) (*Daylight, error) {
 	d := NewDaylight(len(r.Sensors), len(moments))
 	blocks := plan(t.World.Scene, moments)
+	mirrors := newMirrorLists(len(r.Sensors))
 	var next, done atomic.Int64
 	var wg sync.WaitGroup
 	for worker := range max(cfg.Workers, 1) {
@@ -110,6 +111,7 @@ func Run(ctx context.Context, t *surface.Transport, r Receivers, moments []*scen
 		go func() {
 			defer wg.Done()
 			w := newWorker(t, r, cfg, worker, sink)
+			w.mirrors = mirrors
 			for ctx.Err() == nil {
 				k := int(next.Add(1)) - 1
 				if k >= len(blocks) {
@@ -142,14 +144,15 @@ func NewDaylight(sensors, moments int) *Daylight {
 
 // worker holds one goroutine's scratch.
 type worker struct {
-	t      *surface.Transport
-	r      Receivers
-	cfg    Config
-	number int
-	sink   Sink
-	lights []surface.Light
-	eye    eyeScratch
-	images []trace.Image
+	t       *surface.Transport
+	r       Receivers
+	cfg     Config
+	number  int
+	sink    Sink
+	lights  []surface.Light
+	eye     eyeScratch
+	images  []trace.Image
+	mirrors *mirrorLists // of the sensors, shared by the workers
 	// catcher is nil where no light comes by several mirrors.
 	catcher *catcher
 }

@@ -2,10 +2,12 @@ package annual
 
 import (
 	"math"
+	"sync"
 
 	"gonum.org/v1/gonum/spatial/r3"
 
 	"squint/materials/sampling"
+	"squint/trace"
 	"squint/trace/surface"
 )
 
@@ -82,12 +84,13 @@ func meanAndError(e []surface.Row, h int) (mean, se float64) {
 // imagesOn is the sun that mirrors throw straight on sensor i, lx.
 func (w *worker) imagesOn(bl *surface.Block, i int) (e surface.Row) {
 	s := &w.r.Sensors[i]
+	facets := w.mirrors.from(w.t.World, i, s.Position)
 	for h := range bl.Moments {
 		rays := &bl.Sun[h]
 		if rays.NormalLx <= 0 {
 			continue
 		}
-		w.images = w.t.World.Images(s.Position, bl.Moments[h].Sun, w.t.Hidden, w.images[:0])
+		w.images = w.t.World.Images(s.Position, bl.Moments[h].Sun, facets, w.t.Hidden, w.images[:0])
 		for _, im := range w.images {
 			if cos := r3.Dot(im.Dir, s.Normal); cos > 0 {
 				e[h] += float32(rays.NormalLx * im.Share * im.Luminous * cos)
@@ -126,4 +129,20 @@ func (w *worker) sunOn(p, n r3.Vec, rays *surface.SunRays, receiver, hour, batch
 	}
 	world := w.t.World
 	return float32(rays.NormalLx * cos * world.Transmittance(world.Offset(p, n), dir, math.Inf(1)))
+}
+
+// mirrorLists holds by sensor the facets that it may see the sun in, found
+// when first asked for.
+type mirrorLists struct {
+	once   []sync.Once
+	facets [][]int32
+}
+
+func newMirrorLists(sensors int) *mirrorLists {
+	return &mirrorLists{make([]sync.Once, sensors), make([][]int32, sensors)}
+}
+
+func (l *mirrorLists) from(w *trace.World, i int, p r3.Vec) []int32 {
+	l.once[i].Do(func() { l.facets[i] = w.MirrorsFrom(p) })
+	return l.facets[i]
 }

@@ -22,6 +22,8 @@ type Eye struct {
 	// Seen says, by pixel, what its first sample ended on.
 	Seen    []Seen
 	Batches []EyeBatch
+	// Mirrors are the facets that may show the sun, for trace.World.Images.
+	Mirrors []int32
 }
 
 // Seen names what stands in a pixel, for the reasons given with glare.
@@ -122,7 +124,7 @@ func TraceEye(t *surface.Transport, v scene.Viewpoint, index int, cfg EyeConfig)
 	if err != nil {
 		return nil, err
 	}
-	e := &Eye{View: vw, Batches: make([]EyeBatch, cfg.Batches)}
+	e := &Eye{View: vw, Batches: make([]EyeBatch, cfg.Batches), Mirrors: t.World.MirrorsFrom(v.Position)}
 	for iy := range cfg.Pixels {
 		for ix := range cfg.Pixels {
 			if vw.SolidAngle(ix, iy) > 0 {

@@ -53,8 +53,13 @@ type piece struct {
 func Cut(w *trace.World, coarsen float64, factor []float64) *Texels {
 	s := w.Scene
 	t := &Texels{world: w, index: map[texelKey]int32{}, grid: make([]scene.Grid, len(s.Parts))}
+	weak := weakParts(s)
 	for i, p := range s.Parts {
-		t.grid[i] = gridOf(p, coarsen*factor[i])
+		f := coarsen * factor[i]
+		if weak[i] {
+			f *= weakCoarser
+		}
+		t.grid[i] = gridOf(p, f)
 	}
 	type owned struct {
 		texel int32
@@ -139,6 +144,31 @@ func scatters(b materials.BSDF) bool {
 		}
 	}
 	return false
+}
+
+// Parts that scatter less than weakShare of what meets them, such as mirrors,
+// light others an order less than paint does: their cells are weakCoarser
+// times larger. Own choice, no published source.
+const (
+	weakShare   = 0.1
+	weakCoarser = 3
+)
+
+// weakParts tells which parts have no finish that scatters weakShare.
+func weakParts(s *scene.Scene) []bool {
+	weak := make([]bool, len(s.Parts))
+	for i := range weak {
+		weak[i] = true
+	}
+	for i := range s.Triangles {
+		b := s.Finishes[s.Triangles[i].Finish].BSDF
+		for _, side := range []materials.Side{materials.Front, materials.Back} {
+			if rho, tau := b.Lambert(side); rho+tau >= weakShare {
+				weak[s.Triangles[i].Part] = false
+			}
+		}
+	}
+	return weak
 }
 
 // Len is the number of texels.
