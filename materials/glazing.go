@@ -79,6 +79,19 @@ func NewGlazing(transmittance float64, panes int) (*Glazing, error) {
 	return g, nil
 }
 
+// Joined is the unit of two units of equal uncoated panes, one behind the
+// other, with the polarisation that light keeps from pane to pane; false where
+// the panes differ, are known from a table only, or are more than MaxPanes.
+func Joined(a, b *Glazing) (*Glazing, bool) {
+	panes := a.Panes + b.Panes
+	if a.Panes == 0 || b.Panes == 0 || a.Extinction != b.Extinction || panes > MaxPanes {
+		return nil, false
+	}
+	g := &Glazing{Panes: panes, Extinction: a.Extinction}
+	g.fill(func(cos float64) throughAndMirror { return stack(cos, panes, g.Extinction) })
+	return g, true
+}
+
 func uncoated(panes int) string {
 	if panes == 1 {
 		return "1 uncoated pane"

@@ -273,7 +273,11 @@ func (b *builder) addOpenings(meshes []*placed) {
 		b.s.Openings = append(b.s.Openings, Opening{Name: o.Name, Group: o.Group, Rect: r})
 		if o.Glazing != "" {
 			part := b.part(Part{Name: o.Name, Kind: Pane, Opening: len(b.s.Openings) - 1, TexelM: systemTexelM})
-			b.addFaces(system.Pane(r, o.Glazing), func(string) int32 { return part })
+			unit, joined := b.joinedPanes(o)
+			b.addFaces(system.Pane(r, unit), func(string) int32 { return part })
+			if joined {
+				continue
+			}
 		} else {
 			b.ownGlass(o, len(b.s.Openings)-1)
 		}

@@ -18,6 +18,37 @@ const (
 	maxTexelsOfSlats = 40000
 )
 
+// joinedPanes is the finish of an opening's glass. Two equal panes with
+// nothing between them are one unit, since light keeps its polarisation from
+// the one to the other; that is joined. Elsewhere it is the outer pane's own.
+func (b *builder) joinedPanes(o *project.Opening) (finish string, joined bool) {
+	for _, bl := range b.p.Blinds {
+		if bl.Opening == o.Name && bl.Position == system.Between && !bl.Raised {
+			return o.Glazing, false
+		}
+	}
+	outer, ok1 := b.finish[o.Glazing]
+	inner, ok2 := b.finish[o.InnerGlazing]
+	if o.InnerGlazing == "" || !ok1 || !ok2 {
+		return o.Glazing, false
+	}
+	first, ok1 := b.s.Finishes[outer].BSDF.(*materials.Glazing)
+	second, ok2 := b.s.Finishes[inner].BSDF.(*materials.Glazing)
+	if !ok1 || !ok2 {
+		return o.Glazing, false
+	}
+	unit, ok := materials.Joined(first, second)
+	if !ok {
+		return o.Glazing, false
+	}
+	// No finish of the project has a line break in its name.
+	name := o.Glazing + "\n" + o.InnerGlazing
+	if _, ok := b.finish[name]; !ok {
+		b.finish[name] = b.intern(o.Glazing+" and "+o.InnerGlazing+" as one unit", unit)
+	}
+	return name, true
+}
+
 // addInnerPane adds the second pane of opening k.
 func (b *builder) addInnerPane(o *project.Opening, k int) {
 	if o.InnerGlazing == "" {

@@ -208,11 +208,10 @@ func TestSkyHiddenByShelf(t *testing.T) {
 	mirroredJudge(t, "sky hidden by a shelf", rows, .05)
 }
 
-// TestBlindBetweenPanes: raised it leaves the scene as the two panes alone
-// make it, and they pass what a pile of two plates does: t^2/(1 - r^2), each
-// pane's t and r taken as they are of light without polarisation. Source:
-// Stokes 1862, "On the intensity of the light reflected from or transmitted
-// through a pile of plates", Proc. R. Soc. 11 (from memory).
+// TestBlindBetweenPanes: raised it leaves the scene as the two panes alone make
+// it, and these pass what the same double glazing given as one unit passes, at
+// every angle. Drawn, the panes stand apart; between slats light loses its
+// polarisation.
 func TestBlindBetweenPanes(t *testing.T) {
 	const text = `
 [weather]
@@ -275,8 +274,8 @@ upper = "white"
 	}
 	// (1.6 - 0.08)/0.072 = 21.1: 22 slats, axes from 0.04 to 1.552 m, and the
 	// rail from 1.592 m.
-	if drawn := build(blind, map[string]string{"venetian": project.DrawnState}); len(drawn.Triangles) != len(bare.Triangles)+2*22+2 {
-		t.Errorf("drawn: got %d triangles more, want those of 22 slats and a rail", len(drawn.Triangles)-len(bare.Triangles))
+	if drawn := build(blind, map[string]string{"venetian": project.DrawnState}); len(drawn.Triangles) != len(bare.Triangles)+2*22+2+2 {
+		t.Errorf("drawn: got %d triangles more, want those of 22 slats, a rail and the inner pane", len(drawn.Triangles)-len(bare.Triangles))
 	}
 	pane, err := materials.NewGlazing(.88, 1)
 	if err != nil {
@@ -310,16 +309,11 @@ upper = "white"
 			}
 			sum.add(passed)
 		}
-		r, tau := pane.Delta(materials.Front, math.Cos(radians(angle)))
-		want := tau * tau / (1 - r*r)
-		_, unit := double.Delta(materials.Front, math.Cos(radians(angle)))
+		// The unit of 2 panes that passes as much straight ahead; its law is
+		// checked against published values in materials/glazing_test.go.
+		_, want := double.Delta(materials.Front, math.Cos(radians(angle)))
 		rows = append(rows, mirroredRow{fmt.Sprintf("two panes at %g degrees", angle), want, sum.mean(), sum.stdErr(), 1e-5, sum.n - 1})
-		got := sum.mean()
-		t.Logf("%g degrees: traced %.6f, pile of plates %.6f, as one unit %.6f, which keeps the polarisations apart", angle, got, want, unit)
-		if angle == 0 && math.Abs(got-unit) > 1e-5 {
-			t.Errorf("straight ahead: two panes pass %.6f, the double glazing %.6f", got, unit)
-		}
 	}
 	// 1e-5 for stored tables and single precision of the incidence.
-	mirroredJudge(t, "two panes apart", rows, .001)
+	mirroredJudge(t, "two panes, the blind raised", rows, .001)
 }
