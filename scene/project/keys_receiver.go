@@ -67,8 +67,8 @@ var soilings = []string{"clean", "average", "neglected"}
 var simulationKeys = []key[Simulation]{
 	{spec{name: "seed", about: "of all random numbers", def: "1", source: own}, func(s *Simulation) any { return &s.Seed }},
 	{spec{name: "batches", about: "independent repetitions that give the confidence", in: within{lo: 8, hi: 64}, def: "8", source: own}, func(s *Simulation) any { return &s.Batches }},
-	{spec{name: "fisheye_pixels", about: "across a view", in: within{lo: 16, hi: 1024}, def: "64", source: own}, func(s *Simulation) any { return &s.FisheyePixels }},
-	{spec{name: "samples_per_pixel", about: "a multiple of batches", in: within{lo: 8, hi: 65536}, def: "16", source: own}, func(s *Simulation) any { return &s.SamplesPerPixel }},
+	{spec{name: "fisheye_pixels", about: "across a view, an even number", in: within{lo: 16, hi: 1024}, def: "96", source: own}, func(s *Simulation) any { return &s.FisheyePixels }},
+	{spec{name: "samples_per_pixel", about: "a multiple of batches", in: within{lo: 8, hi: 65536}, def: "8", source: own}, func(s *Simulation) any { return &s.SamplesPerPixel }},
 	{spec{name: "sensor_samples", about: "directions per sensor, a multiple of batches", in: within{lo: 8, hi: 1 << 24}, def: "4096", source: own}, func(s *Simulation) any { return &s.SensorSamples }},
 	{spec{name: "texel_m", about: "size of the pieces into which surfaces are cut", in: within{lo: 0.01, hi: 2}, def: "0.2", source: own}, func(s *Simulation) any { return &s.TexelM }},
 	{spec{name: "texel_samples", about: "paths per piece, a multiple of batches", in: within{lo: 8, hi: 1 << 20}, def: "256", source: own}, func(s *Simulation) any { return &s.TexelSamples }},
@@ -78,6 +78,9 @@ var simulationKeys = []key[Simulation]{
 }
 
 func checkSimulation(r *reader, n *node, s *Simulation) {
+	if n.good("fisheye_pixels") && s.FisheyePixels%2 != 0 {
+		r.reject(n, "simulation", "fisheye_pixels", "got %d, want an even number: pixels are joined two by two to see what their width does", s.FisheyePixels)
+	}
 	if !n.good("batches") {
 		return
 	}

@@ -11,6 +11,7 @@ import (
 	"squint/glare/verdict"
 	"squint/scene"
 	"squint/scene/project"
+	"squint/scene/view"
 	"squint/trace/annual"
 	"squint/trace/coeff"
 )
@@ -22,6 +23,9 @@ type ViewResult struct {
 	DGP       []float32
 	StdErr    []float32 // of DGP, jackknife over the batches
 	Ev        []float32 // lx
+	// Coarse is DGP with pixels twice as wide, and Bias what that says of the
+	// error that the pixels used leave, the same for all hours of one look.
+	Coarse, Bias []float32
 	InRange   []bool    // DGP within the range of its data
 	Cause     []int16   // index into Causes, -1 where DGP is low
 	Causes    []Cause
@@ -104,6 +108,7 @@ type glareSink struct {
 	in    *Input
 	once  sync.Once
 	field *glare.Field
+	wide  *glare.Field // of half as many pixels across; nil where the number is odd
 	opt   glare.Options
 	views []ViewResult
 	mu    []sync.Mutex // by view
@@ -121,7 +126,13 @@ type standingSink struct {
 
 func (g *glareSink) sink(s *scene.Scene, eyes []*coeff.Eye) annual.Sink {
 	if len(eyes) > 0 {
-		g.once.Do(func() { g.field = glare.NewField(eyes[0].View) })
+		g.once.Do(func() {
+			v := eyes[0].View
+			g.field = glare.NewField(v)
+			if half, err := view.New(v.Position, v.Direction, v.Up, v.Projection, v.FOVRad, v.Width/2, v.Height/2); err == nil && v.Width%2 == 0 && v.Height%2 == 0 {
+				g.wide = glare.NewField(half)
+			}
+		})
 	}
 	return (&standingSink{g, s, eyes}).take
 }
@@ -129,6 +140,8 @@ func (g *glareSink) sink(s *scene.Scene, eyes []*coeff.Eye) annual.Sink {
 type sinkScratch struct {
 	scratch glare.Scratch
 	rest    []float32 // leave-one-out image
+	wide    []float32 // image of half as many pixels across
+	coarse  glare.Scratch
 	discs   []glare.Disc
 }
 
@@ -142,9 +155,10 @@ func newGlareSink(in *Input, workers int) *glareSink {
 		v.Viewpoint = in.Scene.Viewpoints[i]
 		n := len(in.Climate.SinAltitude)
 		v.DGP, v.StdErr, v.Ev = make([]float32, n), make([]float32, n), make([]float32, n)
+		v.Coarse, v.Bias = make([]float32, n), make([]float32, n)
 		v.InRange, v.Cause = make([]bool, n), make([]int16, n)
 		for h := range v.DGP {
-			v.DGP[h], v.StdErr[h], v.Ev[h], v.Cause[h] = nan32(), nan32(), nan32(), -1
+			v.DGP[h], v.StdErr[h], v.Ev[h], v.Coarse[h], v.Cause[h] = nan32(), nan32(), nan32(), nan32(), -1
 		}
 		for _, h := range in.Occupied {
 			v.DGP[h], v.StdErr[h], v.Ev[h] = 0, 0, 0
@@ -180,6 +194,7 @@ func (g *standingSink) take(worker int, f *annual.Frame) {
 	h := f.Moment.Hour
 	v.DGP[h], v.Ev[h], v.StdErr[h] = float32(dgp), float32(ev), float32(se)
 	v.InRange[h] = glare.InRange(dgp, ev)
+	v.Coarse[h] = float32(g.atHalf(w, e, f.Mean))
 	g.mu[f.Eye].Lock()
 	defer g.mu[f.Eye].Unlock()
 	worst := v.Worst == nil || dgp > v.Worst.DGP || (dgp == v.Worst.DGP && h < v.Worst.Moment.Hour)

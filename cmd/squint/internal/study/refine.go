@@ -10,8 +10,8 @@ import (
 )
 
 // refineRounds is the number of times that what is undecided is looked at
-// again, each time with refineFactor times the samples (half the error); the
-// surfaces, dear to trace anew, get them once. Where their noise rules the
+// again, each time with refineFactor times the samples (half the error), which
+// are pixels twice as fine; the surfaces, dear to trace anew, get them once. Where their noise rules the
 // error, it stays as it is and so does the verdict: undecided.
 // After that a verdict stays undecided. The looks are paid for in z.
 const (
@@ -64,6 +64,7 @@ func (r *Result) refine(ctx context.Context, in *Input, opt Options, y *year) er
 			hours := r.openHours(to, level.DGP, z)
 			for _, h := range hours {
 				to.DGP[h], to.StdErr[h], to.Ev[h], to.InRange[h] = from.DGP[h], from.StdErr[h], from.Ev[h], from.InRange[h]
+				to.Coarse[h], to.Bias[h] = from.Coarse[h], from.Bias[h]
 			}
 			to.Refined = round
 			to.lookCloser(from)
@@ -96,7 +97,7 @@ func count(n int, what string) string {
 func (r *Result) openHours(v *ViewResult, limit, z float64) []int {
 	var out []int
 	for _, h := range r.Occupied {
-		d, e := float64(v.DGP[h]), z*float64(v.StdErr[h])
+		d, e := float64(v.DGP[h]), z*float64(v.StdErr[h])+float64(v.Bias[h])
 		if d-e <= limit && d+e > limit {
 			out = append(out, h)
 		}
@@ -109,7 +110,9 @@ func (r *Result) openHours(v *ViewResult, limit, z float64) []int {
 func subset(in *Input, views []int, open map[int]bool, factor, round int) *Input {
 	sub := *in
 	p := *in.Project
-	p.Simulation.SamplesPerPixel *= factor
+	for n := factor; n > 1; n /= refineFactor {
+		p.Simulation.FisheyePixels *= 2
+	}
 	p.Simulation.TexelSamples *= min(factor, refineFactor)
 	seed := sampling.Stream3(p.Simulation.Seed, streamRefine, uint64(round))
 	p.Simulation.Seed = seed.Uint64()
@@ -160,9 +163,12 @@ func (r *Result) zViews() float64 {
 
 // glareHours counts a view's hours in use over a limit.
 func (r *Result) glareHours(v *ViewResult, limit, z float64) verdict.GlareHours {
-	dgp, se := make([]float32, len(r.Occupied)), make([]float32, len(r.Occupied))
+	dgp, half := make([]float32, len(r.Occupied)), make([]float32, len(r.Occupied))
 	for k, h := range r.Occupied {
-		dgp[k], se[k] = v.DGP[h], v.StdErr[h]
+		dgp[k] = v.DGP[h]
+		if dgp[k] != 0 || v.StdErr[h] != 0 { // 0: in the dark
+			half[k] = float32(z)*v.StdErr[h] + v.Bias[h]
+		}
 	}
-	return verdict.CountGlare(dgp, se, limit, z)
+	return verdict.CountGlare(dgp, half, limit, 1)
 }

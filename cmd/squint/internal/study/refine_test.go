@@ -234,8 +234,8 @@ func TestSubset(t *testing.T) {
 			t.Errorf("round %d: got %d moments, want the open one", round, len(s.Climate.Moments))
 		}
 		a, b := s.Project.Simulation, in.Project.Simulation
-		if a.SamplesPerPixel != factor*b.SamplesPerPixel || a.TexelSamples != 4*b.TexelSamples {
-			t.Errorf("round %d: got %d and %d samples, want %d times %d and 4 times %d", round, a.SamplesPerPixel, a.TexelSamples, factor, b.SamplesPerPixel, b.TexelSamples)
+		if a.FisheyePixels != b.FisheyePixels<<round || a.TexelSamples != 4*b.TexelSamples {
+			t.Errorf("round %d: got %d pixels and %d texel samples, want %d times %d and 4 times %d", round, a.FisheyePixels, a.TexelSamples, 1<<round, b.FisheyePixels, b.TexelSamples)
 		}
 		if seeds[a.Seed] {
 			t.Errorf("round %d: the seed was used before", round)

@@ -86,6 +86,9 @@ func computeYear(ctx context.Context, in *Input, opt Options, r *Result) (*year,
 			}
 		}
 	}
+	for i := range y.glare.views {
+		y.glare.views[i].judgeResolution()
+	}
 	return y, nil
 }
 
