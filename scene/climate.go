@@ -15,11 +15,14 @@ import (
 	"squint/scene/weather"
 )
 
-// Moment is one record of the year with daylight: the sun in the model frame,
-// its illuminance on a plane facing it, and the sky. Illuminances are the means
-// over the record's whole hour, also where the sun is up for a part of it.
+// Moment is one record of the year with daylight, or a part of one: the sun in
+// the model frame, its illuminance on a plane facing it, and the sky.
+// Illuminances are the means over the whole hour or part, also where the sun is
+// up for less than that.
 type Moment struct {
-	Hour        int // index of the record, 0 is the first hour of 1 January
+	Hour        int     // index of the record, 0 is the first hour of 1 January
+	Step        int     // of the record's equal parts, 0 is the first
+	Share       float64 // of an hour, 1 for the whole record
 	Time        time.Time
 	Month       int // 0 is January
 	Sun         r3.Vec
@@ -182,7 +185,7 @@ func (c *Climate) moment(i int) (m *Moment, sinAlt float64, clamped bool, err er
 	}
 	dome, clamp := sky.NewPerez(aboveHorizon(s.Direction), ill.Clearness, ill.Brightness, ill.Diffuse)
 	m = &Moment{
-		Hour: i, Time: t, Month: r.Month - 1,
+		Hour: i, Share: 1, Time: t, Month: r.Month - 1,
 		Sun: s.Direction, SunNormalLx: ill.DirectNormal, Sky: dome,
 		DiffuseLx: ill.Diffuse,
 		GlobalLx:  ill.Diffuse + direct,
@@ -245,5 +248,5 @@ func Overcast(month int) (*Moment, error) {
 	if err != nil {
 		return nil, err
 	}
-	return &Moment{Hour: -1, Month: month, Sun: r3.Vec{Z: 1}, Sky: dome, DiffuseLx: lx, GlobalLx: lx}, nil
+	return &Moment{Hour: -1, Share: 1, Month: month, Sun: r3.Vec{Z: 1}, Sky: dome, DiffuseLx: lx, GlobalLx: lx}, nil
 }
