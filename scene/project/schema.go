@@ -25,6 +25,7 @@ type Project struct {
 	Blinds           []Blind
 	Louvres          []Louvres
 	AnidolicCeilings []AnidolicCeiling
+	Controls         []Control
 	Viewpoints       []Viewpoint
 	WorkPlanes       []WorkPlane
 
