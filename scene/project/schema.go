@@ -268,5 +268,6 @@ type Simulation struct {
 	// at least Batches.
 	Photons   int
 	MemoryMiB int
+	StepMin   int    // length of a step, minutes: 60, 30, 20, 15, 10 or 5
 	Soiling   string // "clean", "average" or "neglected"; the same in every month
 }

@@ -149,6 +149,9 @@ func operated(p *project.Project) error {
 	if len(p.Controls) > 0 {
 		return fmt.Errorf("%s:%d: control: got %q, but a check does not operate systems yet; leave it out", p.File, p.Controls[0].Line, p.Controls[0].Name)
 	}
+	if m := p.Simulation.StepMin; m != 60 {
+		return fmt.Errorf("%s: simulation.step_min: got %d, but a check counts in whole hours yet; want 60", p.File, m)
+	}
 	return nil
 }
 
