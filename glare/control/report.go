@@ -42,10 +42,10 @@ type Losses struct {
 	// work planes in lx. It is asked for the chosen combination and for the
 	// open one, of steps in use.
 	Light func(step int, c Combination) float64
-	// View is the share of an opening's view that a unit in that state leaves,
-	// 0 to 1, such as its openness where it hangs and 1 beside it. Units of a
-	// group hang behind each other: their shares are multiplied, which holds
-	// for cloths without pattern.
+	// View is the share of its opening's view that a unit in that state leaves,
+	// 0 to 1, such as ViewLeft. What hangs behind each other at one opening is
+	// multiplied, which holds for cloths without pattern; the openings of a
+	// group count alike.
 	View func(unit, state int) float64
 }
 
@@ -85,13 +85,10 @@ func (p *Plan) group(name string, chosen []Combination, view func(unit, state in
 	var inUse, shaded, seen, whole float64
 	for i, s := range p.steps {
 		own := make([]int, len(members))
-		closed, left, open := false, 1.0, 1.0
+		closed := false
 		for j, k := range members {
 			own[j] = chosen[i].State(k)
 			closed = closed || own[j] > 0
-			if view != nil {
-				left, open = left*view(k, own[j]), open*view(k, 0)
-			}
 		}
 		key := combination(own)
 		if lasting[key] == nil {
@@ -104,7 +101,10 @@ func (p *Plan) group(name string, chosen []Combination, view func(unit, state in
 		}
 		lasting[key].InUseH += s.Share
 		inUse += s.Share
-		seen, whole = seen+s.Share*left, whole+s.Share*open
+		if view != nil {
+			seen += s.Share * p.view(members, chosen[i], view)
+			whole += s.Share * p.view(members, p.Open(), view)
+		}
 		if closed {
 			shaded += s.Share
 		}
@@ -118,4 +118,22 @@ func (p *Plan) group(name string, chosen []Combination, view func(unit, state in
 		g.ViewLost = 1 - seen/whole
 	}
 	return g
+}
+
+// view adds up the shares of view that the openings of those units have.
+func (p *Plan) view(members []int, c Combination, view func(unit, state int) float64) float64 {
+	left := map[string]float64{}
+	var order []string
+	for _, k := range members {
+		o := p.units[k].Opening
+		if _, ok := left[o]; !ok {
+			left[o], order = 1, append(order, o)
+		}
+		left[o] *= view(k, c.State(k))
+	}
+	sum := 0.0
+	for _, o := range order {
+		sum += left[o]
+	}
+	return sum
 }

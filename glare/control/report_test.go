@@ -52,3 +52,15 @@ func TestReportByGroup(t *testing.T) {
 		t.Errorf("nothing in use and no losses: got %+v, want NaN", r)
 	}
 }
+
+// TestViewOfTwoOpenings: two openings of a group count alike.
+func TestViewOfTwoOpenings(t *testing.T) {
+	left, right := roller, roller
+	left.Opening, right.Opening = "left", "right"
+	left.Law = Always{1}
+	p := plan(t, []Unit{left, right}, hourly(1, 0))
+	r := p.Report(Losses{View: func(_, state int) float64 { return 1 - 0.9*float64(state) }})
+	if got := r.Groups[0].ViewLost; math.Abs(got-0.45) > 1e-12 {
+		t.Errorf("one of two openings with a tenth of its view: got %g lost, want 0.45", got)
+	}
+}
