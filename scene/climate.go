@@ -15,11 +15,14 @@ import (
 	"squint/scene/weather"
 )
 
-// Moment is one record of the year with daylight: the sun in the model frame,
-// its illuminance on a plane facing it, and the sky. Illuminances are the means
-// over the record's whole hour, also where the sun is up for a part of it.
+// Moment is one record of the year with daylight, or a part of one: the sun in
+// the model frame, its illuminance on a plane facing it, and the sky.
+// Illuminances are the means over the whole hour or part, also where the sun is
+// up for less than that.
 type Moment struct {
-	Hour        int // index of the record, 0 is the first hour of 1 January
+	Hour        int     // index of the record, 0 is the first hour of 1 January
+	Step        int     // of the record's equal parts, 0 is the first
+	Share       float64 // of an hour, 1 for the whole record
 	Time        time.Time
 	Month       int // 0 is January
 	Sun         r3.Vec
@@ -27,7 +30,10 @@ type Moment struct {
 	Sky         *sky.Sky
 	DiffuseLx   float64 // of the whole sky on a level plane
 	GlobalLx    float64 // with the sun, as far as the horizon line lets it pass
-	Occupied    bool    // viewpoints are judged at this hour
+	// DNI and DHI are the irradiances, in W/m2, that these illuminances come
+	// from.
+	DNI, DHI float64
+	Occupied bool // viewpoints are judged at this hour
 }
 
 // Climate is a weather file made into moments.
@@ -37,10 +43,13 @@ type Climate struct {
 	Fit     weather.Fit
 	OffsetH float64 // used: the fit's, or the project's own
 	Moments []*Moment
+	// Parts is the number of moments that a record makes, 1 unless the project
+	// asks for finer steps.
+	Parts int
 	// SinAltitude of the sun, as it is seen through the air, by record, for the
 	// choice of daylight hours; negative at night.
 	SinAltitude []float64
-	// DiffuseLx by record, 0 at night.
+	// DiffuseLx by record, the mean of its parts, 0 at night.
 	DiffuseLx []float64
 	// Clamped counts skies that the all-weather model does not cover and that
 	// were moved into its range.
@@ -89,24 +98,41 @@ func ReadClimate(fsys fs.FS, p *project.Project, occupied []bool) (*Climate, err
 	north := p.Site.NorthDeg * math.Pi / 180
 	c.SinAltitude = make([]float64, len(y.Records))
 	c.DiffuseLx = make([]float64, len(y.Records))
-	for i := range y.Records {
-		m, sinAlt, clamped, err := c.moment(i)
+	c.Parts = 60 / p.Simulation.StepMin
+	steps, err := c.steps(c.Parts)
+	if err != nil {
+		return nil, err
+	}
+	whole := steps // records as they are, whose sun chooses the daylight hours
+	if c.Parts > 1 {
+		if whole, err = c.steps(1); err != nil {
+			return nil, err
+		}
+	}
+	for i, s := range whole {
+		sun, err := c.sunAt(&y.Records[i], s.Time)
 		if err != nil {
 			return nil, err
 		}
-		c.SinAltitude[i] = sinAlt
+		c.SinAltitude[i] = sun.Direction.Z
+	}
+	for _, s := range steps {
+		m, clamped, err := c.moment(s)
+		if err != nil {
+			return nil, err
+		}
 		if m == nil {
 			continue
 		}
 		if clamped {
 			c.Clamped++
 		}
-		c.DiffuseLx[i] = m.DiffuseLx
+		c.DiffuseLx[s.Hour] += m.DiffuseLx * m.Share
 		m.turn(north)
 		if hasHorizon && horizon.Hides(m.Sun) {
 			m.GlobalLx = m.DiffuseLx
 		}
-		m.Occupied = occupied != nil && occupied[i]
+		m.Occupied = occupied != nil && occupied[s.Hour]
 		c.Moments = append(c.Moments, m)
 	}
 	if len(c.Moments) == 0 {
@@ -136,58 +162,63 @@ func (c *Climate) sunAt(r *weather.Record, t time.Time) (sky.Sun, error) {
 	return s.Refracted(r.PressurePa/100, orZero(r.DryBulbC)), nil
 }
 
-// moment makes record i; nil at night. The sky is still in the world frame.
-//
-// Where the sun rises or sets within a record that is a mean over an hour, it
-// stands in the middle of its sunlit part, while the illuminances stay the
-// means over the whole hour: an hour counts as one hour in every metric, so
-// that this keeps the light of the year. While the sun is up they are
-// 1/share times as high, which nothing downstream needs.
-func (c *Climate) moment(i int) (m *Moment, sinAlt float64, clamped bool, err error) {
-	r := &c.Year.Records[i]
-	t, share := c.Year.SunlitMoment(i, c.OffsetH, func(t time.Time) float64 {
-		s, sunErr := c.sunAt(r, t)
+// steps are the parts of all records.
+func (c *Climate) steps(parts int) (steps []weather.Step, err error) {
+	steps = c.Year.Steps(parts, c.OffsetH, func(i int, t time.Time) float64 {
+		s, sunErr := c.sunAt(&c.Year.Records[i], t)
 		if sunErr != nil {
 			err = sunErr
 			return math.NaN()
 		}
 		return s.Direction.Z
 	})
-	if err != nil {
-		return nil, 0, false, err
-	}
+	return steps, err
+}
+
+// moment makes a record, or a part of one; nil at night. The sky is still in
+// the world frame.
+//
+// Where the sun rises or sets within a time that its light is the mean of, it
+// stands in the middle of the sunlit part, while the illuminances stay the
+// means over the whole: an hour counts as one hour in every metric, so that
+// this keeps the light of the year. While the sun is up they are 1/share times
+// as high, which nothing downstream needs.
+func (c *Climate) moment(step weather.Step) (m *Moment, clamped bool, err error) {
+	r, t := &c.Year.Records[step.Hour], step.Time
 	s, err := c.sunAt(r, t)
 	if err != nil {
-		return nil, 0, false, err
+		return nil, false, err
 	}
-	sinAlt = s.Direction.Z
-	if r.DHI <= 0 && r.DNI <= 0 {
-		return nil, sinAlt, false, nil
+	sinAlt := s.Direction.Z
+	if step.DHI <= 0 && step.DNI <= 0 {
+		return nil, false, nil
 	}
-	dni := r.DNI
-	if share <= 0 || sinAlt <= 0 {
+	dni := step.DNI
+	if step.SunlitShare <= 0 || sinAlt <= 0 {
 		// No direct light comes from a sun that is down; in files that are
 		// right to the minute there is none.
 		dni = 0
 	}
 	ill := photometry.Perez1990(photometry.Irradiance{
-		DHI: r.DHI, DNI: dni, ZenithRad: s.ZenithRad,
+		DHI: step.DHI, DNI: dni, ZenithRad: s.ZenithRad,
 		E0n:       photometry.ExtraterrestrialNormal(t.YearDay()),
 		DewPointC: r.DewPointC,
 		AirMass:   photometry.AirMassKastenYoung1989(s.ZenithRad),
 	})
 	direct := ill.DirectNormal * math.Max(0, sinAlt)
 	if ill.Diffuse < minSkyLx && direct < minSkyLx {
-		return nil, sinAlt, false, nil
+		return nil, false, nil
 	}
 	dome, clamp := sky.NewPerez(aboveHorizon(s.Direction), ill.Clearness, ill.Brightness, ill.Diffuse)
 	m = &Moment{
-		Hour: i, Time: t, Month: r.Month - 1,
+		Hour: step.Hour, Step: step.Part, Share: 1 / float64(c.Parts), Time: t, Month: r.Month - 1,
 		Sun: s.Direction, SunNormalLx: ill.DirectNormal, Sky: dome,
 		DiffuseLx: ill.Diffuse,
 		GlobalLx:  ill.Diffuse + direct,
+		DNI:       dni,
+		DHI:       step.DHI,
 	}
-	return m, sinAlt, clamp.Clamped, nil
+	return m, clamp.Clamped, nil
 }
 
 // aboveHorizon puts a sun that is down on the horizon, for the sky's glow.
@@ -245,5 +276,5 @@ func Overcast(month int) (*Moment, error) {
 	if err != nil {
 		return nil, err
 	}
-	return &Moment{Hour: -1, Month: month, Sun: r3.Vec{Z: 1}, Sky: dome, DiffuseLx: lx, GlobalLx: lx}, nil
+	return &Moment{Hour: -1, Share: 1, Month: month, Sun: r3.Vec{Z: 1}, Sky: dome, DiffuseLx: lx, GlobalLx: lx}, nil
 }

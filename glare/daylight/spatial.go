@@ -88,13 +88,19 @@ var DefaultBlindRule = BlindRule{ThresholdLx: 1000, SensorShare: 0.02}
 func (b BlindRule) Closed(direct [][]float32, n int) []bool {
 	closed := make([]bool, n)
 	for h := range closed {
-		struck := 0
-		for s := range direct {
-			if float64(direct[s][h]) >= b.ThresholdLx {
-				struck++
-			}
-		}
-		closed[h] = float64(struck) > b.SensorShare*float64(len(direct))
+		closed[h] = b.Closes(len(direct), func(sensor int) float32 { return direct[sensor][h] })
 	}
 	return closed
+}
+
+// Closes tells whether the blinds are closed at one moment; direct is the sun
+// through the group's own windows on each of the sensors, blinds open.
+func (b BlindRule) Closes(sensors int, direct func(sensor int) float32) bool {
+	struck := 0
+	for s := range sensors {
+		if float64(direct(s)) >= b.ThresholdLx {
+			struck++
+		}
+	}
+	return float64(struck) > b.SensorShare*float64(sensors)
 }

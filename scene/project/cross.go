@@ -10,25 +10,30 @@ import (
 // resolveReferences reports the names that no table defines.
 func (r *reader) resolveReferences(p *Project) {
 	types := map[string]string{}
-	var finishes, openings []string
-	for _, f := range p.Finishes {
-		if _, again := types[f.Name]; again || f.Name == "" {
-			continue
+	named := map[string][]string{} // by what they name
+	note := func(noun, name string) bool {
+		if name == "" || slices.Contains(named[noun], name) {
+			return false
 		}
-		finishes = append(finishes, f.Name)
-		types[f.Name] = f.Type
+		named[noun] = append(named[noun], name)
+		return true
+	}
+	for _, f := range p.Finishes {
+		if note("finish", f.Name) {
+			types[f.Name] = f.Type
+		}
 	}
 	for _, o := range p.Openings {
-		if o.Name == "" || slices.Contains(openings, o.Name) {
-			continue
-		}
-		openings = append(openings, o.Name)
+		note("opening", o.Name)
+	}
+	for _, v := range p.Viewpoints {
+		note("viewpoint", v.Name)
+	}
+	for _, m := range Movables(p) {
+		note(moving, m.Name)
 	}
 	for _, ref := range r.refs {
-		known := finishes
-		if ref.noun == "opening" {
-			known = openings
-		}
+		known := named[ref.noun]
 		if ref.at != nil && ref.at.bad {
 			continue
 		}

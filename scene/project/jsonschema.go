@@ -159,10 +159,16 @@ func valueSchema(k described) object {
 		return list(object{"type": "string", "pattern": day}, 0, 0)
 	case **MonthDay:
 		return object{"type": "string", "pattern": day}
-	case *[]string:
-		return list(object{"type": "string"}, 1, 0)
 	case *[]SlatState:
 		o, _ := closed(describe(slatStateKeys)) // without defaults nothing can fail
+		return list(o, 1, 0)
+	case *[]string:
+		return list(object{"type": "string", "minLength": 1}, 1, 0)
+	case *[]ControlPeriod:
+		o, err := closed(describe(periodKeys))
+		if err != nil {
+			return object{}
+		}
 		return list(o, 1, 0)
 	case *[]Assignment:
 		return object{"type": "object", "additionalProperties": object{"type": "string"}}

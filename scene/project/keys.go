@@ -108,6 +108,8 @@ func sections() []section {
 			func(l *Louvres) string { return l.Name }, checkLouvres),
 		many(anidolicTable, "an anidolic ceiling behind an opening", anidolicCeilingKeys, func(p *Project) *[]AnidolicCeiling { return &p.AnidolicCeilings },
 			func(c *AnidolicCeiling) string { return c.Name }, checkAnidolicCeiling),
+		many(controlTable, "a rule by which systems are operated", controlKeys, func(p *Project) *[]Control { return &p.Controls },
+			func(c *Control) string { return c.Name }, checkControl),
 		many("viewpoint", "an eye that is checked for glare", viewpointKeys, func(p *Project) *[]Viewpoint { return &p.Viewpoints },
 			func(v *Viewpoint) string { return v.Name }, checkViewpoint),
 		many("work_plane", "a plane that is checked for daylight", workPlaneKeys, func(p *Project) *[]WorkPlane { return &p.WorkPlanes },

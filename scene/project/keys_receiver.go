@@ -1,5 +1,7 @@
 package project
 
+import "slices"
+
 var viewpointKeys = []key[Viewpoint]{
 	{spec{name: "name", about: "shown in results", required: true, form: itemName}, func(v *Viewpoint) any { return &v.Name }},
 	{spec{name: "position_m", about: "of the eye", required: true, in: coordinate}, func(v *Viewpoint) any { return &v.PositionM }},
@@ -74,12 +76,19 @@ var simulationKeys = []key[Simulation]{
 	{spec{name: "texel_samples", about: "paths per piece, a multiple of batches", in: within{lo: 8, hi: 1 << 20}, def: "256", source: own}, func(s *Simulation) any { return &s.TexelSamples }},
 	{spec{name: "photons", about: "light particles shot from the sun at what mirrors, each hour, over all batches; 0 leaves mirrored sunlight out", in: within{lo: 0, hi: 1 << 24}, def: "4000", source: own}, func(s *Simulation) any { return &s.Photons }},
 	{spec{name: "memory_mib", about: "upper bound of the working memory", in: within{lo: 64, hi: 1 << 20}, def: "1024", source: own}, func(s *Simulation) any { return &s.MemoryMiB }},
+	{spec{name: "step_min", about: "length of the steps of the year, minutes: 60, or 30, 20, 15, 10 or 5 between the records of the weather file", in: within{lo: 5, hi: 60}, def: "60", source: "weather files are hourly"}, func(s *Simulation) any { return &s.StepMin }},
 	{spec{name: "soiling", about: "how dirty finishes with a loss_per_month are, the same all the year: not at all, as their mean over the year, or as just before cleaning", choices: soilings, def: `"clean"`, source: own}, func(s *Simulation) any { return &s.Soiling }},
 }
+
+// stepsMin are what Simulation.StepMin may be.
+var stepsMin = []int{60, 30, 20, 15, 10, 5}
 
 func checkSimulation(r *reader, n *node, s *Simulation) {
 	if n.good("fisheye_pixels") && s.FisheyePixels%2 != 0 {
 		r.reject(n, "simulation", "fisheye_pixels", "got %d, want an even number: pixels are joined two by two to see what their width does", s.FisheyePixels)
+	}
+	if n.good("step_min") && !slices.Contains(stepsMin, s.StepMin) {
+		r.reject(n, "simulation", "step_min", "got %d, want 60, 30, 20, 15, 10 or 5", s.StepMin)
 	}
 	if !n.good("batches") {
 		return

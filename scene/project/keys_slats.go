@@ -100,18 +100,5 @@ func checkSlatKeys(r *reader, n *node, name string, s *Slats) {
 
 // slatStates reads the list of states.
 func (r *reader) slatStates(n *node, key string, wrong func() string, dst *[]SlatState) string {
-	if n.list == nil {
-		return wrong()
-	}
-	for i, item := range n.list {
-		if item.table == nil {
-			return "item " + decimal(float64(i+1)) + ": got " + item.got() + ", want a table such as { name = \"open\", tilt_deg = 0 }"
-		}
-		var st SlatState
-		decode(r, item, key, slatStateKeys, &st)
-		r.unknown(item, key, names(slatStateKeys))
-		n.bad = n.bad || item.bad
-		*dst = append(*dst, st)
-	}
-	return ""
+	return tables(r, n, key, wrong, "{ name = \"open\", tilt_deg = 0 }", slatStateKeys, func(_ *node, st SlatState) { *dst = append(*dst, st) })
 }

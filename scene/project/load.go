@@ -99,6 +99,7 @@ func (r *reader) document(root *node, p *Project) {
 	r.resolveReferences(p)
 	r.checkSides(p)
 	r.checkSystems(p)
+	r.checkControls(p)
 }
 
 func (r *reader) section(s section, n *node, p *Project) {

@@ -91,7 +91,7 @@ func wantOffice(data string) *Project {
 		},
 		WorkPlanes: []WorkPlane{{Name: "desks", PolygonM: [][2]float64{{0, 0}, {3.6, 0}, {3.6, 8.2}, {0, 8.2}}, HeightM: .85, PerimeterM: .5, Line: 125}},
 		Criteria:   Criteria{Glare: "medium", Provision: "minimum", SourceRule: "luminance", SourceLuminance: 2000, SourceMultiple: 4},
-		Simulation: Simulation{Seed: 7, Batches: 16, FisheyePixels: 96, SamplesPerPixel: 32, SensorSamples: 4096, TexelM: .2, TexelSamples: 256, Photons: 8000, MemoryMiB: 1024, Soiling: "clean"},
+		Simulation: Simulation{Seed: 7, Batches: 16, FisheyePixels: 96, SamplesPerPixel: 32, SensorSamples: 4096, TexelM: .2, TexelSamples: 256, Photons: 8000, MemoryMiB: 1024, StepMin: 60, Soiling: "clean"},
 	}
 }
 

@@ -64,6 +64,8 @@ func TestProblems(t *testing.T) {
 		{"not a multiple", "", "[simulation]\nsamples_per_pixel = 20\n", ":25: simulation.samples_per_pixel: got samples_per_pixel 20 with 8 batches, want a multiple, such as 24"},
 		{"photons", "", "[simulation]\nphotons = 7\n", ":25: simulation.photons: got 7 with 8 batches, want at least one a batch, usually thousands, or 0 to leave mirrored sunlight out"},
 		{"photons below none", "", "[simulation]\nphotons = -1\n", ":25: simulation.photons: got -1, want a whole number, 0 to 16777216"},
+		{"step", "", "[simulation]\nstep_min = 25\n", ":25: simulation.step_min: got 25, want 60, 30, 20, 15, 10 or 5"},
+		{"step too fine", "", "[simulation]\nstep_min = 1\n", ":25: simulation.step_min: got 1, want a whole number, 5 to 60"},
 		{"criteria", "", "[criteria]\nglare = \"low\"\n", ":25: criteria.glare: got \"low\", want \"minimum\", \"medium\", \"high\" or \"none\""},
 		// paths
 		{"leaves the root", `"a.stl"`, `"../../a.stl"`, ":4: mesh.file: got \"../../a.stl\", which leaves the folder that the project may read; move the file into it, or start from a folder further up"},

@@ -19,6 +19,7 @@ type reader struct {
 	louvres  []*node
 	openings []*node
 	anidolic []*node // of Project.AnidolicCeilings, in step
+	controls []*node
 }
 
 // reference is a name that must exist.
@@ -214,6 +215,10 @@ func (r *reader) set(n *node, key string, s *spec, field any) string {
 		*f = &d
 	case *[]SlatState:
 		return r.slatStates(n, key, wrong, f)
+	case *[]string:
+		return r.nameList(n, key, s, wrong, f)
+	case *[]ControlPeriod:
+		return r.periods(n, key, wrong, f)
 	case *[]Assignment:
 		if n.table == nil {
 			return wrong()

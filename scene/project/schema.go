@@ -25,6 +25,7 @@ type Project struct {
 	Blinds           []Blind
 	Louvres          []Louvres
 	AnidolicCeilings []AnidolicCeiling
+	Controls         []Control
 	Viewpoints       []Viewpoint
 	WorkPlanes       []WorkPlane
 
@@ -270,5 +271,6 @@ type Simulation struct {
 	// at least Batches.
 	Photons   int
 	MemoryMiB int
+	StepMin   int    // length of a step, minutes: 60, 30, 20, 15, 10 or 5
 	Soiling   string // "clean", "average" or "neglected"; the same in every month
 }

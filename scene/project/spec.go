@@ -16,7 +16,7 @@ type spec struct {
 	quiet    bool   // the default changes nothing: it is no news
 	in       within // range of each number
 	choices  []string
-	refers   string   // "finish" or "opening": the value is the name of one
+	refers   string   // "finish", "opening" and so on: the value is the name of one
 	types    []string // of the finish referred to; nil for any
 	form     form
 }
@@ -113,6 +113,10 @@ func (s *spec) want(field any) string {
 		return `a day such as "03-29", month first`
 	case *[]SlatState:
 		return "a list of tables such as { name = \"open\", tilt_deg = 0 }"
+	case *[]string:
+		return "a list of names in quotes"
+	case *[]ControlPeriod:
+		return periodWords
 	case *[]Assignment:
 		return "a table of group or material names and finishes"
 	}

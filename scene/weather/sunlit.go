@@ -50,6 +50,12 @@ func (y *Year) SunlitMoment(i int, offsetH float64, cz CosZenith) (t time.Time, 
 		}
 		return t, 0
 	}
+	return y.sunlit(i, mid, 1, cz)
+}
+
+// sunlit is the middle of the sunlit part of a stretch of time of at most an
+// hour, and its share; mid, from the label of record i, and width in hours.
+func (y *Year) sunlit(i int, mid, width float64, cz CosZenith) (t time.Time, share float64) {
 	t = y.Moment(i, mid)
 	switch cosMid := cz(t); {
 	case cosMid > safelyUp:
@@ -58,8 +64,8 @@ func (y *Year) SunlitMoment(i int, offsetH float64, cz CosZenith) (t time.Time, 
 		return t, 0
 	}
 	cosAt := func(h float64) float64 { return cz(y.Moment(i, h)) }
-	parts := sunlitParts(cosAt, mid)
-	share, longest := 0.0, span{}
+	parts := sunlitParts(cosAt, mid, width)
+	longest := span{}
 	for _, p := range parts {
 		share += p.to - p.from
 		if p.to-p.from > longest.to-longest.from {
@@ -69,7 +75,7 @@ func (y *Year) SunlitMoment(i int, offsetH float64, cz CosZenith) (t time.Time, 
 	if share == 0 {
 		return t, 0
 	}
-	return y.Moment(i, (longest.from+longest.to)/2), math.Min(1, share)
+	return y.Moment(i, (longest.from+longest.to)/2), math.Min(1, share/width)
 }
 
 // intervalMiddleH returns the middle of the hour that offsetH points at, if it
@@ -82,10 +88,10 @@ func intervalMiddleH(offsetH float64) (float64, bool) {
 // span is a stretch of time in hours from the label.
 type span struct{ from, to float64 }
 
-// sunlitParts returns the stretches of the hour around mid in which cosAt > 0,
-// seen at its ends and its middle.
-func sunlitParts(cosAt func(float64) float64, mid float64) []span {
-	at := [3]float64{mid - 0.5, mid, mid + 0.5}
+// sunlitParts returns the stretches of the time of that width around mid in
+// which cosAt > 0, seen at its ends and its middle.
+func sunlitParts(cosAt func(float64) float64, mid, width float64) []span {
+	at := [3]float64{mid - width/2, mid, mid + width/2}
 	var up [3]bool
 	for k, h := range at {
 		up[k] = cosAt(h) > 0

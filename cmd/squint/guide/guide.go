@@ -24,6 +24,7 @@ var topics = []Topic{
 	{"finishes", "surfaces: from matte walls to glass, cloth and mirrors"},
 	{"systems", "light shelves and roller blinds"},
 	{"anidolic", "anidolic ceilings: collector, mirrored duct and outlet"},
+	{"control", "when what moves is opened and closed"},
 	{"weather", "weather files, and the moment each record stands for"},
 	{"criteria", "what is judged, which hours count, and the sources"},
 	{"results", "the results folder, confidence, exit statuses"},

@@ -23,8 +23,8 @@ const (
 	clerestorySill = 2100
 	clerestoryHead = 2900
 	// Of the anidolic ceiling the clerestory is lower, for the duct's mouth.
-	lowHead   = 2450
-	mouthSill = 2530
+	lowHead        = 2450
+	mouthSill      = 2530
 	glassY         = -150 // the plane of the glass, in the middle of the wall
 	frameHalf      = 30   // the frame's depth either side of the glass
 	frameIntoWall  = 10   // bodies overlap, so that no two faces share a plane

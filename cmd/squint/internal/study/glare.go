@@ -26,9 +26,9 @@ type ViewResult struct {
 	// Coarse is DGP with pixels twice as wide, and Bias what that says of the
 	// error that the pixels used leave, the same for all hours of one look.
 	Coarse, Bias []float32
-	InRange   []bool    // DGP within the range of its data
-	Cause     []int16   // index into Causes, -1 where DGP is low
-	Causes    []Cause
+	InRange      []bool  // DGP within the range of its data
+	Cause        []int16 // index into Causes, -1 where DGP is low
+	Causes       []Cause
 
 	// Refined is the number of further looks that hours near the limit got.
 	Refined int

@@ -102,6 +102,9 @@ type Input struct {
 // Prepare reads everything that a project names and checks it. Errors are the
 // user's to mend, all of them joined.
 func Prepare(fsys fs.FS, p *project.Project, workers int) (*Input, error) {
+	if err := operated(p); err != nil {
+		return nil, err
+	}
 	s, err := scene.Build(fsys, p)
 	if err != nil {
 		return nil, err
@@ -139,6 +142,17 @@ func Prepare(fsys fs.FS, p *project.Project, workers int) (*Input, error) {
 	notes = append(notes, soundness.Openings(in.World)...)
 	in.Notes = append(append(append(in.Notes, s.Notes...), c.Notes...), notes...)
 	return in, nil
+}
+
+// operated refuses what the file may say but a study does not do yet.
+func operated(p *project.Project) error {
+	if len(p.Controls) > 0 {
+		return fmt.Errorf("%s:%d: control: got %q, but a check does not operate systems yet; leave it out", p.File, p.Controls[0].Line, p.Controls[0].Name)
+	}
+	if m := p.Simulation.StepMin; m != 60 {
+		return fmt.Errorf("%s: simulation.step_min: got %d, but a check counts in whole hours yet; want 60", p.File, m)
+	}
+	return nil
 }
 
 // calendar translates the project's occupancy.

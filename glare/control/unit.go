@@ -1,0 +1,113 @@
+package control
+
+import (
+	"fmt"
+	"strings"
+
+	"squint/glare/daylight"
+	"squint/scene"
+)
+
+// Unit is one system that moves.
+type Unit struct {
+	Name    string
+	Opening string   // at which it hangs
+	Group   string   // of openings: units of one group are reported together
+	States  []string // from the most open to the most closed, at least one
+	Law     Law
+	// Glare closes the unit further than its law does; nil for never.
+	Glare *Glare
+}
+
+// index of a state; false for one that the unit does not have.
+func (u *Unit) index(state string) (int, bool) {
+	for i, s := range u.States {
+		if s == state {
+			return i, true
+		}
+	}
+	return 0, false
+}
+
+// Step is a part of the year.
+type Step struct {
+	Hour     int     // record of the weather file, 0 to 8759
+	Day      int     // of the clock, counted from 1 January, 0 to 364
+	Weekday  int     // 0 Monday to 6 Sunday
+	ClockH   float64 // clock time of its middle, 0 to 24
+	Share    float64 // of an hour, above 0 to 1
+	Occupied bool
+}
+
+// Steps are those of the moments, in their order, which must be that of time.
+func Steps(moments []*scene.Moment, c daylight.Calendar) []Step {
+	list := make([]Step, len(moments))
+	for i, m := range moments {
+		day := m.Hour / 24
+		clock := float64(m.Hour%24) + (float64(m.Step)+0.5)*m.Share + c.ClockShiftH(day)
+		if clock >= 24 {
+			clock, day = clock-24, (day+1)%365
+		}
+		list[i] = Step{Hour: m.Hour, Day: day, Weekday: ((c.FirstWeekday+day)%7 + 7) % 7, ClockH: clock, Share: m.Share, Occupied: m.Occupied}
+	}
+	return list
+}
+
+// Facts tell a unit's law about a step what is known without looking at any
+// combination of states. A law asks only for its own; the others may be nil.
+type Facts struct {
+	// FacadeWm2 is the irradiance, in W/m2, of the plane of the unit's opening
+	// outdoors: sun, sky and ground.
+	FacadeWm2 func(step int) float64
+	// DirectLx is the sun, in lx, on each sensor of the work planes through
+	// the openings of the unit's group alone, with everything that moves open.
+	DirectLx func(step int) []float32
+	// DeskWm2 is the sun, in W/m2, on the level plane at each place of work, as
+	// DirectLx is.
+	DeskWm2 func(step int) []float64
+	// Following is the name of the state that suits the sun, of systems that
+	// follow it.
+	Following func(step int) string
+}
+
+// Law chooses a state of the unit for every step of the year, in order of time,
+// as an index among Unit.States.
+type Law interface {
+	Choose(u *Unit, steps []Step, f Facts) ([]int, error)
+}
+
+// Combination is the state of every unit, by index, one byte a unit; it can be
+// compared and is a map's key.
+type Combination string
+
+// State of that unit.
+func (c Combination) State(unit int) int { return int(c[unit]) }
+
+func combination(states []int) Combination {
+	b := make([]byte, len(states))
+	for i, s := range states {
+		b[i] = byte(s)
+	}
+	return Combination(b)
+}
+
+// Label names the states of those units, "name: state" each; all of them for
+// no units.
+func (c Combination) Label(units []Unit, only ...int) string {
+	var words []string
+	add := func(i int) { words = append(words, units[i].Name+": "+units[i].States[c.State(i)]) }
+	for _, i := range only {
+		add(i)
+	}
+	if len(only) == 0 {
+		for i := range units {
+			add(i)
+		}
+	}
+	return strings.Join(words, ", ")
+}
+
+// lacking is the error of a law whose facts were not given.
+func lacking(u *Unit, fact string) error {
+	return fmt.Errorf("control: %q: its law asks for %s, got none", u.Name, fact)
+}
