@@ -136,6 +136,16 @@ func (c *Climate) sunAt(r *weather.Record, t time.Time) (sky.Sun, error) {
 	return s.Refracted(r.PressurePa/100, orZero(r.DryBulbC)), nil
 }
 
+// SunAt is the sun at any moment in the model frame, whose +y points to azimuth
+// northDeg, as it is seen through air of 1013.25 hPa and 10 degrees Celsius.
+func SunAt(site sky.Site, northDeg float64, t time.Time) (r3.Vec, error) {
+	s, err := sky.SunAt(site, t)
+	if err != nil {
+		return r3.Vec{}, err
+	}
+	return turn(s.Refracted(1013.25, 10).Direction, northDeg*math.Pi/180), nil
+}
+
 // moment makes record i; nil at night. The sky is still in the world frame.
 //
 // Where the sun rises or sets within a record that is a mean over an hour, it
