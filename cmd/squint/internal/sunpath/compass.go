@@ -64,7 +64,6 @@ func (d *drawing) directions() {
 		}
 		d.name(falsecolour.BoldFace, at, name, falsecolour.Ink)
 	}
-	d.altitudes()
 }
 
 // altitudes names the altitude lines, in the direction that faces away from

@@ -32,13 +32,13 @@ func (y *Year) Finding() string {
 				best = m
 			}
 		}
-		text = fmt.Sprintf("Direct sun on %s a year, %s in use; most in %s, %s minutes a day.",
-			hours(d.All), hours(d.InUse), monthNames[best], whole(d.Month(best)))
+		text = fmt.Sprintf("Direct sun on %s a year, %s of them in use; most in %s, %s minutes a day.",
+			hours(d.All), whole(d.InUse), monthNames[best], whole(d.Month(best)))
 	}
 	if m := &y.Mirrored; m.All > 0 {
-		text += fmt.Sprintf(" Mirrored sun on %s, %s in use", hours(m.All), hours(m.InUse))
+		text += fmt.Sprintf(" Mirrored sun on %s, %s of them in use", hours(m.All), whole(m.InUse))
 		if y.Both > 0 {
-			text += fmt.Sprintf("; with direct sun as well on %s", hours(y.Both))
+			text += fmt.Sprintf("; on %s with direct sun as well", hours(y.Both))
 		}
 		text += "."
 	}
@@ -52,13 +52,13 @@ func (y *Year) View() string {
 		return ""
 	}
 	if y.Direct.InView == y.Direct.All && y.Mirrored.InView == y.Mirrored.All {
-		return "All of it comes from before the line of sight."
+		return "All of it comes from ahead."
 	}
-	text := fmt.Sprintf("From before the line of sight: direct sun on %s", hours(y.Direct.InView))
+	text := fmt.Sprintf("From ahead: direct sun on %s", hours(y.Direct.InView))
 	if y.Mirrored.All > 0 {
 		text += fmt.Sprintf(", mirrored sun on %s", hours(y.Mirrored.InView))
 	}
-	return text + "; else from behind."
+	return text + "; the rest from behind."
 }
 
 // Weather says how much of it the weather file leaves; "" where nothing is

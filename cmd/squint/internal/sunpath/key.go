@@ -107,9 +107,9 @@ func (d *drawing) key(top float64) {
 func (d *drawing) minutesChart(top float64) {
 	first, last := d.chart()
 	small := falsecolour.SmallFace
-	title := "direct sun by the clock"
+	title := "direct sun by the clock; line: in use"
 	if d.year.Mirrored.All > 0 {
-		title += "; ring: mirrored sun"
+		title = "direct sun; ring: mirrored; line: in use"
 	}
 	d.Text(small, falsecolour.Place{X: keyRight, Y: top + 12}, title, falsecolour.Ink, false)
 	y0 := top + chartHead
@@ -142,14 +142,14 @@ func (d *drawing) minutesChart(top float64) {
 
 // tints draws what the tones of the small table mean.
 func (d *drawing) tints(y float64) {
-	const w, h = 24.0, 8.0
+	const w, h = 13.0, 8.0
 	small := falsecolour.SmallFace
 	x := keyRight
 	for _, minutes := range []int{0, 20, 40, 60} {
 		d.Box(falsecolour.Place{X: x, Y: y}, falsecolour.Place{X: x + w, Y: y + h}, tint(float64(minutes)/60))
 		text := strconv.Itoa(minutes)
 		d.Text(small, falsecolour.Place{X: x + w + 3, Y: y + h/2 + d.Capital(small)/2}, text, falsecolour.Quiet, false)
-		x += w + 5 + d.TextWidth(small, "60") + 6
+		x += w + 11 + d.TextWidth(small, text)
 	}
 	d.Text(small, falsecolour.Place{X: x, Y: y + h/2 + d.Capital(small)/2}, "min a day", falsecolour.Quiet, false)
 }

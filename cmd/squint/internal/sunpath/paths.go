@@ -99,7 +99,7 @@ func (d *drawing) nameChoices(a *arc) (out []falsecolour.Place) {
 				far := discRadius + 20
 				out = append(out, falsecolour.Place{X: d.centre.X + dx/r*far + math.Copysign(half*math.Abs(dx/r), dx), Y: d.centre.Y + dy/r*far})
 			} else {
-				inside = append(inside, falsecolour.Place{X: end.X, Y: end.Y + 9}, falsecolour.Place{X: end.X - half - 5, Y: end.Y + 3}, falsecolour.Place{X: end.X + half + 5, Y: end.Y + 3})
+				inside = append(inside, falsecolour.Place{X: end.X, Y: end.Y + 9}, falsecolour.Place{X: end.X - half - 5, Y: end.Y + 3}, falsecolour.Place{X: end.X + half + 5, Y: end.Y + 3}, falsecolour.Place{X: end.X, Y: end.Y + 22})
 			}
 		}
 	}

@@ -55,22 +55,27 @@ type drawing struct {
 
 // WritePNG draws the year as a PNG.
 func (y *Year) WritePNG(ctx context.Context, w io.Writer, s Sheet) error {
+	d, err := y.draw(ctx, s)
+	if err != nil {
+		return err
+	}
+	return png.Encode(w, d.Image)
+}
+
+func (y *Year) draw(ctx context.Context, s Sheet) (*drawing, error) {
 	if s.WidthPx == 0 {
 		s.WidthPx = defaultWidthPx
 	}
 	c, err := falsecolour.NewCanvas(s.WidthPx)
 	if err != nil {
-		return err
+		return nil, err
 	}
 	eye, err := newFisheye(y.Input.Point, s.Form, s.NorthRad)
 	if err != nil {
-		return err
+		return nil, err
 	}
 	d := &drawing{Sheet: &s, Canvas: c, year: y, eye: eye}
-	if err := d.compose(ctx); err != nil {
-		return err
-	}
-	return png.Encode(w, c.Image)
+	return d, d.compose(ctx)
 }
 
 // written is a line of text whose place is known before the sheet is opened.
@@ -133,6 +138,7 @@ func (d *drawing) compose(ctx context.Context) error {
 		return err
 	}
 	d.arcNames(arcs)
+	d.altitudes()
 	d.rose(falsecolour.Place{X: margin + 26, Y: d.centre.Y - discRadius + 14})
 	d.key(keyTop)
 	return nil
