@@ -42,8 +42,21 @@ const (
 	leastMirrored = 0.001
 )
 
-// sampleAt looks for a sun from the point; images is memory to use again.
-func sampleAt(p Point, w *trace.World, t time.Time, sun r3.Vec, images []trace.Image) (Sample, []trace.Image) {
+// watcher looks for suns from a point and keeps what they share. Not safe for
+// concurrent use.
+type watcher struct {
+	point   Point
+	mirrors map[*trace.World][]int32 // facets that may show the sun
+	images  []trace.Image            // memory to use again
+}
+
+func newWatcher(p Point) *watcher {
+	return &watcher{point: p, mirrors: map[*trace.World][]int32{}}
+}
+
+// sample looks for a sun in the scene as it stands.
+func (a *watcher) sample(w *trace.World, t time.Time, sun r3.Vec) Sample {
+	p := a.point
 	s := Sample{Time: t, Sun: sun}
 	free, cloth := 0, 0
 	for k := range discRays {
@@ -66,7 +79,13 @@ func sampleAt(p Point, w *trace.World, t time.Time, sun r3.Vec, images []trace.I
 		s.Tau /= float64(free)
 	}
 	s.Free, s.Cloth = float64(free)/discRays, float64(cloth)/discRays
-	images = w.Images(p.Position, sun, func(d r3.Vec) bool { return hidden(w.Scene, d) }, images[:0])
+	mirrors, known := a.mirrors[w]
+	if !known {
+		mirrors = w.MirrorsFrom(p.Position)
+		a.mirrors[w] = mirrors
+	}
+	images := w.Images(p.Position, sun, mirrors, func(d r3.Vec) bool { return hidden(w.Scene, d) }, a.images[:0])
+	a.images = images
 	best := -1
 	for i, im := range images {
 		if !p.sees(im.Dir) {
@@ -79,7 +98,7 @@ func sampleAt(p Point, w *trace.World, t time.Time, sun r3.Vec, images []trace.I
 	}
 	if s.Mirrored < leastMirrored {
 		s.Mirrored = 0
-		return s, images
+		return s
 	}
 	// Facets that meet each show a part of one image.
 	sum := r3.Vec{}
@@ -89,7 +108,7 @@ func sampleAt(p Point, w *trace.World, t time.Time, sun r3.Vec, images []trace.I
 		}
 	}
 	s.Image, s.Mirror = r3.Unit(sum), w.Scene.Parts[images[best].Part].Name
-	return s, images
+	return s
 }
 
 // light is what an image adds, in multiples of the unhidden sun.

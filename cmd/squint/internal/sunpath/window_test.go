@@ -139,7 +139,7 @@ func TestVeils(t *testing.T) {
 		}
 		in := m.input(r3.Vec{Y: 2})
 		in.Point.Ahead, in.Point.Opening = c.ahead, c.opening
-		s, _ := sampleAt(in.Point, in.World(sun), y2022, sun, nil)
+		s := newWatcher(in.Point).sample(in.World(sun), y2022, sun)
 		if s.Free != c.free || s.Cloth != c.cloth || s.Tau < c.least || s.Tau > c.most {
 			t.Errorf("%s: got free %g, cloth %g, tau %g, want %g, %g, %g to %g", c.name, s.Free, s.Cloth, s.Tau, c.free, c.cloth, c.least, c.most)
 		}

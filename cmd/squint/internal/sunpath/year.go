@@ -89,7 +89,7 @@ func Compute(ctx context.Context, in *Input) (*Year, error) {
 // day samples one day (0 is 1 January).
 func (in *Input) day(day, everyMin int) ([]Sample, error) {
 	var out []Sample
-	var images []trace.Image
+	watch := newWatcher(in.Point)
 	for minute := 0; minute < 24*60; minute += everyMin {
 		t := time.Date(in.Year, 1, 1+day, 0, minute, everyMin*30, 0, in.Zone)
 		sun, err := in.Sun(t)
@@ -99,9 +99,7 @@ func (in *Input) day(day, everyMin int) ([]Sample, error) {
 		if sun.Z <= -math.Sin(photometry.SunDiameterRad/2) {
 			continue
 		}
-		var s Sample
-		s, images = sampleAt(in.Point, in.World(sun), t, sun, images)
-		out = append(out, s)
+		out = append(out, watch.sample(in.World(sun), t, sun))
 	}
 	return out, nil
 }
