@@ -162,6 +162,16 @@ func (c *Climate) sunAt(r *weather.Record, t time.Time) (sky.Sun, error) {
 	return s.Refracted(r.PressurePa/100, orZero(r.DryBulbC)), nil
 }
 
+// SunAt is the sun at any moment in the model frame, whose +y points to azimuth
+// northDeg, as it is seen through air of 1013.25 hPa and 10 degrees Celsius.
+func SunAt(site sky.Site, northDeg float64, t time.Time) (r3.Vec, error) {
+	s, err := sky.SunAt(site, t)
+	if err != nil {
+		return r3.Vec{}, err
+	}
+	return turn(s.Refracted(1013.25, 10).Direction, northDeg*math.Pi/180), nil
+}
+
 // steps are the parts of all records.
 func (c *Climate) steps(parts int) (steps []weather.Step, err error) {
 	steps = c.Year.Steps(parts, c.OffsetH, func(i int, t time.Time) float64 {

@@ -45,6 +45,7 @@ var order = []string{
 	"glare/daylight",
 	"glare/control",
 	"glare/verdict",
+	"cmd/squint/internal/sunpath",
 	"cmd/squint/internal/study",
 	"cmd/squint/internal/explore",
 	"cmd/squint/internal/verify",

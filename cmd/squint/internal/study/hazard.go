@@ -9,7 +9,6 @@ import (
 	"gonum.org/v1/gonum/spatial/r3"
 
 	"squint/scene"
-	"squint/scene/sky"
 	"squint/trace"
 )
 
@@ -267,12 +266,9 @@ func foremost(all []start, n int) []start {
 // sunAt is the sun at a moment near m, in the model's frame, lifted as by the
 // usual air.
 func (s *hazardSearch) sunAt(t time.Time) (r3.Vec, bool) {
-	sun, err := sky.SunAt(s.in.Climate.Site, t)
+	d, err := scene.SunAt(s.in.Climate.Site, s.in.Project.Site.NorthDeg, t)
 	if err != nil {
 		return r3.Vec{}, false
 	}
-	d := sun.Refracted(1013.25, 10).Direction
-	sin, cos := math.Sincos(s.in.Project.Site.NorthDeg * math.Pi / 180)
-	d = r3.Vec{X: d.X*cos - d.Y*sin, Y: d.X*sin + d.Y*cos, Z: d.Z}
 	return d, d.Z >= math.Sin(hazardAltitudeRad) && !s.hidden(d)
 }
