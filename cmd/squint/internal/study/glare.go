@@ -204,18 +204,23 @@ func (g *standingSink) take(worker int, f *annual.Frame) {
 	full := glare.Evaluate(g.field, f.Mean, w.discs, g.opt, &w.scratch)
 	if dgp >= causeFrom {
 		c := g.causeOf(e, f, &full)
-		id, ok := g.cause[f.Eye][c]
-		if !ok {
-			id = int16(len(g.cause[f.Eye]))
-			g.cause[f.Eye][c] = id
-			v.Causes = append(v.Causes, c)
-		}
-		v.Cause[h] = id
+		v.Cause[h] = g.causeID(f.Eye, c)
 	}
 	if worst {
 		v.Worst = &Worst{Moment: f.Moment, DGP: dgp, Ev: ev, StdErr: se, Result: full,
 			Lum: append([]float32(nil), f.Mean...), Discs: append([]annual.Disc(nil), f.Discs...), InsideOf: e}
 	}
+}
+
+// causeID is the index of a cause among those of a view.
+func (g *glareSink) causeID(view int, c Cause) int16 {
+	id, ok := g.cause[view][c]
+	if !ok {
+		id = int16(len(g.cause[view]))
+		g.cause[view][c] = id
+		g.views[view].Causes = append(g.views[view].Causes, c)
+	}
+	return id
 }
 
 // jackknife is the standard error of the pooled DGP.

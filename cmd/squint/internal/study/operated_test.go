@@ -17,8 +17,4 @@ func TestOperated(t *testing.T) {
 	if err := operated(p); err == nil || !strings.Contains(err.Error(), "p.toml: simulation.step_min: got 15") {
 		t.Errorf("quarters of an hour: got %v", err)
 	}
-	p.Controls = []project.Control{{Name: "blinds", Line: 7}}
-	if err := operated(p); err == nil || !strings.Contains(err.Error(), `p.toml:7: control: got "blinds"`) {
-		t.Errorf("a control: got %v", err)
-	}
 }

@@ -8,6 +8,7 @@ import (
 	"math"
 	"time"
 
+	"squint/glare/control"
 	"squint/glare/daylight"
 	"squint/glare/verdict"
 	"squint/scene"
@@ -50,6 +51,9 @@ type Result struct {
 
 	// Positions says how long what moves stands in each of its positions.
 	Positions []string
+	// Operation is the year of each group of openings whose systems move; nil
+	// where nothing does.
+	Operation *control.Report
 	// Standings are the labels of the combinations of positions, and Standing
 	// the index among them by record; -1 without daylight.
 	Standings []string
@@ -93,6 +97,7 @@ type Input struct {
 	// Standings are the ways in which the movable systems stand; each has its
 	// own moments. Scene and World are those of the first.
 	Standings []Standing
+	operation *operation // nil where everything stands as the project says
 	Notes     []string
 
 	Calendar                  daylight.Calendar
@@ -132,8 +137,14 @@ func Prepare(fsys fs.FS, p *project.Project, workers int) (*Input, error) {
 		m.Occupied = used[m.Hour]
 	}
 	in.World = trace.Accelerate(s, workers)
-	if in.Standings, err = standings(fsys, p, s, in.World, c.Moments, workers); err != nil {
+	in.Standings = []Standing{{Scene: s, World: in.World, Moments: c.Moments}}
+	if in.operation, err = newOperation(in, fsys, workers); err != nil {
 		return nil, err
+	}
+	if in.operation != nil {
+		if in.Standings, err = in.operation.standings(); err != nil {
+			return nil, err
+		}
 	}
 	errs, notes := soundness.Receivers(in.World)
 	if len(errs) > 0 {
@@ -146,11 +157,8 @@ func Prepare(fsys fs.FS, p *project.Project, workers int) (*Input, error) {
 
 // operated refuses what the file may say but a study does not do yet.
 func operated(p *project.Project) error {
-	if len(p.Controls) > 0 {
-		return fmt.Errorf("%s:%d: control: got %q, but a check does not operate systems yet; leave it out", p.File, p.Controls[0].Line, p.Controls[0].Name)
-	}
-	if m := p.Simulation.StepMin; m != 60 {
-		return fmt.Errorf("%s: simulation.step_min: got %d, but a check counts in whole hours yet; want 60", p.File, m)
+	if n := p.Simulation.StepMin; n != 60 {
+		return fmt.Errorf("%s: simulation.step_min: got %d, which a check does not take yet; want 60, or leave it out", p.File, n)
 	}
 	return nil
 }
@@ -190,13 +198,18 @@ func Run(ctx context.Context, in *Input, opt Options) (*Result, error) {
 	r := &Result{
 		Project: in.Project, Scene: in.Scene, Climate: in.Climate,
 		Calendar: in.Calendar, Occupied: in.Occupied, Clock: in.Clock, Daylight: in.Daylight,
-		Notes: in.Notes, Positions: hoursByStanding(in.Standings),
+		Notes: in.Notes,
 	}
-	r.Standings, r.Standing = standingByHour(in.Standings)
-	y, err := computeYear(ctx, in, opt, r)
+	y, err := operatedYear(ctx, in, opt, r)
 	if err != nil {
 		return nil, err
 	}
+	if in.operation != nil {
+		report := in.operation.report(y)
+		r.Operation = &report
+		r.Positions = positions(r.Operation)
+	}
+	r.Standings, r.Standing = standingByHour(in.Standings)
 	if err := r.refine(ctx, in, opt, y); err != nil {
 		return nil, err
 	}

@@ -4,6 +4,7 @@ import (
 	"context"
 	"fmt"
 	"math"
+	"slices"
 	"sync"
 	"sync/atomic"
 
@@ -45,18 +46,25 @@ type year struct {
 	factorE []float64        // its standard error
 }
 
+// newYear holds zeros, and NaN where views are not evaluated.
+func newYear(in *Input, opt Options) *year {
+	return &year{glare: newGlareSink(in, max(opt.Workers, 1)), light: annual.NewDaylight(in.Scene.Sensors(), len(in.Climate.Moments))}
+}
+
 // computeYear runs every standing of the movable systems over its own moments
 // and puts the results together.
 func computeYear(ctx context.Context, in *Input, opt Options, r *Result) (*year, error) {
-	y := &year{glare: newGlareSink(in, max(opt.Workers, 1))}
-	total := len(in.Climate.Moments)
-	y.light = annual.NewDaylight(in.Scene.Sensors(), total)
-	place := make(map[*scene.Moment]int, total)
+	y := newYear(in, opt)
+	total := 0
+	for _, st := range in.Standings {
+		total += len(st.Moments)
+	}
+	place := make(map[*scene.Moment]int, len(in.Climate.Moments))
 	for i, m := range in.Climate.Moments {
 		place[m] = i
 	}
 	if in.Project.Simulation.Photons == 0 {
-		r.Notes = append(r.Notes, "photons = 0: the sun that mirrors, glossy surfaces and panes throw on other surfaces is left out.")
+		r.Notes = once(r.Notes, "photons = 0: the sun that mirrors, glossy surfaces and panes throw on other surfaces is left out.")
 	}
 	before := 0
 	for k := range in.Standings {
@@ -122,7 +130,7 @@ func newEngine(ctx context.Context, in *Input, st *Standing, opt Options, r *Res
 		t = surface.NewTransport(st.World, sky.NewPatches(patchFactor), cfg)
 	}
 	if cfg.Coarsen > 1 {
-		r.Warnings = append(r.Warnings, fmt.Sprintf("surfaces are cut %.1f times more coarsely than asked, to fit memory_mib = %d.", cfg.Coarsen, sim.MemoryMiB))
+		r.Warnings = once(r.Warnings, fmt.Sprintf("surfaces are cut %.1f times more coarsely than asked, to fit memory_mib = %d.", cfg.Coarsen, sim.MemoryMiB))
 	}
 	opt.Workers = max(1, min(opt.Workers, int(float64(sim.MemoryMiB)/memoryMiB(t, sim.Batches))))
 	eyes, err := traceEyes(ctx, in, st, t, opt)
@@ -256,4 +264,12 @@ func each(ctx context.Context, opt Options, stage Stage, n int, work func(i int)
 		}
 	}
 	return nil
+}
+
+// once adds a sentence that is not there yet.
+func once(list []string, text string) []string {
+	if slices.Contains(list, text) {
+		return list
+	}
+	return append(list, text)
 }

@@ -1,0 +1,244 @@
+package study
+
+import (
+	"context"
+	"slices"
+
+	"squint/glare/control"
+	"squint/scene"
+)
+
+// operatedYear is computeYear where systems close for glare: whether they do
+// shows only when the combinations before are computed. in.Standings becomes
+// what was chosen in the end.
+func operatedYear(ctx context.Context, in *Input, opt Options, r *Result) (*year, error) {
+	o := in.operation
+	if o == nil || !o.glare {
+		return computeYear(ctx, in, opt, r)
+	}
+	looks := map[control.Combination]*look{}
+	for needs := o.plan.Needs(); len(needs) > 0; needs = o.plan.Needs() {
+		asked := map[control.Combination][]int{}
+		var order []control.Combination
+		for _, n := range needs {
+			if asked[n.States] == nil {
+				order = append(order, n.States)
+			}
+			asked[n.States] = append(asked[n.States], n.Step)
+		}
+		// Steps that are settled in the same combination, such as those out of
+		// use, come along: tracing it is dear, a step is cheap.
+		for i, c := range o.plan.Chosen() {
+			if asked[c] != nil && !slices.Contains(asked[c], i) {
+				asked[c] = append(asked[c], i)
+			}
+		}
+		for _, c := range order {
+			if err := o.look(ctx, looks, c, asked[c], opt, r); err != nil {
+				return nil, err
+			}
+		}
+		for _, n := range needs {
+			if err := o.plan.Learn(n, o.observed(looks[n.States].year, n.Step)); err != nil {
+				return nil, err
+			}
+		}
+	}
+	return o.settled(ctx, looks, opt, r)
+}
+
+// look is what was computed of one combination.
+type look struct {
+	year *year
+	has  []bool // by step
+}
+
+// inUse is whether all steps in use are known.
+func (l *look) inUse(steps []control.Step) bool {
+	for i, s := range steps {
+		if s.Occupied && !l.has[i] {
+			return false
+		}
+	}
+	return true
+}
+
+// look computes a combination at the steps that it does not know yet.
+func (o *operation) look(ctx context.Context, looks map[control.Combination]*look, c control.Combination, steps []int, opt Options, r *Result) error {
+	l := looks[c]
+	if l == nil {
+		l = &look{has: make([]bool, len(o.steps))}
+		looks[c] = l
+	}
+	slices.Sort(steps)
+	var moments []*scene.Moment
+	for _, i := range steps {
+		if !l.has[i] {
+			l.has[i] = true
+			moments = append(moments, o.in.Climate.Moments[i])
+		}
+	}
+	if len(moments) == 0 {
+		return nil
+	}
+	st, err := o.stand(c)
+	if err != nil {
+		return err
+	}
+	st.Moments = moments
+	sub := *o.in
+	sub.Standings = []Standing{st}
+	y, err := computeYear(ctx, &sub, opt, r)
+	if err != nil {
+		return err
+	}
+	if l.year == nil {
+		l.year = y
+		return nil
+	}
+	l.year.adopt(y, o.in, moments)
+	return nil
+}
+
+// observed is what the viewpoints saw at a step, and through which groups of
+// openings what glared most.
+func (o *operation) observed(y *year, step int) control.Observed {
+	h := o.in.Climate.Moments[step].Hour
+	seen := control.Observed{DGP: make([]float64, len(y.glare.views)), Through: make([][]string, len(y.glare.views))}
+	for i := range y.glare.views {
+		v := &y.glare.views[i]
+		seen.DGP[i] = float64(v.DGP[h])
+		if v.Cause[h] < 0 {
+			continue
+		}
+		if k, ok := openingOf(o.in.Scene, v.Causes[v.Cause[h]].Via); ok {
+			seen.Through[i] = []string{o.in.Scene.Openings[k].Group}
+		}
+	}
+	return seen
+}
+
+// settled puts the year together from the combinations chosen, and computes
+// what of them was not looked at.
+func (o *operation) settled(ctx context.Context, looks map[control.Combination]*look, opt Options, r *Result) (*year, error) {
+	var err error
+	if o.in.Standings, err = o.standings(); err != nil {
+		return nil, err
+	}
+	chosen := o.plan.Chosen()
+	steps := map[control.Combination][]int{}
+	var order []control.Combination
+	for i, c := range chosen {
+		if steps[c] == nil {
+			order = append(order, c)
+		}
+		steps[c] = append(steps[c], i)
+	}
+	var whole *year
+	for _, c := range order {
+		if err := o.look(ctx, looks, c, steps[c], opt, r); err != nil {
+			return nil, err
+		}
+		var moments []*scene.Moment
+		for _, i := range steps[c] {
+			moments = append(moments, o.in.Climate.Moments[i])
+		}
+		if whole == nil {
+			whole = newYear(o.in, opt)
+			whole.factors, whole.factorE = looks[c].year.factors, looks[c].year.factorE
+		}
+		whole.adopt(looks[c].year, o.in, moments)
+	}
+	// Daylight factors are those with everything open, where that was computed.
+	if l := looks[o.plan.Open()]; l != nil {
+		whole.factors, whole.factorE = l.year.factors, l.year.factorE
+		o.openYear = l
+	}
+	return whole, o.worstHours(ctx, whole, looks, chosen, opt)
+}
+
+// worstHours finds the picture of each view's worst hour as it was operated.
+func (o *operation) worstHours(ctx context.Context, y *year, looks map[control.Combination]*look, chosen []control.Combination, opt Options) error {
+	type missing struct {
+		views []int
+		hours map[int]bool
+	}
+	again := map[control.Combination]*missing{}
+	var order []control.Combination
+	for i := range y.glare.views {
+		v := &y.glare.views[i]
+		worst := -1
+		for k, m := range o.in.Climate.Moments {
+			if m.Occupied && (worst < 0 || v.DGP[m.Hour] > v.DGP[o.in.Climate.Moments[worst].Hour]) {
+				worst = k
+			}
+		}
+		if worst < 0 {
+			continue
+		}
+		c, h := chosen[worst], o.in.Climate.Moments[worst].Hour
+		if w := looks[c].year.glare.views[i].Worst; w != nil && w.Moment.Hour == h {
+			v.Worst = w
+			continue
+		}
+		if again[c] == nil {
+			again[c] = &missing{hours: map[int]bool{}}
+			order = append(order, c)
+		}
+		again[c].views = append(again[c].views, i)
+		again[c].hours[h] = true
+	}
+	for _, c := range order {
+		st, err := o.stand(c)
+		if err != nil {
+			return err
+		}
+		st.Moments = o.in.Climate.Moments
+		sub := *o.in
+		sub.Standings = []Standing{st}
+		few := subset(&sub, again[c].views, again[c].hours, 1, 0)
+		few.Project = o.in.Project // the same streams: the same picture as that of the series
+		y2, err := computeYear(ctx, few, opt, &Result{})
+		if err != nil {
+			return err
+		}
+		for k, i := range again[c].views {
+			v, w := &y.glare.views[i], y2.glare.views[k].Worst
+			if w == nil {
+				continue
+			}
+			v.Worst = w
+			h := w.Moment.Hour
+			w.DGP, w.StdErr, w.Ev = float64(v.DGP[h]), float64(v.StdErr[h]), float64(v.Ev[h])
+		}
+	}
+	return nil
+}
+
+// adopt takes over the values of some moments.
+func (y *year) adopt(from *year, in *Input, moments []*scene.Moment) {
+	at := make(map[*scene.Moment]int, len(in.Climate.Moments))
+	for i, m := range in.Climate.Moments {
+		at[m] = i
+	}
+	for _, m := range moments {
+		i := at[m]
+		for s := range y.light.E {
+			y.light.E[s][i], y.light.StdErr[s][i], y.light.Direct[s][i] = from.light.E[s][i], from.light.StdErr[s][i], from.light.Direct[s][i]
+		}
+	}
+	for i := range y.glare.views {
+		a, b := &y.glare.views[i], &from.glare.views[i]
+		if a.Worst == nil || b.Worst != nil && b.Worst.DGP > a.Worst.DGP {
+			a.Worst = b.Worst
+		}
+		for _, m := range moments {
+			h := m.Hour
+			a.DGP[h], a.StdErr[h], a.Ev[h], a.InRange[h] = b.DGP[h], b.StdErr[h], b.Ev[h], b.InRange[h]
+			a.Coarse[h], a.Bias[h], a.Cause[h] = b.Coarse[h], b.Bias[h], -1
+			if b.Cause[h] >= 0 {
+				a.Cause[h] = y.glare.causeID(i, b.Causes[b.Cause[h]])
+			}
+		}
+	}
+}

@@ -1,0 +1,108 @@
+package study
+
+import (
+	"fmt"
+	"math"
+	"testing"
+	"testing/fstest"
+)
+
+// operatedRoom is the tiny room with a roller, in use all day on all days, its
+// eyes to the window.
+func operatedRoom(more string) fstest.MapFS {
+	text := fmt.Sprintf(tinyProject, 0.8)
+	text = replaceOnce(text, "azimuth_deg = 90", "azimuth_deg = 180")
+	text = replaceOnce(text, `days = ["wed"]`, `days = ["mon", "tue", "wed", "thu", "fri", "sat", "sun"]`)
+	text = replaceOnce(text, "from = \"11:00\"\nto = \"12:00\"", "from = \"09:00\"\nto = \"17:00\"")
+	return fstest.MapFS{"project.toml": {Data: []byte(text + more)}, "room.obj": {Data: []byte(tinyRoom())}}
+}
+
+const operatedRoller = `
+[[roller]]
+name = "roller"
+opening = "window"
+openness = 0.03
+diffuse_transmittance = 0.05
+reflectance = 0.5
+drawn = false
+`
+
+// TestOperatedYear: a roller that closes for glare gives, hour by hour, either
+// the value of the room with it raised, where that is below the limit, or the
+// value with it drawn; light on the desks goes with it. Both are computed as
+// projects of their own.
+func TestOperatedYear(t *testing.T) {
+	run := func(more string) *Result {
+		fsys := operatedRoom(more)
+		fsys["site.epw"] = &fstest.MapFile{Data: tinyYear(t)}
+		in, err := prepareFile(fsys, "project.toml", "", 2)
+		if err != nil {
+			t.Fatal(err)
+		}
+		in.Project.Criteria.Glare = "none" // no closer looks
+		r, err := Run(t.Context(), in, Options{Workers: 2})
+		if err != nil {
+			t.Fatal(err)
+		}
+		return r
+	}
+	const limit = 0.4
+	open := run(operatedRoller)
+	drawn := run(replaceOnce(operatedRoller, "drawn = false", "drawn = true"))
+	led := run(operatedRoller + "[[control]]\nname = \"by glare\"\nsystems = [\"roller\"]\nrule = \"glare\"\ndgp_limit = 0.4\nhysteresis = 0\n")
+	closed, hours := 0, 0
+	var light, all float64
+	worst := float32(0)
+	for _, m := range open.Climate.Moments {
+		h := m.Hour
+		want, state := open, "roller: raised"
+		if m.Occupied && open.Views[0].DGP[h] > limit {
+			want, state = drawn, "roller: drawn"
+			closed++
+		}
+		if m.Occupied {
+			hours++
+			for k := range want.Planes[0].E {
+				light += float64(want.Planes[0].E[k][h])
+				all += float64(open.Planes[0].E[k][h])
+			}
+			worst = max(worst, want.Views[0].DGP[h])
+			if got := led.Views[0].DGP[h]; got != want.Views[0].DGP[h] {
+				t.Errorf("hour %d, %s: DGP %g, want %g", h, state, got, want.Views[0].DGP[h])
+			}
+		}
+		if got := led.Planes[0].E[0][h]; m.Occupied && got != want.Planes[0].E[0][h] {
+			t.Errorf("hour %d, %s: %g lx, want %g", h, state, got, want.Planes[0].E[0][h])
+		}
+		if got := led.Standings[led.Standing[h]]; m.Occupied && got != state {
+			t.Errorf("hour %d: stands %q, want %q", h, got, state)
+		}
+	}
+	if closed == 0 || closed == hours {
+		t.Fatalf("closed in %d of %d hours: the test sees nothing", closed, hours)
+	}
+	// Hours of use in the dark count as shaded by no one.
+	g := led.Operation.Groups[0]
+	if len(led.Operation.Groups) != 1 || len(g.States) != 2 || g.States[1].InUseH != float64(closed) {
+		t.Errorf("group: got %+v, want %d hours drawn", g, closed)
+	}
+	if want := float64(closed) / float64(hours) * (1 - 0.03); math.Abs(g.ViewLost-want) > 1e-9 {
+		t.Errorf("view lost: got %g, want %g", g.ViewLost, want)
+	}
+	if want := 1 - light/all; math.Abs(led.Operation.LightLost-want) > 1e-6 || want <= 0 {
+		t.Errorf("light lost: got %g, want %g", led.Operation.LightLost, want)
+	}
+	if w := led.Views[0].Worst; w == nil || float32(w.DGP) != worst || led.Views[0].DGP[w.Moment.Hour] != worst {
+		t.Errorf("worst hour: got %+v, want DGP %g", w, worst)
+	}
+}
+
+func replaceOnce(text, from, to string) string {
+	p := len(text) - len(from)
+	for i := 0; i <= p; i++ {
+		if text[i:i+len(from)] == from {
+			return text[:i] + to + text[i+len(from):]
+		}
+	}
+	panic("test text lacks " + from)
+}
