@@ -28,12 +28,12 @@ const portalMinDistance = 0.4
 // normal n looks out of, weighted by their estimated form factor.
 func (w *World) PortalsSeen(p, n r3.Vec) Portals {
 	var ps Portals
-	w.portalsSeen(p, n, &ps)
+	w.SeePortals(p, n, &ps)
 	return ps
 }
 
-// portalsSeen is PortalsSeen into a value that is used again.
-func (w *World) portalsSeen(p, n r3.Vec, ps *Portals) {
+// SeePortals is PortalsSeen into a value that is used again.
+func (w *World) SeePortals(p, n r3.Vec, ps *Portals) {
 	ps.rects, ps.share, ps.total = ps.rects[:0], ps.share[:0], 0
 	for _, o := range w.Scene.Openings {
 		r := o.Rect

@@ -1,0 +1,145 @@
+package picture
+
+import (
+	"math"
+
+	"gonum.org/v1/gonum/spatial/r3"
+
+	"squint/materials"
+	"squint/materials/sampling"
+	"squint/scene"
+	"squint/trace"
+	"squint/trace/surface"
+)
+
+// deepest is the number of gathered rays in a row that end nearer than a texel's
+// edge before the solution is read all the same.
+const deepest = 3
+
+// nearest bounds the distance that a gathered ray counts with in the mean that
+// the filter uses, m.
+const nearest = 0.02
+
+// walker holds one goroutine's scratch.
+type walker struct {
+	*Light
+	batch   int
+	rays    *surface.SunRays
+	photons *photonMap
+	s       sampling.Stream
+	// found is by depth: 0 the line of sight, then gathered rays.
+	found [deepest + 2]trace.Found
+	// shared are the openings seen from the pixel's reference, own those seen
+	// from another surface, none is empty.
+	shared, own, none trace.Portals
+}
+
+func (w *walker) hidden(dir r3.Vec) bool { return w.stage.t.Hidden(dir) }
+
+// outside is the luminance seen where a path leaves the scene.
+func (w *walker) outside(dir r3.Vec) float64 {
+	if w.hidden(dir) {
+		return w.below
+	}
+	return w.moment.Sky.Luminance(dir)
+}
+
+// factor is what a side's light is multiplied by: its reflectance or
+// transmittance m, on the ground that of the month.
+func (w *walker) factor(h *trace.Hit, m float64) float64 {
+	if w.world.Scene.Parts[h.Part].Kind == scene.GroundPlane {
+		return w.ground
+	}
+	return m
+}
+
+// sunOn samples the direct sun at p on the plane with unit normal n, lx.
+func (w *walker) sunOn(p, n r3.Vec) float64 {
+	if w.rays.NormalLx <= 0 {
+		return 0
+	}
+	dir, ok := w.rays.Draw(w.s.Uint64())
+	if !ok {
+		return 0
+	}
+	cos := r3.Dot(dir, n)
+	if cos <= 0 {
+		return 0
+	}
+	return w.rays.NormalLx * cos * w.world.Transmittance(w.world.Offset(p, n), dir, math.Inf(1))
+}
+
+// shine is the luminance that a glossy surface shows of the sun.
+func (w *walker) shine(x *trace.Shine) float64 {
+	if w.rays.NormalLx <= 0 {
+		return 0
+	}
+	dir, ok := w.rays.Draw(w.s.Uint64())
+	if !ok {
+		return 0
+	}
+	facing := x.Hit.Facing()
+	f := trace.Shining(x.Hit.BSDF.Gloss(x.Hit.Side), facing, x.Wo, dir)
+	if f <= 0 {
+		return 0
+	}
+	return w.rays.NormalLx * f * w.world.Transmittance(w.world.Offset(x.Hit.Point, facing), dir, math.Inf(1))
+}
+
+// gather is one sample of the illuminance at p on the plane with unit normal n
+// without the sun that comes straight or by mirrors, lx; u and v in 0 to 1
+// choose the direction. inverse is 1/distance of the first surface along it.
+// Half of the rays aim at portals where there are any (balance heuristic).
+func (w *walker) gather(p, n r3.Vec, portals *trace.Portals, u, v float64, depth int) (e, inverse float64) {
+	var dir r3.Vec
+	over := math.Pi // cosine over density
+	if portals.Empty() {
+		dir = trace.CosineDirection(n, u, v)
+	} else {
+		if u < 0.5 {
+			dir = trace.CosineDirection(n, 2*u, v)
+		} else {
+			dir = portals.Sample(p, 2*u-1, v)
+		}
+		cos := r3.Dot(dir, n)
+		if cos <= 0 {
+			return 0, 0
+		}
+		over = cos / (0.5*cos/math.Pi + 0.5*portals.PDF(p, dir))
+	}
+	f := &w.found[depth]
+	f.Reset()
+	w.world.Walk(w.world.Offset(p, n), dir, 1, 0, &w.s, f)
+	sum := 0.0
+	for i := range f.Exits {
+		sum += f.Exits[i].Weight * w.outside(f.Exits[i].Dir)
+	}
+	for i := range f.Landings {
+		l := f.Landings[i]
+		inverse = math.Max(inverse, 1/math.Max(nearest, l.Hit.T))
+		for side, m := range sides(&l.Hit) {
+			sum += l.Weight * w.factor(&l.Hit, m) / math.Pi * w.lightOn(&l.Hit, side, depth)
+		}
+	}
+	return over * sum, inverse
+}
+
+// lightOn is the illuminance on a side of a surface that a gathered ray met.
+func (w *walker) lightOn(h *trace.Hit, side materials.Side, depth int) float64 {
+	n := normalOn(h, side)
+	hit := *h
+	hit.Side = side
+	i := w.stage.t.Index(w.stage.t.SideAt(&hit))
+	if depth <= deepest && h.T < w.stage.edgeM[h.Part] {
+		e, _ := w.gather(h.Point, n, &w.none, w.s.Float64(), w.s.Float64(), depth+1)
+		return e + w.sunOn(h.Point, n) + w.photons.illuminance(h.Point, n)
+	}
+	if i < 0 {
+		return 0 // carries next to nothing, see surface's dropDark
+	}
+	e := float64(w.rest[w.batch][i])
+	if w.lit[i] {
+		e += w.sunOn(h.Point, n)
+	}
+	return e
+}

@@ -1,0 +1,297 @@
+package picture
+
+import (
+	"context"
+	"errors"
+	"math"
+
+	"gonum.org/v1/gonum/spatial/r3"
+
+	"squint/materials"
+	"squint/materials/sampling"
+	"squint/trace"
+)
+
+// Quantity is what a picture shows.
+type Quantity int
+
+// The quantities: luminance as the camera sees it, cd/m2, or the illuminance on
+// the first surface that is not clear, on the side seen, lx.
+const (
+	Luminance Quantity = iota
+	Illuminance
+)
+
+// Options say when a picture is good enough; the first that is reached ends it.
+type Options struct {
+	Quantity Quantity
+	// Error is the median relative standard error to reach; 0 is never reached.
+	Error float64
+	// Samples is the largest number a pixel, in whole rounds of Batches; 0 means
+	// no limit.
+	Samples int
+	// Progress, if not nil, hears of rounds done and the error so far.
+	Progress func(p *Picture)
+}
+
+// Picture is a rendered picture, pixels row by row from the top left corner.
+type Picture struct {
+	Width, Height int
+	Quantity      Quantity
+	// Mean is NaN outside; Batch holds each batch's own, StdErr the standard
+	// error of the mean.
+	Mean, StdErr []float32
+	Batch        [][]float32
+	// MedianError is the median over pixels of StdErr / Mean.
+	MedianError float64
+	Samples     int // a pixel
+	// Whole tells that the asked error or number of samples was reached.
+	Whole bool
+}
+
+// ErrNothing is returned where a picture was stopped before its first round.
+var ErrNothing = errors.New("stopped before the first samples were complete")
+
+// film collects samples by pixel.
+type film struct {
+	width, height int
+	camera        Camera
+	quantity      Quantity
+	pixel         []reference
+	batch         [Batches][]cell
+	rounds        int
+}
+
+// reference is the flat surface that stands for a pixel: samples that meet it
+// share their gathered light with neighbours that see it too.
+type reference struct {
+	inside, has bool
+	part        int32
+	p, n        r3.Vec
+}
+
+// cell is what one batch's samples of a pixel add up to.
+type cell struct {
+	// rest is the light that the filter leaves alone; share the luminance per
+	// illuminance of the reference surface; gathered the sum of count samples of
+	// its illuminance; inverse their 1/distance.
+	rest, share, gathered, inverse float32
+	count                          int32
+	samples                        int32
+}
+
+// Render makes a picture. Where the context ends before Options do, the rounds
+// that are complete are the picture.
+func (l *Light) Render(ctx context.Context, c Camera, o Options) (*Picture, error) {
+	f, err := l.newFilm(ctx, c, o.Quantity)
+	if err != nil {
+		return nil, ErrNothing
+	}
+	var best *Picture
+	for check := 1; ; {
+		if err := l.round(ctx, f); err != nil {
+			break
+		}
+		n := f.rounds * Batches
+		last := o.Samples > 0 && n >= o.Samples
+		if f.rounds < check && !last {
+			continue
+		}
+		best = f.develop(l.stage.cfg.Workers)
+		best.Whole = last || o.Error > 0 && best.MedianError <= o.Error
+		if o.Progress != nil {
+			o.Progress(best)
+		}
+		if best.Whole {
+			return best, nil
+		}
+		// The error falls with the root of the samples, by the filter rather
+		// more slowly: look again shortly before it could suffice.
+		check = 2 * f.rounds
+		if o.Error > 0 {
+			ratio := best.MedianError / o.Error
+			check = min(check, max(f.rounds+1, int(0.9*float64(f.rounds)*ratio*ratio)))
+		}
+	}
+	if f.rounds == 0 {
+		return nil, ErrNothing
+	}
+	if best.Samples < f.rounds*Batches {
+		best = f.develop(l.stage.cfg.Workers)
+	}
+	return best, nil
+}
+
+func (l *Light) newFilm(ctx context.Context, c Camera, q Quantity) (*film, error) {
+	f := &film{camera: c, quantity: q}
+	f.width, f.height = c.Size()
+	f.pixel = make([]reference, f.width*f.height)
+	for b := range f.batch {
+		f.batch[b] = make([]cell, len(f.pixel))
+	}
+	return f, each(ctx, l.stage.cfg.Workers, f.height, func(y int) {
+		var found trace.Found
+		for x := range f.width {
+			r := &f.pixel[y*f.width+x]
+			org, dir, ok := c.Pixel(x, y)
+			if !ok {
+				continue
+			}
+			r.inside = true
+			if q == Illuminance {
+				if h, ok := l.firstOpaque(org, dir); ok {
+					*r = reference{true, true, h.Part, h.Point, h.Facing()}
+				}
+				continue
+			}
+			s := sampling.Stream3(l.stage.cfg.Seed, streamReference, uint64(y*f.width+x))
+			found.Reset()
+			l.world.Walk(org, dir, 1, 1, &s, &found)
+			most := 0.0
+			for i := range found.Landings {
+				h := &found.Landings[i].Hit
+				for side, m := range sides(h) {
+					if k := m * found.Landings[i].Weight; k > most {
+						most = k
+						*r = reference{true, true, h.Part, h.Point, normalOn(h, side)}
+					}
+				}
+			}
+		}
+	})
+}
+
+// firstOpaque is the first surface that is not clear, as glass is.
+func (l *Light) firstOpaque(org, dir r3.Vec) (trace.Hit, bool) {
+	for {
+		h, ok := l.world.Closest(org, dir)
+		if !ok {
+			return h, false
+		}
+		rho, tau := h.BSDF.Lambert(h.Side)
+		if _, through := h.BSDF.Delta(h.Side, h.Cos); through <= 0 || rho > 0 || tau > 0 {
+			return h, true
+		}
+		org = l.world.Offset(h.Point, r3.Scale(-1, h.Facing()))
+	}
+}
+
+// round adds one pass to each batch; on an error the film keeps what it had.
+func (l *Light) round(ctx context.Context, f *film) error {
+	var fresh [Batches][]cell
+	var photons [Batches]*photonMap
+	for b := range Batches {
+		var err error
+		if photons[b], err = l.photons(ctx, f.rounds*Batches+b, f.rounds, f.quantity == Illuminance); err != nil {
+			return err
+		}
+		fresh[b] = make([]cell, len(f.pixel))
+	}
+	err := each(ctx, l.stage.cfg.Workers, f.height, func(y int) {
+		w := &walker{Light: l}
+		for x := range f.width {
+			i := y*f.width + x
+			r := &f.pixel[i]
+			if !r.inside {
+				continue
+			}
+			if r.has {
+				l.world.SeePortals(r.p, r.n, &w.shared)
+			}
+			for b := range Batches {
+				w.batch, w.rays, w.photons = b, &l.sun[(f.rounds*Batches+b)%lanes], photons[b]
+				w.sample(f, r, &fresh[b][i], x, y, f.rounds)
+			}
+		}
+	})
+	if err != nil {
+		return err
+	}
+	for b := range fresh {
+		for i := range fresh[b] {
+			f.batch[b][i].add(&fresh[b][i])
+		}
+	}
+	f.rounds++
+	return nil
+}
+
+func (c *cell) add(d *cell) {
+	c.rest += d.rest
+	c.share += d.share
+	c.gathered += d.gathered
+	c.inverse += d.inverse
+	c.count += d.count
+	c.samples += d.samples
+}
+
+// rimTries bounds the search for a place of a cut pixel inside the picture;
+// after that its standing line of sight serves.
+const rimTries = 64
+
+// sample adds one sample of pixel (x, y).
+func (w *walker) sample(f *film, r *reference, c *cell, x, y, round int) {
+	i := uint64(y*f.width + x)
+	w.s = sampling.NewStream(w.stage.cfg.Seed, streamSample, i, uint64(w.batch), uint64(round))
+	own := sampling.Stream4(w.stage.cfg.Seed, streamPixel, i, uint64(w.batch))
+	place, toward := own.Uint32(), own.Uint32()
+	du, dv := sampling.OwenSobol2(uint32(round), place)
+	org, dir, ok := f.camera.Through(float64(x)+du, float64(y)+dv)
+	for try := 0; !ok && try < rimTries; try++ {
+		org, dir, ok = f.camera.Through(float64(x)+w.s.Float64(), float64(y)+w.s.Float64())
+	}
+	if !ok {
+		org, dir, _ = f.camera.Pixel(x, y)
+	}
+	u, v := sampling.OwenSobol2(uint32(round), toward)
+	c.samples++
+	if f.quantity == Illuminance {
+		h, ok := w.firstOpaque(org, dir)
+		if !ok {
+			c.rest += float32(w.moment.GlobalLx)
+			return
+		}
+		w.surface(r, c, &h, h.Side, 1, u, v)
+		return
+	}
+	found := &w.found[0]
+	found.Reset()
+	w.world.Walk(org, dir, 1, 1, &w.s, found)
+	rest := 0.0
+	for i := range found.Exits {
+		rest += found.Exits[i].Weight * w.outside(found.Exits[i].Dir)
+	}
+	for i := range found.Shines {
+		rest += found.Shines[i].Weight * w.shine(&found.Shines[i])
+	}
+	c.rest += float32(rest)
+	for i := range found.Landings {
+		l := found.Landings[i]
+		for side, m := range sides(&l.Hit) {
+			w.surface(r, c, &l.Hit, side, l.Weight*w.factor(&l.Hit, m)/math.Pi, u, v)
+			u, v = w.s.Float64(), w.s.Float64()
+		}
+	}
+}
+
+// surface adds the light of one side of a surface met, times weight.
+func (w *walker) surface(r *reference, c *cell, h *trace.Hit, side materials.Side, weight, u, v float64) {
+	n := normalOn(h, side)
+	sun := w.sunOn(h.Point, n) + w.photons.illuminance(h.Point, n)
+	c.rest += float32(weight * sun)
+	shared := r.has && r.part == h.Part && r3.Dot(r.n, n) > flat
+	portals := &w.shared
+	if !shared {
+		portals = &w.own
+		w.world.SeePortals(h.Point, n, portals)
+	}
+	e, inverse := w.gather(h.Point, n, portals, u, v, 1)
+	if shared {
+		c.share += float32(weight)
+		c.gathered += float32(e)
+		c.inverse += float32(inverse)
+		c.count++
+		return
+	}
+	c.rest += float32(weight * e)
+}
