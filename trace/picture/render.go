@@ -30,7 +30,11 @@ type Options struct {
 	// Samples is the largest number a pixel, in whole rounds of Batches; 0 means
 	// no limit.
 	Samples int
-	// Progress, if not nil, hears of rounds done and the error so far.
+	// Enough, if not nil, is asked after every round whether that is all, as
+	// where time is up.
+	Enough func() bool
+	// Progress, if not nil, hears of the picture so far: first within seconds,
+	// then from time to time.
 	Progress func(p *Picture)
 }
 
@@ -45,9 +49,21 @@ type Picture struct {
 	// MedianError is the median over pixels of StdErr / Mean.
 	MedianError float64
 	Samples     int // a pixel
-	// Whole tells that the asked error or number of samples was reached.
-	Whole bool
+	// Ended says why no more samples were taken.
+	Ended End
 }
+
+// End is why a picture was finished.
+type End int
+
+// The ends: it was stopped by its context, had time or samples enough, or has
+// the error that was asked for.
+const (
+	Stopped End = iota
+	HadTime
+	HadSamples
+	HasError
+)
 
 // ErrNothing is returned where a picture was stopped before its first round.
 var ErrNothing = errors.New("stopped before the first samples were complete")
@@ -87,39 +103,44 @@ func (l *Light) Render(ctx context.Context, c Camera, o Options) (*Picture, erro
 	if err != nil {
 		return nil, ErrNothing
 	}
-	var best *Picture
-	for check := 1; ; {
-		if err := l.round(ctx, f); err != nil {
-			break
+	var p *Picture
+	for check := 1; l.round(ctx, f) == nil; {
+		end := Stopped
+		switch {
+		case o.Samples > 0 && f.rounds*Batches >= o.Samples:
+			end = HadSamples
+		case o.Enough != nil && o.Enough():
+			end = HadTime
 		}
-		n := f.rounds * Batches
-		last := o.Samples > 0 && n >= o.Samples
-		if f.rounds < check && !last {
+		if f.rounds < check && end == Stopped {
 			continue
 		}
-		best = f.develop(l.stage.cfg.Workers)
-		best.Whole = last || o.Error > 0 && best.MedianError <= o.Error
+		p = f.develop(l.stage.cfg.Workers)
+		if o.Error > 0 && p.MedianError <= o.Error {
+			end = HasError
+		}
+		p.Ended = end
 		if o.Progress != nil {
-			o.Progress(best)
+			o.Progress(p)
 		}
-		if best.Whole {
-			return best, nil
+		if end != Stopped {
+			return p, nil
 		}
-		// The error falls with the root of the samples, by the filter rather
-		// more slowly: look again shortly before it could suffice.
+		// The error falls with the root of the samples, as the filter shrinks
+		// rather more slowly: look again shortly before it could suffice.
 		check = 2 * f.rounds
 		if o.Error > 0 {
-			ratio := best.MedianError / o.Error
+			ratio := p.MedianError / o.Error
 			check = min(check, max(f.rounds+1, int(0.9*float64(f.rounds)*ratio*ratio)))
 		}
 	}
 	if f.rounds == 0 {
 		return nil, ErrNothing
 	}
-	if best.Samples < f.rounds*Batches {
-		best = f.develop(l.stage.cfg.Workers)
+	if p.Samples < f.rounds*Batches {
+		p = f.develop(l.stage.cfg.Workers)
 	}
-	return best, nil
+	return p, nil
 }
 
 func (l *Light) newFilm(ctx context.Context, c Camera, q Quantity) (*film, error) {

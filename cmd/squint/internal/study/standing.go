@@ -29,12 +29,7 @@ const maxStandings = 64
 // take; systems that follow nothing stand as the project says. first is the
 // scene as the project has it, used where nothing moves.
 func standings(fsys fs.FS, p *project.Project, first *scene.Scene, world *trace.World, moments []*scene.Moment, workers int) ([]Standing, error) {
-	var following []project.Movable
-	for _, m := range project.Movables(p) {
-		if m.Follow != nil && m.Standing != project.RaisedState {
-			following = append(following, m)
-		}
-	}
+	following := followers(p)
 	if len(following) == 0 {
 		return []Standing{{Scene: first, World: world, Moments: moments}}, nil
 	}
@@ -45,23 +40,7 @@ func standings(fsys fs.FS, p *project.Project, first *scene.Scene, world *trace.
 	}
 	groups := map[string]*group{}
 	for _, m := range moments {
-		choice := map[string]string{}
-		var words []string
-		for _, f := range following {
-			k, ok := openingOf(first, f.Opening)
-			if !ok {
-				continue // scene.Build has said so
-			}
-			rect := first.Openings[k].Rect
-			sun := m.Sun
-			if m.SunNormalLx <= 0 {
-				sun = r3.Scale(-1, rect.Outward) // no sun to follow: behind the glass
-			}
-			state := f.States[f.FollowFrom+f.Follow.Choose(sun, rect)]
-			choice[f.Name] = state
-			words = append(words, f.Name+": "+state)
-		}
-		label := strings.Join(words, ", ")
+		choice, label := follow(following, first, m)
 		g := groups[label]
 		if g == nil {
 			g = &group{choice: choice, label: label}
@@ -87,6 +66,38 @@ func standings(fsys fs.FS, p *project.Project, first *scene.Scene, world *trace.
 		out = append(out, Standing{Label: l, Scene: s, World: trace.Accelerate(s, workers), Moments: g.moments})
 	}
 	return out, nil
+}
+
+// followers are the systems that follow a law.
+func followers(p *project.Project) []project.Movable {
+	var list []project.Movable
+	for _, m := range project.Movables(p) {
+		if m.Follow != nil && m.Standing != project.RaisedState {
+			list = append(list, m)
+		}
+	}
+	return list
+}
+
+// follow is how followers stand at a moment, and that in words.
+func follow(following []project.Movable, s *scene.Scene, m *scene.Moment) (choice map[string]string, label string) {
+	choice = map[string]string{}
+	var words []string
+	for _, f := range following {
+		k, ok := openingOf(s, f.Opening)
+		if !ok {
+			continue // scene.Build has said so
+		}
+		rect := s.Openings[k].Rect
+		sun := m.Sun
+		if m.SunNormalLx <= 0 {
+			sun = r3.Scale(-1, rect.Outward) // no sun to follow: behind the glass
+		}
+		state := f.States[f.FollowFrom+f.Follow.Choose(sun, rect)]
+		choice[f.Name] = state
+		words = append(words, f.Name+": "+state)
+	}
+	return choice, strings.Join(words, ", ")
 }
 
 // hoursByStanding says in words how long each standing lasts.

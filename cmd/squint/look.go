@@ -1,0 +1,189 @@
+package main
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"path/filepath"
+	"slices"
+	"strings"
+	"time"
+
+	"github.com/spf13/cobra"
+
+	"squint/cmd/squint/demo"
+	"squint/cmd/squint/internal/report"
+	"squint/cmd/squint/internal/study"
+	"squint/glare/falsecolour"
+	"squint/scene/project"
+	"squint/scene/view"
+	"squint/trace/picture"
+)
+
+// lookOptions are the command line of look.
+type lookOptions struct {
+	Project string // "" for the demo
+	Out     string // "" for the default
+	Workers int
+	Seed    *uint64 // nil for the project's
+
+	Views    []string
+	AllViews bool
+	At       []study.ClockTime
+	Sky      skyChoice
+
+	Projection view.Projection
+	FOVDeg     float64 // 0 for the projection's usual one
+	Pixels     int
+
+	Plan string // "", "illuminance" or "luminance"
+	CutM *float64
+
+	Error   float64 // 0 for none
+	Samples int
+	Limit   time.Duration
+
+	Formats       []string
+	StandardError bool
+	Map           *falsecolour.Map
+	Scale         *falsecolour.Scale
+}
+
+func newLook(h host, run func(context.Context, host, lookOptions) error) *cobra.Command {
+	var o lookOptions
+	var seed uint64
+	var f lookFlags
+	cmd := &cobra.Command{
+		Use:   "look [PROJECT.toml]",
+		Short: "Make luminance pictures of viewpoints at moments, or a plan",
+		Long: `Look makes luminance pictures: what a viewpoint sees at a moment, in cd/m2, with
+its sources of glare outlined, or a plan of the room in lx. A picture grows finer
+until its error is as asked, and Ctrl-C keeps what there is. Without a project it
+looks at the demo. "squint guide look" says what the files hold.`,
+		Example: `  squint look
+  squint look office.toml --view "desk 3" --at "03-21 09:00" --at "12-21 12:00"
+  squint look office.toml --all-views --sky overcast
+  squint look office.toml --plan illuminance --at "06-21 12:00"`,
+		Args: arguments(cobra.MaximumNArgs(1), "at most one project file"),
+		RunE: func(cmd *cobra.Command, args []string) error {
+			if len(args) == 1 {
+				if o.Project = args[0]; o.Project == "" {
+					return usageError{errors.New("look: got an empty path, want a project file")}
+				}
+			}
+			if cmd.Flags().Changed("seed") {
+				o.Seed = &seed
+			}
+			if err := f.read(cmd.Flags().Changed, &o); err != nil {
+				return usageError{err}
+			}
+			return run(cmd.Context(), h, o)
+		},
+	}
+	f.bind(cmd.Flags(), &o)
+	cmd.Flags().IntVar(&o.Workers, "workers", h.cpus, "`number` of threads, by default one for each CPU")
+	cmd.Flags().Uint64Var(&seed, "seed", 0, "`number` from which all random numbers follow, instead\nof the project's")
+	return cmd
+}
+
+func runLook(ctx context.Context, h host, o lookOptions) error {
+	fsys, name, explain := demo.FS(), demo.Project, func(err error) error { return err }
+	if o.Project != "" {
+		s, err := openSource(o.Project)
+		if err != nil {
+			return inputError{err}
+		}
+		fsys, name, explain = s, s.name, s.explain
+	}
+	out := o.Out
+	if out == "" {
+		// As check's, under another name.
+		results := defaultOut(o.Project)
+		out = filepath.Join(filepath.Dir(filepath.Dir(results)), "look", filepath.Base(results))
+	}
+	if err := canHold(out); err != nil {
+		return inputError{err}
+	}
+	p, err := project.Load(fsys, name)
+	if err != nil {
+		return inputError{explain(err)}
+	}
+	look, err := study.PrepareLook(fsys, []study.Design{{Project: p}}, o.study())
+	if err != nil {
+		return inputError{explain(err)}
+	}
+	if err := report.LookNotes(h.out, look.Notes); err != nil {
+		return err
+	}
+	taken, err := take(ctx, h, o, look)
+	if err != nil {
+		return err
+	}
+	files, err := report.WriteLook(out, taken, report.LookOptions{Version: h.version, Formats: o.Formats, StandardError: o.StandardError, Map: o.Map, Scale: o.Scale})
+	if err != nil {
+		return fmt.Errorf("pictures: %w", err)
+	}
+	if n := len(look.Shots) - len(taken); n > 0 {
+		fmt.Fprintf(h.out, "Stopped: %d of %d pictures were not begun or had no samples yet.\n", n, len(look.Shots))
+	}
+	fmt.Fprintf(h.out, "Written to %s: %s\n", out, strings.Join(short(files), ", "))
+	return nil
+}
+
+// short names the first of many files.
+func short(files []string) []string {
+	const most = 6
+	if len(files) <= most {
+		return files
+	}
+	return append(slices.Clone(files[:most]), fmt.Sprintf("and %d more", len(files)-most))
+}
+
+// take makes the pictures. A stop keeps those with samples; without any it is
+// an error.
+func take(ctx context.Context, h host, o lookOptions, look *study.Look) (taken []*study.Shot, err error) {
+	bar := newProgress(h)
+	defer func() { bar.Close(err == nil) }()
+	var lines []func() error
+	for i, s := range look.Shots {
+		start := h.now()
+		opt := picture.Options{Error: o.Error, Samples: o.Samples, Progress: func(p *picture.Picture) {
+			bar.Report(study.StagePicture, i*1000+progressOf(p, o), 1000*len(look.Shots))
+		}}
+		if o.Limit > 0 {
+			opt.Enough = func() bool { return h.now().Sub(start) >= o.Limit }
+		}
+		err := look.Take(ctx, s, opt, bar.Report)
+		if errors.Is(err, picture.ErrNothing) || ctx.Err() != nil && s.Picture == nil {
+			break
+		}
+		if err != nil {
+			return nil, err
+		}
+		elapsed := h.now().Sub(start)
+		taken = append(taken, s)
+		lines = append(lines, func() error { return report.LookLine(h.out, s, elapsed) })
+	}
+	if len(taken) == 0 {
+		return nil, ctx.Err()
+	}
+	bar.Close(true)
+	for _, print := range lines {
+		if err := print(); err != nil {
+			return nil, err
+		}
+	}
+	return taken, nil
+}
+
+// progressOf is about how far a picture is, in thousandths.
+func progressOf(p *picture.Picture, o lookOptions) int {
+	share := 0.0
+	if o.Samples > 0 {
+		share = float64(p.Samples) / float64(o.Samples)
+	}
+	if o.Error > 0 && p.MedianError > 0 {
+		share = max(share, o.Error*o.Error/(p.MedianError*p.MedianError))
+	}
+	return int(1000 * min(share, 1))
+}
