@@ -29,10 +29,23 @@ type walker struct {
 	s       sampling.Stream
 	// found is by depth: 0 the line of sight, then gathered rays.
 	found [deepest + 2]trace.Found
-	// shared are the openings seen from the pixel's reference, own those seen
-	// from another surface, none is empty.
-	shared, own, none trace.Portals
+	// shared is what is aimed at from the pixel's reference, own that from
+	// another surface; none aims nowhere.
+	shared, own, none aim
 }
+
+// aim is what gathered rays from one place are aimed at.
+type aim struct {
+	portals trace.Portals
+	bright  aims
+}
+
+// Shares of the gathered rays that aim at openings and at bright sides, where
+// there are any. Own choice, measured on the demo.
+const (
+	portalShare = 0.35
+	brightShare = 0.3
+)
 
 func (w *walker) hidden(dir r3.Vec) bool { return w.stage.t.Hidden(dir) }
 
@@ -88,48 +101,83 @@ func (w *walker) shine(x *trace.Shine) float64 {
 
 // gather is one sample of the illuminance at p on the plane with unit normal n
 // without the sun that comes straight or by mirrors, lx; u and v in 0 to 1
-// choose the direction. inverse is 1/distance of the first surface along it.
-// Half of the rays aim at portals where there are any (balance heuristic).
-func (w *walker) gather(p, n r3.Vec, portals *trace.Portals, u, v float64, depth int) (e, inverse float64) {
+// choose the direction. inverse is 1/distance of the first surface along it,
+// its mean that of the rays not aimed at bright sides.
+// Cosine, openings and bright sides are sampled together (one-sample balance
+// heuristic, Veach & Guibas 1995, as for trace.Portals). A ray aimed at a bright
+// side counts only where it lands there, straight.
+func (w *walker) gather(p, n r3.Vec, a *aim, u, v float64, depth int) (e, inverse float64) {
+	toPortals, toBright := 0.0, 0.0
+	if !a.portals.Empty() {
+		toPortals = portalShare
+	}
+	if !a.bright.empty() {
+		toBright = brightShare
+	}
+	toCosine := 1 - toPortals - toBright
 	var dir r3.Vec
-	over := math.Pi // cosine over density
-	if portals.Empty() {
-		dir = trace.CosineDirection(n, u, v)
-	} else {
-		if u < 0.5 {
-			dir = trace.CosineDirection(n, 2*u, v)
-		} else {
-			dir = portals.Sample(p, 2*u-1, v)
-		}
-		cos := r3.Dot(dir, n)
-		if cos <= 0 {
-			return 0, 0
-		}
-		over = cos / (0.5*cos/math.Pi + 0.5*portals.PDF(p, dir))
+	aimed := int32(-1)
+	switch {
+	case u < toCosine:
+		dir = trace.CosineDirection(n, u/toCosine, v)
+	case u < toCosine+toPortals:
+		dir = a.portals.Sample(p, (u-toCosine)/toPortals, v)
+	default:
+		dir, aimed = a.bright.sample(w.stage, p, (u-toCosine-toPortals)/toBright, v, &w.s)
+	}
+	cos := r3.Dot(dir, n)
+	if cos <= 0 {
+		return 0, 0
+	}
+	density := toCosine * cos / math.Pi
+	if toPortals > 0 {
+		density += toPortals * a.portals.PDF(p, dir)
 	}
 	f := &w.found[depth]
 	f.Reset()
 	w.world.Walk(w.world.Offset(p, n), dir, 1, 0, &w.s, f)
-	sum := 0.0
-	for i := range f.Exits {
-		sum += f.Exits[i].Weight * w.outside(f.Exits[i].Dir)
+	if aimed < 0 {
+		for i := range f.Exits {
+			e += f.Exits[i].Weight * w.outside(f.Exits[i].Dir) * cos / density
+		}
 	}
 	for i := range f.Landings {
 		l := f.Landings[i]
 		inverse = math.Max(inverse, 1/math.Max(nearest, l.Hit.T))
 		for side, m := range sides(&l.Hit) {
-			sum += l.Weight * w.factor(&l.Hit, m) / math.Pi * w.lightOn(&l.Hit, side, depth)
+			hit := l.Hit
+			hit.Side = side
+			k := w.stage.t.Index(w.stage.t.SideAt(&hit))
+			d := density
+			if seen := w.brightSeen(a, k, &l, side); seen >= 0 {
+				d += toBright * a.bright.pdf(seen, r3.Norm(r3.Sub(l.Hit.Point, p)), l.Hit.Cos)
+				if aimed >= 0 && aimed != seen {
+					continue
+				}
+			} else if aimed >= 0 {
+				continue
+			}
+			e += l.Weight * w.factor(&l.Hit, m) / math.Pi * w.lightOn(&l.Hit, side, k, depth) * cos / d
 		}
 	}
-	return over * sum, inverse
+	if aimed >= 0 {
+		return e, 0
+	}
+	return e, inverse / (1 - toBright)
 }
 
-// lightOn is the illuminance on a side of a surface that a gathered ray met.
-func (w *walker) lightOn(h *trace.Hit, side materials.Side, depth int) float64 {
+// brightSeen is the bright side that a straight path landed on, -1 where none.
+func (w *walker) brightSeen(a *aim, k int32, l *trace.Landing, side materials.Side) int32 {
+	if a.bright.empty() || k < 0 || l.Mirrored || side != l.Hit.Side {
+		return -1
+	}
+	return a.bright.at[k]
+}
+
+// lightOn is the illuminance on a side, of dense index i, of a surface that a
+// gathered ray met.
+func (w *walker) lightOn(h *trace.Hit, side materials.Side, i int32, depth int) float64 {
 	n := normalOn(h, side)
-	hit := *h
-	hit.Side = side
-	i := w.stage.t.Index(w.stage.t.SideAt(&hit))
 	if depth <= deepest && h.T < w.stage.edgeM[h.Part] {
 		e, _ := w.gather(h.Point, n, &w.none, w.s.Float64(), w.s.Float64(), depth+1)
 		return e + w.sunOn(h.Point, n) + w.photons.illuminance(h.Point, n)

@@ -34,7 +34,9 @@ type Light struct {
 	// direct sun on it, lx; lit tells where that sun may fall.
 	rest [][]float32
 	lit  []bool
-	aim  *trace.Photons
+	// bright are sides to aim at.
+	bright brights
+	aim    *trace.Photons
 }
 
 // Light solves the exchange for a moment.
@@ -60,19 +62,12 @@ func (s *Stage) Light(ctx context.Context, m *scene.Moment) (*Light, error) {
 			l.aim = nil
 		}
 	}
-	near := make([][]uint64, Batches)
+	near, whole := make([][]uint64, Batches), make([][]float32, Batches)
 	err := each(ctx, s.cfg.Workers, Batches, func(b int) {
 		lights := make([]surface.Light, 1)
 		t.Solve(bl, b, &lights[0])
 		near[b] = t.LitNear(lights)
-		l.rest[b] = make([]float32, t.Len())
-		for i := range l.rest[b] {
-			var sum float32
-			for h := range lanes {
-				sum += lights[0].Rest[i][h]
-			}
-			l.rest[b][i] = sum / lanes
-		}
+		l.rest[b], whole[b] = overLanes(lights[0].Rest), overLanes(lights[0].E)
 	})
 	if err != nil {
 		return nil, err
@@ -82,7 +77,26 @@ func (s *Stage) Light(ctx context.Context, m *scene.Moment) (*Light, error) {
 			l.lit[i] = l.lit[i] || mask != 0
 		}
 	}
+	for b := 1; b < Batches; b++ {
+		for i, e := range whole[b] {
+			whole[0][i] += e
+		}
+	}
+	l.bright = s.findBright(whole[0])
 	return l, nil
+}
+
+// overLanes is the mean over the copies of the moment.
+func overLanes(rows []surface.Row) []float32 {
+	out := make([]float32, len(rows))
+	for i := range rows {
+		var sum float32
+		for h := range lanes {
+			sum += rows[i][h]
+		}
+		out[i] = sum / lanes
+	}
+	return out
 }
 
 // each calls work for 0..n-1 from several goroutines, and stops when the

@@ -210,6 +210,7 @@ func (l *Light) round(ctx context.Context, f *film) error {
 	}
 	err := each(ctx, l.stage.cfg.Workers, f.height, func(y int) {
 		w := &walker{Light: l}
+		w.shared.bright.brights = &l.bright
 		for x := range f.width {
 			i := y*f.width + x
 			r := &f.pixel[i]
@@ -217,7 +218,8 @@ func (l *Light) round(ctx context.Context, f *film) error {
 				continue
 			}
 			if r.has {
-				l.world.SeePortals(r.p, r.n, &w.shared)
+				l.world.SeePortals(r.p, r.n, &w.shared.portals)
+				w.shared.bright.from(r.p, r.n)
 			}
 			for b := range Batches {
 				w.batch, w.rays, w.photons = b, &l.sun[(f.rounds*Batches+b)%lanes], photons[b]
@@ -255,8 +257,7 @@ func (w *walker) sample(f *film, r *reference, c *cell, x, y, round int) {
 	i := uint64(y*f.width + x)
 	w.s = sampling.NewStream(w.stage.cfg.Seed, streamSample, i, uint64(w.batch), uint64(round))
 	own := sampling.Stream4(w.stage.cfg.Seed, streamPixel, i, uint64(w.batch))
-	place, toward := own.Uint32(), own.Uint32()
-	du, dv := sampling.OwenSobol2(uint32(round), place)
+	du, dv := sampling.OwenSobol2(uint32(round), own.Uint32())
 	org, dir, ok := f.camera.Through(float64(x)+du, float64(y)+dv)
 	for try := 0; !ok && try < rimTries; try++ {
 		org, dir, ok = f.camera.Through(float64(x)+w.s.Float64(), float64(y)+w.s.Float64())
@@ -264,7 +265,7 @@ func (w *walker) sample(f *film, r *reference, c *cell, x, y, round int) {
 	if !ok {
 		org, dir, _ = f.camera.Pixel(x, y)
 	}
-	u, v := sampling.OwenSobol2(uint32(round), toward)
+	u, v := w.toward(f, x, y, round)
 	c.samples++
 	if f.quantity == Illuminance {
 		h, ok := w.firstOpaque(org, dir)
@@ -295,18 +296,31 @@ func (w *walker) sample(f *film, r *reference, c *cell, x, y, round int) {
 	}
 }
 
+// tile is the edge, in pixels, of the squares whose gathered rays are points of
+// one sequence: the filter adds them up, and so they are spread evenly over the
+// hemisphere. Source: Keller & Heidrich 2001, Interleaved sampling, Rendering
+// Techniques (from memory).
+const tile = 8
+
+// toward is the place in the unit square that chooses a pixel's gathered ray.
+func (w *walker) toward(f *film, x, y, round int) (u, v float64) {
+	at := uint64(y/tile)<<32 | uint64(x/tile)
+	s := sampling.Stream4(w.stage.cfg.Seed, streamTile, at, uint64(w.batch))
+	return sampling.OwenSobol2(uint32(round*tile*tile+y%tile*tile+x%tile), s.Uint32())
+}
+
 // surface adds the light of one side of a surface met, times weight.
 func (w *walker) surface(r *reference, c *cell, h *trace.Hit, side materials.Side, weight, u, v float64) {
 	n := normalOn(h, side)
 	sun := w.sunOn(h.Point, n) + w.photons.illuminance(h.Point, n)
 	c.rest += float32(weight * sun)
 	shared := r.has && r.part == h.Part && r3.Dot(r.n, n) > flat
-	portals := &w.shared
+	a := &w.shared
 	if !shared {
-		portals = &w.own
-		w.world.SeePortals(h.Point, n, portals)
+		a = &w.own
+		w.world.SeePortals(h.Point, n, &a.portals)
 	}
-	e, inverse := w.gather(h.Point, n, portals, u, v, 1)
+	e, inverse := w.gather(h.Point, n, a, u, v, 1)
 	if shared {
 		c.share += float32(weight)
 		c.gathered += float32(e)

@@ -56,6 +56,7 @@ const (
 	streamSunOn     = 44
 	streamPhotons   = 45
 	streamReference = 46
+	streamTile      = 47
 )
 
 // Scouts look about before the exchange is traced: scoutPixels lines of sight
