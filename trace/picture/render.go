@@ -218,7 +218,7 @@ func (l *Light) round(ctx context.Context, f *film) error {
 				continue
 			}
 			if r.has {
-				l.world.SeePortals(r.p, r.n, &w.shared.portals)
+				l.world.SeeMirrors(r.p, r.n, &w.shared.portals)
 				w.shared.bright.from(r.p, r.n)
 			}
 			for b := range Batches {
@@ -318,7 +318,7 @@ func (w *walker) surface(r *reference, c *cell, h *trace.Hit, side materials.Sid
 	a := &w.shared
 	if !shared {
 		a = &w.own
-		w.world.SeePortals(h.Point, n, &a.portals)
+		w.world.SeeMirrors(h.Point, n, &a.portals)
 	}
 	e, inverse := w.gather(h.Point, n, a, u, v, 1)
 	if shared {
