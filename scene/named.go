@@ -1,6 +1,7 @@
 package scene
 
 import (
+	"errors"
 	"fmt"
 	"math"
 	"time"
@@ -75,6 +76,9 @@ func (c *Climate) CIEMoment(p *project.Project, t time.Time, kind int, diffuseLx
 		dome, err = sky.NewOvercastTraditional(sky.ByHorizontalIlluminance(diffuseLx))
 	} else {
 		dome, err = sky.NewCIE(kind, s.Direction, sky.ByHorizontalIlluminance(diffuseLx))
+	}
+	if errors.Is(err, sky.ErrSun) {
+		return nil, fmt.Errorf("CIE general sky %d: the sun is below the horizon at %s; want a time of day, or a kind that needs no sun: 1, 3 or 5", kind, t.Format("2 January 15:04"))
 	}
 	if err != nil {
 		return nil, err

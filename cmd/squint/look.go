@@ -4,6 +4,7 @@ import (
 	"context"
 	"errors"
 	"fmt"
+	"io/fs"
 	"path/filepath"
 	"slices"
 	"strings"
@@ -11,7 +12,6 @@ import (
 
 	"github.com/spf13/cobra"
 
-	"squint/cmd/squint/demo"
 	"squint/cmd/squint/internal/report"
 	"squint/cmd/squint/internal/study"
 	"squint/glare/falsecolour"
@@ -22,7 +22,10 @@ import (
 
 // lookOptions are the command line of look.
 type lookOptions struct {
-	Project string // "" for the demo
+	pick
+	// Beside are further sets of states, each its own pictures, NAME=STATE with
+	// semicolons between.
+	Beside  []string
 	Out     string // "" for the default
 	Workers int
 	Seed    *uint64 // nil for the project's
@@ -56,10 +59,10 @@ func newLook(h host, run func(context.Context, host, lookOptions) error) *cobra.
 	cmd := &cobra.Command{
 		Use:   "look [PROJECT.toml]",
 		Short: "Make luminance pictures of viewpoints at moments, or a plan",
-		Long: `Look makes luminance pictures: what a viewpoint sees at a moment, in cd/m2, with
-its sources of glare outlined, or a plan of the room in lx. A picture grows finer
-until its error is as asked, and Ctrl-C keeps what there is. Without a project it
-looks at the demo. "squint guide look" says what the files hold.`,
+		Long: `Look makes luminance pictures: what a viewpoint sees at a moment, in cd/m2,
+with its sources of glare outlined, or a plan of the room in lx. A picture grows
+finer until its error is as asked, and Ctrl-C keeps what there is. Without a
+project it looks at the demo. "squint guide look" says what the files hold.`,
 		Example: `  squint look
   squint look office.toml --view "desk 3" --at "03-21 09:00" --at "12-21 12:00"
   squint look office.toml --all-views --sky overcast
@@ -81,20 +84,12 @@ looks at the demo. "squint guide look" says what the files hold.`,
 		},
 	}
 	f.bind(cmd.Flags(), &o)
-	cmd.Flags().IntVar(&o.Workers, "workers", h.cpus, "`number` of threads, by default one for each CPU")
+	cmd.Flags().IntVar(&o.Workers, "workers", h.cpus, "`number` of threads, by default one for each CPU; the\nsamples do not depend on it")
 	cmd.Flags().Uint64Var(&seed, "seed", 0, "`number` from which all random numbers follow, instead\nof the project's")
 	return cmd
 }
 
 func runLook(ctx context.Context, h host, o lookOptions) error {
-	fsys, name, explain := demo.FS(), demo.Project, func(err error) error { return err }
-	if o.Project != "" {
-		s, err := openSource(o.Project)
-		if err != nil {
-			return inputError{err}
-		}
-		fsys, name, explain = s, s.name, s.explain
-	}
 	out := o.Out
 	if out == "" {
 		// As check's, under another name.
@@ -104,11 +99,11 @@ func runLook(ctx context.Context, h host, o lookOptions) error {
 	if err := canHold(out); err != nil {
 		return inputError{err}
 	}
-	p, err := project.Load(fsys, name)
+	fsys, explain, all, err := o.designs()
 	if err != nil {
-		return inputError{explain(err)}
+		return err
 	}
-	look, err := study.PrepareLook(fsys, []study.Design{{Project: p}}, o.study())
+	look, err := study.PrepareLook(fsys, all, o.study())
 	if err != nil {
 		return inputError{explain(err)}
 	}
@@ -128,6 +123,41 @@ func runLook(ctx context.Context, h host, o lookOptions) error {
 	}
 	fmt.Fprintf(h.out, "Written to %s: %s\n", out, strings.Join(short(files), ", "))
 	return nil
+}
+
+// designs are the projects to look at, each as it stands and with the states of
+// each Beside; without --alternative the first alternative.
+func (o lookOptions) designs() (fsys fs.FS, explain func(error) error, all []study.Design, err error) {
+	d, err := o.open()
+	if err != nil {
+		return nil, nil, nil, err
+	}
+	if o.Alternatives == nil {
+		d.all = d.all[:1]
+	}
+	add := func(p *project.Project, words string) {
+		if p.Alternative != "" && words != "" {
+			words = p.Alternative + ", " + words
+		} else {
+			words += p.Alternative
+		}
+		all = append(all, study.Design{Project: p, Words: words})
+	}
+	for _, p := range d.all {
+		add(p, strings.Join(o.States, ", "))
+		for _, text := range o.Beside {
+			var states []string
+			for s := range strings.SplitSeq(text, ";") {
+				states = append(states, strings.TrimSpace(s))
+			}
+			held, err := hold([]*project.Project{p}, states)
+			if err != nil {
+				return nil, nil, nil, fmt.Errorf("--beside: %w", err)
+			}
+			add(held[0], strings.Join(states, ", "))
+		}
+	}
+	return d.fsys, d.explain, all, nil
 }
 
 // short names the first of many files.
