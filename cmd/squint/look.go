@@ -110,13 +110,18 @@ func runLook(ctx context.Context, h host, o lookOptions) error {
 	if err := report.LookNotes(h.out, look.Notes); err != nil {
 		return err
 	}
-	taken, err := take(ctx, h, o, look)
+	taken, times, err := take(ctx, h, o, look)
 	if err != nil {
 		return err
 	}
 	files, err := report.WriteLook(out, taken, report.LookOptions{Version: h.version, Formats: o.Formats, StandardError: o.StandardError, Map: o.Map, Scale: o.Scale})
 	if err != nil {
 		return fmt.Errorf("pictures: %w", err)
+	}
+	for i, s := range taken {
+		if err := report.LookLine(h.out, s, times[i]); err != nil {
+			return err
+		}
 	}
 	if n := len(look.Shots) - len(taken); n > 0 {
 		fmt.Fprintf(h.out, "Stopped: %d of %d pictures were not begun or had no samples yet.\n", n, len(look.Shots))
@@ -169,12 +174,11 @@ func short(files []string) []string {
 	return append(slices.Clone(files[:most]), fmt.Sprintf("and %d more", len(files)-most))
 }
 
-// take makes the pictures. A stop keeps those with samples; without any it is
-// an error.
-func take(ctx context.Context, h host, o lookOptions, look *study.Look) (taken []*study.Shot, err error) {
+// take makes the pictures and says how long each took. A stop keeps those with
+// samples; without any it is an error.
+func take(ctx context.Context, h host, o lookOptions, look *study.Look) (taken []*study.Shot, times []time.Duration, err error) {
 	bar := newProgress(h)
 	defer func() { bar.Close(err == nil) }()
-	var lines []func() error
 	for i, s := range look.Shots {
 		start := h.now()
 		opt := picture.Options{Error: o.Error, Samples: o.Samples, Progress: func(p *picture.Picture) {
@@ -183,27 +187,18 @@ func take(ctx context.Context, h host, o lookOptions, look *study.Look) (taken [
 		if o.Limit > 0 {
 			opt.Enough = func() bool { return h.now().Sub(start) >= o.Limit }
 		}
-		err := look.Take(ctx, s, opt, bar.Report)
-		if errors.Is(err, picture.ErrNothing) || ctx.Err() != nil && s.Picture == nil {
+		if err := look.Take(ctx, s, opt, bar.Report); err != nil && ctx.Err() == nil {
+			return nil, nil, err
+		}
+		if s.Picture == nil {
 			break
 		}
-		if err != nil {
-			return nil, err
-		}
-		elapsed := h.now().Sub(start)
-		taken = append(taken, s)
-		lines = append(lines, func() error { return report.LookLine(h.out, s, elapsed) })
+		taken, times = append(taken, s), append(times, h.now().Sub(start))
 	}
 	if len(taken) == 0 {
-		return nil, ctx.Err()
+		return nil, nil, ctx.Err()
 	}
-	bar.Close(true)
-	for _, print := range lines {
-		if err := print(); err != nil {
-			return nil, err
-		}
-	}
-	return taken, nil
+	return taken, times, nil
 }
 
 // progressOf is about how far a picture is, in thousandths.

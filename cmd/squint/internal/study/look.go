@@ -323,3 +323,18 @@ func (s *Shot) judge() {
 	s.Glare = &r
 	s.DGPError = glare.Jackknife(field, s.Picture.Mean, s.Picture.Batch, discs, opt, &scratch)
 }
+
+// TakeAll makes all the pictures of one project's designs, for generators: the
+// whole of what look does but for its command line and files.
+func TakeAll(ctx context.Context, fsys fs.FS, designs []Design, o LookOptions, until picture.Options) ([]*Shot, error) {
+	k, err := PrepareLook(fsys, designs, o)
+	if err != nil {
+		return nil, err
+	}
+	for _, s := range k.Shots {
+		if err := k.Take(ctx, s, until, nil); err != nil {
+			return nil, err
+		}
+	}
+	return k.Shots, ctx.Err()
+}
