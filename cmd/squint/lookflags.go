@@ -43,8 +43,8 @@ const usualSkyLx = 10000
 // usualAt is the moment where none is given: noon of an equinox. Own choice.
 var usualAt = study.ClockTime{Month: 3, Day: 21, Hour: 12}
 
-// maxLookPixels bounds a picture's longer side.
-const maxLookPixels = 4096
+// maxLookPixels bounds a picture's longer side, and so the memory to 1.3 GB.
+const maxLookPixels = 2048
 
 // lookFlags are look's flags as text, before they are read into options.
 type lookFlags struct {

@@ -52,7 +52,10 @@ func plain(w *trace.World, m *scene.Moment, v view.View, samples int) (mean, se 
 // centroid lies 4 r/(3 pi) inside, with weights 1-d^2/r^2 less than that, 0.34
 // r; illuminance changes there by at most its own size over the mean distance R,
 // and r = 0.15 R: 0.05. Over a picture edges are few, and inside a surface the
-// first order cancels: 0.15^2/2 = 0.011 is left.
+// first order cancels: 0.15^2/2 = 0.011 is left. The filter's least width of 2.5
+// pixels has shrunk to 1.25 at the 512 samples here, where a neighbour counts
+// 0.36 beside the pixel's own 1; pixels as wide as these, 9 degrees, differ by
+// little else than edges, which it does not cross.
 const (
 	texelBias  = 0.01
 	edgeBias   = 0.05

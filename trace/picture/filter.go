@@ -10,19 +10,20 @@ import (
 
 // How gathered light is shared between pixels that see one flat surface: within
 // a share of the mean distance of what the surface sees, since that is the
-// scale on which its illuminance changes, and never farther than widest pixels.
-// The share shrinks with the samples, so that what the averaging blurs goes to
-// nothing. Own choice of numbers.
+// scale on which its illuminance changes, but at least within narrowest and never
+// farther than widest pixels. Both shrink with the samples, so that what the
+// averaging blurs goes to nothing. Own choice of numbers.
 //
 // Source: Kontkanen, Rasanen & Keller 2004, Irradiance filtering for Monte Carlo
 // ray tracing, Monte Carlo and Quasi-Monte Carlo Methods (from memory).
 const (
-	reach   = 0.15 // share of the harmonic mean distance, up to settled samples
-	settled = 32   // samples a pixel from which reach shrinks
-	widest  = 8    // pixels
-	flat    = 0.99 // least cosine between normals, 8 degrees
-	level   = 0.1  // offset from the plane, in radii
-	around  = 2    // pixels over which the mean distance is taken
+	reach     = 0.15 // share of the harmonic mean distance, up to settled samples
+	settled   = 32   // samples a pixel from which reach shrinks
+	widest    = 8    // pixels
+	narrowest = 2.5  // pixels, up to settled samples
+	flat      = 0.99 // least cosine between normals, 8 degrees
+	level     = 0.1  // offset from the plane, in radii
+	around    = 2    // pixels over which the mean distance is taken
 )
 
 // develop makes the picture of what the film holds.
@@ -74,20 +75,22 @@ func (f *film) pixelOf(p *Picture, x, y int, share float64) {
 }
 
 // gatheredAt averages the gathered illuminance about a pixel, batch by batch
-// with the same weights, 1-(d/r)^2 by the distance d on the surface.
+// with the same weights, 1-(d/r)^2 by the distance d on the surface or, where
+// that is more, in the picture.
 func (f *film) gatheredAt(x, y int, share float64, e *[Batches]float64) {
 	r := &f.pixel[y*f.width+x]
 	radius := share * f.meanDistance(x, y)
 	square := radius * radius
 	var sum, weight [Batches]float64
-	f.neighbours(x, y, widest, func(i int) {
+	least := narrowest * narrowest * share * share / (reach * reach)
+	f.neighbours(x, y, widest, func(i, pixels2 int) {
 		q := &f.pixel[i]
 		d := r3.Sub(q.p, r.p)
 		w := 1 - r3.Norm2(d)/square
-		if i == y*f.width+x {
-			w = 1
+		if math.Abs(r3.Dot(d, r.n)) > level*radius {
+			w = 0
 		}
-		if w <= 0 || math.Abs(r3.Dot(d, r.n)) > level*radius {
+		if w = math.Max(w, 1-float64(pixels2)/least); w <= 0 {
 			return
 		}
 		for b := range Batches {
@@ -107,7 +110,7 @@ func (f *film) gatheredAt(x, y int, share float64, e *[Batches]float64) {
 // about a pixel; where nothing but sky is seen, it has no bound.
 func (f *film) meanDistance(x, y int) float64 {
 	var inverse, count float64
-	f.neighbours(x, y, around, func(i int) {
+	f.neighbours(x, y, around, func(i, _ int) {
 		for b := range Batches {
 			inverse += float64(f.batch[b][i].inverse)
 			count += float64(f.batch[b][i].count)
@@ -120,14 +123,15 @@ func (f *film) meanDistance(x, y int) float64 {
 }
 
 // neighbours calls visit for the pixels within n each way that see the same
-// flat surface as (x, y), itself included.
-func (f *film) neighbours(x, y, n int, visit func(i int)) {
+// flat surface as (x, y), itself included, with their squared distance in
+// pixels.
+func (f *film) neighbours(x, y, n int, visit func(i, pixels2 int)) {
 	r := &f.pixel[y*f.width+x]
 	for j := max(0, y-n); j <= min(f.height-1, y+n); j++ {
 		for i := max(0, x-n); i <= min(f.width-1, x+n); i++ {
 			q := &f.pixel[j*f.width+i]
 			if q.has && q.part == r.part && r3.Dot(q.n, r.n) > flat {
-				visit(j*f.width + i)
+				visit(j*f.width+i, (i-x)*(i-x)+(j-y)*(j-y))
 			}
 		}
 	}

@@ -30,8 +30,8 @@ type walker struct {
 	// found is by depth: 0 the line of sight, then gathered rays.
 	found [deepest + 2]trace.Found
 	// shared is what is aimed at from the pixel's reference, own that from
-	// another surface; none aims nowhere.
-	shared, own, none aim
+	// another surface.
+	shared, own aim
 }
 
 // aim is what gathered rays from one place are aimed at.
@@ -157,7 +157,7 @@ func (w *walker) gather(p, n r3.Vec, a *aim, u, v float64, depth int) (e, invers
 			} else if aimed >= 0 {
 				continue
 			}
-			e += l.Weight * w.factor(&l.Hit, m) / math.Pi * w.lightOn(&l.Hit, side, k, depth) * cos / d
+			e += l.Weight * w.factor(&l.Hit, m) / math.Pi * w.lightOn(&l.Hit, side, k, a, depth) * cos / d
 		}
 	}
 	if aimed >= 0 {
@@ -175,11 +175,12 @@ func (w *walker) brightSeen(a *aim, k int32, l *trace.Landing, side materials.Si
 }
 
 // lightOn is the illuminance on a side, of dense index i, of a surface that a
-// gathered ray met.
-func (w *walker) lightOn(h *trace.Hit, side materials.Side, i int32, depth int) float64 {
+// gathered ray met. Rays from there are aimed at what the first surface sees:
+// the two are near each other.
+func (w *walker) lightOn(h *trace.Hit, side materials.Side, i int32, a *aim, depth int) float64 {
 	n := normalOn(h, side)
 	if depth <= deepest && h.T < w.stage.edgeM[h.Part] {
-		e, _ := w.gather(h.Point, n, &w.none, w.s.Float64(), w.s.Float64(), depth+1)
+		e, _ := w.gather(h.Point, n, a, w.s.Float64(), w.s.Float64(), depth+1)
 		return e + w.sunOn(h.Point, n) + w.photons.illuminance(h.Point, n)
 	}
 	if i < 0 {

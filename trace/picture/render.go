@@ -48,7 +48,7 @@ type Picture struct {
 	Batch        [][]float32
 	// MedianError is the median over pixels of StdErr / Mean.
 	MedianError float64
-	Samples     int // a pixel
+	Samples     int // a pixel, at least
 	// Ended says why no more samples were taken.
 	Ended End
 }
@@ -96,14 +96,14 @@ type cell struct {
 	samples                        int32
 }
 
-// Render makes a picture. Where the context ends before Options do, the rounds
-// that are complete are the picture.
+// Render makes a picture. Where the context ends before Options do, what there is
+// becomes the picture, once every pixel has samples. It takes about 300 bytes a
+// pixel.
 func (l *Light) Render(ctx context.Context, c Camera, o Options) (*Picture, error) {
 	f, err := l.newFilm(ctx, c, o.Quantity)
 	if err != nil {
 		return nil, ErrNothing
 	}
-	var p *Picture
 	for check := 1; l.round(ctx, f) == nil; {
 		end := Stopped
 		switch {
@@ -115,7 +115,7 @@ func (l *Light) Render(ctx context.Context, c Camera, o Options) (*Picture, erro
 		if f.rounds < check && end == Stopped {
 			continue
 		}
-		p = f.develop(l.stage.cfg.Workers)
+		p := f.develop(l.stage.cfg.Workers)
 		if o.Error > 0 && p.MedianError <= o.Error {
 			end = HasError
 		}
@@ -137,10 +137,7 @@ func (l *Light) Render(ctx context.Context, c Camera, o Options) (*Picture, erro
 	if f.rounds == 0 {
 		return nil, ErrNothing
 	}
-	if p.Samples < f.rounds*Batches {
-		p = f.develop(l.stage.cfg.Workers)
-	}
-	return p, nil
+	return f.develop(l.stage.cfg.Workers), nil
 }
 
 func (l *Light) newFilm(ctx context.Context, c Camera, q Quantity) (*film, error) {
@@ -197,16 +194,15 @@ func (l *Light) firstOpaque(org, dir r3.Vec) (trace.Hit, bool) {
 	}
 }
 
-// round adds one pass to each batch; on an error the film keeps what it had.
+// round adds one pass to each batch. On an error some rows have their samples and
+// others not; each pixel counts its own.
 func (l *Light) round(ctx context.Context, f *film) error {
-	var fresh [Batches][]cell
 	var photons [Batches]*photonMap
 	for b := range Batches {
 		var err error
 		if photons[b], err = l.photons(ctx, f.rounds*Batches+b, f.rounds, f.quantity == Illuminance); err != nil {
 			return err
 		}
-		fresh[b] = make([]cell, len(f.pixel))
 	}
 	err := each(ctx, l.stage.cfg.Workers, f.height, func(y int) {
 		w := &walker{Light: l}
@@ -223,29 +219,15 @@ func (l *Light) round(ctx context.Context, f *film) error {
 			}
 			for b := range Batches {
 				w.batch, w.rays, w.photons = b, &l.sun[(f.rounds*Batches+b)%lanes], photons[b]
-				w.sample(f, r, &fresh[b][i], x, y, f.rounds)
+				w.sample(f, r, &f.batch[b][i], x, y, f.rounds)
 			}
 		}
 	})
 	if err != nil {
 		return err
 	}
-	for b := range fresh {
-		for i := range fresh[b] {
-			f.batch[b][i].add(&fresh[b][i])
-		}
-	}
 	f.rounds++
 	return nil
-}
-
-func (c *cell) add(d *cell) {
-	c.rest += d.rest
-	c.share += d.share
-	c.gathered += d.gathered
-	c.inverse += d.inverse
-	c.count += d.count
-	c.samples += d.samples
 }
 
 // rimTries bounds the search for a place of a cut pixel inside the picture;

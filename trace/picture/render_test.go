@@ -85,10 +85,13 @@ func TestErrorIsHonest(t *testing.T) {
 		}
 		return p
 	}
-	const pairs = 4
+	pairs := uint64(4)
+	if testing.Short() {
+		pairs = 2
+	}
 	ratio := func(scale float64) float64 {
 		var all []float64
-		for k := range uint64(pairs) {
+		for k := range pairs {
 			a, b := render(10+2*k), render(11+2*k)
 			for i := range a.Mean {
 				if a.Mean[i] > 0 {
