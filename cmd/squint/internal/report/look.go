@@ -300,7 +300,8 @@ func errorText(p *render.Picture) string {
 func lookSheet(shots []*study.Shot, figures []falsecolour.Figure) (*image.RGBA, error) {
 	cells := slices.Clone(figures)
 	for i, s := range shots {
-		cells[i].Caption = nil
+		// Outlines would hide what is to be compared; each picture has its own.
+		cells[i].Caption, cells[i].Marks = nil, nil
 		if s.Glare != nil {
 			cells[i].Caption = []string{"DGP " + glareText(s) + "."}
 		}
