@@ -127,6 +127,21 @@ func TestAgainstPlainTracer(t *testing.T) {
 	if _, _, wrong := holds(t, p, mean, se); wrong {
 		t.Error("the picture differs from the plain tracer's")
 	}
+	// A corner of ceiling and walls from nearby, where surfaces read each other
+	// closer than a texel's edge.
+	corner, err := view.New(at(1, 4, 2.2), at(-1, 1, 0.8), at(0, 0, 1), view.Perspective, 0.5, 16, 16)
+	if err != nil {
+		t.Fatal(err)
+	}
+	cornerMean, cornerSE := plain(w, m, corner, samples)
+	near, err := light(t, w, m, 2, corner).Render(context.Background(), corner, Options{Samples: 256})
+	if err != nil {
+		t.Fatal(err)
+	}
+	t.Logf("corner: median error %.4f", near.MedianError)
+	if _, _, wrong := holds(t, near, cornerMean, cornerSE); wrong {
+		t.Error("the corner differs from the plain tracer's")
+	}
 	// Twin: the surfaces' exchange 10 % too bright.
 	for b := range l.rest {
 		for i := range l.rest[b] {
