@@ -147,7 +147,7 @@ func (l *Light) newFilm(ctx context.Context, c Camera, q Quantity) (*film, error
 	for b := range f.batch {
 		f.batch[b] = make([]cell, len(f.pixel))
 	}
-	return f, each(ctx, l.stage.cfg.Workers, f.height, func(y int) {
+	err := each(ctx, l.stage.cfg.Workers, f.height, func(y int) {
 		var found trace.Found
 		for x := range f.width {
 			r := &f.pixel[y*f.width+x]
@@ -177,6 +177,10 @@ func (l *Light) newFilm(ctx context.Context, c Camera, q Quantity) (*film, error
 			}
 		}
 	})
+	if err != nil {
+		return nil, err
+	}
+	return f, l.leaveCuts(ctx, f)
 }
 
 // firstOpaque is the first surface that is not clear, as glass is.

@@ -8,6 +8,7 @@ import (
 	"testing"
 
 	"squint/scene/view"
+	"squint/trace"
 )
 
 func pictureOf(t *testing.T, workers, samples int) *Picture {
@@ -166,5 +167,47 @@ func TestPlanShowsTheFloor(t *testing.T) {
 	}
 	if lit < 20 || dark < 100 {
 		t.Errorf("got %d places in the sun and %d in the shade, want enough of both", lit, dark)
+	}
+}
+
+// TestPlanLeavesCuts: where the cut goes through a solid there is no value, as
+// through a pillar of 0.4 m; a room whose fronts are turned round, which looks
+// solid everywhere, is drawn whole.
+func TestPlanLeavesCuts(t *testing.T) {
+	m := newModel(t)
+	grey := m.matte(0.5)
+	m.rect(grey, 0.5, at(0, 0, 0), at(2, 0, 0), at(0, 2, 0))
+	pillar := func(x, y, edge, height float64) {
+		u, v, up := at(edge, 0, 0), at(0, edge, 0), at(0, 0, height)
+		m.rect(grey, 0.5, at(x, y, 0), u, up)
+		m.rect(grey, 0.5, at(x+edge, y, 0), v, up)
+		m.rect(grey, 0.5, at(x, y+edge, 0), up, u)
+		m.rect(grey, 0.5, at(x, y, 0), up, v)
+		m.rect(grey, 0.5, at(x, y, height), u, v)
+	}
+	empty := func() int {
+		c, err := view.NewPlan(0, 2, 0, 2, 1.5, 20)
+		if err != nil {
+			t.Fatal(err)
+		}
+		p, err := light(t, trace.Accelerate(m.s, 2), sunny(t), 2, c).Render(context.Background(), c, Options{Quantity: Illuminance, Samples: 8})
+		if err != nil {
+			t.Fatal(err)
+		}
+		n := 0
+		for _, e := range p.Mean {
+			if e != e {
+				n++
+			}
+		}
+		return n
+	}
+	pillar(0.8, 0.8, 0.4, 3)
+	if n := empty(); n != 16 {
+		t.Errorf("pillar: got %d pixels of 0.1 m without value, want 4 x 4", n)
+	}
+	pillar(-1, -1, 4, 3) // all around, its fronts outwards
+	if n := empty(); n != 0 {
+		t.Errorf("room turned round: got %d pixels without value, want none", n)
 	}
 }

@@ -137,6 +137,10 @@ func shotImage(s *study.Shot, values []float32, spread bool, o LookOptions) *lum
 	a.Comment = plain(s.Name) + "; " + s.Sky + "; " + errorText(p)
 	switch {
 	case s.Plan != nil:
+		im.Valid = make([]bool, len(values))
+		for i, v := range values {
+			im.Valid[i] = v == v
+		}
 		a.Comment = planText(s) + "; " + a.Comment
 	case spread:
 		for _, d := range s.Discs {
