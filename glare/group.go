@@ -21,6 +21,8 @@ type Scratch struct {
 	groupOf []int32       // group of each bright pixel
 	groups  []group
 
+	rest []float32 // an image with one batch left out
+
 	// The work zone's pixels, kept while field and zone stay the same.
 	zoneField  *Field
 	zoneCentre r3.Vec

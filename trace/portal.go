@@ -28,39 +28,62 @@ const portalMinDistance = 0.4
 // normal n looks out of, weighted by their estimated form factor.
 func (w *World) PortalsSeen(p, n r3.Vec) Portals {
 	var ps Portals
-	w.portalsSeen(p, n, &ps)
+	w.SeePortals(p, n, &ps)
 	return ps
 }
 
-// portalsSeen is PortalsSeen into a value that is used again.
-func (w *World) portalsSeen(p, n r3.Vec, ps *Portals) {
-	ps.rects, ps.share, ps.total = ps.rects[:0], ps.share[:0], 0
-	for _, o := range w.Scene.Openings {
-		r := o.Rect
-		area := r.WidthM * r.HeightM
-		if area <= 0 {
-			continue
-		}
-		var f float64
-		near := math.Inf(1)
-		for _, c := range [5][2]float64{{.5, .5}, {.1, .1}, {.9, .1}, {.1, .9}, {.9, .9}} {
-			q := r3.Add(r.Origin, r3.Add(r3.Scale(c[0]*r.WidthM, r.Across), r3.Scale(c[1]*r.HeightM, r.Up)))
-			d := r3.Sub(q, p)
-			d2 := r3.Norm2(d)
-			near = math.Min(near, d2)
-			co, cn := r3.Dot(d, r.Outward), r3.Dot(d, n)
-			if co > 0 && cn > 0 && d2 > 0 {
-				f += co * cn / (d2 * d2)
-			}
-		}
-		f *= area / (5 * math.Pi)
-		if f <= 1e-6 || near < portalMinDistance*portalMinDistance {
-			continue
-		}
-		ps.rects = append(ps.rects, r)
-		ps.share = append(ps.share, math.Min(f, 1))
-		ps.total += math.Min(f, 1)
+// SeePortals is PortalsSeen into a value that is used again.
+func (w *World) SeePortals(p, n r3.Vec, ps *Portals) {
+	ps.clear()
+	for i := range w.Scene.Openings {
+		ps.add(&w.Scene.Openings[i].Rect, p, n)
 	}
+	ps.finish()
+}
+
+// SeeMirrors is SeePortals with the mirrors seen from p beside the openings: a
+// small mirror that shows the sky is as hard to find as a window.
+func (w *World) SeeMirrors(p, n r3.Vec, ps *Portals) {
+	ps.clear()
+	for i := range w.Scene.Openings {
+		ps.add(&w.Scene.Openings[i].Rect, p, n)
+	}
+	for i := range w.mirrors {
+		ps.add(&w.mirrors[i], p, n)
+	}
+	ps.finish()
+}
+
+func (ps *Portals) clear() { ps.rects, ps.share, ps.total = ps.rects[:0], ps.share[:0], 0 }
+
+// add takes a rectangle that is seen from its inner side.
+func (ps *Portals) add(r *system.Rect, p, n r3.Vec) {
+	area := r.WidthM * r.HeightM
+	if area <= 0 {
+		return
+	}
+	var f float64
+	near := math.Inf(1)
+	for _, c := range [5][2]float64{{.5, .5}, {.1, .1}, {.9, .1}, {.1, .9}, {.9, .9}} {
+		q := r3.Add(r.Origin, r3.Add(r3.Scale(c[0]*r.WidthM, r.Across), r3.Scale(c[1]*r.HeightM, r.Up)))
+		d := r3.Sub(q, p)
+		d2 := r3.Norm2(d)
+		near = math.Min(near, d2)
+		co, cn := r3.Dot(d, r.Outward), r3.Dot(d, n)
+		if co > 0 && cn > 0 && d2 > 0 {
+			f += co * cn / (d2 * d2)
+		}
+	}
+	f *= area / (5 * math.Pi)
+	if f <= 1e-6 || near < portalMinDistance*portalMinDistance {
+		return
+	}
+	ps.rects = append(ps.rects, *r)
+	ps.share = append(ps.share, math.Min(f, 1))
+	ps.total += math.Min(f, 1)
+}
+
+func (ps *Portals) finish() {
 	for i := range ps.share {
 		ps.share[i] /= ps.total
 	}

@@ -7,6 +7,7 @@ import (
 
 	"squint/materials"
 	"squint/scene"
+	"squint/scene/system"
 	"squint/trace/bvh"
 )
 
@@ -25,6 +26,7 @@ type World struct {
 	clearPrim []int32
 	eps       float64
 	specular  specular
+	mirrors   []system.Rect // rectangles about mirrors, to aim at
 }
 
 type triangle struct {
@@ -93,6 +95,7 @@ func Accelerate(s *scene.Scene, workers int) *World {
 	// scene's largest coordinate (slender_test.go).
 	w.eps = math.Max(2e-5, extent*math.Ldexp(1, -18))
 	w.findSpecular()
+	w.findMirrors()
 	return w
 }
 

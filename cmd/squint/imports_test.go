@@ -39,6 +39,7 @@ var order = []string{
 	"trace/surface",
 	"trace/coeff",
 	"trace/annual",
+	"trace/picture",
 	"glare/luminance",
 	"glare/falsecolour",
 	"glare",

@@ -9,7 +9,7 @@ import (
 )
 
 // stateFlag is the help of the flag that every command with a scene has.
-const stateFlag = "`NAME=STATE`: let that blind, louvre or roller stand so,\nwhatever it follows; repeat it for several"
+const stateFlag = "`NAME=STATE`: let that blind, louvre or roller stand\nso, whatever it follows; repeat it for several"
 
 // hold lets systems stand in the states of the command line, each NAME=STATE.
 // The same name in several alternatives is held in all that have it.

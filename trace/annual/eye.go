@@ -7,7 +7,6 @@ import (
 	"gonum.org/v1/gonum/spatial/r3"
 
 	"squint/materials/sampling"
-	"squint/scene"
 	"squint/scene/photometry"
 	"squint/trace"
 	"squint/trace/coeff"
@@ -65,7 +64,7 @@ func (w *worker) see(bl *surface.Block, b block, eye int, lit []uint64) {
 			f.Mean[px] = sum * inv
 			f.Sunlit[px] = s.sunlit[p][h] * inv
 		}
-		f.Discs = w.discs(f.Discs[:0], e, m, &bl.Sun[h])
+		f.Discs, w.images = Discs(w.t, e.View.Position, inFront(e.View.Direction), e.Mirrors, m.Sun, &bl.Sun[h], f.Discs[:0], w.images)
 		w.sink(w.number, f)
 	}
 }
@@ -154,39 +153,46 @@ func (w *worker) shine(bl *surface.Block, x *coeff.ShineSample, random *[surface
 	}
 }
 
-// discs looks for the sun's own disc and its images from the eye. What is
-// opaque takes from the solid angle; mirrors, glass and cloth take from the
-// luminance.
-func (w *worker) discs(out []Disc, e *coeff.Eye, m *scene.Moment, rays *surface.SunRays) []Disc {
+// inFront tells directions on the forward side of an eye.
+func inFront(forward r3.Vec) func(dir r3.Vec) bool {
+	return func(dir r3.Vec) bool { return r3.Dot(dir, forward) > 0 }
+}
+
+// Discs appends to out the sun's own disc and its images seen from eye, as far
+// as sees wants the direction; facets are the mirrors to look at, as
+// trace.World.MirrorsFrom finds them. What is opaque takes from the solid angle;
+// mirrors, glass and cloth take from the luminance. images is scratch, returned
+// for use again.
+func Discs(t *surface.Transport, eye r3.Vec, sees func(dir r3.Vec) bool, facets []int32, sun r3.Vec, rays *surface.SunRays, out []Disc, images []trace.Image) ([]Disc, []trace.Image) {
 	if rays.NormalLx <= 0 {
-		return out
+		return out, images
 	}
 	full := photometry.DiscSolidAngle(photometry.SunDiameterRad)
 	lum := photometry.DiscLuminance(rays.NormalLx, photometry.SunDiameterRad)
-	if r3.Dot(m.Sun, e.View.Direction) > 0 {
+	if sees(sun) {
 		var open int
 		var tau float64
 		var seen r3.Vec
 		for i, dir := range rays.Dirs() {
-			if rays.Visible(i) && !w.t.World.Blocked(e.View.Position, dir, math.Inf(1)) {
+			if rays.Visible(i) && !t.World.Blocked(eye, dir, math.Inf(1)) {
 				open++
 				seen = dir
-				tau += w.t.World.Straight(e.View.Position, dir, math.Inf(1))
+				tau += t.World.Straight(eye, dir, math.Inf(1))
 			}
 		}
 		if open > 0 && tau > 0 {
 			share := float64(open) / float64(len(rays.Dirs()))
-			out = append(out, Disc{Dir: m.Sun, OmegaSr: full * share, Luminance: lum * tau / float64(open), Mirror: -1, Via: w.t.World.FirstPane(e.View.Position, seen)})
+			out = append(out, Disc{Dir: sun, OmegaSr: full * share, Luminance: lum * tau / float64(open), Mirror: -1, Via: t.World.FirstPane(eye, seen)})
 		}
 	}
 	first := len(out)
-	w.images = w.t.World.Images(e.View.Position, m.Sun, e.Mirrors, w.t.Hidden, w.images[:0])
-	for _, im := range w.images {
-		if im.Share > 0 && r3.Dot(im.Dir, e.View.Direction) > 0 {
+	images = t.World.Images(eye, sun, facets, t.Hidden, images[:0])
+	for _, im := range images {
+		if im.Share > 0 && sees(im.Dir) {
 			out = append(out, Disc{Dir: im.Dir, OmegaSr: full * im.Share, Luminance: lum * im.Luminous, Mirror: im.Part, Via: im.Via})
 		}
 	}
-	return merge(out, first)
+	return merge(out, first), images
 }
 
 // mergeWithin is the angle within which images in the same mirror are one

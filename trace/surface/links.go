@@ -129,6 +129,10 @@ func (t *Transport) Index(side int32) int32 {
 	return t.active[side] - 1
 }
 
+// Side is the texel side of the dense index i, the inverse of Index: twice the
+// texel, and one more for its back.
+func (t *Transport) Side(i int32) int32 { return t.sides[i] }
+
 // Part is the part of the active side i.
 func (t *Transport) Part(i int32) int32 { return t.Texels.Part(t.sides[i] / 2) }
 

@@ -190,6 +190,10 @@ func (t *Texels) AreaM2(k int32) float64 {
 // Part is the part that texel k belongs to.
 func (t *Texels) Part(k int32) int32 { return t.part[k] }
 
+// Divided tells a texel that shares its cell with others, a wall between them;
+// Sample draws from a list of its points.
+func (t *Texels) Divided(k int32) bool { return t.divided[t.cellOf[k]] != nil }
+
 // At is the texel of a point on a triangle, -1 where none was cut.
 func (t *Texels) At(prim int32, p r3.Vec) int32 {
 	c := t.cellAt(prim, p)

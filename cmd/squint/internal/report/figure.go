@@ -8,7 +8,9 @@ import (
 	"squint/cmd/squint/internal/study"
 	"squint/glare"
 	"squint/glare/falsecolour"
+	"squint/scene"
 	"squint/scene/photometry"
+	"squint/scene/view"
 )
 
 // mostMarked is how many sources are numbered: more would hide the picture.
@@ -37,25 +39,42 @@ func figure(r *study.Result, v *study.ViewResult, scale falsecolour.Scale) false
 	if invented(r.Project, r.Climate.Year) {
 		f.Title += ", " + inventedWords
 	}
-	for i, s := range w.Result.Sources {
+	f.Marks = marks(w.Result.Sources, view)
+	f.Caption = caption(r, v)
+	return f
+}
+
+// marks outline the first sources and number them.
+func marks(sources []glare.Source, v view.View) []falsecolour.Mark {
+	var out []falsecolour.Mark
+	for i, s := range sources {
 		if i == mostMarked {
 			break
 		}
 		m := falsecolour.Mark{Rank: i + 1, Pixels: s.Pixels}
 		if s.Disc {
-			x, y, ok := view.LocalProject(s.Dir)
+			x, y, ok := v.LocalProject(s.Dir)
 			if !ok {
 				continue
 			}
 			// A disc is as large as the sun, whatever part of it is seen.
-			m.X, m.Y, m.RadiusPx = x, y, photometry.SunDiameterRad/2*float64(view.Width)/view.FOVRad
+			m.X, m.Y, m.RadiusPx = x, y, photometry.SunDiameterRad/2*float64(v.Width)/v.FOVRad
 		} else if len(s.Pixels) == 0 {
 			continue
 		}
-		f.Marks = append(f.Marks, m)
+		out = append(out, m)
 	}
-	f.Caption = caption(r, v)
-	return f
+	return out
+}
+
+// skyText tells the sun and the sky of a moment.
+func skyText(m *scene.Moment, northDeg float64) string {
+	sky := whole(m.DiffuseLx) + " lx on the level."
+	if m.SunNormalLx <= 0 {
+		return "No sun; sky " + sky
+	}
+	return fmt.Sprintf("Sun %s° high, azimuth %s°, %s lx on a plane that faces it; sky ",
+		fixed(altitudeDeg(m.Sun), 0), fixed(azimuthDeg(m.Sun, northDeg), 0), whole(m.SunNormalLx)) + sky
 }
 
 // subject is the viewpoint with its bearing, as verdicts name it.
@@ -75,8 +94,7 @@ func caption(r *study.Result, v *study.ViewResult) []string {
 	}
 	lines := []string{
 		"The worst hour in use: " + dateWords(clockTime(r.Calendar, m)) + ". " + result + ".",
-		fmt.Sprintf("Sun %s° high, azimuth %s°, %s lx on a plane that faces it; sky %s lx on the level.",
-			fixed(altitudeDeg(m.Sun), 0), fixed(azimuthDeg(m.Sun, r.Project.Site.NorthDeg), 0), whole(m.SunNormalLx), whole(m.DiffuseLx)),
+		skyText(m, r.Project.Site.NorthDeg),
 	}
 	if s := sourcesText(w.Result); s != "" {
 		lines = append(lines, s)

@@ -12,6 +12,7 @@ import (
 	"squint/glare/falsecolour"
 	"squint/glare/luminance"
 	"squint/scene/photometry"
+	"squint/scene/view"
 	"squint/trace/annual"
 )
 
@@ -65,9 +66,9 @@ func luminanceImage(r *study.Result, v *study.ViewResult, o Options) (*luminance
 	im := &luminance.Image{Width: eye.Width, Height: eye.Height, Lum: append([]float32(nil), w.Lum...)}
 	comment := fmt.Sprintf("%s; worst hour in use: DGP %s, %s lx at the eye", plain(v.Viewpoint.Name), plusMinus(w.DGP, w.StdErr, 3), fixed(w.Ev, 0))
 	for _, disc := range w.Discs {
-		spreadDisc(im, w, disc)
+		spreadDisc(im.Lum, eye, disc)
 	}
-	comment += discComment(w)
+	comment += discComment(eye, w.Discs)
 	if invented(r.Project, r.Climate.Year) {
 		comment = inventedWords + "; " + comment
 	}
@@ -81,13 +82,13 @@ func luminanceImage(r *study.Result, v *study.ViewResult, o Options) (*luminance
 }
 
 // discComment states the discs that are spread over pixels.
-func discComment(w *study.Worst) string {
-	if len(w.Discs) == 0 {
+func discComment(v view.View, discs []annual.Disc) string {
+	if len(discs) == 0 {
 		return ""
 	}
 	s := "; the sun's disc and its images are spread over the pixels they cover: illuminance at the eye holds, DGP needs them apart:"
-	for i, disc := range w.Discs {
-		d := w.InsideOf.View.Local(disc.Dir)
+	for i, disc := range discs {
+		d := v.Local(disc.Dir)
 		if i > 0 {
 			s += ";"
 		}
@@ -96,31 +97,34 @@ func discComment(w *study.Worst) string {
 	return s
 }
 
-// spreadDisc adds a disc to the pixels, in shares by points over its area,
-// its illuminance at the eye kept.
-func spreadDisc(im *luminance.Image, w *study.Worst, disc annual.Disc) {
-	view := w.InsideOf.View
-	local := view.Local(disc.Dir)
-	if local.X <= 0 || !(disc.OmegaSr > 0) {
+// spreadDisc adds a disc to the pixels, in shares by points over its area, its
+// illuminance at the eye kept; of a disc that is not in front of the eye, as a
+// panorama shows it, luminance times solid angle.
+func spreadDisc(lum []float32, v view.View, disc annual.Disc) {
+	local := v.Local(disc.Dir)
+	if !(disc.OmegaSr > 0) {
 		return
 	}
 	// As in glare: L omega (1 - omega/4 pi) cos for a disc in front of the eye.
-	e := disc.Luminance * disc.OmegaSr * (1 - disc.OmegaSr/(4*math.Pi)) * local.X
+	front := local.X > math.Sin(photometry.SunDiameterRad)
+	flux, size := disc.Luminance*disc.OmegaSr, v.SolidAngle
+	if front {
+		flux, size = flux*(1-disc.OmegaSr/(4*math.Pi))*local.X, v.ProjectedSolidAngle
+	}
 	share := map[int]float64{}
 	total := 0.0
 	for _, p := range discPoints(local) {
-		px, py, ok := view.LocalProject(p)
-		if !ok || p.X <= 0 {
+		px, py, ok := v.LocalProject(p)
+		if !ok {
 			continue
 		}
-		i := min(int(py), view.Height-1)*view.Width + min(int(px), view.Width-1)
+		i := min(int(py), v.Height-1)*v.Width + min(int(px), v.Width-1)
 		share[i]++
 		total++
 	}
 	for i, n := range share {
-		projected := view.ProjectedSolidAngle(i%view.Width, i/view.Width)
-		if projected > 0 {
-			im.Lum[i] += float32(e * n / total / projected)
+		if omega := size(i%v.Width, i/v.Width); omega > 0 {
+			lum[i] += float32(flux * n / total / omega)
 		}
 	}
 }

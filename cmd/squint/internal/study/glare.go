@@ -139,7 +139,6 @@ func (g *glareSink) sink(s *scene.Scene, eyes []*coeff.Eye) annual.Sink {
 
 type sinkScratch struct {
 	scratch glare.Scratch
-	rest    []float32 // leave-one-out image
 	wide    []float32 // image of half as many pixels across
 	coarse  glare.Scratch
 	discs   []glare.Disc
@@ -180,17 +179,15 @@ func sourceOptions(c project.Criteria) glare.Options {
 	return o
 }
 
-// take evaluates one frame: DGP of the pooled image, its standard error by
-// the jackknife over batches, and above causeFrom what carries it.
-// Source of the error: Quenouille 1956, Notes on bias in estimation,
-// Biometrika 43; Tukey 1958 (abstract), Annals of Mathematical Statistics 29.
+// take evaluates one frame: DGP of the pooled image, its standard error over
+// batches, and above causeFrom what carries it.
 func (g *standingSink) take(worker int, f *annual.Frame) {
 	w := &g.work[worker]
 	e := g.eyes[f.Eye]
 	v := &g.views[f.Eye]
 	w.discs = toView(w.discs[:0], e, f.Discs)
 	dgp, ev := glare.DGPOnly(g.field, f.Mean, w.discs, g.opt, &w.scratch)
-	se := g.jackknife(w, e, f)
+	se := glare.Jackknife(g.field, f.Mean, f.Batch, w.discs, g.opt, &w.scratch)
 	h := f.Moment.Hour
 	v.DGP[h], v.Ev[h], v.StdErr[h] = float32(dgp), float32(ev), float32(se)
 	v.InRange[h] = glare.InRange(dgp, ev)
@@ -221,30 +218,6 @@ func (g *glareSink) causeID(view int, c Cause) int16 {
 		g.views[view].Causes = append(g.views[view].Causes, c)
 	}
 	return id
-}
-
-// jackknife is the standard error of the pooled DGP.
-func (g *glareSink) jackknife(w *sinkScratch, e *coeff.Eye, f *annual.Frame) float64 {
-	n := len(f.Batch)
-	if n < 2 {
-		return math.NaN()
-	}
-	if len(w.rest) != len(f.Mean) {
-		w.rest = make([]float32, len(f.Mean))
-	}
-	all, without := float32(n)/float32(n-1), 1/float32(n-1)
-	var sum, square float64
-	for b := range f.Batch {
-		batch := f.Batch[b]
-		for _, px := range e.Inside {
-			w.rest[px] = max(0, f.Mean[px]*all-batch[px]*without)
-		}
-		d, _ := glare.DGPOnly(g.field, w.rest, w.discs, g.opt, &w.scratch)
-		sum += d
-		square += d * d
-	}
-	mean := sum / float64(n)
-	return math.Sqrt(math.Max(0, (square/float64(n)-mean*mean)*float64(n-1)))
 }
 
 func toView(out []glare.Disc, e *coeff.Eye, discs []annual.Disc) []glare.Disc {

@@ -141,13 +141,7 @@ func (o *operation) facts(unit int) control.Facts {
 	}
 	for _, m := range project.Movables(o.in.Project) {
 		if m.Name == u.Name && m.Follow != nil {
-			f.Following = func(step int) string {
-				sun := moments[step].Sun
-				if moments[step].SunNormalLx <= 0 {
-					sun = r3.Scale(-1, rect.Outward) // no sun to follow: behind the glass
-				}
-				return m.States[m.FollowFrom+m.Follow.Choose(sun, rect)]
-			}
+			f.Following = func(step int) string { return stateUnder(m, rect, moments[step]) }
 		}
 	}
 	return f

@@ -1,8 +1,14 @@
 package study
 
 import (
+	"strings"
+
+	"gonum.org/v1/gonum/spatial/r3"
+
 	"squint/glare/daylight"
 	"squint/scene"
+	"squint/scene/project"
+	"squint/scene/system"
 	"squint/trace"
 )
 
@@ -12,6 +18,43 @@ type Standing struct {
 	Scene   *scene.Scene
 	World   *trace.World
 	Moments []*scene.Moment
+}
+
+// followers are the systems that follow a law.
+func followers(p *project.Project) []project.Movable {
+	var list []project.Movable
+	for _, m := range project.Movables(p) {
+		if m.Follow != nil && m.Standing != project.RaisedState {
+			list = append(list, m)
+		}
+	}
+	return list
+}
+
+// follow is how followers stand at a moment, and that in words.
+func follow(following []project.Movable, s *scene.Scene, m *scene.Moment) (choice map[string]string, label string) {
+	choice = map[string]string{}
+	var words []string
+	for _, f := range following {
+		k, ok := openingOf(s, f.Opening)
+		if !ok {
+			continue // scene.Build has said so
+		}
+		rect := s.Openings[k].Rect
+		state := stateUnder(f, rect, m)
+		choice[f.Name] = state
+		words = append(words, f.Name+": "+state)
+	}
+	return choice, strings.Join(words, ", ")
+}
+
+// stateUnder is the state of a follower that suits a moment's sun.
+func stateUnder(f project.Movable, rect system.Rect, m *scene.Moment) string {
+	sun := m.Sun
+	if m.SunNormalLx <= 0 {
+		sun = r3.Scale(-1, rect.Outward) // no sun to follow: behind the glass
+	}
+	return f.States[f.FollowFrom+f.Follow.Choose(sun, rect)]
 }
 
 // standingByHour are the labels and which of them holds at each record.

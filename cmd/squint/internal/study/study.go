@@ -34,6 +34,7 @@ const (
 	StageSensors  Stage = "gathering at the sensors"
 	StageYear     Stage = "the year"
 	StageAgain    Stage = "a closer look at close hours"
+	StagePicture  Stage = "the pictures"
 	StageHazard   Stage = "looking for sun that mirrors concentrate"
 )
 
