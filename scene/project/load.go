@@ -70,6 +70,7 @@ func (r *reader) document(root *node, p *Project) {
 	r.resolveReferences(p)
 	r.checkSides(p)
 	r.checkSystems(p)
+	r.checkAsked(root, p)
 }
 
 func (r *reader) section(s section, n *node, p *Project) {

@@ -19,6 +19,7 @@ type reader struct {
 	louvres  []*node
 	openings []*node
 	anidolic []*node // of Project.AnidolicCeilings, in step
+	limits   []*node
 }
 
 // reference is a name that must exist.
