@@ -109,6 +109,16 @@ func Factors(df []float64) FactorStats {
 // asks for 2.13 %).
 func FactorAsked(targetLx, medianDiffuseLx float64) float64 { return targetLx / medianDiffuseLx }
 
+// FactorPlane is daylight factors (shares) as a series of a single hour, 0.
+func FactorPlane(df, stdErr []float64, z float64) Plane {
+	p := Plane{Z: z}
+	for i := range df {
+		p.E = append(p.E, []float32{float32(df[i])})
+		p.SE = append(p.SE, []float32{float32(stdErr[i])})
+	}
+	return p
+}
+
 // FactorProvision holds one level's daylight factors against those of a plane.
 type FactorProvision struct {
 	Level               ProvisionLevel
@@ -121,11 +131,7 @@ type FactorProvision struct {
 // standard errors, taken z wide. Source: EN 17037:2018 annex B, the daylight
 // factor method, from memory.
 func ProvideByFactor(df, stdErr []float64, z, medianDiffuseLx float64, l ProvisionLevel) FactorProvision {
-	p := Plane{Z: z}
-	for i := range df {
-		p.E = append(p.E, []float32{float32(df[i])})
-		p.SE = append(p.SE, []float32{float32(stdErr[i])})
-	}
+	p := FactorPlane(df, stdErr, z)
 	r := FactorProvision{Level: l, MedianDiffuseLx: medianDiffuseLx,
 		TargetDF: FactorAsked(l.TargetLx, medianDiffuseLx), MinimumDF: FactorAsked(l.MinimumLx, medianDiffuseLx)}
 	r.Target = p.SensorShare(Hours{0}, r.TargetDF, 1)

@@ -41,7 +41,7 @@ func Header(w io.Writer, in *study.Input) error {
 		say(word, meshText(m))
 	}
 	say("Checked", checkedText(in))
-	say("Criteria", criteriaText(pr.Criteria))
+	say("Criteria", criteriaText(pr))
 	say("Settings", settingsText(pr))
 	word := "Defaults"
 	for _, d := range defaultTexts(pr) {
@@ -90,10 +90,6 @@ func checkedText(in *study.Input) string {
 		s += fmt.Sprintf(", %s on %s", count(in.Scene.Sensors(), "sensor", "sensors"), count(n, "work plane", "work planes"))
 	}
 	return s + fmt.Sprintf("; %s in use, %s with daylight", count(len(in.Occupied), "hour", "hours"), whole(float64(len(in.Climate.Moments))))
-}
-
-func criteriaText(c project.Criteria) string {
-	return "EN 17037:2018: protection from glare, " + c.Glare + "; daylight provision, " + c.Provision
 }
 
 // settingsText states every value that does not belong to one of many parts.
@@ -148,7 +144,7 @@ func defaultTexts(p *project.Project) []string {
 	}
 	has := map[string]bool{"mesh": len(p.Meshes) > 0, "finish": len(p.Finishes) > 0, "opening": len(p.Openings) > 0,
 		"light_shelf": len(p.LightShelves) > 0, "roller": len(p.Rollers) > 0, "blind": len(p.Blinds) > 0,
-		"louvres": len(p.Louvres) > 0, "sill": len(p.Sills) > 0, "anidolic_ceiling": len(p.AnidolicCeilings) > 0, "viewpoint": len(p.Viewpoints) > 0, "work_plane": len(p.WorkPlanes) > 0}
+		"louvres": len(p.Louvres) > 0, "sill": len(p.Sills) > 0, "anidolic_ceiling": len(p.AnidolicCeilings) > 0, "viewpoint": len(p.Viewpoints) > 0, "limit": len(p.Limits) > 0, "work_plane": len(p.WorkPlanes) > 0}
 	keys := map[string][]string{}
 	var order []string
 	for _, k := range project.Defaults() {

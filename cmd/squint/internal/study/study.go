@@ -45,8 +45,15 @@ type Result struct {
 	Calendar                  daylight.Calendar
 	Occupied, Clock, Daylight daylight.Hours
 
-	Views  []ViewResult
-	Planes []PlaneResult
+	Views    []ViewResult
+	Planes   []PlaneResult
+	Openings []OpeningResult
+
+	// GlareAutonomy is the share of the viewpoints that keep
+	// verdict.DefaultAutonomy.
+	GlareAutonomy verdict.Bracket
+	// ClearNames name the moments under a clear sky, if asked for.
+	ClearNames []string
 
 	// Positions says how long what moves stands in each of its positions.
 	Positions []string
@@ -55,9 +62,11 @@ type Result struct {
 	Hazard *Hazard
 
 	// Outcome combines the asked criteria; Verdicts are those, first what
-	// fails.
+	// fails. Further are those of them that are neither levels of glare nor of
+	// daylight provision, criterion by criterion.
 	Outcome  verdict.Outcome
 	Verdicts []verdict.Verdict
+	Further  []verdict.Verdict
 
 	// Warnings change how far a verdict may be trusted; Notes do not.
 	Warnings, Notes []string
@@ -89,7 +98,9 @@ type Input struct {
 	// Standings are the ways in which the movable systems stand; each has its
 	// own moments. Scene and World are those of the first.
 	Standings []Standing
-	Notes     []string
+	// Clear are moments under a clear sky, on work planes alone.
+	Clear []*scene.Moment
+	Notes []string
 
 	Calendar                  daylight.Calendar
 	Occupied, Clock, Daylight daylight.Hours
@@ -127,6 +138,9 @@ func Prepare(fsys fs.FS, name string, workers int) (*Input, error) {
 	}
 	for _, m := range c.Moments {
 		m.Occupied = used[m.Hour]
+	}
+	if in.Clear, err = clearMoments(p, c, in.Calendar); err != nil {
+		return nil, err
 	}
 	in.World = trace.Accelerate(s, workers)
 	if in.Standings, err = standings(fsys, p, s, in.World, c.Moments, workers); err != nil {
@@ -178,6 +192,9 @@ func Run(ctx context.Context, in *Input, opt Options) (*Result, error) {
 		Calendar: in.Calendar, Occupied: in.Occupied, Clock: in.Clock, Daylight: in.Daylight,
 		Notes: in.Notes, Positions: hoursByStanding(in.Standings),
 	}
+	for i := range in.Clear {
+		r.ClearNames = append(r.ClearNames, fmt.Sprintf("%d h", equinoxClockH[i]))
+	}
 	y, err := computeYear(ctx, in, opt, r)
 	if err != nil {
 		return nil, err
@@ -188,8 +205,19 @@ func Run(ctx context.Context, in *Input, opt Options) (*Result, error) {
 	if r.Hazard, err = hazard(ctx, in, opt); err != nil {
 		return nil, err
 	}
+	if err := r.findSun(ctx, in, opt); err != nil {
+		return nil, err
+	}
 	r.judgeViews(y)
+	r.judgeAutonomy()
 	r.judgePlanes(y)
+	if err := r.judgeViewsOut(ctx, in, opt); err != nil {
+		return nil, err
+	}
+	if err := r.judgeOpenings(in); err != nil {
+		return nil, err
+	}
+	r.judgeLimits()
 	r.combine()
 	return r, nil
 }
