@@ -21,13 +21,18 @@ type Limit struct {
 // Judge holds the series of several places against the limit.
 func (l Limit) Judge(subject string, p daylight.Plane, hours daylight.Hours) Verdict {
 	share := p.SensorsWithin(hours, l.Low, l.High, l.TimeShare)
-	value := func(x float64) string { return fmt.Sprintf("%g%s", x, l.Unit) }
-	span := fmt.Sprintf("%g to %s", l.Low, value(l.High))
+	value := func(x float64) string {
+		if x >= 1000 {
+			return whole(x)
+		}
+		return fmt.Sprintf("%g", x)
+	}
+	span := value(l.Low) + " to " + value(l.High) + l.Unit
 	switch {
 	case math.IsInf(l.Low, -1):
-		span = "at most " + value(l.High)
+		span = "at most " + value(l.High) + l.Unit
 	case math.IsInf(l.High, 1):
-		span = "at least " + value(l.Low)
+		span = "at least " + value(l.Low) + l.Unit
 	}
 	what := l.Metric + " of " + span
 	if l.Hours != "" {

@@ -112,7 +112,7 @@ func TestMoreTexts(t *testing.T) {
 		{ClothProtection("window 1", 1, 2), NotMet,
 			"window 1: cloth of class 1 (at least 2 asked)."},
 		{own.Judge("Office", series, daylight.Hours{0, 1}), NotMet,
-			"Office: illuminance of 300 to 2000 lx in 50 % of the hours in use at 50 % of the sensors (at least 80 % asked)."},
+			"Office: illuminance of 300 to 2,000 lx in 50 % of the hours in use at 50 % of the sensors (at least 80 % asked)."},
 	} {
 		if c.v.Outcome != c.o || c.v.Text != c.text {
 			t.Errorf("%s: %q\nwant %s: %q", c.v.Outcome, c.v.Text, c.o, c.text)

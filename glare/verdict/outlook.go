@@ -52,7 +52,7 @@ func ViewOut(subject string, l ViewLevel, share Bracket) Verdict {
 		Subject:   subject,
 		Text:      fmt.Sprintf("%s: the view out is had from %s of the area (at least %s asked)", subject, spreadIn(share), percent(l.AreaShare)),
 	}
-	return v.judged(share, l.AreaShare, AtLeast(share, l.AreaShare), "edges in view are known to half a degree only")
+	return v.judged(share, l.AreaShare, AtLeast(share, l.AreaShare), "edges in view are known to a quarter of a degree only")
 }
 
 // SunLevel is a level of exposure to sunlight on the day chosen.

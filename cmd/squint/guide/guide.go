@@ -26,6 +26,7 @@ var topics = []Topic{
 	{"anidolic", "anidolic ceilings: collector, mirrored duct and outlet"},
 	{"weather", "weather files, and the moment each record stands for"},
 	{"criteria", "what is judged, which hours count, and the sources"},
+	{"outlook", "view out, exposure to sunlight, sun on the glass"},
 	{"results", "the results folder, confidence, exit statuses"},
 	{"export", "the built scene as files for CAD and viewers"},
 	{"method", "how it is computed, in plain words"},
@@ -85,6 +86,9 @@ func Page(name string, statuses []Status) (string, error) {
 		"hours":      hours,
 		"protection": protection,
 		"provision":  provision,
+		"roofs":      roofs,
+		"viewlevels": viewLevels,
+		"sunlevels":  sunLevels,
 		"statuses":   func() string { return statusList(statuses) },
 		"topics":     Index,
 	}).Parse(string(source))

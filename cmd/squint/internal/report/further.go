@@ -31,8 +31,21 @@ func furtherSection(p *page, r *study.Result) {
 		}
 		of[criterion] = append(of[criterion], finding{v: v, name: v.Subject, rank: rank})
 	}
+	worst := func(c string) int { // not met before undecided before met
+		rank := map[verdict.Outcome]int{verdict.NotMet: 2, verdict.Undecided: 1}
+		most := 0
+		for _, f := range of[c] {
+			most = max(most, rank[f.v.Outcome])
+		}
+		return most
+	}
+	slices.SortStableFunc(order, func(a, b string) int { return worst(b) - worst(a) })
 	for _, c := range order {
-		p.para(2, sentence(c))
+		text := c
+		if !strings.HasPrefix(c, "sDA") {
+			text = sentence(c)
+		}
+		p.para(2, text)
 		findings(p, of[c], "place", "places", "nearest to the limit")
 	}
 }

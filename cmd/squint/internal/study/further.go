@@ -48,6 +48,27 @@ func (r *Result) judgeFurther(p *PlaneResult, z float64) {
 	}
 }
 
+// Of the planes of IES LM-83-12, with 1 % for the rounding of feet: 30 in above the floor, points 2 ft apart. From memory.
+const (
+	clockPlaneM   = 0.762
+	clockSpacingM = 0.61 * 1.01
+)
+
+// clockNotes says where sDA and ASE are asked of planes that the standard lays
+// otherwise.
+func clockNotes(p *project.Project, s *scene.Scene) []string {
+	if p.Criteria.SDAAtLeast == nil && p.Criteria.ASEAtMost == nil {
+		return nil
+	}
+	var notes []string
+	for _, w := range s.WorkPlanes {
+		if w.SpacingM > clockSpacingM || math.Abs(w.HeightM-clockPlaneM) > 0.05 {
+			notes = append(notes, fmt.Sprintf("work plane %q: sensors %.2g m apart at z = %.3g m; IES LM-83 asks for 0.6 m at most and 0.76 m above the floor.", w.Name, w.SpacingM, w.HeightM))
+		}
+	}
+	return notes
+}
+
 // provisionLevels are those for the openings that the project names.
 func provisionLevels(p *project.Project) []daylight.ProvisionLevel {
 	if p.Criteria.ProvisionOpenings == "horizontal" {

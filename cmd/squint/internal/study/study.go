@@ -142,6 +142,7 @@ func Prepare(fsys fs.FS, name string, workers int) (*Input, error) {
 	if in.Clear, err = clearMoments(p, c, in.Calendar); err != nil {
 		return nil, err
 	}
+	in.Notes = append(in.Notes, clockNotes(p, s)...)
 	in.World = trace.Accelerate(s, workers)
 	if in.Standings, err = standings(fsys, p, s, in.World, c.Moments, workers); err != nil {
 		return nil, err
