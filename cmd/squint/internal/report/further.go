@@ -117,7 +117,7 @@ func sunSection(p *page, r *study.Result) {
 	if !slices.ContainsFunc(groups, shaded) {
 		return
 	}
-	const nameWidth, width = 34, 11
+	const nameWidth, width = 24, 13
 	p.gap()
 	p.head("Sun on the glass, in per cent of the sun on bare glass")
 	line := strings.Repeat(" ", 2+nameWidth)
