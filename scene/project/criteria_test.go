@@ -56,7 +56,7 @@ func TestCriteriaProblems(t *testing.T) {
 		{"illuminances", "[criteria]\nequinox_low_lx = 5000\n", ":25: criteria.equinox_low_lx: got 5000 to 3000 lx, want a lower and a higher illuminance"},
 		{"no bound", "[[limit]]\nmetric = \"DGP\"\n", ":24: limit.at_least: missing; want at_least, at_most or both"},
 		{"bounds the wrong way", "[[limit]]\nmetric = \"illuminance\"\nat_least = 500\nat_most = 300\n", ":27: limit.at_most: got 300, below at_least = 500; want it above"},
-		{"no metric", "[[limit]]\nat_most = 1\n", ":24: limit.metric: missing; want \"illuminance\", \"direct sun\", \"daylight factor\", \"DGP\" or \"sunlit share\""},
+		{"no metric", "[[limit]]\nat_most = 1\n", ":24: limit.metric: missing; want \"illuminance\", \"direct sun\", \"daylight factor\", \"DGP\", \"eye illuminance\" or \"sunlit share\""},
 		{"hours of eyes", "[[limit]]\nmetric = \"DGP\"\nat_most = 0.4\nhours = \"all\"\n", ":27: limit.hours: got \"all\", want \"in use\": viewpoints are looked at while the room is in use"},
 		{"hours of a factor", "[[limit]]\nmetric = \"daylight factor\"\nat_least = 0.02\ntime_share = 0.5\n", ":27: limit.time_share: got it with the daylight factor, which has no hours; leave it out"},
 	} {

@@ -44,6 +44,7 @@ const (
 	LimitSun            = "direct sun"
 	LimitDaylightFactor = "daylight factor"
 	LimitDGP            = "DGP"
+	LimitEye            = "eye illuminance"
 	LimitSunlit         = "sunlit share"
 )
 
@@ -56,13 +57,13 @@ const (
 )
 
 var (
-	limitMetrics = []string{LimitIlluminance, LimitSun, LimitDaylightFactor, LimitDGP, LimitSunlit}
+	limitMetrics = []string{LimitIlluminance, LimitSun, LimitDaylightFactor, LimitDGP, LimitEye, LimitSunlit}
 	limitHours   = []string{HoursInUse, HoursClock, HoursDaylight, HoursAll}
 )
 
 var limitKeys = []key[Limit]{
 	{spec{name: "name", about: "shown in results", form: itemName}, func(l *Limit) any { return &l.Name }},
-	{spec{name: "metric", about: "illuminance or direct sun (lx) or daylight factor (a share) at the sensors; DGP at the viewpoints; sunlit share of the openings", required: true, choices: limitMetrics}, func(l *Limit) any { return &l.Metric }},
+	{spec{name: "metric", about: "illuminance or direct sun (lx) or daylight factor (a share) at the sensors; DGP or eye illuminance (lx) at the viewpoints; sunlit share of the openings", required: true, choices: limitMetrics}, func(l *Limit) any { return &l.Metric }},
 	{spec{name: "at_least", about: "least value that is in order"}, func(l *Limit) any { return &l.AtLeast }},
 	{spec{name: "at_most", about: "largest value that is in order"}, func(l *Limit) any { return &l.AtMost }},
 	{spec{name: "hours", about: "hours that count: in use; 8 to 18 clock time on every day; the 4380 with the sun highest; all of the year", choices: limitHours, def: `"in use"`, source: own}, func(l *Limit) any { return &l.Hours }},
@@ -83,7 +84,8 @@ func checkLimit(r *reader, n *node, l *Limit) {
 	if !n.good("metric") {
 		return
 	}
-	if l.Metric == LimitDGP && n.good("hours") && l.Hours != HoursInUse {
+	atEyes := l.Metric == LimitDGP || l.Metric == LimitEye
+	if atEyes && n.good("hours") && l.Hours != HoursInUse {
 		r.reject(n, name, "hours", "got %s, want %s: viewpoints are looked at while the room is in use", quote(l.Hours), quote(HoursInUse))
 	}
 	for _, key := range []string{"hours", "time_share"} {
@@ -122,7 +124,7 @@ func (r *reader) checkAsked(root *node, p *Project) {
 	for i, l := range p.Limits {
 		table, missing := "work_plane", planes
 		switch l.Metric {
-		case LimitDGP:
+		case LimitDGP, LimitEye:
 			table, missing = "viewpoint", eyes
 		case LimitSunlit:
 			table, missing = "opening", openings

@@ -163,11 +163,16 @@ func (r *Result) judgeLimits() {
 		hours, words := r.hoursOf(l.Hours)
 		v.Hours = words
 		switch l.Metric {
-		case project.LimitDGP:
+		case project.LimitDGP, project.LimitEye:
 			v.Places = "viewpoints"
 			s := daylight.Plane{Z: r.Settings.ZViews}
 			for k := range r.Views {
-				s.E, s.SE = append(s.E, r.Views[k].DGP), append(s.SE, r.Views[k].StdErr)
+				w := &r.Views[k]
+				e, se := w.DGP, w.StdErr
+				if l.Metric == project.LimitEye {
+					e, se, v.Unit = w.Ev, w.EvErr, " lx"
+				}
+				s.E, s.SE = append(s.E, e), append(s.SE, se)
 			}
 			r.further(v.Judge(r.allViews(), s, hours))
 		case project.LimitSunlit:

@@ -54,6 +54,10 @@ hours = "all"
 time_share = 0.9
 
 [[limit]]
+metric = "eye illuminance"
+at_most = 20000
+
+[[limit]]
 metric = "direct sun"
 at_most = 1000
 `
@@ -105,11 +109,16 @@ func TestFurtherCriteria(t *testing.T) {
 	if v := find("glare protection, simplified"); v.Outcome != verdict.NotMet { // the window has no roller
 		t.Errorf("simplified route: %s", v.Outcome)
 	}
-	for _, part := range []string{"ASE", "daylight provision by daylight factor", "view out", "exposure to sunlight", "clear sky", "own limit: daylight factor", "own limit: sunlit share", "own limit: direct sun"} {
+	for _, part := range []string{"ASE", "daylight provision by daylight factor", "view out", "exposure to sunlight", "clear sky", "own limit: daylight factor", "own limit: sunlit share", "own limit: direct sun", "own limit: eye illuminance of at most 20,000 lx"} {
 		find(part)
 	}
-	if len(r.Further) != 13 || len(r.Verdicts) != 13+len(r.Views)+len(r.Planes) {
+	if len(r.Further) != 14 || len(r.Verdicts) != 14+len(r.Views)+len(r.Planes) {
 		t.Errorf("%d further verdicts of %d", len(r.Further), len(r.Verdicts))
+	}
+	for h, e := range r.Views[0].EvErr {
+		if ev := r.Views[0].Ev[h]; ev > 100 && !(e > 0 && e < ev) {
+			t.Errorf("record %d: illuminance at the eye %g lx with an error of %g", h, ev, e)
+		}
 	}
 	p := &r.Planes[0]
 	for s := range p.Clear.E {

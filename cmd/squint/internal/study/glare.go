@@ -22,6 +22,7 @@ type ViewResult struct {
 	DGP       []float32
 	StdErr    []float32 // of DGP, jackknife over the batches
 	Ev        []float32 // lx
+	EvErr     []float32 // of Ev, as StdErr
 	InRange   []bool    // DGP within the range of its data
 	Cause     []int16   // index into Causes, -1 where DGP is low
 	Causes    []Cause
@@ -141,13 +142,13 @@ func newGlareSink(in *Input, workers int) *glareSink {
 		v := &g.views[i]
 		v.Viewpoint = in.Scene.Viewpoints[i]
 		n := len(in.Climate.SinAltitude)
-		v.DGP, v.StdErr, v.Ev = make([]float32, n), make([]float32, n), make([]float32, n)
+		v.DGP, v.StdErr, v.Ev, v.EvErr = make([]float32, n), make([]float32, n), make([]float32, n), make([]float32, n)
 		v.InRange, v.Cause = make([]bool, n), make([]int16, n)
 		for h := range v.DGP {
-			v.DGP[h], v.StdErr[h], v.Ev[h], v.Cause[h] = nan32(), nan32(), nan32(), -1
+			v.DGP[h], v.StdErr[h], v.Ev[h], v.EvErr[h], v.Cause[h] = nan32(), nan32(), nan32(), nan32(), -1
 		}
 		for _, h := range in.Occupied {
-			v.DGP[h], v.StdErr[h], v.Ev[h] = 0, 0, 0
+			v.DGP[h], v.StdErr[h], v.Ev[h], v.EvErr[h] = 0, 0, 0, 0
 		}
 		g.cause[i] = map[Cause]int16{}
 	}
@@ -176,9 +177,9 @@ func (g *standingSink) take(worker int, f *annual.Frame) {
 	v := &g.views[f.Eye]
 	w.discs = toView(w.discs[:0], e, f.Discs)
 	dgp, ev := glare.DGPOnly(g.field, f.Mean, w.discs, g.opt, &w.scratch)
-	se := g.jackknife(w, e, f)
+	se, evErr := g.jackknife(w, e, f)
 	h := f.Moment.Hour
-	v.DGP[h], v.Ev[h], v.StdErr[h] = float32(dgp), float32(ev), float32(se)
+	v.DGP[h], v.Ev[h], v.StdErr[h], v.EvErr[h] = float32(dgp), float32(ev), float32(se), float32(evErr)
 	v.InRange[h] = glare.InRange(dgp, ev)
 	g.mu[f.Eye].Lock()
 	defer g.mu[f.Eye].Unlock()
@@ -203,28 +204,33 @@ func (g *standingSink) take(worker int, f *annual.Frame) {
 	}
 }
 
-// jackknife is the standard error of the pooled DGP.
-func (g *glareSink) jackknife(w *sinkScratch, e *coeff.Eye, f *annual.Frame) float64 {
+// jackknife holds the standard errors of the pooled DGP and Ev.
+func (g *glareSink) jackknife(w *sinkScratch, e *coeff.Eye, f *annual.Frame) (dgp, ev float64) {
 	n := len(f.Batch)
 	if n < 2 {
-		return math.NaN()
+		return math.NaN(), math.NaN()
 	}
 	if len(w.rest) != len(f.Mean) {
 		w.rest = make([]float32, len(f.Mean))
 	}
 	all, without := float32(n)/float32(n-1), 1/float32(n-1)
-	var sum, square float64
+	var sum, square [2]float64
 	for b := range f.Batch {
 		batch := f.Batch[b]
 		for _, px := range e.Inside {
 			w.rest[px] = max(0, f.Mean[px]*all-batch[px]*without)
 		}
-		d, _ := glare.DGPOnly(g.field, w.rest, w.discs, g.opt, &w.scratch)
-		sum += d
-		square += d * d
+		d, v := glare.DGPOnly(g.field, w.rest, w.discs, g.opt, &w.scratch)
+		for k, x := range [2]float64{d, v} {
+			sum[k] += x
+			square[k] += x * x
+		}
 	}
-	mean := sum / float64(n)
-	return math.Sqrt(math.Max(0, (square/float64(n)-mean*mean)*float64(n-1)))
+	stdErr := func(k int) float64 {
+		mean := sum[k] / float64(n)
+		return math.Sqrt(math.Max(0, (square[k]/float64(n)-mean*mean)*float64(n-1)))
+	}
+	return stdErr(0), stdErr(1)
 }
 
 func toView(out []glare.Disc, e *coeff.Eye, discs []annual.Disc) []glare.Disc {
