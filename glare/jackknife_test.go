@@ -30,17 +30,20 @@ func TestJackknife(t *testing.T) {
 		batch = append(batch, b)
 	}
 	var scratch Scratch
-	got := Jackknife(f, mean, batch, nil, Options{}, &scratch)
+	got, gotEv := Jackknife(f, mean, batch, nil, Options{}, &scratch)
 	// Sum of squared differences from 410 is 2000; over 4 x 3 the root is 12.91
 	// cd/m2, times pi the error of the illuminance; DGP's slope is that between
 	// two levels.
 	a, ev1 := DGPOnly(f, batch[0], nil, Options{}, &scratch)
 	b, ev2 := DGPOnly(f, batch[1], nil, Options{}, &scratch)
 	want := (b - a) / (ev2 - ev1) * math.Pi * math.Sqrt(2000.0/12)
+	if wantEv := math.Pi * math.Sqrt(2000.0/12); math.Abs(gotEv/wantEv-1) > 1e-2 { // pixels at the rim
+		t.Errorf("Ev: got %g, want %g", gotEv, wantEv)
+	}
 	if math.Abs(got/want-1) > 1e-3 { // float32 images
 		t.Errorf("got %g, want %g", got, want)
 	}
-	if got := Jackknife(f, mean, batch[:1], nil, Options{}, &scratch); !math.IsNaN(got) {
+	if got, _ := Jackknife(f, mean, batch[:1], nil, Options{}, &scratch); !math.IsNaN(got) {
 		t.Errorf("one batch: got %g, want NaN", got)
 	}
 }

@@ -35,6 +35,7 @@ var order = []string{
 	"scene/export",
 	"trace/bvh",
 	"trace",
+	"trace/outlook",
 	"trace/soundness",
 	"trace/surface",
 	"trace/coeff",

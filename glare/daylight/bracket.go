@@ -64,9 +64,15 @@ func (p Plane) TimeShare(sensor int, hours Hours, thresholdLx float64) Bracket {
 // SensorShare is the share of sensors that reach thresholdLx in at least
 // timeShare of the hours: as computed, surely, and possibly.
 func (p Plane) SensorShare(hours Hours, thresholdLx, timeShare float64) Bracket {
+	return p.sharing(hours, timeShare, func(s int) Bracket { return p.TimeShare(s, hours, thresholdLx) })
+}
+
+// sharing is the share of sensors whose own share of the hours is at least
+// timeShare.
+func (p Plane) sharing(hours Hours, timeShare float64, of func(sensor int) Bracket) Bracket {
 	var b Bracket
 	for s := range p.E {
-		t := p.TimeShare(s, hours, thresholdLx)
+		t := of(s)
 		if t.Surely >= timeShare {
 			b.Surely++
 		}
@@ -81,6 +87,32 @@ func (p Plane) SensorShare(hours Hours, thresholdLx, timeShare float64) Bracket 
 		b = Bracket{}.over(0)
 	}
 	return b.over(float64(len(p.E)))
+}
+
+// TimeWithin is the share of the hours in which one sensor's value lies from
+// low to high, both included: as computed, surely, and possibly. NaN lies
+// possibly within, never surely. Bounds may be infinite.
+func (p Plane) TimeWithin(sensor int, hours Hours, low, high float64) Bracket {
+	var b Bracket
+	for _, h := range hours {
+		down, e, up := p.shifted(sensor, h, -1), p.shifted(sensor, h, 0), p.shifted(sensor, h, 1)
+		if down >= low && up <= high {
+			b.Surely++
+		}
+		if e >= low && e <= high {
+			b.Estimate++
+		}
+		if !(up < low || down > high) {
+			b.Possibly++
+		}
+	}
+	return b.over(float64(len(hours)))
+}
+
+// SensorsWithin is the share of sensors whose value lies from low to high in at
+// least timeShare of the hours.
+func (p Plane) SensorsWithin(hours Hours, low, high, timeShare float64) Bracket {
+	return p.sharing(hours, timeShare, func(s int) Bracket { return p.TimeWithin(s, hours, low, high) })
 }
 
 // Reached is the illuminance (lx) that the sensor reaches in at least

@@ -172,6 +172,7 @@ var HourRules = []HourRule{
 	{"ASE", BaseClock, "IES LM-83-12: the hours of sDA; blinds open"},
 	{"EN 17037 provision", BaseDaylight, "EN 17037:2018: 4380 daylight hours; here those with the sun highest"},
 	{"EN 17037 glare", BaseOccupied, "EN 17037:2018: the usage time"},
+	{"sGA", BaseOccupied, "Jones 2019, Fast climate-based glare analysis and spatial mapping, Building Simulation: the usage time"},
 }
 
 // RuleOf finds the metric in HourRules.

@@ -5,9 +5,9 @@ import (
 	"slices"
 )
 
-// ProvisionLevel is a level of daylight provision by vertical and inclined
-// openings: for TimeShare of the daylight hours, TargetLx on TargetShare of
-// the plane and MinimumLx on MinimumShare of it.
+// ProvisionLevel is a level of daylight provision: for TimeShare of the
+// daylight hours, TargetLx on TargetShare of the plane and MinimumLx on
+// MinimumShare of it, where that is not 0.
 type ProvisionLevel struct {
 	Name                    string
 	TargetLx, TargetShare   float64
@@ -24,14 +24,12 @@ var ProvisionLevels = []ProvisionLevel{
 	{"high", 750, 0.5, 500, 0.95, 0.5},
 }
 
-// ProvisionByName finds a level in ProvisionLevels.
-func ProvisionByName(name string) (ProvisionLevel, bool) {
-	for _, l := range ProvisionLevels {
-		if l.Name == name {
-			return l, true
-		}
-	}
-	return ProvisionLevel{}, false
+// RoofProvisionLevels are those of EN 17037:2018 for horizontal openings, such
+// as roof lights: the target on 95 % of the plane, no minimum; from memory.
+var RoofProvisionLevels = []ProvisionLevel{
+	{"minimum", 300, 0.95, 0, 0, 0.5},
+	{"medium", 500, 0.95, 0, 0, 0.5},
+	{"high", 750, 0.95, 0, 0, 0.5},
 }
 
 // ProvisionResult holds the shares of the plane that reach the level's two
@@ -110,6 +108,36 @@ func Factors(df []float64) FactorStats {
 // Source: EN 17037:2018 annex A, from memory (London 14100 lx, 300 lx
 // asks for 2.13 %).
 func FactorAsked(targetLx, medianDiffuseLx float64) float64 { return targetLx / medianDiffuseLx }
+
+// FactorPlane is daylight factors (shares) as a series of a single hour, 0.
+func FactorPlane(df, stdErr []float64, z float64) Plane {
+	p := Plane{Z: z}
+	for i := range df {
+		p.E = append(p.E, []float32{float32(df[i])})
+		p.SE = append(p.SE, []float32{float32(stdErr[i])})
+	}
+	return p
+}
+
+// FactorProvision holds one level's daylight factors against those of a plane.
+type FactorProvision struct {
+	Level               ProvisionLevel
+	MedianDiffuseLx     float64
+	TargetDF, MinimumDF float64 // asked, shares
+	Target, Minimum     Bracket // share of sensors
+}
+
+// ProvideByFactor evaluates one level by daylight factors (shares) with their
+// standard errors, taken z wide. Source: EN 17037:2018 annex B, the daylight
+// factor method, from memory.
+func ProvideByFactor(df, stdErr []float64, z, medianDiffuseLx float64, l ProvisionLevel) FactorProvision {
+	p := FactorPlane(df, stdErr, z)
+	r := FactorProvision{Level: l, MedianDiffuseLx: medianDiffuseLx,
+		TargetDF: FactorAsked(l.TargetLx, medianDiffuseLx), MinimumDF: FactorAsked(l.MinimumLx, medianDiffuseLx)}
+	r.Target = p.SensorShare(Hours{0}, r.TargetDF, 1)
+	r.Minimum = p.SensorShare(Hours{0}, r.MinimumDF, 1)
+	return r
+}
 
 // MedianDiffuse is the horizontal diffuse illuminance (lx) reached in half of
 // the daylight hours.

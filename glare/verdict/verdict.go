@@ -2,6 +2,7 @@ package verdict
 
 import (
 	"fmt"
+	"math"
 	"strings"
 )
 
@@ -15,10 +16,35 @@ type Verdict struct {
 	Subject   string // the view or work plane
 	Outcome   Outcome
 
-	Estimate, Surely, Possibly, Limit float64 // shares, 0 to 1
+	Estimate, Surely, Possibly, Limit float64 // shares, 0 to 1, unless Unit says otherwise
+	Unit                              string  // "" for shares, else such as "h"
 
 	Text string // the finding, the number, the reason
 }
+
+// Amount is the estimate in words: 5.5 %, 2.3 h, or none.
+func (v *Verdict) Amount() string {
+	switch {
+	case math.IsNaN(v.Estimate):
+		return "none"
+	case v.Unit == "":
+		return percent(v.Estimate)
+	}
+	return number(v.Estimate) + " " + v.Unit
+}
+
+// judged fills in the numbers and, where it is open, says so in the text.
+func (v Verdict) judged(b Bracket, limit float64, o Outcome, why string) Verdict {
+	v.Estimate, v.Surely, v.Possibly, v.Limit, v.Outcome = b.Estimate, b.Surely, b.Possibly, limit, o
+	if o == Undecided {
+		v.Text += ", undecided: " + why
+	}
+	v.Text += "."
+	return v
+}
+
+// ofSensors is why a verdict on a work plane stays open.
+const ofSensors = "the limit lies within the error of the sensors"
 
 // Combine is the outcome of a room: not met when any verdict is not met, met
 // when all are met, otherwise undecided. Of no verdicts: undecided.

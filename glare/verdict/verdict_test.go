@@ -3,6 +3,7 @@ package verdict
 import (
 	"math"
 	"math/rand/v2"
+	"slices"
 	"strings"
 	"testing"
 
@@ -251,7 +252,8 @@ func TestLevels(t *testing.T) {
 		if !ok || l.DGP != dgp || l.TimeShare != 0.05 {
 			t.Errorf("%s: %+v", name, l)
 		}
-		if _, ok := daylight.ProvisionByName(name); !ok {
+		named := func(l daylight.ProvisionLevel) bool { return l.Name == name }
+		if !slices.ContainsFunc(daylight.ProvisionLevels, named) || !slices.ContainsFunc(daylight.RoofProvisionLevels, named) {
 			t.Errorf("no provision level %s", name)
 		}
 	}

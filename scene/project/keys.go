@@ -1,5 +1,7 @@
 package project
 
+import "slices"
+
 // section is one table of the file, or one list of tables.
 type section struct {
 	name  string
@@ -114,7 +116,8 @@ func sections() []section {
 			func(v *Viewpoint) string { return v.Name }, checkViewpoint),
 		many("work_plane", "a plane that is checked for daylight", workPlaneKeys, func(p *Project) *[]WorkPlane { return &p.WorkPlanes },
 			func(w *WorkPlane) string { return w.Name }, checkWorkPlane),
-		one("criteria", "the levels asked for", criteriaKeys, func(p *Project) *Criteria { return &p.Criteria }, nil),
+		one("criteria", "the levels asked for", slices.Concat(criteriaKeys, wantedKeys), func(p *Project) *Criteria { return &p.Criteria }, checkCriteria),
+		many("limit", "a limit of your own on a series of results", limitKeys, func(p *Project) *[]Limit { return &p.Limits }, nil, checkLimit),
 		one("simulation", "how finely is computed", simulationKeys, func(p *Project) *Simulation { return &p.Simulation }, checkSimulation),
 	}
 }

@@ -100,6 +100,7 @@ func (r *reader) document(root *node, p *Project) {
 	r.checkSides(p)
 	r.checkSystems(p)
 	r.checkControls(p)
+	r.checkAsked(root, p)
 }
 
 func (r *reader) section(s section, n *node, p *Project) {

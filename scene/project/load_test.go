@@ -90,7 +90,9 @@ func wantOffice(data string) *Project {
 			{Name: "desk 2", PositionM: [3]float64{1, 3, 1.2}, TowardM: &[3]float64{1, 0, 1.2}, Line: 120},
 		},
 		WorkPlanes: []WorkPlane{{Name: "desks", PolygonM: [][2]float64{{0, 0}, {3.6, 0}, {3.6, 8.2}, {0, 8.2}}, HeightM: .85, PerimeterM: .5, Line: 125}},
-		Criteria:   Criteria{Glare: "medium", Provision: "minimum", SourceRule: "luminance", SourceLuminance: 2000, SourceMultiple: 4},
+		Criteria: Criteria{Glare: "medium", Provision: "minimum", SourceRule: "luminance", SourceLuminance: 2000, SourceMultiple: 4,
+			ProvisionOpenings: "vertical", ProvisionFactor: "none", ViewOut: "none", ViewAbovePlaneM: .35, Sunlight: "none", SunlightDay: &MonthDay{3, 21}, SunlightHeightM: 1.2,
+			EquinoxLowLx: 300, EquinoxHighLx: 3000},
 		Simulation: Simulation{Seed: 7, Batches: 16, FisheyePixels: 96, SamplesPerPixel: 32, SensorSamples: 4096, TexelM: .2, TexelSamples: 256, Photons: 8000, MemoryMiB: 1024, StepMin: 60, Soiling: "clean"},
 	}
 }

@@ -20,6 +20,7 @@ type reader struct {
 	openings []*node
 	anidolic []*node // of Project.AnidolicCeilings, in step
 	controls []*node
+	limits   []*node
 }
 
 // reference is a name that must exist.

@@ -30,6 +30,7 @@ type Project struct {
 	WorkPlanes       []WorkPlane
 
 	Criteria   Criteria
+	Limits     []Limit
 	Simulation Simulation
 
 	Alternatives []Alternative // of the file; none: it has one design
@@ -255,6 +256,32 @@ type Criteria struct {
 	SourceRule      string
 	SourceLuminance float64 // cd/m2
 	SourceMultiple  float64
+
+	// What follows is judged only where asked for: a level other than "none", a
+	// class above 0, a share that is not nil.
+	ProvisionOpenings   string // "vertical" or "horizontal": whose shares of the plane hold
+	ProvisionFactor     string // level of EN 17037:2018, provision by daylight factor
+	MedianDiffuseLx     *float64
+	ViewOut             string  // level of EN 17037:2018
+	ViewAbovePlaneM     float64 // of the eyes over the work plane
+	Sunlight            string  // level of EN 17037:2018
+	SunlightDay         *MonthDay
+	SunlightAltitudeDeg *float64
+	SunlightHeightM     float64 // least z of the reference point
+	ClothClass          int     // EN 14501, 0 to 4
+
+	SDAAtLeast, ASEAtMost       *float64 // shares of the plane
+	GlareAutonomyAtLeast        *float64 // share of the viewpoints
+	EquinoxAtLeast              *float64 // share of the plane
+	EquinoxLowLx, EquinoxHighLx float64
+}
+
+// Limit is a limit of the user's own. AtLeast or AtMost or both are set.
+type Limit struct {
+	Name, Metric, Hours   string
+	AtLeast, AtMost       *float64
+	TimeShare, PlaceShare float64
+	Line                  int
 }
 
 // Simulation sets how finely is computed.

@@ -27,6 +27,7 @@ var topics = []Topic{
 	{"control", "when what moves is opened and closed"},
 	{"weather", "weather files, and the moment each record stands for"},
 	{"criteria", "what is judged, which hours count, and the sources"},
+	{"outlook", "view out, exposure to sunlight, sun on the glass"},
 	{"results", "the results folder, confidence, exit statuses"},
 	{"look", "luminance pictures of a moment, and plans"},
 	{"export", "the built scene as files for CAD and viewers"},
@@ -87,6 +88,9 @@ func Page(name string, statuses []Status) (string, error) {
 		"hours":      hours,
 		"protection": protection,
 		"provision":  provision,
+		"roofs":      roofs,
+		"viewlevels": viewLevels,
+		"sunlevels":  sunLevels,
 		"statuses":   func() string { return statusList(statuses) },
 		"topics":     Index,
 	}).Parse(string(source))

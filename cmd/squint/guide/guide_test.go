@@ -146,6 +146,22 @@ func TestTablesAreWhole(t *testing.T) {
 			t.Errorf("criteria lacks provision level %s", l.Name)
 		}
 	}
+	for _, l := range daylight.RoofProvisionLevels {
+		if !regexp.MustCompile(l.Name + ` \d+ lx on 95 % of the plane`).MatchString(criteria) {
+			t.Errorf("criteria lacks the roof lights' level %s", l.Name)
+		}
+	}
+	outlook := unwrapped(page(t, "outlook"))
+	for _, l := range verdict.ViewLevels {
+		if !regexp.MustCompile(l.Name + ` \d+ degrees, \d+ m,`).MatchString(outlook) {
+			t.Errorf("outlook lacks view level %s", l.Name)
+		}
+	}
+	for _, l := range verdict.SunLevels {
+		if !regexp.MustCompile(l.Name + ` [\d.]+ h`).MatchString(outlook) {
+			t.Errorf("outlook lacks sunlight level %s", l.Name)
+		}
+	}
 	results := page(t, "results")
 	for _, s := range someStatuses {
 		if want := s.Name + " " + s.Meaning; !strings.Contains(unwrapped(results), want) {

@@ -67,6 +67,31 @@ func provision() string {
 	return strings.TrimRight(b.String(), "\n")
 }
 
+func roofs() string {
+	var b strings.Builder
+	for _, l := range daylight.RoofProvisionLevels {
+		fmt.Fprintf(&b, "  %-8s %g lx on %g %% of the plane, for %g %% of the daylight hours\n", l.Name, l.TargetLx, 100*l.TargetShare, 100*l.TimeShare)
+	}
+	return strings.TrimRight(b.String(), "\n")
+}
+
+func viewLevels() string {
+	var b strings.Builder
+	for _, l := range verdict.ViewLevels {
+		layers := [4]string{1: "the landscape", 2: "the landscape and ground or sky", 3: "landscape, ground and sky"}[l.Layers]
+		fmt.Fprintf(&b, "  %-8s %2g degrees, %2g m, %s\n", l.Name, l.AngleDeg, l.DistanceM, layers)
+	}
+	return strings.TrimRight(b.String(), "\n")
+}
+
+func sunLevels() string {
+	var b strings.Builder
+	for _, l := range verdict.SunLevels {
+		fmt.Fprintf(&b, "  %-8s %g h\n", l.Name, l.Hours)
+	}
+	return strings.TrimRight(b.String(), "\n")
+}
+
 func statusList(list []Status) string {
 	var b strings.Builder
 	for _, s := range list {

@@ -63,7 +63,7 @@ func (hs *Headers) Print(w io.Writer, in *study.Input) error {
 	}
 	list("Geometry", meshes)
 	say("Checked", checkedText(in))
-	say("Criteria", criteriaText(pr.Criteria))
+	say("Criteria", criteriaText(pr))
 	say("Settings", settingsText(pr))
 	list("Defaults", defaultTexts(pr))
 	list("Notes", in.Notes)
@@ -121,10 +121,6 @@ func checkedText(in *study.Input) string {
 	return s + fmt.Sprintf("; %s in use, %s with daylight", count(len(in.Occupied), "hour", "hours"), whole(float64(len(in.Climate.Moments))))
 }
 
-func criteriaText(c project.Criteria) string {
-	return "EN 17037:2018: protection from glare, " + c.Glare + "; daylight provision, " + c.Provision
-}
-
 // settingsText states every value that does not belong to one of many parts.
 func settingsText(p *project.Project) string {
 	s := p.Simulation
@@ -177,7 +173,7 @@ func defaultTexts(p *project.Project) []string {
 	}
 	has := map[string]bool{"mesh": len(p.Meshes) > 0, "finish": len(p.Finishes) > 0, "opening": len(p.Openings) > 0,
 		"light_shelf": len(p.LightShelves) > 0, "roller": len(p.Rollers) > 0, "blind": len(p.Blinds) > 0,
-		"louvres": len(p.Louvres) > 0, "sill": len(p.Sills) > 0, "anidolic_ceiling": len(p.AnidolicCeilings) > 0, "control": len(p.Controls) > 0, "viewpoint": len(p.Viewpoints) > 0, "work_plane": len(p.WorkPlanes) > 0}
+		"louvres": len(p.Louvres) > 0, "sill": len(p.Sills) > 0, "anidolic_ceiling": len(p.AnidolicCeilings) > 0, "control": len(p.Controls) > 0, "viewpoint": len(p.Viewpoints) > 0, "limit": len(p.Limits) > 0, "work_plane": len(p.WorkPlanes) > 0}
 	keys := map[string][]string{}
 	var order []string
 	for _, k := range project.Defaults() {

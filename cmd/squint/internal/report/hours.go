@@ -192,3 +192,29 @@ func writeSensorHours(w io.Writer, r *study.Result) error {
 	}
 	return t.flush(w, 0)
 }
+
+// writeOpeningHours writes every record of the year for every opening.
+func writeOpeningHours(w io.Writer, r *study.Result) error {
+	var t table
+	t.commonComments(r, newPaths(r.Project, r.Scene))
+	t.comment("share of the opening's area that the sun reaches from outdoors, 0 to 1, behind cloth or perforations by what they pass straight; " +
+		"empty: no sun, or the sun behind the opening")
+	for _, h := range stampHeads {
+		t.text(h)
+	}
+	for i := range r.Openings {
+		t.text("sunlit: " + r.Openings[i].Opening.Name)
+	}
+	t.end()
+	for h := range r.Climate.Year.Records {
+		t.stamp(r, h)
+		for i := range r.Openings {
+			t.single(r.Openings[i].Sunlit[h])
+		}
+		t.end()
+		if err := t.flush(w, flushAt); err != nil {
+			return err
+		}
+	}
+	return t.flush(w, 0)
+}

@@ -31,8 +31,13 @@ type summary struct {
 	Notes     []string      `json:"notes"`
 	Positions []string      `json:"positions"`
 
-	Views      []viewJSON  `json:"views"`
-	WorkPlanes []planeJSON `json:"work_planes"`
+	Views      []viewJSON    `json:"views"`
+	WorkPlanes []planeJSON   `json:"work_planes"`
+	Openings   []openingJSON `json:"openings"`
+
+	// GlareAutonomy is the share of viewpoints with DGP up to 0.40 in 95 % of the
+	// usage time.
+	GlareAutonomy bracket `json:"spatial_glare_autonomy_040_95"`
 
 	Hazard *hazardJSON `json:"sun_in_mirrors"` // null where nothing but panes mirrors
 
@@ -51,6 +56,7 @@ type verdictJSON struct {
 	Surely    number `json:"surely"`
 	Possibly  number `json:"possibly"`
 	Limit     number `json:"limit"`
+	Unit      string `json:"unit"` // of the four; "": shares
 	Text      string `json:"text"`
 }
 
@@ -75,7 +81,7 @@ func writeSummary(w io.Writer, r *study.Result, o Options, files []string) error
 		Outcome: r.Outcome.String(), Verdicts: toVerdicts(r.Verdicts), Caveat: verdict.Caveat,
 		Warnings: texts(warnings(r.Warnings, r.Climate, r.Project), f),
 		Cautions: texts(cautions(r.Project), f), Notes: texts(r.Notes, f), Positions: texts(r.Positions, f),
-		Views: viewsJSON(r, files), WorkPlanes: planesJSON(r), Hazard: hazards(r),
+		Views: viewsJSON(r, files), WorkPlanes: planesJSON(r), Openings: openingsJSON(r), GlareAutonomy: toBracket(r.GlareAutonomy), Hazard: hazards(r),
 		Hours:  hoursJSON{Occupied: len(r.Occupied), Clock: len(r.Clock), Daylight: len(r.Daylight)},
 		Inputs: inputs(r, o, f), Settings: settings(r), Files: append([]string{}, files...),
 	}
@@ -101,7 +107,7 @@ func toVerdicts(all []verdict.Verdict) []verdictJSON {
 
 func toVerdict(v verdict.Verdict) verdictJSON {
 	return verdictJSON{v.Criterion, v.Source, v.Subject, v.Outcome.String(),
-		number(v.Estimate), number(v.Surely), number(v.Possibly), number(v.Limit), v.Text}
+		number(v.Estimate), number(v.Surely), number(v.Possibly), number(v.Limit), v.Unit, v.Text}
 }
 
 // texts is never null in JSON.

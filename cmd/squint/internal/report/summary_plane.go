@@ -19,6 +19,9 @@ type planeJSON struct {
 	ASE            spatialJSON     `json:"ase"`
 	Asked          string          `json:"asked"`
 	Provision      []provisionJSON `json:"provision"`
+	ByFactor       *byFactorJSON   `json:"provision_by_daylight_factor"` // null: not asked for, as the next two
+	ViewOut        *viewOutJSON    `json:"view_out"`
+	ClearSky       []clearJSON     `json:"clear_equinox"`
 	Points         []pointJSON     `json:"points"`
 }
 
@@ -78,7 +81,8 @@ func planesJSON(r *study.Result) []planeJSON {
 			UDI:   udiJSON{number(p.MeanUDI.FellShort), number(p.MeanUDI.Supplementary), number(p.MeanUDI.Autonomous), number(p.MeanUDI.Exceeded)},
 			SDA:   spatialJSON{p.SDA.Label, toBracket(p.SDA.Share), p.SDA.Hours},
 			ASE:   spatialJSON{"ASE", toBracket(p.ASE.Share), p.ASE.Hours},
-			Asked: "none", Provision: []provisionJSON{}, Points: points(p)}
+			Asked: "none", Provision: []provisionJSON{}, Points: points(p),
+			ByFactor: byFactor(p), ViewOut: viewOut(p), ClearSky: clearSky(r, p)}
 		if p.Asked >= 0 && p.Asked < len(daylight.ProvisionLevels) {
 			j.Asked = daylight.ProvisionLevels[p.Asked].Name
 		}

@@ -32,7 +32,9 @@ func Terminal(w io.Writer, r *study.Result, resultsDir string, elapsed time.Dura
 	headline(&p, r, f)
 	glareSection(&p, r)
 	provisionSection(&p, r)
+	furtherSection(&p, r)
 	planeSection(&p, r)
+	sunSection(&p, r)
 	hazardSection(&p, r)
 	positionSection(&p, r)
 	trustSection(&p, r, f)
@@ -176,7 +178,7 @@ func findings(p *page, all []finding, one, many, nearest string) {
 		if len(rest) > 0 {
 			var names []string
 			for _, f := range rest {
-				names = append(names, f.name+" ("+percent(f.v.Estimate)+")")
+				names = append(names, f.name+" ("+f.v.Amount()+")")
 			}
 			if len(names) > mostNamed {
 				names = append(names[:mostNamed-1:mostNamed-1], count(len(rest)-mostNamed+1, "more", "more"))
@@ -267,6 +269,9 @@ func whereSection(p *page, r *study.Result, dir string, elapsed time.Duration) {
 		}
 		if r.Scene.Sensors() > 0 {
 			text += "; hours-sensors.csv"
+		}
+		if len(r.Openings) > 0 {
+			text += "; hours-openings.csv"
 		}
 		if worstView(r) != nil {
 			text += "; worst-hour/: a picture of each viewpoint's worst hour"

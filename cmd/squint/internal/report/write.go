@@ -13,7 +13,9 @@ const (
 	SummaryFile = "summary.json"
 	ViewsFile   = "hours-views.csv"
 	SensorsFile = "hours-sensors.csv"
-	PictureDir  = "worst-hour"
+	// OpeningsFile holds the sunlit share of each opening.
+	OpeningsFile = "hours-openings.csv"
+	PictureDir   = "worst-hour"
 )
 
 // Options are what the study does not know.
@@ -62,6 +64,11 @@ func stageAll(f *folder, r *study.Result, o Options) error {
 	}
 	if r.Scene.Sensors() > 0 {
 		if err := add(SensorsFile, func(w io.Writer) error { return writeSensorHours(w, r) }); err != nil {
+			return err
+		}
+	}
+	if len(r.Openings) > 0 {
+		if err := add(OpeningsFile, func(w io.Writer) error { return writeOpeningHours(w, r) }); err != nil {
 			return err
 		}
 	}

@@ -23,6 +23,7 @@ type ViewResult struct {
 	DGP       []float32
 	StdErr    []float32 // of DGP, jackknife over the batches
 	Ev        []float32 // lx
+	EvErr     []float32 // of Ev, as StdErr
 	// Coarse is DGP with pixels twice as wide, and Bias what that says of the
 	// error that the pixels used leave, the same for all hours of one look.
 	Coarse, Bias []float32
@@ -153,14 +154,14 @@ func newGlareSink(in *Input, workers int) *glareSink {
 		v := &g.views[i]
 		v.Viewpoint = in.Scene.Viewpoints[i]
 		n := len(in.Climate.SinAltitude)
-		v.DGP, v.StdErr, v.Ev = make([]float32, n), make([]float32, n), make([]float32, n)
+		v.DGP, v.StdErr, v.Ev, v.EvErr = make([]float32, n), make([]float32, n), make([]float32, n), make([]float32, n)
 		v.Coarse, v.Bias = make([]float32, n), make([]float32, n)
 		v.InRange, v.Cause = make([]bool, n), make([]int16, n)
 		for h := range v.DGP {
-			v.DGP[h], v.StdErr[h], v.Ev[h], v.Coarse[h], v.Cause[h] = nan32(), nan32(), nan32(), nan32(), -1
+			v.DGP[h], v.StdErr[h], v.Ev[h], v.EvErr[h], v.Coarse[h], v.Cause[h] = nan32(), nan32(), nan32(), nan32(), nan32(), -1
 		}
 		for _, h := range in.Occupied {
-			v.DGP[h], v.StdErr[h], v.Ev[h] = 0, 0, 0
+			v.DGP[h], v.StdErr[h], v.Ev[h], v.EvErr[h] = 0, 0, 0, 0
 		}
 		g.cause[i] = map[Cause]int16{}
 	}
@@ -187,9 +188,9 @@ func (g *standingSink) take(worker int, f *annual.Frame) {
 	v := &g.views[f.Eye]
 	w.discs = toView(w.discs[:0], e, f.Discs)
 	dgp, ev := glare.DGPOnly(g.field, f.Mean, w.discs, g.opt, &w.scratch)
-	se := glare.Jackknife(g.field, f.Mean, f.Batch, w.discs, g.opt, &w.scratch)
+	se, evErr := glare.Jackknife(g.field, f.Mean, f.Batch, w.discs, g.opt, &w.scratch)
 	h := f.Moment.Hour
-	v.DGP[h], v.Ev[h], v.StdErr[h] = float32(dgp), float32(ev), float32(se)
+	v.DGP[h], v.Ev[h], v.StdErr[h], v.EvErr[h] = float32(dgp), float32(ev), float32(se), float32(evErr)
 	v.InRange[h] = glare.InRange(dgp, ev)
 	v.Coarse[h] = float32(g.atHalf(w, e, f.Mean))
 	g.mu[f.Eye].Lock()

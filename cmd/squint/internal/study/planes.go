@@ -35,6 +35,12 @@ type PlaneResult struct {
 	Provision []daylight.ProvisionResult // by level
 	Levels    []verdict.Verdict
 	Asked     int // index of the level asked for, -1 for none
+
+	// What follows is nil where it is not asked for.
+	ByFactor    *daylight.FactorProvision
+	ViewOut     *ViewOutResult
+	Clear       daylight.Plane     // by moment of Result.ClearNames
+	ClearShares []daylight.Bracket // of the plane between the illuminances asked for
 }
 
 // daThresholdLx is the threshold of DA and cDA; 300 lx as in IES LM-83-12 and
@@ -53,9 +59,13 @@ func (r *Result) judgePlanes(y *year) {
 		p.E = r.spread(y.light.E[first : first+n])
 		p.StdErr = r.spread(y.light.StdErr[first : first+n])
 		p.Direct = r.spread(y.light.Direct[first : first+n])
+		if y.clear != nil {
+			p.Clear = daylight.Plane{E: y.clear.E[first : first+n], SE: y.clear.StdErr[first : first+n], Z: z}
+		}
 		p.Factor, p.FactorError = y.factors[first:first+n], y.factorE[first:first+n]
 		first += n
 		r.judgePlane(&p, z)
+		r.judgeFurther(&p, z)
 		r.Planes = append(r.Planes, p)
 	}
 }
@@ -87,7 +97,7 @@ func (r *Result) judgePlane(p *PlaneResult, z float64) {
 	plane := daylight.Plane{E: p.E, SE: p.StdErr, Z: z}
 	p.SDA = daylight.SDA(plane, r.Clock, daylight.DefaultSpatial)
 	p.ASE = daylight.ASE(p.Direct, r.Clock, daylight.DefaultExposure)
-	for k, l := range daylight.ProvisionLevels {
+	for k, l := range provisionLevels(r.Project) {
 		res := daylight.Provision(plane, r.Daylight, l)
 		v := verdict.Provision(p.Plane.Name, res)
 		p.Provision = append(p.Provision, res)

@@ -63,7 +63,7 @@ func (r *Result) refine(ctx context.Context, in *Input, opt Options, y *year) er
 			to, from := &y.glare.views[i], &closer.glare.views[k]
 			hours := r.openHours(to, level.DGP, z)
 			for _, h := range hours {
-				to.DGP[h], to.StdErr[h], to.Ev[h], to.InRange[h] = from.DGP[h], from.StdErr[h], from.Ev[h], from.InRange[h]
+				to.DGP[h], to.StdErr[h], to.Ev[h], to.EvErr[h], to.InRange[h] = from.DGP[h], from.StdErr[h], from.Ev[h], from.EvErr[h], from.InRange[h]
 				to.Coarse[h], to.Bias[h] = from.Coarse[h], from.Bias[h]
 			}
 			to.Refined = round

@@ -6,6 +6,7 @@ import (
 
 	"squint/glare/control"
 	"squint/scene"
+	"squint/trace/annual"
 )
 
 // operatedYear is computeYear where systems close for glare: whether they do
@@ -154,7 +155,31 @@ func (o *operation) settled(ctx context.Context, looks map[control.Combination]*
 		whole.factors, whole.factorE = l.year.factors, l.year.factorE
 		o.openYear = l
 	}
+	whole.adoptClear(o, looks, chosen)
 	return whole, o.worstHours(ctx, whole, looks, chosen, opt)
+}
+
+// adoptClear takes each moment under a clear sky from the combination that
+// stands at that hour of the year, else from the first.
+func (y *year) adoptClear(o *operation, looks map[control.Combination]*look, chosen []control.Combination) {
+	for i, m := range o.in.Clear {
+		c := chosen[0]
+		for k, s := range o.steps {
+			if s.Hour == m.Hour {
+				c = chosen[k]
+			}
+		}
+		from := looks[c].year.clear
+		if from == nil {
+			continue
+		}
+		if y.clear == nil {
+			y.clear = annual.NewDaylight(len(from.E), len(o.in.Clear))
+		}
+		for s := range from.E {
+			y.clear.E[s][i], y.clear.StdErr[s][i] = from.E[s][i], from.StdErr[s][i]
+		}
+	}
 }
 
 // worstHours finds the picture of each view's worst hour as it was operated.
@@ -234,7 +259,7 @@ func (y *year) adopt(from *year, in *Input, moments []*scene.Moment) {
 		}
 		for _, m := range moments {
 			h := m.Hour
-			a.DGP[h], a.StdErr[h], a.Ev[h], a.InRange[h] = b.DGP[h], b.StdErr[h], b.Ev[h], b.InRange[h]
+			a.DGP[h], a.StdErr[h], a.Ev[h], a.EvErr[h], a.InRange[h] = b.DGP[h], b.StdErr[h], b.Ev[h], b.EvErr[h], b.InRange[h]
 			a.Coarse[h], a.Bias[h], a.Cause[h] = b.Coarse[h], b.Bias[h], -1
 			if b.Cause[h] >= 0 {
 				a.Cause[h] = y.glare.causeID(i, b.Causes[b.Cause[h]])

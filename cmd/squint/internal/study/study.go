@@ -47,8 +47,15 @@ type Result struct {
 	Calendar                  daylight.Calendar
 	Occupied, Clock, Daylight daylight.Hours
 
-	Views  []ViewResult
-	Planes []PlaneResult
+	Views    []ViewResult
+	Planes   []PlaneResult
+	Openings []OpeningResult
+
+	// GlareAutonomy is the share of the viewpoints that keep
+	// verdict.DefaultAutonomy.
+	GlareAutonomy verdict.Bracket
+	// ClearNames name the moments under a clear sky, if asked for.
+	ClearNames []string
 
 	// Positions says how long what moves stands in each of its positions.
 	Positions []string
@@ -64,9 +71,11 @@ type Result struct {
 	Hazard *Hazard
 
 	// Outcome combines the asked criteria; Verdicts are those, first what
-	// fails.
+	// fails. Further are those of them that are neither levels of glare nor of
+	// daylight provision, criterion by criterion.
 	Outcome  verdict.Outcome
 	Verdicts []verdict.Verdict
+	Further  []verdict.Verdict
 
 	// Warnings change how far a verdict may be trusted; Notes do not.
 	Warnings, Notes []string
@@ -99,7 +108,9 @@ type Input struct {
 	// own moments. Scene and World are those of the first.
 	Standings []Standing
 	operation *operation // nil where everything stands as the project says
-	Notes     []string
+	// Clear are moments under a clear sky, on work planes alone.
+	Clear []*scene.Moment
+	Notes []string
 
 	Calendar                  daylight.Calendar
 	Occupied, Clock, Daylight daylight.Hours
@@ -137,6 +148,10 @@ func Prepare(fsys fs.FS, p *project.Project, workers int) (*Input, error) {
 	for _, m := range c.Moments {
 		m.Occupied = used[m.Hour]
 	}
+	if in.Clear, err = clearMoments(p, c, in.Calendar); err != nil {
+		return nil, err
+	}
+	in.Notes = append(in.Notes, clockNotes(p, s)...)
 	in.World = trace.Accelerate(s, workers)
 	in.Standings = []Standing{{Scene: s, World: in.World, Moments: c.Moments}}
 	if in.operation, err = newOperation(in, fsys, workers); err != nil {
@@ -201,6 +216,9 @@ func Run(ctx context.Context, in *Input, opt Options) (*Result, error) {
 		Calendar: in.Calendar, Occupied: in.Occupied, Clock: in.Clock, Daylight: in.Daylight,
 		Notes: in.Notes,
 	}
+	for i := range in.Clear {
+		r.ClearNames = append(r.ClearNames, fmt.Sprintf("%d h", equinoxClockH[i]))
+	}
 	y, err := operatedYear(ctx, in, opt, r)
 	if err != nil {
 		return nil, err
@@ -217,8 +235,19 @@ func Run(ctx context.Context, in *Input, opt Options) (*Result, error) {
 	if r.Hazard, err = hazard(ctx, in, opt); err != nil {
 		return nil, err
 	}
+	if err := r.findSun(ctx, in, opt); err != nil {
+		return nil, err
+	}
 	r.judgeViews(y)
+	r.judgeAutonomy()
 	r.judgePlanes(y)
+	if err := r.judgeViewsOut(ctx, in, opt); err != nil {
+		return nil, err
+	}
+	if err := r.judgeOpenings(in); err != nil {
+		return nil, err
+	}
+	r.judgeLimits()
 	r.combine()
 	return r, nil
 }

@@ -44,6 +44,7 @@ type year struct {
 	light   *annual.Daylight // [sensor][moment of the climate]
 	factors []float64        // daylight factor by sensor, share
 	factorE []float64        // its standard error
+	clear   *annual.Daylight // [sensor][moment under a clear sky], nil for none
 }
 
 // newYear holds zeros, and NaN where views are not evaluated.
@@ -80,6 +81,9 @@ func computeYear(ctx context.Context, in *Input, opt Options, r *Result) (*year,
 			if err := y.daylightFactors(ctx, e); err != nil {
 				return nil, err
 			}
+		}
+		if err := y.runClear(ctx, in, e, k); err != nil {
+			return nil, err
 		}
 		done := before
 		light, err := annual.Run(ctx, e.t, e.rec, st.Moments, e.cfg, y.glare.sink(st.Scene, e.rec.Eyes), func(n int) { opt.Progress(StageYear, done+n, total) })
