@@ -31,6 +31,8 @@ type summary struct {
 	Notes     []string      `json:"notes"`
 	Positions []string      `json:"positions"`
 
+	Sights []sightJSON `json:"view_taken"`
+
 	Views      []viewJSON    `json:"views"`
 	WorkPlanes []planeJSON   `json:"work_planes"`
 	Openings   []openingJSON `json:"openings"`
@@ -81,7 +83,7 @@ func writeSummary(w io.Writer, r *study.Result, o Options, files []string) error
 		Outcome: r.Outcome.String(), Verdicts: toVerdicts(r.Verdicts), Caveat: verdict.Caveat,
 		Warnings: texts(warnings(r.Warnings, r.Climate, r.Project), f),
 		Cautions: texts(cautions(r.Project), f), Notes: texts(r.Notes, f), Positions: texts(r.Positions, f),
-		Views: viewsJSON(r, files), WorkPlanes: planesJSON(r), Openings: openingsJSON(r), GlareAutonomy: toBracket(r.GlareAutonomy), Hazard: hazards(r),
+		Sights: sightsJSON(r), Views: viewsJSON(r, files), WorkPlanes: planesJSON(r), Openings: openingsJSON(r), GlareAutonomy: toBracket(r.GlareAutonomy), Hazard: hazards(r),
 		Hours:  hoursJSON{Occupied: len(r.Occupied), Clock: len(r.Clock), Daylight: len(r.Daylight)},
 		Inputs: inputs(r, o, f), Settings: settings(r), Files: append([]string{}, files...),
 	}

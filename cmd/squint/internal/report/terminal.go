@@ -37,6 +37,7 @@ func Terminal(w io.Writer, r *study.Result, resultsDir string, elapsed time.Dura
 	sunSection(&p, r)
 	hazardSection(&p, r)
 	positionSection(&p, r)
+	sightSection(&p, r)
 	trustSection(&p, r, f)
 	whereSection(&p, r, resultsDir, elapsed)
 	return p.print(w)

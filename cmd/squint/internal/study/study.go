@@ -59,6 +59,8 @@ type Result struct {
 
 	// Positions says how long what moves stands in each of its positions.
 	Positions []string
+	// Sights are what systems take of the view out.
+	Sights []Sight
 	// Operation is the year of each group of openings whose systems move; nil
 	// where nothing does.
 	Operation *control.Report
@@ -107,6 +109,7 @@ type Input struct {
 	// Standings are the ways in which the movable systems stand; each has its
 	// own moments. Scene and World are those of the first.
 	Standings []Standing
+	fsys      fs.FS
 	operation *operation // nil where everything stands as the project says
 	// Clear are moments under a clear sky, on work planes alone.
 	Clear []*scene.Moment
@@ -126,7 +129,7 @@ func Prepare(fsys fs.FS, p *project.Project, workers int) (*Input, error) {
 	if err != nil {
 		return nil, err
 	}
-	in := &Input{Project: p, Scene: s}
+	in := &Input{Project: p, Scene: s, fsys: fsys}
 	// The year decides the weekday of 1 January, so it is read before the
 	// hours are chosen; the moments are marked afterwards.
 	c, err := scene.ReadClimate(fsys, p, nil)
@@ -230,6 +233,9 @@ func Run(ctx context.Context, in *Input, opt Options) (*Result, error) {
 	}
 	r.Standings, r.Standing = standingByHour(in.Standings)
 	if err := r.refine(ctx, in, opt, y); err != nil {
+		return nil, err
+	}
+	if r.Sights, err = sights(ctx, in.fsys, in, opt); err != nil {
 		return nil, err
 	}
 	if r.Hazard, err = hazard(ctx, in, opt); err != nil {
