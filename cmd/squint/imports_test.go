@@ -40,6 +40,7 @@ var order = []string{
 	"trace/coeff",
 	"trace/annual",
 	"glare/luminance",
+	"glare/photograph",
 	"glare/falsecolour",
 	"glare",
 	"glare/daylight",
