@@ -54,7 +54,7 @@ func TestPlacementDoesNotMatter(t *testing.T) {
 			{X: 100, Y: 100, RadiusPx: 100},
 			{X: 137.3, Y: 111.8, RadiusPx: 100.4, RollRad: 23 * deg},
 			{X: 161.25, Y: 149.6, RadiusPx: 140.7, RollRad: -7 * deg},
-			{X: 110, Y: 108.5, RadiusPx: 103, RollRad: math.Pi},
+			{X: 131, Y: 124.5, RadiusPx: 103, RollRad: math.Pi},
 		} {
 			v := camera(t, p, 2*int(math.Ceil(at.X)), 2*int(math.Ceil(at.Y))+40, at)
 			im := shoot(v, 4, office(30))

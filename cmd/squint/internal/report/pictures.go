@@ -3,16 +3,11 @@ package report
 import (
 	"fmt"
 	"io"
-	"math"
 	"time"
-
-	"gonum.org/v1/gonum/spatial/r3"
 
 	"squint/cmd/squint/internal/study"
 	"squint/glare/falsecolour"
 	"squint/glare/luminance"
-	"squint/scene/photometry"
-	"squint/trace/annual"
 )
 
 // picture is a file of a worst hour.
@@ -55,7 +50,8 @@ func pictures(r *study.Result, o Options) ([]picture, error) {
 // luminanceImage is a worst hour with the sun's disc and its images spread over
 // the pixels that they cover, as mean luminance there, so that the illuminance
 // at the eye follows from the pixels alone. DGP does not: it needs each disc's
-// own luminance, which the comment states, with directions in the view frame.
+// own luminance, which an attribute and the comment state, with directions in the
+// view frame.
 func luminanceImage(r *study.Result, v *study.ViewResult, o Options) (*luminance.Image, error) {
 	w := v.Worst
 	eye := w.InsideOf.View
@@ -64,14 +60,18 @@ func luminanceImage(r *study.Result, v *study.ViewResult, o Options) (*luminance
 	}
 	im := &luminance.Image{Width: eye.Width, Height: eye.Height, Lum: append([]float32(nil), w.Lum...)}
 	comment := fmt.Sprintf("%s; worst hour in use: DGP %s, %s lx at the eye", plain(v.Viewpoint.Name), plusMinus(w.DGP, w.StdErr, 3), fixed(w.Ev, 0))
-	for _, disc := range w.Discs {
-		spreadDisc(im, w, disc)
-	}
 	comment += discComment(w)
 	if invented(r.Project, r.Climate.Year) {
 		comment = inventedWords + "; " + comment
 	}
 	im.Attr.SetView(eye)
+	for _, disc := range w.Discs {
+		d := eye.Local(disc.Dir)
+		im.Attr.Discs = append(im.Attr.Discs, luminance.Disc{Direction: [3]float64{d.X, d.Y, d.Z}, OmegaSr: disc.OmegaSr, Luminance: disc.Luminance})
+	}
+	if err := im.SpreadDiscs(); err != nil {
+		return nil, err
+	}
 	im.Attr.Moment = w.Moment.Time.Format(time.RFC3339)
 	s := r.Climate.Year.Site
 	im.Attr.HasSite, im.Attr.LatitudeDeg, im.Attr.LongitudeDeg = true, s.LatitudeDeg, s.LongitudeDeg
@@ -94,56 +94,4 @@ func discComment(w *study.Worst) string {
 		s += fmt.Sprintf(" %.4g sr of %.4g cd/m2 at forward %.5f, left %.5f, up %.5f", disc.OmegaSr, disc.Luminance, d.X, d.Y, d.Z)
 	}
 	return s
-}
-
-// spreadDisc adds a disc to the pixels, in shares by points over its area,
-// its illuminance at the eye kept.
-func spreadDisc(im *luminance.Image, w *study.Worst, disc annual.Disc) {
-	view := w.InsideOf.View
-	local := view.Local(disc.Dir)
-	if local.X <= 0 || !(disc.OmegaSr > 0) {
-		return
-	}
-	// As in glare: L omega (1 - omega/4 pi) cos for a disc in front of the eye.
-	e := disc.Luminance * disc.OmegaSr * (1 - disc.OmegaSr/(4*math.Pi)) * local.X
-	share := map[int]float64{}
-	total := 0.0
-	for _, p := range discPoints(local) {
-		px, py, ok := view.LocalProject(p)
-		if !ok || p.X <= 0 {
-			continue
-		}
-		i := min(int(py), view.Height-1)*view.Width + min(int(px), view.Width-1)
-		share[i]++
-		total++
-	}
-	for i, n := range share {
-		projected := view.ProjectedSolidAngle(i%view.Width, i/view.Width)
-		if projected > 0 {
-			im.Lum[i] += float32(e * n / total / projected)
-		}
-	}
-}
-
-// discPoints are points evenly spread over the sun's disc around a direction.
-func discPoints(dir r3.Vec) []r3.Vec {
-	up := r3.Vec{Z: 1}
-	if dir.Z > 0.9 || dir.Z < -0.9 {
-		up = r3.Vec{X: 1}
-	}
-	a := r3.Unit(r3.Cross(up, dir))
-	b := r3.Cross(dir, a)
-	const side = 16
-	radius := photometry.SunDiameterRad / 2
-	var out []r3.Vec
-	for i := range side {
-		for j := range side {
-			x, y := (float64(i)+0.5)/side*2-1, (float64(j)+0.5)/side*2-1
-			if x*x+y*y > 1 {
-				continue
-			}
-			out = append(out, r3.Unit(r3.Add(dir, r3.Add(r3.Scale(x*radius, a), r3.Scale(y*radius, b)))))
-		}
-	}
-	return out
 }
