@@ -40,6 +40,8 @@ func TestScripts(t *testing.T) {
 			"cut":        cmdCut,
 			"rows":       cmdRows,
 			"stl":        cmdSTL,
+			"photo":      cmdPhoto,
+			"shade":      cmdShade,
 		},
 	})
 }

@@ -4,6 +4,7 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"slices"
 
 	"gonum.org/v1/gonum/spatial/r3"
 
@@ -55,16 +56,24 @@ type Photograph struct {
 type Plateau struct {
 	CdM2   float64
 	Pixels int
+	Near   int // pixels less than plateauStep below it
 	Inside int // pixels in the circle, all
 }
 
-// ClippedPixels is from how many pixels of the very same largest luminance on a
-// picture counts as clipped. Own choice: noise makes even two unlikely.
-const ClippedPixels = 4
+// Own choices: noise makes even two pixels alike unlikely, where luminances
+// are not rounded; where they are, to 11 bits in half floats, those next to the
+// largest are as frequent unless the range ended.
+const (
+	clippedPixels = 4
+	plateauStep   = 0.005 // relative
+)
 
 // Clipped tells whether the camera's range seems to have ended below the
-// scene's. A picture of one luminance, more than half of it, is none.
-func (p Plateau) Clipped() bool { return p.Pixels >= ClippedPixels && 2*p.Pixels < p.Inside }
+// scene's: several pixels have the very same largest luminance, and few come
+// near it. A picture of one luminance, more than half of it, is none.
+func (p Plateau) Clipped() bool {
+	return p.Pixels >= clippedPixels && p.Pixels > p.Near && 2*p.Pixels < p.Inside
+}
 
 // Develop gives the picture's pixels directions and cd/m2. The image must be
 // valid; discs kept beside its pixels are not touched.
@@ -100,6 +109,7 @@ func Develop(im *luminance.Image, s Settings) (*Photograph, error) {
 		}
 		p.pixel(im, i, s.Vignetting.At(math.Atan2(math.Hypot(dir.Y, dir.Z), dir.X)))
 	}
+	p.findPlateau(im)
 	for _, m := range s.Masks {
 		if len(m.Hidden) != n {
 			return nil, fmt.Errorf("%w %s: got %d pixels, want %d", ErrMask, m.Name, len(m.Hidden), n)
@@ -137,14 +147,31 @@ func (p *Photograph) pixel(im *luminance.Image, i int, vignetting float64) {
 		p.Negative++
 		return
 	}
-	// As the camera saw it: the vignetting undone would tilt a plateau.
-	switch l := float64(lum); {
-	case l > p.Plateau.CdM2:
-		p.Plateau.CdM2, p.Plateau.Pixels = l, 1
-	case l == p.Plateau.CdM2 && l > 0:
-		p.Plateau.Pixels++
-	}
 	p.Lum[i] = float32(float64(lum) / vignetting)
+}
+
+// findPlateau looks at the picture as the camera took it: vignetting undone
+// would tilt a plateau.
+func (p *Photograph) findPlateau(im *luminance.Image) {
+	var inside []float32
+	for i, l := range p.Lum {
+		if l > 0 {
+			inside = append(inside, im.Lum[i])
+		}
+	}
+	if len(inside) == 0 {
+		return
+	}
+	most := slices.Max(inside)
+	p.Plateau.CdM2 = float64(most)
+	for _, l := range inside {
+		switch {
+		case l == most:
+			p.Plateau.Pixels++
+		case float64(l) > (1-plateauStep)*float64(most):
+			p.Plateau.Near++
+		}
+	}
 }
 
 // scale turns the file's unit into cd/m2.

@@ -255,6 +255,21 @@ func TestBadPixels(t *testing.T) {
 	if p := develop(t, im, Settings{}); p.Plateau.Clipped() {
 		t.Errorf("one luminance all over is called clipped: %+v", p.Plateau)
 	}
+	// A gradient in half floats, 11 bits, repeats its largest value and is not
+	// clipped; the same cut at half of it is.
+	for i := range im.Lum {
+		bits := math.Float32bits(900 + float32(i%64)/4 + float32(i/64)/16)
+		im.Lum[i] = math.Float32frombits(bits &^ (1<<13 - 1))
+	}
+	if p := develop(t, im, Settings{}); p.Plateau.Pixels < 4 || p.Plateau.Clipped() {
+		t.Errorf("rounded luminances: got %+v, want several alike and not clipped", p.Plateau)
+	}
+	for i := range im.Lum {
+		im.Lum[i] = min(im.Lum[i], 912)
+	}
+	if p := develop(t, im, Settings{}); !p.Plateau.Clipped() {
+		t.Errorf("cut at 912: got %+v, want it called clipped", p.Plateau)
+	}
 	if _, err := Develop(im, Settings{FOVRad: math.Pi, Factor: 2e38}); !errors.Is(err, luminance.ErrInvalid) {
 		t.Errorf("overflow: got %v, want a refusal", err)
 	}
