@@ -12,7 +12,7 @@ import (
 
 // largestPicture is the widest picture of one image, pixels. Own choice: what
 // a screen shows.
-const largestPicture = 1000
+const largestPicture = 1200
 
 // glareFiles are the files that --out writes: a picture of each image, one
 // sheet of several, and the tables.

@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"image"
 	"math"
+	"strings"
 
 	"squint/glare/falsecolour"
 	"squint/scene/photometry"
@@ -30,7 +31,7 @@ func ImageFigure(im *Image, scale falsecolour.Scale, maxPx int) falsecolour.Figu
 		f.Round = 2*r == float64(s.size.X) && s.size.X == s.size.Y
 	}
 	_, text := im.finding()
-	f.Caption = []string{sentence(text)}
+	f.Caption = []string{strings.ReplaceAll(sentence(text), "cd/m2", "cd/m²")}
 	if !im.Indices {
 		return f
 	}
