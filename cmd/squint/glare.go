@@ -121,7 +121,11 @@ func runGlare(ctx context.Context, h host, o glareOptions) error {
 		if err := ctx.Err(); err != nil {
 			return err
 		}
-		im, err := evaluateImage(name, o)
+		picture, err := readImage(name)
+		if err != nil {
+			return inputError{err}
+		}
+		im, err := evaluateImage(name, picture, o)
 		if err != nil {
 			return inputError{err}
 		}

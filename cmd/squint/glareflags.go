@@ -157,6 +157,11 @@ type sourceFlags struct {
 	LowLight      bool
 }
 
+// defaultCore (cd/m2) sets a photographed sun apart from the bright sky around
+// it, with which its luminance would be averaged away. Own choice, by
+// TestGroupingSensitivity: above clouds and sunlit walls, below the sun's pixels.
+const defaultCore = 50000.0
+
 // sourceRules are those of the project file's source_rule, without blanks.
 var sourceRules = []string{"luminance", "field-mean", "sight-mean"}
 
@@ -167,7 +172,7 @@ func (s *sourceFlags) bind(cmd *cobra.Command) {
 	f.Float64Var(&s.Multiple, "source-multiple", glare.DefaultMultiple, "`factor` of the other two")
 	f.StringVar(&s.Task, "task", "", "what the eye works on, in degrees:\n`right,up,across`; else 34° about the line of\nsight")
 	f.Float64Var(&s.GroupingDeg, "grouping-deg", glare.DefaultGroupingRad*180/math.Pi, "`angle` up to which bright pixels are one\nsource; 0: only those that touch")
-	f.Float64Var(&s.CoreLuminance, "core-luminance", 0, "pixels above so many `cd/m2` are sources apart\nfrom the bright ones around them; 0: never")
+	f.Float64Var(&s.CoreLuminance, "core-luminance", defaultCore, "pixels above so many `cd/m2` are sources apart\nfrom the bright ones about them; 0: none")
 	f.BoolVar(&s.LowLight, "low-light", false, "correct DGP for little light at the eye")
 }
 

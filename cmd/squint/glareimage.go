@@ -18,12 +18,8 @@ import (
 	"squint/scene/view"
 )
 
-// evaluateImage reads one image and evaluates it.
-func evaluateImage(name string, o glareOptions) (*report.Image, error) {
-	im, err := readImage(name)
-	if err != nil {
-		return nil, err
-	}
+// evaluateImage evaluates one image, whose discs it takes out of the pixels.
+func evaluateImage(name string, im *luminance.Image, o glareOptions) (*report.Image, error) {
 	out := &report.Image{File: name, Options: o.Sources.options(), Lux: o.Lux, AgeYears: o.AgeYears, Pigmentation: o.Pigmentation}
 	if err := im.GatherDiscs(); err != nil {
 		return nil, fmt.Errorf("%s: %w", name, err)

@@ -2,6 +2,8 @@ package main
 
 import (
 	"bytes"
+	"encoding/csv"
+	"encoding/json"
 	"image"
 	"image/color"
 	"image/png"
@@ -131,4 +133,28 @@ func cmdShade(ts *testscript.TestScript, _ bool, args []string) {
 	var b bytes.Buffer
 	ts.Check(png.Encode(&b, im))
 	ts.Check(os.WriteFile(ts.MkAbs(args[0]), b.Bytes(), 0o666))
+}
+
+// cmdAgrees wants the one row of CSV on stdout to have the DGP of the first
+// viewpoint's worst hour in a summary: agrees SUMMARY.json. An image keeps
+// float32 and the table six digits: 1e-5.
+func cmdAgrees(ts *testscript.TestScript, _ bool, args []string) {
+	var summary struct {
+		Views []struct {
+			Worst struct {
+				DGP float64 `json:"dgp"`
+			} `json:"worst_hour"`
+		} `json:"views"`
+	}
+	ts.Check(json.Unmarshal([]byte(ts.ReadFile(args[0])), &summary))
+	rows, err := csv.NewReader(strings.NewReader(ts.ReadFile("stdout"))).ReadAll()
+	ts.Check(err)
+	if len(rows) != 2 || rows[0][1] != "dgp" || len(summary.Views) == 0 {
+		ts.Fatalf("got %d rows and %d viewpoints", len(rows), len(summary.Views))
+	}
+	got, err := strconv.ParseFloat(rows[1][1], 64)
+	ts.Check(err)
+	if want := summary.Views[0].Worst.DGP; math.Abs(got-want) > 1e-5*max(1, want) || want == 0 {
+		ts.Fatalf("the image has DGP %g, the check %g", got, want)
+	}
 }

@@ -42,6 +42,7 @@ func TestScripts(t *testing.T) {
 			"stl":        cmdSTL,
 			"photo":      cmdPhoto,
 			"shade":      cmdShade,
+			"agrees":     cmdAgrees,
 		},
 	})
 }

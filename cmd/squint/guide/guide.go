@@ -26,6 +26,7 @@ var topics = []Topic{
 	{"anidolic", "anidolic ceilings: collector, mirrored duct and outlet"},
 	{"weather", "weather files, and the moment each record stands for"},
 	{"criteria", "what is judged, which hours count, and the sources"},
+	{"glare", "HDR images and site photographs evaluated for glare"},
 	{"results", "the results folder, confidence, exit statuses"},
 	{"export", "the built scene as files for CAD and viewers"},
 	{"method", "how it is computed, in plain words"},

@@ -117,7 +117,7 @@ func (im *Image) rule() string {
 		text += "; pixels up to " + decimals(g*180/math.Pi, 1) + "° apart make one source"
 	}
 	if o.CoreCdM2 > 0 {
-		text += "; those above " + whole(o.CoreCdM2) + " cd/m2 apart from the rest"
+		text += "; pixels above " + whole(o.CoreCdM2) + " cd/m2 stand apart"
 	}
 	return text
 }
