@@ -73,8 +73,8 @@ func sourceSection(p *page, im *Image) {
 		p.para(2, "There are none.")
 		return
 	}
-	p.line("  no.   right      up        mean        peak       size      position   part of")
-	p.line("          deg     deg       cd/m2       cd/m2         sr         index   the sum")
+	p.line("  no.   right      up       mean       peak       size  position      part of")
+	p.line("          deg     deg      cd/m2      cd/m2         sr     index      the sum")
 	for i, s := range r.Sources {
 		if i == mostListed {
 			p.para(2, fmt.Sprintf("and %d more, together %s of the sum.", len(r.Sources)-i, part(rest(r, i))))
@@ -85,7 +85,7 @@ func sourceSection(p *page, im *Image) {
 		if s.Disc {
 			note = " *"
 		}
-		p.line(fmt.Sprintf("  %3d  %7.1f %7.1f  %10s  %10s %10s  %12s  %8s%s", i+1, az, el,
+		p.line(fmt.Sprintf("  %3d %7.1f %7.1f %10s %10s %10s %9s %12s%s", i+1, az, el,
 			number3(s.MeanLuminance), number3(s.PeakLuminance), size(s.OmegaSr), number3(s.PositionIndex), part(s.Contribution/r.SourceSum), note))
 	}
 	for _, s := range r.Sources {
@@ -234,10 +234,10 @@ func imageTable(p *page, images []*Image) {
 			count(len(images), "image", "images"), worst.File, fixed(worst.Result.DGP, 2), whole(worst.Result.Ev), rangeWords(worst.dgpValid()), glaring, judged))
 	}
 	p.gap()
-	p.line("  image                  DGP    Ev lx   DGPs    DGI    UGR  mean  sources warnings")
+	p.line("  image                 DGP    Ev lx   DGPs    DGI    UGR   mean sources  warned")
 	outside := false
 	for _, im := range images {
-		name := left(fitEnd(plain(im.File), 19), 19)
+		name := left(fitEnd(plain(im.File), 18), 18)
 		r := &im.Result
 		mark := " "
 		if im.Indices && !im.dgpValid() {
@@ -249,7 +249,7 @@ func imageTable(p *page, images []*Image) {
 			values = [5]string{fixed(r.DGP, 3), whole(r.Ev), fixed(r.DGPs, 3), limit(r.DGI, 1), limit(r.UGR, 1)}
 			sources = whole(float64(len(r.Sources)))
 		}
-		p.line(fmt.Sprintf("  %s %6s%s %8s %6s %6s %6s %6s %7s %7d", name, values[0], mark, values[1], values[2], values[3], values[4],
+		p.line(fmt.Sprintf("  %s %6s%s %7s %6s %6s %6s %6s %7s %7d", name, values[0], mark, values[1], values[2], values[3], values[4],
 			number3(r.MeanLuminance), sources, len(im.Warnings)))
 	}
 	if outside {
