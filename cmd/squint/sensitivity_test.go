@@ -18,7 +18,7 @@ import (
 // that SQUINT_IMAGES names (patterns with blanks between), such as a check's
 // worst hours:
 //
-//	SQUINT_IMAGES='results/demo/worst-hour/*.exr' go test -run GroupingSensitivity -v ./cmd/squint
+//	SQUINT_IMAGES='results/demo/worst-hour/*.exr' go test -count=1 -run GroupingSensitivity -v ./cmd/squint
 //
 // The table of "squint guide glare" comes from it.
 func TestGroupingSensitivity(t *testing.T) {
@@ -37,24 +37,20 @@ func TestGroupingSensitivity(t *testing.T) {
 	all := []float64{0, 2, 4, 6, 8, 10, 12} // degrees; 0: pixels that touch
 	for _, variant := range []struct {
 		about     string
+		base      func(*testing.T, *luminance.Image) // what DGP is compared with
 		change    func(*testing.T, *luminance.Image)
 		groupings []float64
 	}{
-		{"the sun's discs kept apart", func(*testing.T, *luminance.Image) {}, all},
-		{"the discs left out", func(_ *testing.T, im *luminance.Image) { im.Attr.Discs = nil }, all},
-		{"768 pixels wide, the discs in the pixels", photographed, []float64{byDefault}},
+		{"the sun's discs kept apart", asItIs, asItIs, all},
+		{"the discs left out", withoutDiscs, withoutDiscs, all},
+		{"768 pixels wide, the discs in the pixels", asItIs, photographed, []float64{byDefault}},
 	} {
 		var base []glare.Result
 		for _, name := range names {
-			base = append(base, studied(t, name, nil, 0, byDefault))
-		}
-		if variant.about == "the discs left out" {
-			for i, name := range names {
-				base[i] = studied(t, name, variant.change, 0, byDefault)
-			}
+			base = append(base, studied(t, name, variant.base, 0, byDefault))
 		}
 		var table strings.Builder
-		fmt.Fprintf(&table, "%s: DGP less that of the default, largest size among %d images with DGP in the range of its data, and among all; mean number of sources\n%7s", variant.about, inRange(base), "")
+		fmt.Fprintf(&table, "%s: DGP less that of the default, largest size among the %d images with DGP in the range of its data, and among all %d; mean number of sources\n%7s", variant.about, inRange(base), len(base), "")
 		for _, g := range variant.groupings {
 			fmt.Fprintf(&table, "%20g deg", g)
 		}
@@ -99,9 +95,7 @@ func studied(t *testing.T, name string, change func(*testing.T, *luminance.Image
 	if err := im.GatherDiscs(); err != nil {
 		t.Fatal(err)
 	}
-	if change != nil {
-		change(t, im)
-	}
+	change(t, im)
 	o := glareOptions{AgeYears: 40}
 	o.Sources = sourceFlags{Luminance: glare.DefaultThresholdCdM2, Multiple: glare.DefaultMultiple, GroupingDeg: groupingDeg, CoreLuminance: core}
 	out, err := evaluateImage(name, im, o)
@@ -110,6 +104,10 @@ func studied(t *testing.T, name string, change func(*testing.T, *luminance.Image
 	}
 	return out.Result
 }
+
+func asItIs(*testing.T, *luminance.Image) {}
+
+func withoutDiscs(_ *testing.T, im *luminance.Image) { im.Attr.Discs = nil }
 
 // photographed makes a camera's image of one of ours: finer, each pixel
 // repeated, and with the sun in the pixels that it covers.
