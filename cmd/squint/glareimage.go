@@ -36,24 +36,25 @@ func evaluateImage(name string, im *luminance.Image, o glareOptions) (*report.Im
 	if whole.Count == 0 {
 		return nil, fmt.Errorf("%s: image circle: no pixel of the image lies in it; check --circle", name)
 	}
-	out.Field = whole.Without(p.Hidden)
-	if out.Field.Count == 0 {
+	f := whole.Without(p.Hidden)
+	if f.Count == 0 {
 		return nil, fmt.Errorf("%s: nothing of the image is left: all pixels are masked or without a number", name)
 	}
+	out.Inside = f.Inside
 	out.Covered = whole.Projected() / math.Pi
 	out.Hidden = hiddenShares(whole, s.Masks)
 	discs := visibleDiscs(p, im.Attr.Discs)
 	out.Indices = p.View.Projection.Fisheye()
-	out.Result = glare.Evaluate(out.Field, p.Lum, discs, out.Options, nil)
-	out.Median = glare.Median(out.Field, p.Lum)
-	out.Contrast = glare.ContrastOf(out.Field, p.Lum, out.Options)
+	out.Result = glare.Evaluate(f, p.Lum, discs, out.Options, nil)
+	out.Median = glare.Median(f, p.Lum)
+	out.Contrast = glare.ContrastOf(f, p.Lum, out.Options)
 	for _, l := range p.Lum {
 		out.Largest = max(out.Largest, float64(l))
 	}
 	for _, d := range discs {
 		out.Largest = max(out.Largest, d.Luminance)
 	}
-	out.Veil = glare.VeilOf(out.Field, p.Lum, out.Result.Sources, o.AgeYears, o.Pigmentation)
+	out.Veil = glare.VeilOf(f, p.Lum, out.Result.Sources, o.AgeYears, o.Pigmentation)
 	out.Circle = circleWords(p.View, fit, s.Circle != nil)
 	out.Warnings, out.Notes = imageWarnings(out, im, fit, o, len(discs))
 	return out, nil
@@ -146,8 +147,17 @@ func (c *cameraFlags) settings(name string, im *luminance.Image) (s photograph.S
 	return s, fit, err
 }
 
-func readVignetting(name string) (photograph.Vignetting, error) {
+// openInput opens a file that a flag names.
+func openInput(name string) (*os.File, error) {
 	f, err := os.Open(name)
+	if errors.Is(err, fs.ErrNotExist) {
+		return nil, fmt.Errorf("%s: there is no such file", name)
+	}
+	return f, err
+}
+
+func readVignetting(name string) (photograph.Vignetting, error) {
+	f, err := openInput(name)
 	if err != nil {
 		return photograph.Vignetting{}, err
 	}
@@ -158,7 +168,7 @@ func readVignetting(name string) (photograph.Vignetting, error) {
 func (c *cameraFlags) masks(im *luminance.Image) ([]photograph.Mask, error) {
 	var all []photograph.Mask
 	for _, name := range c.Masks {
-		f, err := os.Open(name)
+		f, err := openInput(name)
 		if err != nil {
 			return nil, err
 		}

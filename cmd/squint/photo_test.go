@@ -35,7 +35,8 @@ func lobby(d r3.Vec) float64 {
 	return 100
 }
 
-// cmdPhoto writes an invented photograph: photo FILE [KEY=VALUE...] with
+// cmdPhoto writes an invented photograph, PFM by its ending, else OpenEXR:
+// photo FILE [KEY=VALUE...] with
 //
 //	size=WxH circle=x,y,r roll=deg fov=deg projection=name
 //	unit=x        cd/m2 that the file's 1 stands for, which it does not say
@@ -113,7 +114,11 @@ func cmdPhoto(ts *testscript.TestScript, _ bool, args []string) {
 		im.Attr.SetView(v)
 	}
 	var b bytes.Buffer
-	ts.Check(luminance.WriteEXR(&b, im, luminance.EXROptions{Compression: luminance.ZIP}))
+	if strings.HasSuffix(args[0], ".pfm") {
+		ts.Check(luminance.WritePFM(&b, im))
+	} else {
+		ts.Check(luminance.WriteEXR(&b, im, luminance.EXROptions{Compression: luminance.ZIP}))
+	}
 	ts.Check(os.WriteFile(ts.MkAbs(args[0]), b.Bytes(), 0o666))
 }
 

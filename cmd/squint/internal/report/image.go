@@ -15,7 +15,9 @@ import (
 type Image struct {
 	File  string // as the user typed it
 	Photo *photograph.Photograph
-	Field *glare.Field // of Photo.View without what is hidden
+	// Inside tells which pixels are seen: in the image circle and not hidden.
+	// A glare.Field is ten times as large, too much to keep for many images.
+	Inside []bool
 
 	// Indices tells whether Result is more than mean luminances: it is not for
 	// views other than fisheyes.

@@ -37,10 +37,12 @@ func evaluated(t *testing.T, w, h int, p view.Projection) *Image {
 	if err != nil {
 		t.Fatal(err)
 	}
-	out := &Image{File: "lobby.exr", Photo: photo, Field: glare.NewField(photo.View), Indices: p.Fisheye(), AgeYears: 40, Covered: 1}
+	out := &Image{File: "lobby.exr", Photo: photo, Indices: p.Fisheye(), AgeYears: 40, Covered: 1}
 	sun := glare.Disc{Dir: r3.Unit(r3.Vec{X: 1, Y: -0.5, Z: 0.4}), OmegaSr: 6.8e-5, Luminance: 8e8}
-	out.Result = glare.Evaluate(out.Field, photo.Lum, []glare.Disc{sun}, out.Options, nil)
-	out.Contrast = glare.ContrastOf(out.Field, photo.Lum, out.Options)
+	f := glare.NewField(photo.View)
+	out.Inside = f.Inside
+	out.Result = glare.Evaluate(f, photo.Lum, []glare.Disc{sun}, out.Options, nil)
+	out.Contrast = glare.ContrastOf(f, photo.Lum, out.Options)
 	return out
 }
 

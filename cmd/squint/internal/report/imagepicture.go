@@ -100,7 +100,7 @@ func newShrunk(im *Image, maxPx int) *shrunk {
 	sum, weight := make([]float64, n), make([]int, n)
 	for y := box.Min.Y; y < box.Max.Y; y++ {
 		for x := box.Min.X; x < box.Max.X; x++ {
-			if i := y*v.Width + x; im.Field.Inside[i] {
+			if i := y*v.Width + x; im.Inside[i] {
 				k := s.index(x, y)
 				sum[k] += float64(im.Photo.Lum[i])
 				weight[k]++
