@@ -40,7 +40,7 @@ not say itself (projection, field of view, unit) is given by flags; the image
 circle of a fisheye is found. Several images give a table. "squint guide glare"
 leads through the evaluation of a photograph step by step.`,
 		Example: `  squint glare results/demo/worst-hour/desk-4.exr
-  squint glare site.exr --projection equisolid --fov-deg 185 --lux 2450
+  squint glare site.exr --projection equisolid --fov-deg 185 --spot 812,440=350
   squint glare *.exr --out evaluated --format csv`,
 		Args: arguments(cobra.MinimumNArgs(1), "one image or more"),
 		RunE: func(cmd *cobra.Command, args []string) error {

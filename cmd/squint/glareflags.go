@@ -34,7 +34,7 @@ type cameraFlags struct {
 func (c *cameraFlags) bind(cmd *cobra.Command) {
 	f := cmd.Flags()
 	f.StringVar(&c.Projection, "projection", "", "`name`: equidistant, equisolid,\northographic, stereographic; or perspective,\nfor luminances alone")
-	f.Float64Var(&c.FOVDeg, "fov-deg", 0, "full `angle` across the image circle")
+	f.Float64Var(&c.FOVDeg, "fov-deg", 0, "full `angle` across the image circle; of a\nperspective image, across its width")
 	f.StringVar(&c.Circle, "circle", "", "image circle in pixels, `x,y,radius`; or\nfind, or inscribed. Not given, it is found,\nunless the image says its projection itself")
 	f.Float64Var(&c.RollDeg, "roll-deg", 0, "`angle` by which the camera leaned to its\nright")
 	f.StringVar(&c.Vignetting, "vignetting", "", "light that the lens passes, as a polynomial\nof the angle from its axis in degrees, by\nthe coefficients `c0,c1,...`")
@@ -172,7 +172,7 @@ func (s *sourceFlags) bind(cmd *cobra.Command) {
 	f.Float64Var(&s.Multiple, "source-multiple", glare.DefaultMultiple, "`factor` of the other two")
 	f.StringVar(&s.Task, "task", "", "what the eye works on, in degrees:\n`right,up,across`; else 34° about the line of\nsight")
 	f.Float64Var(&s.GroupingDeg, "grouping-deg", glare.DefaultGroupingRad*180/math.Pi, "`angle` up to which bright pixels are one\nsource; 0: only those that touch")
-	f.Float64Var(&s.CoreLuminance, "core-luminance", defaultCore, "pixels above so many `cd/m2` are sources apart\nfrom the bright ones about them; 0: none")
+	f.Float64Var(&s.CoreLuminance, "core-luminance", defaultCore, "pixels above so many `cd/m2` are sources\napart from the bright ones about them;\n0: none")
 	f.BoolVar(&s.LowLight, "low-light", false, "correct DGP for little light at the eye")
 }
 

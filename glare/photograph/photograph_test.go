@@ -274,3 +274,21 @@ func TestBadPixels(t *testing.T) {
 		t.Errorf("overflow: got %v, want a refusal", err)
 	}
 }
+
+// No table makes the reader panic, and what it accepts has a factor anywhere.
+func FuzzReadVignetting(f *testing.F) {
+	for _, s := range []string{"", "angle_deg,factor\n0,1\n90,0.5\n", "angle_deg,factor\n0,1e300\n1e-300,1\n", "#\nangle_deg,factor\n0,NaN\n", "\"\n"} {
+		f.Add(s)
+	}
+	f.Fuzz(func(t *testing.T, text string) {
+		v, err := ReadVignetting(strings.NewReader(text), "x.csv")
+		if err != nil {
+			return
+		}
+		for _, a := range []float64{0, 1e-9, 0.7, math.Pi / 2, math.Pi} {
+			if got := v.At(a); !(got > 0) || math.IsInf(got, 0) {
+				t.Errorf("%q: factor %g at %g rad", text, got, a)
+			}
+		}
+	})
+}
