@@ -2,6 +2,7 @@ package glare
 
 import (
 	"math"
+	"slices"
 
 	"gonum.org/v1/gonum/spatial/r3"
 
@@ -70,4 +71,37 @@ func NewField(v view.View) *Field {
 		f.spans[y] = s
 	}
 	return f
+}
+
+// Without returns a field in which the hidden pixels (length Width*Height) are
+// outside: unknown, or behind what the observer's mask covers. They send no
+// light and are no part of the means. In images for it their luminance must
+// be 0.
+func (f *Field) Without(hidden []bool) *Field {
+	g := *f
+	g.Omega, g.CosTheta = slices.Clone(f.Omega), slices.Clone(f.CosTheta)
+	g.PositionIndex, g.Inside = slices.Clone(f.PositionIndex), slices.Clone(f.Inside)
+	g.weight = slices.Clone(f.weight)
+	g.TotalOmega, g.Count = 0, 0
+	for i := range g.Omega {
+		if hidden[i] {
+			g.Omega[i], g.CosTheta[i], g.weight[i] = 0, 0, 0
+			g.PositionIndex[i], g.Inside[i] = math.Inf(1), false
+		}
+		if g.Inside[i] {
+			g.TotalOmega += g.Omega[i]
+			g.Count++
+		}
+	}
+	return &g
+}
+
+// Projected is the sum over the pixels of solid angle times cosine to the line
+// of sight, sr: pi for a whole half space.
+func (f *Field) Projected() float64 {
+	sum := 0.0
+	for i, omega := range f.Omega {
+		sum += omega * f.CosTheta[i]
+	}
+	return sum
 }

@@ -76,9 +76,14 @@ func (c scene) lum(d r3.Vec) float64 {
 // they are weighted alike though its scale changes by up to h (relative, for
 // theta/sin theta: its slope is at most 1).
 func (c scene) bounds(size int, rule PositionRule) (evLow, evHigh, dgpLow, dgpHigh float64) {
-	h := math.Sqrt2 * math.Pi / float64(size)
+	return c.boundsFor(math.Sqrt2*math.Pi/float64(size), 1, rule)
+}
+
+// boundsFor are those of pixels at most h across, over which the scale changes
+// by at most slope x h.
+func (c scene) boundsFor(h, slope float64, rule PositionRule) (evLow, evHigh, dgpLow, dgpHigh float64) {
 	ev := c.row.num("Ev_lx")
-	slack := c.ls*(capOmega(c.r+h/subPixels)-capOmega(c.r-h/subPixels)) + c.ls*(capOmega(c.r+h)-capOmega(c.r-h))*h
+	slack := c.ls*(capOmega(c.r+h/subPixels)-capOmega(c.r-h/subPixels)) + c.ls*(capOmega(c.r+h)-capOmega(c.r-h))*slope*h
 	slack += 1e-4 + 1e-7*ev // the table's digits, float32
 	evLow, evHigh = ev-slack, ev+slack
 
@@ -160,6 +165,60 @@ func TestRenderedScenes(t *testing.T) {
 		}
 		if tested == 0 {
 			t.Errorf("%d px: no scene tested", size)
+		}
+	}
+}
+
+// otherFisheyes holds, for the other projections within 60 degrees of the line
+// of sight, the largest angle per share of the radius (its inverse law,
+// differentiated: 2 sin 45/cos(theta/2), 1/cos theta, 2 cos^2(theta/2)), and the
+// slope of the logarithm of solid angle per area (0, tan theta, 2 tan(theta/2)).
+var otherFisheyes = []struct {
+	p            view.Projection
+	scale, slope float64
+}{
+	{view.Equisolid, 2 * math.Sqrt2 / 2 / math.Cos(30*deg), 0},
+	{view.Orthographic, 2, math.Sqrt(3)},
+	{view.Stereographic, 2, 2 * math.Tan(30*deg)},
+}
+
+// The scenes of 06b in the other projections, where disc and bounds lie within
+// 60 degrees of the line of sight.
+func TestRenderedScenesInOtherProjections(t *testing.T) {
+	list := []int{256}
+	if !testing.Short() {
+		list = []int{256, 512}
+	}
+	scratch := new(Scratch)
+	for _, fish := range otherFisheyes {
+		for _, size := range list {
+			v := fisheye(t, fish.p, 180, size)
+			f := NewField(v)
+			h := math.Sqrt2 * 2 * fish.scale / float64(size)
+			tested := 0
+			for _, c := range scenes(t) {
+				if c.r < 2*h || math.Acos(c.dir.X)+c.r+2*h > 60*deg || size > 256 && c.r < 3*deg && c.name != "up 30" {
+					continue
+				}
+				tested++
+				lum := render(v, c.lum)
+				r := Evaluate(f, lum, nil, c.options(), scratch)
+				evLow, evHigh, dgpLow, dgpHigh := c.boundsFor(h, fish.slope, AtCentroid)
+				if len(r.Sources) != 1 || r.Ev < evLow || r.Ev > evHigh || r.DGP < dgpLow || r.DGP > dgpHigh {
+					t.Errorf("%v %d px, %s: %d sources, Ev %g, DGP %g, want 1, %g to %g, %g to %g", fish.p, size, c.name, len(r.Sources), r.Ev, r.DGP, evLow, evHigh, dgpLow, dgpHigh)
+				}
+				want := c.row.num("DGP_centreP")
+				t.Logf("%-13v %4d px %-22s DGP error %+.5f; bounds %+.5f %+.5f; Ev error %+.1e", fish.p, size, c.name, r.DGP-want, dgpLow-want, dgpHigh-want, r.Ev/c.row.num("Ev_lx")-1)
+
+				// The twin: the same image taken for an equidistant one.
+				wrong := Evaluate(NewField(fisheye(t, view.Equidistant, 180, size)), lum, nil, c.options(), scratch)
+				if c.r > 10*deg && wrong.Ev >= evLow && wrong.Ev <= evHigh && wrong.DGP >= dgpLow && wrong.DGP <= dgpHigh {
+					t.Errorf("%v %d px, %s: passed as equidistant", fish.p, size, c.name)
+				}
+			}
+			if tested < 4 {
+				t.Errorf("%v %d px: %d scenes tested, want 4", fish.p, size, tested)
+			}
 		}
 	}
 }
@@ -300,8 +359,8 @@ func TestFacingRectangle(t *testing.T) {
 		p, q := math.Sqrt(1+a*a), math.Sqrt(1+b*b)
 		return (a/p*math.Atan(b/p) + b/q*math.Atan(a/q)) / 2
 	})
-	for _, size := range sizes() {
-		v := fisheye(t, view.Equidistant, 180, size)
+	check := func(p view.Projection, size int, scale, slope float64) {
+		v := fisheye(t, p, 180, size)
 		lum := render(v, func(d r3.Vec) float64 {
 			y, z := d.Y/d.X*distance, d.Z/d.X*distance
 			if d.X > 0 && y > y0 && y < y1 && z > z0 && z < z1 {
@@ -311,19 +370,25 @@ func TestFacingRectangle(t *testing.T) {
 		})
 		r := Evaluate(NewField(v), lum, nil, Options{ThresholdCdM2: 2500}, nil)
 		if len(r.Sources) != 1 {
-			t.Fatalf("%d px: got %d sources, want 1", size, len(r.Sources))
+			t.Fatalf("%v %d px: got %d sources, want 1", p, size, len(r.Sources))
 		}
 		// Pixels on the edge, h across, may fall on either side; the sides
 		// are seen under at most their length over the distance.
-		h := math.Sqrt2 * math.Pi / float64(size)
+		h := math.Sqrt2 * 2 * scale / float64(size)
 		edge := 2 * ((y1 - y0) + (z1 - z0)) / distance
 		if got := r.Sources[0].OmegaSr; math.Abs(got-wantOmega) > edge*h {
-			t.Errorf("%d px: solid angle %g, want %g +- %g", size, got, wantOmega, edge*h)
+			t.Errorf("%v %d px: solid angle %g, want %g +- %g", p, size, got, wantOmega, edge*h)
 		}
-		tol := 5000 * edge * (h/subPixels + h*h)
+		tol := 5000 * edge * (h/subPixels + slope*h*h)
 		if math.Abs(r.Ev-wantE) > tol {
-			t.Errorf("%d px: Ev %g, want %g +- %g", size, r.Ev, wantE, tol)
+			t.Errorf("%v %d px: Ev %g, want %g +- %g", p, size, r.Ev, wantE, tol)
 		}
-		t.Logf("%4d px: omega %.5f of %.5f, Ev %.3f of %.3f", size, r.Sources[0].OmegaSr, wantOmega, r.Ev, wantE)
+		t.Logf("%-13v %4d px: omega %.5f of %.5f, Ev %.3f of %.3f", p, size, r.Sources[0].OmegaSr, wantOmega, r.Ev, wantE)
+	}
+	for _, size := range sizes() {
+		check(view.Equidistant, size, math.Pi/2, 1)
+	}
+	for _, fish := range otherFisheyes { // its corners are 45 degrees off
+		check(fish.p, 256, fish.scale, fish.slope)
 	}
 }

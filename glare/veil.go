@@ -1,6 +1,10 @@
 package glare
 
-import "math"
+import (
+	"math"
+
+	"gonum.org/v1/gonum/spatial/r3"
+)
 
 // The three disability glare equations of CIE 146:2002 (from memory) return
 // the veiling luminance (cd/m2) per glare illuminance (lx) on the plane of
@@ -42,6 +46,43 @@ func VeilStilesHolladay(thetaRad, ageYears float64) (perLux float64, ok bool) {
 		return 0, false
 	}
 	return 10 / (t * t) * (1 + math.Pow(ageYears/70, 4)), true
+}
+
+// MinVeilRad is how near to the line of sight VeilOf takes light for a source
+// of veil: nearer, it is what is looked at, and 1/theta^3 is steeper than
+// pixels are fine. Own choice; also where the Stiles-Holladay equation of CIE
+// 146 begins.
+const MinVeilRad = math.Pi / 180
+
+// Veil is the veiling luminance of an image's sources.
+type Veil struct {
+	Luminance  float64 // cd/m2
+	LeftOutLux float64 // illuminance of sources at angles that are not counted, lx
+}
+
+// VeilOf adds up VeilGeneral over the pixels and discs of sources, as found in
+// lum, from MinVeilRad to 90 degrees.
+func VeilOf(f *Field, lum []float32, sources []Source, ageYears, pigmentation float64) Veil {
+	var v Veil
+	add := func(dir r3.Vec, lux float64) {
+		theta := math.Atan2(math.Hypot(dir.Y, dir.Z), dir.X)
+		perLux, ok := VeilGeneral(theta, ageYears, pigmentation)
+		if !ok || theta < MinVeilRad*(1-1e-12) { // rounding, as in veilAngle
+			v.LeftOutLux += lux
+			return
+		}
+		v.Luminance += perLux * lux
+	}
+	for _, s := range sources {
+		if s.Disc {
+			add(s.Dir, Disc{s.Dir, s.OmegaSr, s.MeanLuminance}.illuminance())
+			continue
+		}
+		for _, i := range s.Pixels {
+			add(f.Dir[i], float64(lum[i])*f.Omega[i]*f.CosTheta[i])
+		}
+	}
+	return v
 }
 
 // veilAngle is the angle in degrees, if within from..to; 1e-12 relative is

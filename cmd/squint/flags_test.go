@@ -43,6 +43,18 @@ func TestFlags(t *testing.T) {
 	guide := func(h host, got *any) *cobra.Command {
 		return newGuide(h, func(_ context.Context, _ host, o guideOptions) error { *got = o; return nil })
 	}
+	images := func(h host, got *any) *cobra.Command {
+		return newGlare(h, func(_ context.Context, _ host, o glareOptions) error { *got = o; return nil })
+	}
+	plain := glareOptions{Images: []string{"a.exr"}, LuxTolerance: 10, AgeYears: 40, Pigmentation: 0.5, Format: "text", Picture: "png"}
+	plain.Sources = sourceFlags{Rule: "luminance", Luminance: 2000, Multiple: 4, GroupingDeg: 4, CoreLuminance: 50000}
+	camera := plain
+	camera.Camera = cameraFlags{Projection: "equisolid", FOVDeg: 185, Circle: "9,8,7", RollDeg: -3, Vignetting: "1,0,-1e-5", Factor: 179,
+		Spots: []string{"3,4=350"}, circleGiven: true, factorGiven: true}
+	camera.Lux, camera.Format, camera.Picture, camera.Out = 2450, "json", "tiff", "x"
+	task := plain
+	task.Images = []string{"a.exr", "b.exr"}
+	task.Sources = sourceFlags{Rule: "sight-mean", Luminance: 2000, Multiple: 5, Task: "-10,-20,30", GroupingDeg: 0, LowLight: true}
 	for _, c := range []struct {
 		args string
 		with func(host, *any) *cobra.Command
@@ -69,6 +81,37 @@ func TestFlags(t *testing.T) {
 		{"guide weather", guide, guideOptions{Topic: "weather"}},
 		{"guide a b", guide, nil},
 		{"other", guide, nil},
+		{"glare a.exr", images, plain},
+		{"glare a.exr --projection equisolid --fov-deg 185 --circle 9,8,7 --roll-deg -3 --vignetting 1,0,-1e-5 --luminance-factor 179 --spot 3,4=350 --lux 2450 --format json --picture tiff --out x", images, camera},
+		{"glare a.exr b.exr --source-rule sight-mean --source-multiple 5 --task -10,-20,30 --grouping-deg 0 --core-luminance 0 --low-light", images, task},
+		{"glare", images, nil},
+		{"glare a.exr --format xml", images, nil},
+		{"glare a.exr --picture gif", images, nil},
+		{"glare a.exr --projection round", images, nil},
+		{"glare a.exr --fov-deg 0", images, nil},
+		{"glare a.exr --fov-deg NaN", images, nil},
+		{"glare a.exr --circle 1,2", images, nil},
+		{"glare a.exr --circle 1,2,0", images, nil},
+		{"glare a.exr --circle 1,2,Inf", images, nil},
+		{"glare a.exr --roll-deg 400", images, nil},
+		{"glare a.exr --vignetting 1,x", images, nil},
+		{"glare a.exr --vignetting 1 --vignetting-table t.csv", images, nil},
+		{"glare a.exr --luminance-factor 0", images, nil},
+		{"glare a.exr --luminance-factor -1", images, nil},
+		{"glare a.exr --spot 1,2=0", images, nil},
+		{"glare a.exr --spot 1=5", images, nil},
+		{"glare a.exr --mask-polygon a=0,0", images, nil},
+		{"glare a.exr --mask-polygon 0,0", images, nil},
+		{"glare a.exr --lux 0", images, nil},
+		{"glare a.exr --lux-tolerance -1", images, nil},
+		{"glare a.exr --age 0", images, nil},
+		{"glare a.exr --pigmentation 2", images, nil},
+		{"glare a.exr --source-rule mean", images, nil},
+		{"glare a.exr --source-luminance 0", images, nil},
+		{"glare a.exr --source-multiple 0", images, nil},
+		{"glare a.exr --task 0,0,0", images, nil},
+		{"glare a.exr --grouping-deg NaN", images, nil},
+		{"glare a.exr --core-luminance -5", images, nil},
 	} {
 		t.Run(c.args, func(t *testing.T) {
 			got, err := parse(t, strings.Fields(c.args), c.with)

@@ -42,6 +42,7 @@ var order = []string{
 	"trace/annual",
 	"trace/picture",
 	"glare/luminance",
+	"glare/photograph",
 	"glare/falsecolour",
 	"glare",
 	"glare/daylight",

@@ -40,6 +40,9 @@ func TestScripts(t *testing.T) {
 			"cut":        cmdCut,
 			"rows":       cmdRows,
 			"stl":        cmdSTL,
+			"photo":      cmdPhoto,
+			"shade":      cmdShade,
+			"agrees":     cmdAgrees,
 		},
 	})
 }

@@ -6,6 +6,9 @@ import (
 	"image/png"
 	"io"
 	"math"
+	"strings"
+
+	"golang.org/x/image/tiff"
 )
 
 // Render draws a figure: title, picture, legend, caption.
@@ -31,13 +34,27 @@ func Sheet(title string, caption []string, columns int, figures ...Figure) (*ima
 	return compose(&sheet{title: title, caption: caption, columns: min(columns, len(figures)), figures: figures, width: sheetWidthPx, cells: true})
 }
 
+// Formats lists the file formats of Encode.
+var Formats = []string{"png", "tiff"}
+
+// Encode writes a picture in one of Formats.
+func Encode(w io.Writer, im image.Image, format string) error {
+	switch format {
+	case "png":
+		return png.Encode(w, im)
+	case "tiff":
+		return tiff.Encode(w, im, &tiff.Options{Compression: tiff.Deflate, Predictor: true})
+	}
+	return fmt.Errorf("%w: format: got %q, want one of %s", ErrInvalid, format, strings.Join(Formats, ", "))
+}
+
 // WritePNG renders a figure as a PNG file.
 func WritePNG(w io.Writer, f Figure) error {
 	im, err := Render(f)
 	if err != nil {
 		return err
 	}
-	return png.Encode(w, im)
+	return Encode(w, im, "png")
 }
 
 // sheet is what compose lays out.

@@ -5,6 +5,7 @@ import (
 	"errors"
 	"image"
 	"image/png"
+	"io"
 	"math"
 	"strings"
 	"testing"
@@ -296,5 +297,35 @@ func BenchmarkRender(b *testing.B) {
 		if _, err := Render(f); err != nil {
 			b.Fatal(err)
 		}
+	}
+}
+
+// The formats hold the same pixels.
+func TestEncode(t *testing.T) {
+	im, err := Render(office(32, 0.1))
+	if err != nil {
+		t.Fatal(err)
+	}
+	for _, format := range Formats {
+		var b bytes.Buffer
+		if err := Encode(&b, im, format); err != nil {
+			t.Fatal(err)
+		}
+		back, name, err := image.Decode(&b)
+		if err != nil || name != format || back.Bounds() != im.Bounds() {
+			t.Fatalf("%s: got %q and %v", format, name, err)
+		}
+		for y := range im.Rect.Dy() {
+			for x := range im.Rect.Dx() {
+				r, g, bl, a := back.At(x, y).RGBA()
+				wr, wg, wb, wa := im.At(x, y).RGBA()
+				if r != wr || g != wg || bl != wb || a != wa {
+					t.Fatalf("%s: pixel (%d, %d) differs", format, x, y)
+				}
+			}
+		}
+	}
+	if err := Encode(io.Discard, im, "gif"); !errors.Is(err, ErrInvalid) {
+		t.Errorf("gif: got %v, want a refusal", err)
 	}
 }

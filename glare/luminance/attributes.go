@@ -24,9 +24,11 @@ type Attributes struct {
 	LatitudeDeg, LongitudeDeg float64 // north and east positive
 
 	// Discs are sources kept beside the pixels: the sun and its mirror
-	// images, whose luminance would be lost if spread over a pixel. The
-	// pixels do not hold their light.
+	// images, whose luminance would be lost if spread over a pixel.
 	Discs []Disc
+	// DiscsInPixels means that the pixels hold the discs' light as well, as
+	// SpreadDiscs leaves it; else they do not.
+	DiscsInPixels bool
 
 	// Relative means that the file does not say how many cd/m2 the value 1
 	// is; Lum is in units of its own until scaled by a measurement.

@@ -18,6 +18,8 @@ const (
 	keyDirection  = "squintDirection"  // v3d
 	keyUp         = "squintUp"         // v3d
 	keyDiscs      = "squintDiscs"      // stringvector of Disc.text
+
+	keyDiscsInPixels = "squintDiscsInPixels" // the same, where pixels hold them too
 )
 
 // exrDate is the form of the standard attribute capDate, local time.
@@ -87,7 +89,11 @@ func (a *Attributes) exr() []exrAttribute {
 			b = binary.LittleEndian.AppendUint32(b, uint32(len(text)))
 			b = append(b, text...)
 		}
-		out = append(out, exrAttribute{keyDiscs, "stringvector", b})
+		key := keyDiscs
+		if a.DiscsInPixels {
+			key = keyDiscsInPixels
+		}
+		out = append(out, exrAttribute{key, "stringvector", b})
 	}
 	return out
 }
@@ -147,7 +153,8 @@ func (a *Attributes) set(n *exrNotes, at exrAttribute) error {
 		vector = &a.Direction
 	case keyUp:
 		vector = &a.Up
-	case keyDiscs:
+	case keyDiscs, keyDiscsInPixels:
+		a.DiscsInPixels = at.name == keyDiscsInPixels
 		return a.setDiscs(at)
 	}
 	if vector != nil {

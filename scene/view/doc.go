@@ -10,9 +10,9 @@
 // Angles are radians, solid angles steradians, lengths metres.
 //
 // Fisheye projections (equidistant, equisolid, orthographic, stereographic)
-// fill the circle inscribed in the image; the field of view is the full angle
-// across its diameter. Outside of that circle there is no direction. The
-// other projections fill the image; their field of view is the full
-// horizontal angle across its width and pixels are square: the vertical scale
-// at the middle of the image equals the horizontal one.
+// fill the circle inscribed in the image, or that of the view's Placement; the
+// field of view is the full angle across its diameter. Outside of that circle
+// there is no direction. The other projections fill the image; their field of
+// view is the full horizontal angle across its width and pixels are square: the
+// vertical scale at the middle of the image equals the horizontal one.
 package view

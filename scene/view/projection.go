@@ -103,8 +103,12 @@ func (p Projection) theta(r float64) float64 {
 	return r
 }
 
-// circle is the image circle of a fisheye, in pixels.
-func (v View) circle() (cx, cy, radius float64) {
+// Circle is the image circle of a fisheye, in pixels. Of other projections only
+// the centre has a meaning: where the line of sight is seen.
+func (v View) Circle() (cx, cy, radius float64) {
+	if p := v.Placement; p.RadiusPx > 0 {
+		return p.X, p.Y, p.RadiusPx
+	}
 	return float64(v.Width) / 2, float64(v.Height) / 2, float64(min(v.Width, v.Height)) / 2
 }
 
@@ -113,7 +117,8 @@ func (v View) circle() (cx, cy, radius float64) {
 func (v View) perPixel() float64 {
 	switch {
 	case v.Projection.Fisheye():
-		return v.Projection.radius(v.FOVRad/2) / (float64(min(v.Width, v.Height)) / 2)
+		_, _, radius := v.Circle()
+		return v.Projection.radius(v.FOVRad/2) / radius
 	case v.Projection == Perspective:
 		return 2 * math.Tan(v.FOVRad/2) / float64(v.Width)
 	}
@@ -131,7 +136,8 @@ func (v View) LocalRay(px, py float64) (dir r3.Vec, ok bool) {
 		return r3.Vec{}, false
 	}
 	s := v.perPixel()
-	right, up := (px-w/2)*s, (h/2-py)*s
+	cx, cy, _ := v.Circle()
+	right, up := v.Placement.level((px-cx)*s, (cy-py)*s)
 	switch v.Projection {
 	case Perspective:
 		return r3.Unit(r3.Vec{X: 1, Y: -right, Z: up}), true
@@ -188,9 +194,10 @@ func (v View) LocalProject(dir r3.Vec) (px, py float64, ok bool) {
 		}
 	}
 	s := v.perPixel()
-	w, h := float64(v.Width), float64(v.Height)
-	px, okX := onto(w/2+right/s, w)
-	py, okY := onto(h/2-up/s, h)
+	right, up = v.Placement.rolled(right, up)
+	cx, cy, _ := v.Circle()
+	px, okX := onto(cx+right/s, float64(v.Width))
+	py, okY := onto(cy-up/s, float64(v.Height))
 	return px, py, okX && okY
 }
 

@@ -27,7 +27,8 @@ func (v View) measure(ix, iy int, cosine bool) float64 {
 		return 0
 	}
 	// Sides of the pixel, right and up positive, in the projection's units.
-	s, cx, cy := v.perPixel(), float64(v.Width)/2, float64(v.Height)/2
+	s := v.perPixel()
+	cx, cy, _ := v.Circle()
 	x0, x1 := (float64(ix)-cx)*s, (float64(ix)+1-cx)*s
 	y0, y1 := (cy-float64(iy)-1)*s, (cy-float64(iy))*s
 	var a float64

@@ -172,7 +172,7 @@ func TestPixelsAgainstQuadrature(t *testing.T) {
 
 // cut tells whether a corner of the pixel lies outside of the image circle.
 func cut(v View, ix, iy int) bool {
-	cx, cy, radius := v.circle()
+	cx, cy, radius := v.Circle()
 	far := math.Hypot(math.Abs(float64(ix)+0.5-cx)+0.5, math.Abs(float64(iy)+0.5-cy)+0.5)
 	return v.Projection.Fisheye() && far > radius
 }

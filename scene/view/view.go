@@ -26,6 +26,37 @@ type View struct {
 	FOVRad     float64 // full angle; see the package comment
 
 	Width, Height int // pixels
+
+	Placement Placement // of a photograph's image on its pixels
+}
+
+// Placement says how the image of a camera lies on its pixels. The zero value
+// is that of computed images: upright, and a fisheye's circle inscribed.
+type Placement struct {
+	// X, Y and RadiusPx are a fisheye's image circle in continuous pixel
+	// coordinates, at least 1 pixel in radius; it may reach beyond the image.
+	// RadiusPx 0 means the inscribed circle.
+	X, Y, RadiusPx float64
+	// RollRad is how far the camera was turned about its line of sight,
+	// clockwise for who stands behind it. The view frame does not turn with
+	// the camera: its z stays up.
+	RollRad float64
+}
+
+// level turns coordinates of the image plane, right and up, into those of an
+// upright camera.
+func (p Placement) level(right, up float64) (float64, float64) {
+	if p.RollRad == 0 {
+		return right, up
+	}
+	sin, cos := math.Sincos(p.RollRad)
+	return right*cos + up*sin, up*cos - right*sin
+}
+
+// rolled is the inverse of level.
+func (p Placement) rolled(right, up float64) (float64, float64) {
+	p.RollRad = -p.RollRad
+	return p.level(right, up)
 }
 
 // New returns a valid view with unit, mutually perpendicular Direction and
@@ -71,6 +102,25 @@ func (v View) Validate() error {
 	}
 	if v.Width < 1 || v.Width > MaxPixels || v.Height < 1 || v.Height > MaxPixels {
 		return fmt.Errorf("%w: size: got %d x %d pixels, want 1 to %d each way", ErrInvalid, v.Width, v.Height, MaxPixels)
+	}
+	return v.validatePlacement()
+}
+
+func (v View) validatePlacement() error {
+	p := v.Placement
+	if !(math.Abs(p.RollRad) <= 2*math.Pi) {
+		return fmt.Errorf("%w: roll: got %g degrees, want -360 to 360", ErrInvalid, p.RollRad*180/math.Pi)
+	}
+	if p.RadiusPx == 0 {
+		return nil
+	}
+	if !v.Projection.Fisheye() {
+		return fmt.Errorf("%w: image circle: got one for the %s projection, want it for fisheyes only", ErrInvalid, v.Projection)
+	}
+	// Far more than MaxPixels: a circle of which the image shows a corner.
+	const far = 1e6
+	if !(p.RadiusPx >= 1 && p.RadiusPx <= far && math.Abs(p.X) <= far && math.Abs(p.Y) <= far) {
+		return fmt.Errorf("%w: image circle: got centre (%g, %g), radius %g pixels, want a radius from 1 and all within %g", ErrInvalid, p.X, p.Y, p.RadiusPx, far)
 	}
 	return nil
 }
@@ -142,7 +192,7 @@ func (v View) LocalPixelRay(ix, iy int) (dir r3.Vec, ok bool) {
 	// The centre is outside of the circle: take the middle between the
 	// corner nearest to the middle of the image and the circle, on the ray
 	// from the middle through that corner.
-	cx, cy, radius := v.circle()
+	cx, cy, radius := v.Circle()
 	nx := nearest(cx, float64(ix), float64(ix)+1) - cx
 	ny := nearest(cy, float64(iy), float64(iy)+1) - cy
 	r := math.Hypot(nx, ny)

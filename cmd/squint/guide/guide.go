@@ -28,6 +28,7 @@ var topics = []Topic{
 	{"weather", "weather files, and the moment each record stands for"},
 	{"criteria", "what is judged, which hours count, and the sources"},
 	{"outlook", "view out, exposure to sunlight, sun on the glass"},
+	{"glare", "HDR images and site photographs evaluated for glare"},
 	{"results", "the results folder, confidence, exit statuses"},
 	{"look", "luminance pictures of a moment, and plans"},
 	{"export", "the built scene as files for CAD and viewers"},

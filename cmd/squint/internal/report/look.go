@@ -143,13 +143,12 @@ func shotImage(s *study.Shot, values []float32, spread bool, o LookOptions) *lum
 		a.Comment = planText(s) + "; " + a.Comment
 	case spread:
 		for _, d := range s.Discs {
-			spreadDisc(im.Lum, s.View, d)
+			imageDisc(s.View, d).Spread(im.Lum, s.View)
 		}
 		a.Comment += discComment(s.View, s.Discs)
 	default:
 		for _, d := range s.Discs {
-			l := s.View.Local(d.Dir)
-			a.Discs = append(a.Discs, luminance.Disc{Direction: [3]float64{l.X, l.Y, l.Z}, OmegaSr: d.OmegaSr, Luminance: d.Luminance})
+			a.Discs = append(a.Discs, imageDisc(s.View, d))
 		}
 	}
 	if s.Plan == nil {

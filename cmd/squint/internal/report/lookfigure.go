@@ -65,7 +65,7 @@ func lookFigure(s *study.Shot) falsecolour.Figure {
 	if len(s.Discs) > 0 {
 		f.Values = slices.Clone(p.Mean)
 		for _, d := range s.Discs {
-			spreadDisc(f.Values, s.View, d)
+			imageDisc(s.View, d).Spread(f.Values, s.View)
 		}
 	}
 	if s.Glare != nil {
