@@ -46,6 +46,11 @@ type lookOptions struct {
 	Samples int
 	Limit   time.Duration
 
+	// SunPath asks for the year's sun instead, at a viewpoint or an opening.
+	SunPath bool
+	Opening string
+	Form    string // "ahead", "up" or ""
+
 	Formats       []string
 	StandardError bool
 	Map           *falsecolour.Map
@@ -61,12 +66,14 @@ func newLook(h host, run func(context.Context, host, lookOptions) error) *cobra.
 		Short: "Make luminance pictures of viewpoints at moments, or a plan",
 		Long: `Look makes luminance pictures: what a viewpoint sees at a moment, in cd/m2,
 with its sources of glare outlined, or a plan of the room in lx. A picture grows
-finer until its error is as asked, and Ctrl-C keeps what there is. Without a
-project it looks at the demo. "squint guide look" says what the files hold.`,
+finer until its error is as asked, and Ctrl-C keeps what there is. With
+--sun-path it shows when in the year the sun gets to a viewpoint or an opening.
+Without a project it looks at the demo. "squint guide look" says more.`,
 		Example: `  squint look
   squint look office.toml --view "desk 3" --at "03-21 09:00" --at "12-21 12:00"
   squint look office.toml --all-views --sky overcast
-  squint look office.toml --plan illuminance --at "06-21 12:00"`,
+  squint look office.toml --plan illuminance --at "06-21 12:00"
+  squint look office.toml --sun-path --view "desk 3"`,
 		Args: arguments(cobra.MaximumNArgs(1), "at most one project file"),
 		RunE: func(cmd *cobra.Command, args []string) error {
 			if len(args) == 1 {
@@ -90,6 +97,9 @@ project it looks at the demo. "squint guide look" says what the files hold.`,
 }
 
 func runLook(ctx context.Context, h host, o lookOptions) error {
+	if o.SunPath {
+		return runSunPath(ctx, h, o.sunPath())
+	}
 	out := o.Out
 	if out == "" {
 		// As check's, under another name.

@@ -167,6 +167,13 @@ func TestLookFlags(t *testing.T) {
 		{[]string{"--scale", "linear:0:500", "--format", "png,png"}, with(func(o *lookOptions) {
 			o.Scale, o.Formats = &falsecolour.Scale{Max: 500}, []string{"png"}
 		})},
+		{[]string{"--sun-path", "--opening", "window 1", "--form", "ahead"}, with(func(o *lookOptions) {
+			o.SunPath, o.Opening, o.Form = true, "window 1", "ahead"
+		})},
+		{[]string{"--opening", "window 1"}, nil},
+		{[]string{"--sun-path", "--plan", "illuminance"}, nil},
+		{[]string{"--sun-path", "--at", "03-21 12:00"}, nil},
+		{[]string{"--sun-path", "--view", "a", "--view", "b"}, nil},
 		{[]string{"--error", "1"}, nil},
 		{[]string{"--error", "-0.1"}, nil},
 		{[]string{"--error", "NaN"}, nil},

@@ -71,6 +71,9 @@ func (f *lookFlags) bind(s *pflag.FlagSet, o *lookOptions) {
 	s.IntVar(&o.Pixels, "pixels", 512, "`number` of pixels along the longer side")
 	s.StringVar(&o.Plan, "plan", "", "instead of views a plan, the ceiling cut away, of a\n`quantity`: illuminance or luminance")
 	s.Float64Var(&f.cut, "cut", 0, "of a plan: `metres` at which it is cut, as z of the\nmodel; by default 0.5 m above viewpoints and planes")
+	s.BoolVar(&o.SunPath, "sun-path", false, "instead of pictures, when the sun gets to the viewpoint")
+	s.StringVar(&o.Opening, "opening", "", "of the sun path: `name` of an opening, instead of a\nviewpoint")
+	s.StringVar(&o.Form, "form", "", "of the sun path: `form`, ahead along the line of sight\nor up to the zenith")
 	s.Float64Var(&o.Error, "error", 0.05, "median relative standard `error` of the pixels to\nreach; 0 for none")
 	s.IntVar(&o.Samples, "samples", 0, "`number` of samples a pixel at most, rounded up to\neights; 0 for no limit")
 	s.DurationVar(&o.Limit, "limit", 2*time.Minute, "`time` for each picture at most, such as 60s, to the\nend of samples begun; 0 for no limit")
@@ -105,6 +108,12 @@ func (f *lookFlags) read(changed func(name string) bool, o *lookOptions) (err er
 		return errors.New("--cut: got it without --plan, want both")
 	case o.Error == 0 && o.Samples == 0 && o.Limit == 0:
 		return errors.New("--error, --samples, --limit: got none, want at least one, or a picture has no end")
+	case !o.SunPath && (o.Opening != "" || o.Form != ""):
+		return errors.New("--opening, --form: got them without --sun-path, want both")
+	case o.SunPath && (o.AllViews || len(o.Views) > 1 || o.Plan != ""):
+		return errors.New("--sun-path: want one --view or one --opening")
+	case o.SunPath && (len(f.ats) > 0 || changed("sky")):
+		return errors.New("--sun-path: got a moment or a sky too; it shows the whole year")
 	case len(o.Formats) == 0:
 		return fmt.Errorf("--format: got none, want one or more of %s", strings.Join(report.LookFormats, ", "))
 	}
@@ -211,6 +220,15 @@ func parseScale(text string) (*falsecolour.Scale, error) {
 		return nil, fmt.Errorf("--scale: got %q, want two rising numbers such as 10:10000, or linear:0:500", text)
 	}
 	return &s, nil
+}
+
+// sunPath are the options of a sun path.
+func (o lookOptions) sunPath() sunPathOptions {
+	p := sunPathOptions{pick: o.pick, Opening: o.Opening, Form: o.Form, Out: o.Out, Workers: o.Workers}
+	if len(o.Views) > 0 {
+		p.View = o.Views[0]
+	}
+	return p
 }
 
 // study are the options of the pictures to prepare.

@@ -142,16 +142,16 @@ func (d *drawing) minutesChart(top float64) {
 
 // tints draws what the tones of the small table mean.
 func (d *drawing) tints(y float64) {
-	const w, h = 13.0, 8.0
+	const w, h = 10.0, 8.0
 	small := falsecolour.SmallFace
 	x := keyRight
 	for _, minutes := range []int{0, 20, 40, 60} {
 		d.Box(falsecolour.Place{X: x, Y: y}, falsecolour.Place{X: x + w, Y: y + h}, tint(float64(minutes)/60))
 		text := strconv.Itoa(minutes)
 		d.Text(small, falsecolour.Place{X: x + w + 3, Y: y + h/2 + d.Capital(small)/2}, text, falsecolour.Quiet, false)
-		x += w + 11 + d.TextWidth(small, text)
+		x += w + 9 + d.TextWidth(small, text)
 	}
-	d.Text(small, falsecolour.Place{X: x, Y: y + h/2 + d.Capital(small)/2}, "min a day", falsecolour.Quiet, false)
+	d.Text(small, falsecolour.Place{X: x, Y: y + h/2 + d.Capital(small)/2}, "min/day", falsecolour.Quiet, false)
 }
 
 // tint mixes paper and the low sun's colour; none is a shade darker than the
