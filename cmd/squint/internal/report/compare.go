@@ -6,6 +6,8 @@ import (
 	"fmt"
 	"io"
 	"math"
+	"os"
+	"path/filepath"
 	"time"
 
 	"charm.land/lipgloss/v2"
@@ -123,6 +125,34 @@ func WriteComparison(dir string, all []Design) error {
 		return errors.Join(err, f.abandon())
 	}
 	return nil
+}
+
+// comparedFolders reads the designs' folders, in order.
+func comparedFolders(dir string) ([]string, error) {
+	path := filepath.Join(dir, AlternativesFile)
+	data, err := os.ReadFile(path)
+	if err != nil {
+		return nil, err
+	}
+	var c struct {
+		Alternatives []struct {
+			Folder string `json:"folder"`
+		} `json:"alternatives"`
+	}
+	if err := json.Unmarshal(data, &c); err != nil {
+		return nil, fmt.Errorf("%s: %w; run squint check again", path, err)
+	}
+	var names []string
+	for _, a := range c.Alternatives {
+		if !filepath.IsLocal(a.Folder) {
+			return nil, fmt.Errorf("%s: got folder %q, want one below it; run squint check again", path, a.Folder)
+		}
+		names = append(names, a.Folder)
+	}
+	if len(names) == 0 {
+		return nil, fmt.Errorf("%s: got no alternative, want at least one; run squint check again", path)
+	}
+	return names, nil
 }
 
 const (

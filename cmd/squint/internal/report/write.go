@@ -4,6 +4,7 @@ import (
 	"errors"
 	"io"
 
+	sheet "squint/cmd/squint/internal/page"
 	"squint/cmd/squint/internal/study"
 )
 
@@ -64,6 +65,10 @@ func stageAll(f *folder, r *study.Result, o Options) error {
 		if err := add(SensorsFile, func(w io.Writer) error { return writeSensorHours(w, r) }); err != nil {
 			return err
 		}
+	}
+	data := sheet.Build(r, sheetWords(r, o))
+	if err := add(SheetDataFile, data.Write); err != nil {
+		return err
 	}
 	return f.stage(SummaryFile, func(w io.Writer) error { return writeSummary(w, r, o, files) })
 }

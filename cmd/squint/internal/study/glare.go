@@ -30,6 +30,7 @@ type ViewResult struct {
 	Refined int
 
 	Worst *Worst // nil where no hour in use has daylight
+	Shots *Shots // nil where none were asked for
 
 	// Levels holds the verdict of every EN 17037 level; Asked is the level
 	// that the project asks for, -1 for none.
@@ -109,6 +110,7 @@ type glareSink struct {
 	mu    []sync.Mutex // by view
 	cause []map[Cause]int16
 	work  []sinkScratch // by worker
+	shots *shotPlan     // nil: no pictures are kept
 }
 
 // standingSink serves the frames of one standing, which has eyes and parts of
@@ -130,6 +132,7 @@ type sinkScratch struct {
 	scratch glare.Scratch
 	rest    []float32 // leave-one-out image
 	discs   []glare.Disc
+	shot    shotScratch
 }
 
 func newGlareSink(in *Input, workers int) *glareSink {
@@ -180,6 +183,7 @@ func (g *standingSink) take(worker int, f *annual.Frame) {
 	h := f.Moment.Hour
 	v.DGP[h], v.Ev[h], v.StdErr[h] = float32(dgp), float32(ev), float32(se)
 	v.InRange[h] = glare.InRange(dgp, ev)
+	g.keepShot(w, e, f)
 	g.mu[f.Eye].Lock()
 	defer g.mu[f.Eye].Unlock()
 	worst := v.Worst == nil || dgp > v.Worst.DGP || (dgp == v.Worst.DGP && h < v.Worst.Moment.Hour)

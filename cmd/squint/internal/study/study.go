@@ -21,6 +21,8 @@ type Options struct {
 	Workers int // threads; results do not depend on it
 	// Progress, if not nil, hears of each stage's work done.
 	Progress func(stage Stage, done, total int)
+	// Shots keeps small pictures of every view's hours in use, for display.
+	Shots bool
 }
 
 // Stage names a part of the run.
@@ -181,6 +183,9 @@ func Run(ctx context.Context, in *Input, opt Options) (*Result, error) {
 	r.Standings, r.Standing = standingByHour(in.Standings)
 	y, err := computeYear(ctx, in, opt, r)
 	if err != nil {
+		return nil, err
+	}
+	if err := y.glare.develop(ctx); err != nil {
 		return nil, err
 	}
 	if err := r.refine(ctx, in, opt, y); err != nil {

@@ -49,6 +49,9 @@ type year struct {
 // and puts the results together.
 func computeYear(ctx context.Context, in *Input, opt Options, r *Result) (*year, error) {
 	y := &year{glare: newGlareSink(in, max(opt.Workers, 1))}
+	if opt.Shots {
+		y.glare.shots = newShotPlan(in)
+	}
 	total := len(in.Climate.Moments)
 	y.light = annual.NewDaylight(in.Scene.Sensors(), total)
 	place := make(map[*scene.Moment]int, total)
