@@ -2,10 +2,14 @@ package page
 
 import (
 	"math"
+	"sort"
+	"time"
 
 	"gonum.org/v1/gonum/spatial/r3"
 
 	"squint/cmd/squint/internal/study"
+	"squint/scene"
+	"squint/scene/sky"
 )
 
 // Build reduces a study to what a page needs. words come from the caller, who
@@ -62,7 +66,7 @@ func (a *Archive) addYear(r *study.Result) {
 	shift, rise, set := make([]uint8, days), make([]uint16, days), make([]uint16, days)
 	for d := range days {
 		shift[d] = uint8(r.Calendar.ClockShiftH(d))
-		rise[d], set[d] = horizonCrossings(r.Climate.SinAltitude, d, r.Climate.OffsetH)
+		rise[d], set[d] = horizonCrossings(r.Climate, d)
 	}
 	p = packer{}
 	pack(&p, "shift", "u8", shift)
@@ -95,22 +99,25 @@ func (a *Archive) addYear(r *study.Result) {
 const noTime = math.MaxUint16
 
 // horizonCrossings are the minutes of the day, in standard time, at which the
-// sun rises and sets, by straight lines between the moments of the records,
-// which lie offsetH from each record's end.
-func horizonCrossings(sine []float64, day int, offsetH float64) (rise, set uint16) {
+// middle of the sun rises and sets, without refraction; noTime on a day without.
+func horizonCrossings(c *scene.Climate, day int) (rise, set uint16) {
 	rise, set = noTime, noTime
-	for k := range 24 {
-		h := day*24 + k
-		if h == 0 || (sine[h-1] > 0) == (sine[h] > 0) {
+	start := c.Year.Moment(24*day, -1)
+	up := func(minute int) bool {
+		s, err := sky.SunAt(c.Site, start.Add(time.Duration(minute)*time.Minute))
+		return err == nil && s.Direction.Z > 0
+	}
+	const hour = 60
+	for m := 0; m < 24*hour; m += hour {
+		before := up(m)
+		if before == up(m+hour) {
 			continue
 		}
-		t := float64(k) + offsetH + sine[h-1]/(sine[h-1]-sine[h])
-		if m := math.Round(t * 60); m >= 0 && m < 1440 {
-			if sine[h] > 0 {
-				rise = uint16(m)
-			} else {
-				set = uint16(m)
-			}
+		at := m + sort.Search(hour, func(k int) bool { return up(m+k) != before })
+		if before {
+			set = uint16(at)
+		} else {
+			rise = uint16(at)
 		}
 	}
 	return rise, set

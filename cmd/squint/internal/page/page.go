@@ -214,7 +214,7 @@ func share(x float64) string {
 	if x < 0 {
 		return "-"
 	}
-	return strings.TrimSuffix(fmt.Sprintf("%.1f", 100*x), ".0") + " %"
+	return fmt.Sprintf("%.1f %%", 100*x)
 }
 
 // number tells the template which columns are numbers.

@@ -45,12 +45,12 @@ func tradeOff(all []*Design, chosen int) template.HTML {
 	}
 	for i := range 6 {
 		v := top * float64(i) / 5
-		fmt.Fprintf(&b, `<text class="tick mid" x="%.1f" y="%.1f">%s</text>`, x(v), y(0)+18, share(v))
+		fmt.Fprintf(&b, `<text class="tick mid" x="%.1f" y="%.1f">%s</text>`, x(v), y(0)+18, strings.Replace(share(v), ".0", "", 1))
 	}
 	fmt.Fprintf(&b, `<text class="axis" x="%.1f" y="%.1f">hours over the limit at the worst viewpoint</text>`, x(0), y(0)+38)
 	fmt.Fprintf(&b, `<text class="axis" x="%.1f" y="%.1f">hours with 300 lx at the rear</text>`, 4.0, tradeTop-10)
 	if limit >= 0 {
-		fmt.Fprintf(&b, `<line class="limit" x1="%.1f" y1="%.1f" x2="%.1f" y2="%.1f"/><text class="tick" x="%.1f" y="%.1f">limit %s</text>`, x(limit), y(0), x(limit), y(1), x(limit)+5, y(1)+12, share(limit))
+		fmt.Fprintf(&b, `<line class="limit" x1="%.1f" y1="%.1f" x2="%.1f" y2="%.1f"/><text class="tick" x="%.1f" y="%.1f">limit %s</text>`, x(limit), y(0), x(limit), y(1), x(limit)+5, y(1)+12, strings.Replace(share(limit), ".0", "", 1))
 	}
 	var taken [][2]float64
 	for i, d := range all {

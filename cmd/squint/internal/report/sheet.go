@@ -85,8 +85,8 @@ func sheetWords(r *study.Result, o Options) sheet.Words {
 	w := sheet.Words{
 		Title: title(r.Project, f), Alternative: q.Name, About: strings.TrimSuffix(q.About, "."), Version: o.Version,
 		Invented: invented(r.Project, r.Climate.Year), Outcome: q.Outcome, Sentence: remembered(r, q), Caveat: verdict.Caveat,
-		Cautions: texts(cautions(r.Project), f), Warnings: texts(warnings(r.Warnings, r.Climate, r.Project), f),
-		Notes: texts(r.Notes, f), Positions: texts(r.Positions, f), Verdicts: []sheet.Verdict{}, Worst: [][]string{},
+		Cautions: sentences(cautions(r.Project), f), Warnings: sentences(warnings(r.Warnings, r.Climate, r.Project), f),
+		Notes: sentences(r.Notes, f), Positions: texts(r.Positions, f), Verdicts: []sheet.Verdict{}, Worst: [][]string{},
 		Row: sheet.Row{Views: q.Views, ViewsMet: q.ViewsMet, WorstView: q.WorstView, WorstOver: orNone(q.WorstOver), RearDA: orNone(q.RearDA),
 			MedianDF: orNone(q.MedianDF), SDA: orNone(q.SDA), ASE: orNone(q.ASE), Provision: q.Provision},
 	}
@@ -102,6 +102,15 @@ func sheetWords(r *study.Result, o Options) sheet.Words {
 	}
 	w.Tables = sheetTables(r, o, f)
 	return w
+}
+
+// sentences begin with a capital.
+func sentences(all []string, f paths) []string {
+	out := texts(all, f)
+	for i := range out {
+		out[i] = sentence(out[i])
+	}
+	return out
 }
 
 // orNone is a share, negative where it does not exist.

@@ -49,8 +49,8 @@ const (
 // patterns that they are made of. What they are kept in must fit beside the
 // rest, and the page must not grow without bound. Own choice.
 var shotSizes = []struct{ views, pixels, rank int }{
-	{16, 48, 16},
-	{48, 32, 12},
+	{16, 48, 12},
+	{48, 32, 10},
 	{math.MaxInt, 24, 8},
 }
 

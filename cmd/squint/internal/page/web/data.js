@@ -52,7 +52,7 @@ export const monthOf = (day) => { let m = 11; while (monthStart[m] > day) m--; r
 export const dateOf = (day) => `${day - monthStart[monthOf(day)] + 1} ${months[monthOf(day)]}`;
 
 // whole groups thousands by thin spaces.
-export const whole = (x) => Math.round(x).toString().replace(/\B(?=(\d{3})+(?!\d))/g, "\u2009");
+export const whole = (x) => Math.round(x).toString().replace(/\B(?=(\d{3})+(?!\d))/g, "\u202f");
 export const percent = (x, digits = 1) => `${(100 * x).toFixed(digits).replace(/\.0$/, "")} %`;
 
 // year holds what all parts of the page read of one design.

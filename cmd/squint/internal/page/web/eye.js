@@ -11,7 +11,13 @@ const reading = { eye: document.getElementById("r-eye"), path: document.getEleme
 let looked = null;
 
 const pad = 8;
-const square = (c) => sheet(c, (w) => w);
+
+// round prepares a square whose circle alone is drawn on, until rim.
+function round(c) {
+  const s = sheet(c, (w) => w);
+  s.g.save(); s.g.beginPath(); s.g.arc(s.w / 2, s.w / 2, s.w / 2 - pad, 0, 7); s.g.clip();
+  return s;
+}
 
 // onSheet is where a direction stands in the equidistant fisheye, in parts of
 // its radius from the middle: x to the right, y down; null behind the eye.
@@ -55,7 +61,7 @@ function picture(g, w, lum, px) {
   g.drawImage(c, pad, pad, size, size);
 }
 
-function rim(g, w) { g.beginPath(); g.arc(w / 2, w / 2, w / 2 - pad, 0, 7); g.strokeStyle = css("ink"); g.lineWidth = 0.8; g.stroke(); }
+function rim(g, w) { g.restore(); g.beginPath(); g.arc(w / 2, w / 2, w / 2 - pad, 0, 7); g.strokeStyle = css("ink"); g.lineWidth = 0.8; g.stroke(); }
 
 // outlines draws the borders between pixels that differ.
 function outlines(g, w, px, differ, colour, width, alpha = 1) {
@@ -91,7 +97,7 @@ function rings(g, w, list) {
 }
 
 function hourPicture(y, v, f, seen) {
-  const { g, w } = square(canvas.eye), frame = f ? f.frame(state.record) : -1, s = y.series[state.view];
+  const { g, w } = round(canvas.eye), frame = f ? f.frame(state.record) : -1, s = y.series[state.view];
   looked = null;
   let t = `${timeOf(y, state.record)}. `;
   if (frame >= 0) {
@@ -113,14 +119,13 @@ function hourPicture(y, v, f, seen) {
 }
 
 function paths(y, v, seen) {
-  const { g, w } = square(canvas.path), R = w / 2 - pad, to = (p) => [w / 2 + p[0] * R, w / 2 + p[1] * R], px = v.worst_px, q = (2 * R) / px;
+  const { g, w } = round(canvas.path), R = w / 2 - pad, to = (p) => [w / 2 + p[0] * R, w / 2 + p[1] * R], px = v.worst_px, q = (2 * R) / px;
   if (seen) for (let p = 0; p < px * px; p++) {
     const kind = seen.kind[p] & 15;
     if (!kind) continue;
-    g.fillStyle = kind === 2 ? css("hair") : css("soft"); g.globalAlpha = kind === 2 ? 0.9 : 1;
+    g.fillStyle = css(kind === 2 ? "sky" : "soft");
     g.fillRect(pad + (p % px) * q, pad + Math.floor(p / px) * q, q + 0.3, q + 0.3);
   }
-  g.globalAlpha = 1;
   if (seen) outlines(g, w, px, (a, b) => seen.kind[a] && seen.kind[b] && (seen.kind[a] & 15) * 70000 + seen.part[a] !== (seen.kind[b] & 15) * 70000 + seen.part[b], css("quiet"), 0.5, 0.55);
   const s = y.series[state.view], limit = y.design.asked >= 0 ? y.design.levels[y.design.asked].dgp : 9;
   // A dot for every hour over the limit, where the sun then stands.
@@ -133,11 +138,12 @@ function paths(y, v, seen) {
     front++;
     g.beginPath(); g.arc(...to(p), 2.1, 0, 7); g.fillStyle = css("not"); g.globalAlpha = 0.55; g.fill(); g.globalAlpha = 1;
   });
-  for (const month of [0, 1, 2, 3, 4, 5, 11]) arc(g, y, v, monthStart[month] + 20, to, ["21 Jan / 21 Nov", "21 Feb / 21 Oct", "21 Mar / 21 Sep", "21 Apr / 21 Aug", "21 May / 21 Jul", "21 June"][month] || "21 Dec");
+  for (const month of [0, 1, 2, 3, 4, 5, 11]) arc(g, y, v, monthStart[month] + 20, to, { 2: "21 Mar, 23 Sep", 5: "21 Jun", 11: "21 Dec" }[month]);
   const m = y.byRecord[state.record], now = m >= 0 && onSheet(v.axes, sunAt(y, m));
   if (now && y.moments.direct[m] > 0) { const [x, yy] = to(now); g.beginPath(); g.arc(x, yy, 6, 0, 7); g.fillStyle = css("sun"); g.fill(); g.strokeStyle = css("paper"); g.lineWidth = 1.5; g.stroke(); }
   rim(g, w);
-  reading.path.textContent = `Where the sun stands for this eye, by month and hour; the darker field is sky that it sees. Dots: the sun at ${whole(front)} of ${whole(over)} hours over the limit; at the others it is behind or clouded.`;
+  reading.path.textContent = "Where the sun stands for this eye, by month and hour of the clock; tinted is the sky that it sees." +
+    (over ? ` Dots: the sun at ${whole(front)} of the ${whole(over)} hours over the limit${front < over ? "; at the others it is behind, or does not shine" : ""}.` : " No hour is over the limit.");
   canvas.path.setAttribute("aria-label", `The sun's paths as ${v.subject} sees them`);
 }
 
@@ -161,11 +167,11 @@ function arc(g, y, v, day, to, name) {
     }
   }
   flush();
-  if (best) text(g, name, best.x + 4, best.y + 9, { align: "center", size: 10, halo: true });
+  if (best && name) text(g, name, best.x, best.y + 10, { align: "center", size: 10, halo: true });
 }
 
 async function worst(y, v, seen) {
-  const { g, w } = square(canvas.worst), n = await load(v.worst_shot), lines = (y.design.worst && y.design.worst[state.view]) || [];
+  const { g, w } = round(canvas.worst), n = await load(v.worst_shot), lines = (y.design.worst && y.design.worst[state.view]) || [];
   if (!n) { rim(g, w); reading.worst.textContent = "No hour in use has daylight."; return; }
   const lum = new Float32Array(n.lum.length), px = v.worst_px;
   for (let i = 0; i < lum.length; i++) lum[i] = n.lum[i] ? 1e-3 * Math.exp(n.lum[i] / 2500) : 0;

@@ -27,6 +27,7 @@ async function bar() {
     pick.dataset.design = String(state.design);
   }
   pick.value = String(state.view);
+  if ($("pick-design")) $("pick-design").value = String(state.design);
   const day = Math.floor(state.record / 24), hour = y.clock(state.record);
   $("pick-day").value = day; $("pick-hour").value = state.record % 24;
   $("pick-day").setAttribute("aria-valuetext", timeOf(y, state.record)); $("pick-hour").setAttribute("aria-valuetext", `${hour} h`);
@@ -41,7 +42,7 @@ function views(d) {
     const row = document.createElement("tr"), name = document.createElement("th"), word = document.createElement("td"), share = document.createElement("td"), b = document.createElement("button"), w = document.createElement("span");
     b.type = "button"; b.textContent = v.subject; b.addEventListener("click", () => show({ view: i, record: worstRecord(d, i) }));
     name.scope = "row"; name.append(b); w.className = "word " + v.outcome; w.textContent = v.outcome; word.append(w);
-    share.className = "n"; share.textContent = v.over < 0 ? "-" : percent(v.over);
+    share.className = "n"; share.textContent = v.over < 0 ? "-" : `${(100 * v.over).toFixed(1)} %`;
     if (i === state.view) row.setAttribute("aria-current", "true");
     row.append(name, word, share);
     return row;
@@ -84,5 +85,10 @@ function start() {
   return draw();
 }
 
-// What tests read.
-window.squint = { state, show, draw, year, pointOf, ready: start().then(() => true) };
+// What tests read: lit are the hours in use with daylight.
+window.squint = { state, show, draw, pointOf, lit: [] };
+window.squint.ready = start().then(async () => {
+  const y = await year(state.design);
+  window.squint.lit = [...y.moments.record].filter((r) => y.records.used[r]);
+  return true;
+});

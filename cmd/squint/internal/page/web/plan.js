@@ -33,7 +33,7 @@ export async function plan() {
   dimension(g, to, d, m, box);
   canvas.setAttribute("aria-label", `Plan of the room, cut at ${cut.toFixed(2)} m, with ${d.views.length} viewpoints. The table beside it has their verdicts.`);
   if (cells) {
-    legend(document.getElementById("l-plan"), cells.scale, cells.unit, cells.ticks, ["\u25CB met", "\u25CF not met", "\u25D0 undecided"]);
+    legend(document.getElementById("l-plan"), cells.scale, cells.unit, cells.ticks, ["hatched: sun on floor and desks", "\u25CB met", "\u25CF not met", "\u25D0 undecided"]);
     say(null);
   } else { document.getElementById("l-plan").replaceChildren(); reading.textContent = ""; }
 }
@@ -97,12 +97,23 @@ function drawing(g, m, to, cut, box) {
 }
 
 function sunPatches(g, m, sun, to, cut) {
-  g.fillStyle = css("sun"); g.globalAlpha = 0.5;
+  g.fillStyle = hatch(g);
   for (const p of beams(m, sun, 12).patches) {
     if (p.n[2] < 0.7 || p.at[2] > cut) continue;
     g.beginPath(); p.quad.forEach((q, i) => (i ? g.lineTo(...to(q)) : g.moveTo(...to(q)))); g.fill();
   }
-  g.globalAlpha = 1;
+}
+
+// hatch is how sun on the floor and on desks is drawn: the light stays readable.
+function hatch(g) {
+  const c = document.createElement("canvas"), n = 12;
+  c.width = c.height = n;
+  const h = c.getContext("2d");
+  h.strokeStyle = css("sun"); h.lineWidth = 2.6;
+  for (const d of [-n, 0, n]) { h.beginPath(); h.moveTo(d - 2, n + 2); h.lineTo(d + n + 2, -2); h.stroke(); }
+  const p = g.createPattern(c, "repeat");
+  p.setTransform(new DOMMatrix().scale(0.5));
+  return p;
 }
 
 function marker(g, [x, y], v, i) {

@@ -20,7 +20,7 @@ void main(){
   if(p.z>top) discard;
   if(mode==2){ o=c; return; }
   vec3 n=normalize(cross(dFdx(p),dFdy(p)));
-  float s=.80+.14*abs(n.z)+.06*abs(n.x);
+  float s=.84+.15*abs(n.z)+.07*abs(n.x);
   o=vec4(c.rgb*s,c.a);
   if(mode==1){
     vec3 d=normalize(p-eye); float f=dot(d,front), a=acos(clamp(f,-1.,1.))/1.5707963; vec2 q=vec2(-dot(d,left),-dot(d,up));
@@ -70,7 +70,7 @@ function finishColour(f) {
   if (f.through > 0.3) return [150, 185, 200, 60];
   if (f.mirror > 0.3) return [150, 175, 205, 255];
   if (f.veil > 0.02) return [214, 205, 188, 190];
-  const l = 255 * Math.pow(Math.max(0.02, f.diffuse), 0.42);
+  const l = 255 * (0.5 + 0.47 * Math.sqrt(f.diffuse));
   return [l, l * 0.985, l * 0.955, 255];
 }
 
@@ -110,7 +110,7 @@ function marks(m, y) {
   last.patches = 0; last.thrown = 0;
   if (now >= 0 && y.moments.direct[now] > 0) {
     const s = sunAt(y, now), p = add(centre, scale(s, R)), a = unit(cross(s, [0.3, 0.2, 1])), b = cross(s, a), r = 0.03 * R;
-    for (let k = 0; k < 20; k++) for (const t of [0, k, k + 1]) over.put(t === 0 && k ? p : add(p, add(scale(a, r * Math.cos((t * Math.PI) / 10)), scale(b, r * Math.sin((t * Math.PI) / 10)))), sun);
+    for (let k = 0; k < 20; k++) for (const t of [-1, k, k + 1]) over.put(t < 0 ? p : add(p, add(scale(a, r * Math.cos((t * Math.PI) / 10)), scale(b, r * Math.sin((t * Math.PI) / 10)))), sun);
     if (y.moments.direct[now] > 500) {
       const found = beams(m, s), weak = [...rgb("sun"), 150], mirror = [240, 200, 70, 190];
       last.patches = found.patches.filter((q) => !q.thrown).length; last.thrown = found.patches.filter((q) => q.thrown).length + found.paths.filter((q) => q.thrown).length;
@@ -168,7 +168,7 @@ export async function drawRoom() {
 function reset(d) {
   const box = extent(d), high = Math.max(...d.room.openings.map((o) => o.corners[2][2]), d.room.min[2] + 2.5), size = Math.hypot(box[2] - box[0], box[3] - box[1]);
   const out = d.room.openings.reduce((s, o) => add(s, o.outward), [0, 0, 0]);
-  camera = { yaw: Math.atan2(out[1], out[0]) + 0.65 || 0.6, pitch: 0.62, far: size * 1.25, target: [(box[0] + box[2]) / 2, (box[1] + box[3]) / 2, d.room.ground + 1], eye: null, low: d.room.ground, high: d.room.max[2], open: high };
+  camera = { yaw: Math.atan2(out[1], out[0]) + 0.65 || 0.6, pitch: 0.62, far: size * 1.55, target: [(box[0] + box[2]) / 2, (box[1] + box[3]) / 2, d.room.ground + 0.6], eye: null, low: d.room.ground, high: d.room.max[2], open: high };
   if (+cut.value === 100 && !cut.touched) cut.value = String(Math.round((100 * (high - 0.25 - camera.low)) / (camera.high - camera.low)));
 }
 
