@@ -97,7 +97,7 @@ func Write(w io.Writer, all []*Archive, o Options) error {
 	for _, a := range all {
 		data.Designs = append(data.Designs, &a.Design)
 	}
-	t, err := template.New("page").Funcs(template.FuncMap{"share": share, "id": ids(), "failing": failing, "met": metOnly, "num": number}).Parse(frame)
+	t, err := template.New("page").Funcs(template.FuncMap{"share": share, "id": ids(), "failing": failing, "viewOf": viewOf, "met": metOnly, "num": number}).Parse(frame)
 	if err != nil {
 		return err
 	}
@@ -215,6 +215,16 @@ func share(x float64) string {
 		return "-"
 	}
 	return fmt.Sprintf("%.1f %%", 100*x)
+}
+
+// viewOf finds a viewpoint by its name; nil where the design has none such.
+func viewOf(d *Design, name string) *View {
+	for i := range d.Views {
+		if d.Views[i].Name == name {
+			return &d.Views[i]
+		}
+	}
+	return nil
 }
 
 // number tells the template which columns are numbers.

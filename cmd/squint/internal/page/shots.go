@@ -22,6 +22,10 @@ const (
 	noValue    = math.MaxUint16
 )
 
+// mostSources is how many sources of a worst hour are numbered: as in the
+// other pictures of it.
+const mostSources = 6
+
 // mostDiscs is the number of discs that a picture shows: the strongest ones. A
 // blind of mirrored slats has an image in each.
 const mostDiscs = 12
@@ -70,6 +74,14 @@ func (a *Archive) view(r *study.Result, v *study.ViewResult) View {
 		var p packer
 		pack(&p, "lum", "u16", code)
 		packDiscs(&p, &w.InsideOf.View, [][]annual.Disc{w.Discs})
+		var x, y []uint16
+		for i, s := range w.Result.Sources {
+			if px, py, ok := w.InsideOf.View.LocalProject(s.Dir); ok && i < mostSources {
+				x, y = append(x, part16(px/float64(out.WorstPx))), append(y, part16(py/float64(out.WorstPx)))
+			}
+		}
+		pack(&p, "source_x", "u16", x)
+		pack(&p, "source_y", "u16", y)
 		out.WorstShot = a.add(&p)
 	}
 	return out
@@ -155,8 +167,8 @@ func packDiscs(p *packer, v *view.View, discs [][]annual.Disc) {
 				continue
 			}
 			count[i]++
-			x = append(x, uint16(math.Round(px/float64(v.Width)*65535)))
-			y = append(y, uint16(math.Round(py/float64(v.Height)*65535)))
+			x = append(x, part16(px/float64(v.Width)))
+			y = append(y, part16(py/float64(v.Height)))
 			size = append(size, logCode(d.OmegaSr, 1e-9))
 			lum = append(lum, logCode(d.Luminance, 1))
 		}
@@ -166,6 +178,11 @@ func packDiscs(p *packer, v *view.View, discs [][]annual.Disc) {
 	pack(p, "disc_y", "u16", y)
 	pack(p, "disc_sr", "u16", size)
 	pack(p, "disc_lum", "u16", lum)
+}
+
+// part16 is a part of a width, 0 to 1, in 16 bits.
+func part16(t float64) uint16 {
+	return uint16(math.Round(math.Max(0, math.Min(1, t)) * math.MaxUint16))
 }
 
 func logCode(v, least float64) uint16 {

@@ -143,7 +143,7 @@ function paths(y, v, seen) {
   if (now && y.moments.direct[m] > 0) { const [x, yy] = to(now); g.beginPath(); g.arc(x, yy, 6, 0, 7); g.fillStyle = css("sun"); g.fill(); g.strokeStyle = css("paper"); g.lineWidth = 1.5; g.stroke(); }
   rim(g, w);
   reading.path.textContent = "Where the sun stands for this eye, by month and hour of the clock; tinted is the sky that it sees." +
-    (over ? ` Dots: the sun at ${whole(front)} of the ${whole(over)} hours over the limit${front < over ? "; at the others it is behind, or does not shine" : ""}.` : " No hour is over the limit.");
+    (over ? ` Dots: the sun at ${front < over ? whole(front) + " of " : ""}the ${whole(over)} hours over the limit${front < over ? "; at the others it is behind, or does not shine" : ""}.` : " No hour is over the limit.");
   canvas.path.setAttribute("aria-label", `The sun's paths as ${v.subject} sees them`);
 }
 
@@ -157,7 +157,7 @@ function arc(g, y, v, day, to, name) {
     if (p && hours[i][1][2] > 0) {
       const [x, yy] = to(p);
       g.beginPath(); g.arc(x, yy, 1.3, 0, 7); g.fillStyle = css("ink"); g.fill();
-      if ((day === monthStart[5] + 20 || day === monthStart[11] + 20) && hours[i][0] % 3 === 0) text(g, `${y.clock(day * 24 + hours[i][0])} h`, x, yy - 9, { align: "center", colour: "ink", size: 10, halo: true });
+      if ((day === monthStart[5] + 20 || day === monthStart[11] + 20) && hours[i][0] % 3 === 0 && Math.hypot(...p) < 0.92) text(g, `${y.clock(day * 24 + hours[i][0])} h`, x, yy - 9, { align: "center", colour: "ink", size: 10, halo: true });
       if (!best || Math.abs(p[0]) < Math.abs(best.p[0])) best = { p, x, y: yy };
     }
     if (i + 1 === hours.length) break;
@@ -178,6 +178,7 @@ async function worst(y, v, seen) {
   picture(g, w, lum, px);
   sources(g, w, lum, px, y.design);
   rings(g, w, discs(n, 0));
+  n.source_x.forEach((x, i) => text(g, String(i + 1), pad + (x / 65535) * (w - 2 * pad) + 9, pad + (n.source_y[i] / 65535) * (w - 2 * pad) - 9, { align: "center", colour: "ink", size: 11, weight: 600, halo: true }));
   rim(g, w);
   reading.worst.textContent = lines.slice(0, 3).join(" ");
   canvas.worst.setAttribute("aria-label", `False-colour picture of the worst hour of ${v.subject}`);

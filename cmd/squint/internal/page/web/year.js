@@ -27,9 +27,9 @@ export async function drawYear() {
   y.moments.record.forEach((r) => { const h = y.clock(r); from = Math.min(from, h); to = Math.max(to, h + 1); });
   from = Math.max(0, Math.min(from, Math.floor(d.from_h)) - 1); to = Math.min(25, Math.max(to, Math.ceil(d.to_h)) + 1);
   const states = d.standings.length > 1, left = 38, top = 8, band = states ? 70 : 0, foot = 26;
-  const small = canvas.parentElement.clientWidth < 700;
+  const small = canvas.parentElement.clientWidth < 600;
   canvas.style.width = small ? "730px" : "100%";
-  const { g, w, h } = sheet(canvas, (w) => Math.max(230, Math.min(520, w * 0.27)) + band + foot);
+  const { g, w, h } = sheet(canvas, (w) => Math.max(230, Math.min(640, w * 0.3)) + band + foot);
   const cw = (w - left - 4) / 365, high = h - top - foot - band, ch = high / (to - from);
   const X = (day) => left + day * cw, Y = (clock) => top + (to - clock) * ch;
   lie = { y, v, from, to, left, top, cw, ch, X, Y, days: 365 };
@@ -70,6 +70,7 @@ export async function drawYear() {
   if (state.series === "dgp") legend(el, dgpScale, "daylight glare probability", [0.2, 0.3, 0.35, 0.4, 0.45, 0.5, 0.6].map((t) => [t, String(t)]), notes, limit);
   else legend(el, luxScale, state.series === "ev" ? "illuminance at the eye, lx" : "mean of the first work plane, lx", [30, 100, 300, 1000, 3000, 10000].map((t) => [t, whole(t)]), notes);
   reading.textContent = words(state.record);
+  document.getElementById("causes").textContent = causes(y, d);
   table(y, d, over);
 }
 
@@ -109,6 +110,17 @@ function words(r) {
   return t;
 }
 export const hourWords = words;
+
+// causes counts what carries the hours over the limit, the commonest first.
+function causes(y, d) {
+  const s = y.series[state.view], n = new Map(), v = d.views[state.view];
+  let all = 0;
+  if (!v || !s || d.asked < 0) return "";
+  for (let r = 0; r < s.dgp.length; r++) if (s.dgp[r] !== noValue && s.dgp[r] / 1e4 > d.levels[d.asked].dgp) { all++; n.set(s.cause[r], (n.get(s.cause[r]) || 0) + 1); }
+  if (!all) return "No hour in use is over the limit.";
+  const list = [...n].sort((a, b) => b[1] - a[1]).slice(0, 4).map(([c, k]) => `${whole(k)} by ${v.causes[c] || "the brightness of the whole view"}`);
+  return `Of the ${whole(all)} hours over the limit: ${list.join("; ")}${n.size > 4 ? "; the rest by others" : ""}.`;
+}
 
 let filled = "";
 function table(y, d, over) {
