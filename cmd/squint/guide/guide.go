@@ -27,6 +27,7 @@ var topics = []Topic{
 	{"weather", "weather files, and the moment each record stands for"},
 	{"criteria", "what is judged, which hours count, and the sources"},
 	{"results", "the results folder, confidence, exit statuses"},
+	{"report", "the interactive page: one file for client and authority"},
 	{"export", "the built scene as files for CAD and viewers"},
 	{"method", "how it is computed, in plain words"},
 	{"limits", "what this version does not do"},

@@ -216,7 +216,7 @@ func Compare(w io.Writer, all []Design, dir string, elapsed time.Duration) error
 	p.gap()
 	p.head("Results")
 	p.path(2, dir)
-	p.para(2, AlternativesFile+": this table; and a folder of each alternative with its summary, hourly series and pictures.")
+	p.para(2, SheetFile+": the page to open in a browser. "+AlternativesFile+": this table; and a folder of each alternative with its summary, hourly series and pictures.")
 	p.item(0, "", lipgloss.NewStyle(), 0, fmt.Sprintf("Computed in %s on %s.", durationWords(elapsed), count(first.Settings.Workers, "thread", "threads")))
 	return p.print(w)
 }

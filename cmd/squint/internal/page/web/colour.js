@@ -27,7 +27,12 @@ export const shareScale = (most) => new Scale("cividis", 0, most, false);
 export const luminanceScale = new Scale("inferno", 5, 20000, true);
 
 // css reads the sheet's own colours, which follow light, dark and print.
-export const css = (name) => getComputedStyle(document.documentElement).getPropertyValue("--" + name).trim();
+const known = new Map();
+export function css(name) {
+  if (!known.has(name)) known.set(name, getComputedStyle(document.documentElement).getPropertyValue("--" + name).trim());
+  return known.get(name);
+}
+for (const change of ["(prefers-color-scheme: dark)", "print"]) matchMedia(change).addEventListener("change", () => known.clear());
 
 // legend draws a scale with ticks into an element.
 export function legend(element, scale, unit, ticks, notes = [], mark) {

@@ -2,7 +2,7 @@
 import { year, load, whole, percent, noValue, timeOf, sunAt, monthStart } from "./data.js";
 import { state } from "./state.js";
 import { css, luminanceScale, legend } from "./colour.js";
-import { sheet, text, line, place } from "./paper.js";
+import { sheet, kept, text, line, place } from "./paper.js";
 import { film, discs } from "./film.js";
 import { dot } from "./mesh.js";
 
@@ -15,9 +15,10 @@ const pad = 8;
 // round prepares a square whose circle alone is drawn on, until rim.
 function round(c) {
   const s = sheet(c, (w) => w);
-  s.g.save(); s.g.beginPath(); s.g.arc(s.w / 2, s.w / 2, s.w / 2 - pad, 0, 7); s.g.clip();
+  clip(s.g, s.w);
   return s;
 }
+function clip(g, w) { g.save(); g.beginPath(); g.arc(w / 2, w / 2, w / 2 - pad, 0, 7); g.clip(); }
 
 // onSheet is where a direction stands in the equidistant fisheye, in parts of
 // its radius from the middle: x to the right, y down; null behind the eye.
@@ -33,7 +34,7 @@ export async function eye() {
   const seen = await load(v.seen), f = await film(v.shots);
   hourPicture(y, v, f, seen);
   paths(y, v, seen);
-  await worst(y, v, seen);
+  await worst(y, v);
   legend(document.getElementById("l-eye"), luminanceScale, "luminance, cd/m\u00b2", [10, 30, 100, 300, 1000, 3000, 10000].map((t) => [t, whole(t)]), ["Rings: the sun's disc and its images. Outlined: above the threshold for sources of glare."]);
 }
 
@@ -119,29 +120,30 @@ function hourPicture(y, v, f, seen) {
 }
 
 function paths(y, v, seen) {
-  const { g, w } = round(canvas.path), R = w / 2 - pad, to = (p) => [w / 2 + p[0] * R, w / 2 + p[1] * R], px = v.worst_px, q = (2 * R) / px;
-  if (seen) for (let p = 0; p < px * px; p++) {
-    const kind = seen.kind[p] & 15;
-    if (!kind) continue;
-    g.fillStyle = css(kind === 2 ? "sky" : "soft");
-    g.fillRect(pad + (p % px) * q, pad + Math.floor(p / px) * q, q + 0.3, q + 0.3);
-  }
-  if (seen) outlines(g, w, px, (a, b) => seen.kind[a] && seen.kind[b] && (seen.kind[a] & 15) * 70000 + seen.part[a] !== (seen.kind[b] & 15) * 70000 + seen.part[b], css("quiet"), 0.5, 0.55);
+  const paper = sheet(canvas.path, (w) => w), { w } = paper, R = w / 2 - pad, to = (p) => [w / 2 + p[0] * R, w / 2 + p[1] * R], px = v.worst_px, q = (2 * R) / px;
   const s = y.series[state.view], limit = y.design.asked >= 0 ? y.design.levels[y.design.asked].dgp : 9;
-  // A dot for every hour over the limit, where the sun then stands.
-  let over = 0, front = 0;
-  y.moments.record.forEach((r, m) => {
-    if (!s || s.dgp[r] === noValue || s.dgp[r] / 1e4 <= limit) return;
-    over++;
-    const p = y.moments.direct[m] > 100 && onSheet(v.axes, sunAt(y, m));
-    if (!p) return;
-    front++;
-    g.beginPath(); g.arc(...to(p), 2.1, 0, 7); g.fillStyle = css("not"); g.globalAlpha = 0.55; g.fill(); g.globalAlpha = 1;
+  const bad = [];
+  y.moments.record.forEach((r, m) => { if (s && s.dgp[r] !== noValue && s.dgp[r] / 1e4 > limit) bad.push(m); });
+  const dots = bad.map((m) => y.moments.direct[m] > 100 && onSheet(v.axes, sunAt(y, m))).filter((p) => p), over = bad.length, front = dots.length;
+  kept(canvas.path, paper, [state.design, state.view].join(), (g) => {
+    clip(g, w);
+    if (seen) for (let p = 0; p < px * px; p++) {
+      const kind = seen.kind[p] & 15;
+      if (!kind) continue;
+      g.fillStyle = css(kind === 2 ? "sky" : "soft");
+      g.fillRect(pad + (p % px) * q, pad + Math.floor(p / px) * q, q + 0.3, q + 0.3);
+    }
+    if (seen) outlines(g, w, px, (a, b) => seen.kind[a] && seen.kind[b] && (seen.kind[a] & 15) * 70000 + seen.part[a] !== (seen.kind[b] & 15) * 70000 + seen.part[b], css("quiet"), 0.5, 0.55);
+    // A dot for every hour over the limit, where the sun then stands.
+    g.fillStyle = css("not"); g.globalAlpha = 0.55;
+    for (const p of dots) { g.beginPath(); g.arc(...to(p), 2.1, 0, 7); g.fill(); }
+    g.globalAlpha = 1;
+    for (const month of [0, 1, 2, 3, 4, 5, 11]) arc(g, y, v, monthStart[month] + 20, to, { 2: "21 Mar, 23 Sep", 5: "21 Jun", 11: "21 Dec" }[month]);
+    rim(g, w);
   });
-  for (const month of [0, 1, 2, 3, 4, 5, 11]) arc(g, y, v, monthStart[month] + 20, to, { 2: "21 Mar, 23 Sep", 5: "21 Jun", 11: "21 Dec" }[month]);
+  const g = paper.g;
   const m = y.byRecord[state.record], now = m >= 0 && onSheet(v.axes, sunAt(y, m));
   if (now && y.moments.direct[m] > 0) { const [x, yy] = to(now); g.beginPath(); g.arc(x, yy, 6, 0, 7); g.fillStyle = css("sun"); g.fill(); g.strokeStyle = css("paper"); g.lineWidth = 1.5; g.stroke(); }
-  rim(g, w);
   reading.path.textContent = "Where the sun stands for this eye, by month and hour of the clock; tinted is the sky that it sees." +
     (over ? ` Dots: the sun at ${front < over ? whole(front) + " of " : ""}the ${whole(over)} hours over the limit${front < over ? "; at the others it is behind, or does not shine" : ""}.` : " No hour is over the limit.");
   canvas.path.setAttribute("aria-label", `The sun's paths as ${v.subject} sees them`);
@@ -170,16 +172,19 @@ function arc(g, y, v, day, to, name) {
   if (best && name) text(g, name, best.x, best.y + 10, { align: "center", size: 10, halo: true });
 }
 
-async function worst(y, v, seen) {
-  const { g, w } = round(canvas.worst), n = await load(v.worst_shot), lines = (y.design.worst && y.design.worst[state.view]) || [];
-  if (!n) { rim(g, w); reading.worst.textContent = "No hour in use has daylight."; return; }
+async function worst(y, v) {
+  const n = await load(v.worst_shot), lines = (y.design.worst && y.design.worst[state.view]) || [], paper = sheet(canvas.worst, (w) => w), { w } = paper;
+  if (!n) { clip(paper.g, w); rim(paper.g, w); reading.worst.textContent = "No hour in use has daylight."; return; }
   const lum = new Float32Array(n.lum.length), px = v.worst_px;
   for (let i = 0; i < lum.length; i++) lum[i] = n.lum[i] ? 1e-3 * Math.exp(n.lum[i] / 2500) : 0;
-  picture(g, w, lum, px);
-  sources(g, w, lum, px, y.design);
-  rings(g, w, discs(n, 0));
-  n.source_x.forEach((x, i) => text(g, String(i + 1), pad + (x / 65535) * (w - 2 * pad) + 9, pad + (n.source_y[i] / 65535) * (w - 2 * pad) - 9, { align: "center", colour: "ink", size: 11, weight: 600, halo: true }));
-  rim(g, w);
+  kept(canvas.worst, paper, [state.design, state.view].join(), (g) => {
+    clip(g, w);
+    picture(g, w, lum, px);
+    sources(g, w, lum, px, y.design);
+    rings(g, w, discs(n, 0));
+    n.source_x.forEach((x, i) => text(g, String(i + 1), pad + (x / 65535) * (w - 2 * pad) + 9, pad + (n.source_y[i] / 65535) * (w - 2 * pad) - 9, { align: "center", colour: "ink", size: 11, weight: 600, halo: true }));
+    rim(g, w);
+  });
   reading.worst.textContent = lines.slice(0, 3).join(" ");
   canvas.worst.setAttribute("aria-label", `False-colour picture of the worst hour of ${v.subject}`);
 }

@@ -2,7 +2,13 @@
 // The Go package film says what the numbers mean.
 import { load } from "./data.js";
 
-export async function film(shots) {
+const films = new Map();
+export function film(shots) {
+  if (!films.has(shots)) films.set(shots, develop(shots));
+  return films.get(shots);
+}
+
+async function develop(shots) {
   const n = shots && (await load(shots.numbers));
   if (!n) return null;
   const frames = new Map();

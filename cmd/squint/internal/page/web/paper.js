@@ -12,6 +12,23 @@ export function sheet(canvas, high) {
   return { g, w, h };
 }
 
+// kept draws what does not change with the hour once for each key, and lays it
+// on the sheet; sheets are those of sheet().
+const drawings = new Map();
+export function kept(canvas, s, key, draw) {
+  const all = `${key}/${canvas.width}x${canvas.height}/${css("paper")}`, old = drawings.get(canvas.id);
+  let c = old && old.all === all ? old.c : null;
+  if (!c) {
+    c = document.createElement("canvas");
+    c.width = canvas.width; c.height = canvas.height;
+    const g = c.getContext("2d");
+    g.setTransform(s.g.getTransform()); g.lineJoin = "round";
+    draw(g);
+    drawings.set(canvas.id, { all, c });
+  }
+  s.g.save(); s.g.setTransform(1, 0, 0, 1, 0, 0); s.g.drawImage(c, 0, 0); s.g.restore();
+}
+
 export function text(g, s, x, y, { align = "left", colour = "quiet", size = 12, weight = 400, halo = false } = {}) {
   g.font = `${weight} ${size}px ${css("sans")}`; g.textAlign = align; g.textBaseline = "middle";
   if (halo) { g.strokeStyle = css("paper"); g.lineWidth = 3.5; g.strokeText(s, x, y); }

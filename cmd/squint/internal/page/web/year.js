@@ -2,7 +2,7 @@
 import { year, load, noValue, monthStart, monthNames, monthOf, timeOf, whole, percent } from "./data.js";
 import { state, show } from "./state.js";
 import { css, dgpScale, luxScale, legend, swatch } from "./colour.js";
-import { sheet, text, line, place } from "./paper.js";
+import { sheet, kept, text, line, place } from "./paper.js";
 
 const canvas = document.getElementById("c-year"), reading = document.getElementById("r-year"), pick = document.getElementById("pick-series");
 let lie = null;
@@ -29,39 +29,42 @@ export async function drawYear() {
   const states = d.standings.length > 1, left = 38, top = 8, band = states ? 70 : 0, foot = 26;
   const small = canvas.parentElement.clientWidth < 600;
   canvas.style.width = small ? "730px" : "100%";
-  const { g, w, h } = sheet(canvas, (w) => Math.max(230, Math.min(640, w * 0.3)) + band + foot);
+  const paper = sheet(canvas, (w) => Math.max(230, Math.min(640, w * 0.3)) + band + foot), { w, h } = paper;
   const cw = (w - left - 4) / 365, high = h - top - foot - band, ch = high / (to - from);
   const X = (day) => left + day * cw, Y = (clock) => top + (to - clock) * ch;
   lie = { y, v, from, to, left, top, cw, ch, X, Y, days: 365 };
   const scale = state.series === "dgp" ? dgpScale : luxScale;
   const over = (r) => s && state.series !== "mean" && s.dgp[r] !== noValue && s.dgp[r] / 1e4 > limit;
-  for (let r = 0; r < v.length; r++) {
-    if (Number.isNaN(v[r])) continue;
-    if (v[r] === 0 && y.byRecord[r] < 0) continue; // in the dark
-    g.fillStyle = scale.css(v[r]);
-    g.fillRect(X(Math.floor(r / 24)), Y(y.clock(r) + 1), cw + 0.3, ch + 0.3);
-  }
-  // Outline of the hours over the limit.
-  g.beginPath();
-  for (let r = 0; r < v.length; r++) {
-    if (!over(r)) continue;
-    const day = Math.floor(r / 24), x = X(day), yy = Y(y.clock(r) + 1);
-    if (!over(r - 24)) { g.moveTo(x, yy); g.lineTo(x, yy + ch); }
-    if (!over(r + 24)) { g.moveTo(x + cw, yy); g.lineTo(x + cw, yy + ch); }
-    if (!over(r + 1) || r % 24 === 23) { g.moveTo(x, yy); g.lineTo(x + cw, yy); }
-    if (!over(r - 1) || r % 24 === 0) { g.moveTo(x, yy + ch); g.lineTo(x + cw, yy + ch); }
-  }
-  g.strokeStyle = css("ink"); g.lineWidth = 1.1; g.stroke();
-  axes(g, w, from, to, X, Y, h - foot - band, cw);
-  for (const key of ["rise", "set"]) {
-    let run = [];
-    const flush = () => { if (run.length > 1) line(g, run, "ink", 0.8); run = []; };
-    for (let day = 0; day < 365; day++) { const m = y.days[key][day]; if (m === noValue || (day && y.days.shift[day] !== y.days.shift[day - 1])) flush(); if (m !== noValue) run.push([X(day + 0.5), Y(m / 60 + y.days.shift[day])]); }
-    flush();
-  }
-  line(g, [[X(0), Y(d.from_h)], [X(365), Y(d.from_h)]], "ink", 0.8, [5, 4]);
-  line(g, [[X(0), Y(d.to_h)], [X(365), Y(d.to_h)]], "ink", 0.8, [5, 4]);
-  if (states) standingBand(g, y, d, X, h - foot - band + 10, band - 12, cw, from, to);
+  kept(canvas, paper, [state.design, state.view, state.series].join(), (g) => {
+    for (let r = 0; r < v.length; r++) {
+      if (Number.isNaN(v[r])) continue;
+      if (v[r] === 0 && y.byRecord[r] < 0) continue; // in the dark
+      g.fillStyle = scale.css(v[r]);
+      g.fillRect(X(Math.floor(r / 24)), Y(y.clock(r) + 1), cw + 0.3, ch + 0.3);
+    }
+    // Outline of the hours over the limit.
+    g.beginPath();
+    for (let r = 0; r < v.length; r++) {
+      if (!over(r)) continue;
+      const day = Math.floor(r / 24), x = X(day), yy = Y(y.clock(r) + 1);
+      if (!over(r - 24)) { g.moveTo(x, yy); g.lineTo(x, yy + ch); }
+      if (!over(r + 24)) { g.moveTo(x + cw, yy); g.lineTo(x + cw, yy + ch); }
+      if (!over(r + 1) || r % 24 === 23) { g.moveTo(x, yy); g.lineTo(x + cw, yy); }
+      if (!over(r - 1) || r % 24 === 0) { g.moveTo(x, yy + ch); g.lineTo(x + cw, yy + ch); }
+    }
+    g.strokeStyle = css("ink"); g.lineWidth = 1.1; g.stroke();
+    axes(g, w, from, to, X, Y, h - foot - band, cw);
+    for (const key of ["rise", "set"]) {
+      let run = [];
+      const flush = () => { if (run.length > 1) line(g, run, "ink", 0.8); run = []; };
+      for (let day = 0; day < 365; day++) { const m = y.days[key][day]; if (m === noValue || (day && y.days.shift[day] !== y.days.shift[day - 1])) flush(); if (m !== noValue) run.push([X(day + 0.5), Y(m / 60 + y.days.shift[day])]); }
+      flush();
+    }
+    line(g, [[X(0), Y(d.from_h)], [X(365), Y(d.from_h)]], "ink", 0.8, [5, 4]);
+    line(g, [[X(0), Y(d.to_h)], [X(365), Y(d.to_h)]], "ink", 0.8, [5, 4]);
+    if (states) standingBand(g, y, d, X, h - foot - band + 10, band - 12, cw, from, to);
+  });
+  const g = paper.g;
   const day = Math.floor(state.record / 24), cx = X(day + 0.5), cy = Y(y.clock(state.record) + 0.5);
   for (const [colour, width] of [["paper", 5], ["sun", 2.5]]) { g.beginPath(); g.arc(cx, cy, 8, 0, 7); g.strokeStyle = css(colour); g.lineWidth = width; g.stroke(); }
   canvas.setAttribute("aria-label", `The year of ${d.views[state.view] ? d.views[state.view].subject : "the work plane"}: ${pick.selectedOptions[0].text}. Arrow keys choose day and hour.`);
