@@ -29,8 +29,11 @@ export function kept(canvas, s, key, draw) {
   s.g.save(); s.g.setTransform(1, 0, 0, 1, 0, 0); s.g.drawImage(c, 0, 0); s.g.restore();
 }
 
+// larger is how much larger the page's type is than that of a small screen.
+const larger = () => parseFloat(getComputedStyle(document.documentElement).fontSize) / 15.5;
+
 export function text(g, s, x, y, { align = "left", colour = "quiet", size = 12, weight = 400, halo = false } = {}) {
-  g.font = `${weight} ${size}px ${css("sans")}`; g.textAlign = align; g.textBaseline = "middle";
+  g.font = `${weight} ${size * larger()}px ${css("sans")}`; g.textAlign = align; g.textBaseline = "middle";
   if (halo) { g.strokeStyle = css("paper"); g.lineWidth = 3.5; g.strokeText(s, x, y); }
   g.fillStyle = css(colour) || colour; g.fillText(s, x, y);
 }

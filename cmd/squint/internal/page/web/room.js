@@ -25,7 +25,10 @@ void main(){
   if(mode==1){
     vec3 d=normalize(p-eye); float f=dot(d,front), a=acos(clamp(f,-1.,1.))/1.5707963; vec2 q=vec2(-dot(d,left),-dot(d,up));
     vec2 uv=a*normalize(q+1e-9)*.5+.5;
-    if(a<1.){ float k=floor(texture(parts,uv).r*255.+.5)+256.*floor(texture(parts,uv).g*255.+.5); if(abs(k-id-1.)<.5){ o=vec4(texture(seen,uv).rgb,1.); return; } }
+    if(a<1.) for(int k=0;k<9;k++){ // a part's edge may lie in the next pixel
+      vec4 t=floor(texture(parts,uv+vec2(k%3-1,k/3-1)/float(textureSize(parts,0).x))*255.+.5);
+      if(abs(t.r+256.*t.g-id-1.)<.5 || c.a<.5 && t.b>0.){ o=vec4(texture(seen,uv).rgb,1.); return; }
+    }
     o=vec4(mix(paper,c.rgb*s,.35),c.a);
   }
 }`;
@@ -90,6 +93,7 @@ function geometry(m) {
 function marks(m, y) {
   const lines = new Batch(), over = new Batch(), sun = [...rgb("sun"), 255], quiet = [...rgb("quiet"), 200], ink = [...rgb("ink"), 255];
   y.design.views.forEach((v, i) => {
+    if (camera && camera.eye && i === state.view) return; // it looks out of itself
     const [f, l, u] = v.axes, e = v.position, colour = i === state.view ? sun : ink, size = i === state.view ? 0.55 : 0.35;
     const tip = [[-0.5, 0.35], [0.5, 0.35], [0.5, -0.35], [-0.5, -0.35]].map(([a, b]) => add(e, add(scale(f, size), add(scale(l, a * size), scale(u, b * size)))));
     tip.forEach((t, k) => { lines.put(e, colour); lines.put(t, colour); lines.put(t, colour); lines.put(tip[(k + 1) % 4], colour); });
@@ -124,7 +128,7 @@ function marks(m, y) {
 function textures(v, lum, px, seen) {
   const colours = new Uint8Array(4 * px * px), parts = new Uint8Array(4 * v.worst_px * v.worst_px);
   for (let i = 0; i < px * px; i++) { colours.set(luminanceScale.rgb(lum[i]), 4 * i); colours[4 * i + 3] = 255; }
-  for (let i = 0; i < v.worst_px * v.worst_px; i++) { parts[4 * i] = seen.part[i] & 255; parts[4 * i + 1] = seen.part[i] >> 8; }
+  for (let i = 0; i < v.worst_px * v.worst_px; i++) { parts[4 * i] = seen.part[i] & 255; parts[4 * i + 1] = seen.part[i] >> 8; parts[4 * i + 2] = seen.via[i]; }
   [[0, colours, px, gl.LINEAR], [1, parts, v.worst_px, gl.NEAREST]].forEach(([slot, data, n, filter]) => {
     last["texture" + slot] ||= gl.createTexture();
     gl.activeTexture(gl.TEXTURE0 + slot); gl.bindTexture(gl.TEXTURE_2D, last["texture" + slot]);
@@ -145,6 +149,7 @@ export async function drawRoom() {
   }
   const m = await room(state.design), y = await year(state.design), d = y.design, theme = css("paper");
   if (last.design !== state.design || last.theme !== theme) { geometry(m); if (last.design !== state.design && !camera) reset(d); last.design = state.design; last.theme = theme; }
+  if (camera && camera.eye && camera.eye.view !== state.view) look(d.views[state.view]);
   marks(m, y);
   const v = d.views[state.view];
   last.mode = 0;
@@ -192,7 +197,7 @@ function render() {
   gl.enable(gl.BLEND); gl.blendFunc(gl.SRC_ALPHA, gl.ONE_MINUS_SRC_ALPHA);
   paint("lines", gl.LINES, 2);
   gl.depthMask(false);
-  paint("glass", gl.TRIANGLES, 0);
+  paint("glass", gl.TRIANGLES, last.mode);
   gl.uniform1f(at.top, 1e6);
   paint("over", gl.TRIANGLES, 2); paint("marks", gl.LINES, 2);
   gl.depthMask(true);
@@ -227,11 +232,12 @@ canvas.addEventListener("keydown", (e) => {
 });
 surface.addEventListener("change", () => drawRoom());
 cut.addEventListener("input", () => { cut.touched = true; render(); });
-document.getElementById("room-reset").addEventListener("click", () => { camera = null; reset(designs[state.design]); render(); });
-document.getElementById("room-eye").addEventListener("click", () => {
-  const v = designs[state.design].views[state.view];
+document.getElementById("room-reset").addEventListener("click", () => { camera = null; reset(designs[state.design]); drawRoom(); });
+document.getElementById("room-eye").addEventListener("click", () => { look(designs[state.design].views[state.view]); drawRoom(); });
+
+// look puts the camera into a viewpoint's eye.
+function look(v) {
   if (!v || !camera) return;
   const f = v.axes[0];
-  camera.eye = { position: v.position, yaw: Math.atan2(f[1], f[0]), pitch: Math.asin(f[2]) };
-  render();
-});
+  camera.eye = { view: state.view, position: v.position, yaw: Math.atan2(f[1], f[0]), pitch: Math.asin(f[2]) };
+}
