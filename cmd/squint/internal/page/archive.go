@@ -30,7 +30,6 @@ type Archive struct {
 }
 
 type blobData struct {
-	size   int
 	raw    []byte // nil where only deflated is known
 	packed []byte // deflated
 }
@@ -126,6 +125,6 @@ func (a *Archive) readBlob(id string, f *zip.File) error {
 	if _, err := io.Copy(&b, in); err != nil {
 		return err
 	}
-	a.blobs[id] = blobData{size: int(f.UncompressedSize64), packed: b.Bytes()}
+	a.blobs[id] = blobData{packed: b.Bytes()}
 	return nil
 }

@@ -43,6 +43,6 @@ func pack[T whole](p *packer, name, kind string, v []T) {
 func (a *Archive) add(p *packer) Blob {
 	sum := sha256.Sum256(p.data)
 	p.blob.ID = hex.EncodeToString(sum[:8])
-	a.blobs[p.blob.ID] = blobData{size: len(p.data), raw: p.data}
+	a.blobs[p.blob.ID] = blobData{raw: p.data}
 	return p.blob
 }

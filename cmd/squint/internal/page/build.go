@@ -21,7 +21,7 @@ func Build(r *study.Result, words Words) *Archive {
 	*d = Design{
 		Schema: Schema, SchemaVersion: SchemaVersion, Words: words,
 		NorthRad: r.Project.Site.NorthDeg * math.Pi / 180,
-		Year:     r.Calendar.FirstWeekday, FromH: r.Calendar.FromH, ToH: r.Calendar.ToH, Use: len(r.Occupied),
+		FromH:    r.Calendar.FromH, ToH: r.Calendar.ToH, Use: len(r.Occupied),
 		Levels: levels(), Asked: -1,
 		SourceRule: c.SourceRule, SourceCdM2: c.SourceLuminance, SourceMultiple: c.SourceMultiple,
 		Standings: r.Standings, Views: []View{}, Planes: []Plane{},

@@ -10,7 +10,6 @@ type Design struct {
 	Words
 
 	NorthRad float64 `json:"north"` // azimuth of the model's +y
-	Year     int     `json:"first_weekday"`
 	FromH    float64 `json:"from_h"`
 	ToH      float64 `json:"to_h"`
 	Use      int     `json:"hours_in_use"`
@@ -83,7 +82,6 @@ type Row struct {
 	MedianDF  float64 `json:"median_df"`
 	SDA       float64 `json:"sda"`
 	ASE       float64 `json:"ase"`
-	Provision string  `json:"provision"`
 }
 
 // Level is a level of protection from glare.
@@ -106,10 +104,10 @@ type View struct {
 	Causes   []string      `json:"causes"`
 	Series   Blob          `json:"series"` // by record: DGP, its error, Ev, cause
 
-	Worst      int  `json:"worst"` // record, -1 for none
-	WorstPx    int  `json:"worst_px"`
-	WorstShot  Blob `json:"worst_shot"` // luminance of the hour at full size, discs
-	HasPicture bool `json:"has_shots"`
+	Worst     int  `json:"worst"` // record, -1 for none
+	WorstPx   int  `json:"worst_px"`
+	WorstShot Blob `json:"worst_shot"` // luminance of the hour at full size, discs
+	HasShots  bool `json:"has_shots"`
 
 	Shots Shots `json:"shots"`
 	Seen  Blob  `json:"seen"` // what stands in each pixel, WorstPx across

@@ -51,7 +51,7 @@ func (a *Archive) view(r *study.Result, v *study.ViewResult) View {
 	if s := v.Shots; s != nil {
 		f, l, u := s.Eye.Frame()
 		out.Axes = [3][3]float64{vec(f), vec(l), vec(u)}
-		out.HasPicture = true
+		out.HasShots = true
 		out.Shots = a.shots(s.Film, &s.View, s.Inside, s.Records, s.Discs)
 		out.WorstPx = s.Eye.Width
 		out.Seen = a.seen(r, s)
