@@ -26,7 +26,7 @@ export async function drawYear() {
   let from = 24, to = 0;
   y.moments.record.forEach((r) => { const h = y.clock(r); from = Math.min(from, h); to = Math.max(to, h + 1); });
   from = Math.max(0, Math.min(from, Math.floor(d.from_h)) - 1); to = Math.min(25, Math.max(to, Math.ceil(d.to_h)) + 1);
-  const states = d.standings.length > 1, left = 38, top = 8, band = states ? 70 : 0, foot = 26;
+  const states = d.standings.length > 1, left = 38, top = 8, band = states ? 110 : 0, foot = 26;
   const small = canvas.parentElement.clientWidth < 600;
   canvas.style.width = small ? "730px" : "100%";
   const paper = sheet(canvas, (w) => Math.max(230, Math.min(640, w * 0.3)) + band + foot), { w, h } = paper;
@@ -62,7 +62,7 @@ export async function drawYear() {
     }
     line(g, [[X(0), Y(d.from_h)], [X(365), Y(d.from_h)]], "ink", 0.8, [5, 4]);
     line(g, [[X(0), Y(d.to_h)], [X(365), Y(d.to_h)]], "ink", 0.8, [5, 4]);
-    if (states) standingBand(g, y, d, X, h - foot - band + 10, band - 12, cw, from, to);
+    if (states) standingBand(g, y, d, X, h - band - 4, band, cw, from, to);
   });
   const g = paper.g;
   const day = Math.floor(state.record / 24), cx = X(day + 0.5), cy = Y(y.clock(state.record) + 0.5);
@@ -83,17 +83,20 @@ function axes(g, w, from, to, X, Y, low, cw) {
   line(g, [[X(0), low], [X(365), low]], "hair", 1);
 }
 
-// tone is a step between paper and ink for a state of what moves.
-function tone(i, n) { const c = css("quiet"); return i === 0 ? "transparent" : `color-mix(in srgb, ${c} ${Math.round((85 * i) / Math.max(1, n - 1)) + 10}%, transparent)`; }
+// tone is a step from paper to ink for a state of what moves.
+function tone(i, n) {
+  const part = n > 1 ? i / (n - 1) : 0, [a, b] = ["hair", "ink"].map((name) => [1, 3, 5].map((k) => parseInt(css(name).substr(k, 2), 16)));
+  return `rgb(${a.map((v, k) => Math.round(v + (b[k] - v) * part * 0.85)).join(" ")})`;
+}
 
+// standingBand shows below the year how what moves stands, on the same days.
 function standingBand(g, y, d, X, top, high, cw, from, to) {
-  top += 18;
-  const ch = (high - 18) / (to - from);
+  const ch = high / (to - from), tones = d.standings.map((_, i) => tone(i, d.standings.length));
   for (let r = 0; r < y.records.standing.length; r++) {
     const k = y.records.standing[r];
     if (k === 255) continue;
-    g.fillStyle = css("soft"); g.fillRect(X(Math.floor(r / 24)), top + (to - y.clock(r) - 1) * ch, cw + 0.3, ch + 0.3);
-    if (k > 0) { g.fillStyle = css("quiet"); g.globalAlpha = 0.15 + (0.8 * k) / Math.max(1, d.standings.length - 1); g.fillRect(X(Math.floor(r / 24)), top + (to - y.clock(r) - 1) * ch, cw + 0.3, ch + 0.3); g.globalAlpha = 1; }
+    g.fillStyle = tones[k];
+    g.fillRect(X(Math.floor(r / 24)), top + (to - y.clock(r) - 1) * ch, cw + 0.3, ch + 0.3);
   }
 }
 
@@ -109,7 +112,7 @@ function words(r) {
   } else t += "not in use. ";
   t += `Sun ${whole(y.moments.direct[m])} lx on a plane that faces it, sky ${whole(y.moments.sky[m])} lx on the level.`;
   const k = y.records.standing[r];
-  if (d.standings.length > 1 && k !== 255 && d.standings[k]) t += ` ${d.standings[k]}.`;
+  if (d.standings.length > 1 && k !== 255 && d.standings[k]) t += ` With ${d.standings[k]}.`;
   return t;
 }
 export const hourWords = words;
