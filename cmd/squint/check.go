@@ -120,6 +120,9 @@ func runCheck(ctx context.Context, h host, o checkOptions) error {
 		}
 		done = append(done, report.Design{Result: r, Folder: folders[i]})
 		if folders[i] == "" {
+			if err := report.WriteSheet(folder, ""); err != nil {
+				return fmt.Errorf("results: %w", err)
+			}
 			err = report.Terminal(h.out, r, folder, h.now().Sub(start))
 		} else {
 			err = report.Brief(h.out, r, folder, h.now().Sub(began))
@@ -130,6 +133,9 @@ func runCheck(ctx context.Context, h host, o checkOptions) error {
 	}
 	if folders[0] != "" {
 		if err := report.WriteComparison(out, done); err != nil {
+			return fmt.Errorf("results: %w", err)
+		}
+		if err := report.WriteSheet(out, ""); err != nil {
 			return fmt.Errorf("results: %w", err)
 		}
 		if err := report.Compare(h.out, done, out, h.now().Sub(start)); err != nil {
@@ -165,7 +171,7 @@ func runStudy(ctx context.Context, h host, in *study.Input, o checkOptions, d de
 	// The collector works harder as the project's own limit comes near.
 	debug.SetMemoryLimit(int64(in.Project.Simulation.MemoryMiB) << 20)
 	bar := newProgress(h)
-	r, err := study.Run(ctx, in, study.Options{Workers: o.Workers, Progress: bar.Report})
+	r, err := study.Run(ctx, in, study.Options{Workers: o.Workers, Progress: bar.Report, Shots: true})
 	bar.Close(err == nil)
 	// A stop in the last moments of a run counts as well.
 	if stopped := ctx.Err(); stopped != nil {

@@ -86,7 +86,7 @@ Without a project, "squint check" runs the demo that comes with the program;
 	root.SetOut(h.out)
 	root.SetErr(h.err)
 	root.SetFlagErrorFunc(func(_ *cobra.Command, err error) error { return usageError{err} })
-	root.AddCommand(newCheck(h, runCheck), newLook(h, runLook), newNew(h, runNew), newExport(h, runExport), newGlare(h, runGlare), newGuide(h, runGuide))
+	root.AddCommand(newCheck(h, runCheck), newLook(h, runLook), newNew(h, runNew), newExport(h, runExport), newGlare(h, runGlare), newReport(h, runReport), newGuide(h, runGuide))
 	return root
 }
 

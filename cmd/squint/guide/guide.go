@@ -30,6 +30,7 @@ var topics = []Topic{
 	{"outlook", "view out, exposure to sunlight, sun on the glass"},
 	{"glare", "HDR images and site photographs evaluated for glare"},
 	{"results", "the results folder, confidence, exit statuses"},
+	{"report", "the interactive page: one file for client and authority"},
 	{"look", "luminance pictures of a moment, and plans"},
 	{"export", "the built scene as files for CAD and viewers"},
 	{"method", "how it is computed, in plain words"},

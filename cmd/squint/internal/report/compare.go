@@ -6,6 +6,8 @@ import (
 	"fmt"
 	"io"
 	"math"
+	"os"
+	"path/filepath"
 	"time"
 
 	"charm.land/lipgloss/v2"
@@ -125,6 +127,34 @@ func WriteComparison(dir string, all []Design) error {
 	return nil
 }
 
+// comparedFolders reads the designs' folders, in order.
+func comparedFolders(dir string) ([]string, error) {
+	path := filepath.Join(dir, AlternativesFile)
+	data, err := os.ReadFile(path)
+	if err != nil {
+		return nil, err
+	}
+	var c struct {
+		Alternatives []struct {
+			Folder string `json:"folder"`
+		} `json:"alternatives"`
+	}
+	if err := json.Unmarshal(data, &c); err != nil {
+		return nil, fmt.Errorf("%s: %w; run squint check again", path, err)
+	}
+	var names []string
+	for _, a := range c.Alternatives {
+		if !filepath.IsLocal(a.Folder) {
+			return nil, fmt.Errorf("%s: got folder %q, want one below it; run squint check again", path, a.Folder)
+		}
+		names = append(names, a.Folder)
+	}
+	if len(names) == 0 {
+		return nil, fmt.Errorf("%s: got no alternative, want at least one; run squint check again", path)
+	}
+	return names, nil
+}
+
 const (
 	nameWidth   = 25 // of an alternative in the table
 	tableFormat = "%8s  %-14s %7s %6s %6s"
@@ -186,7 +216,7 @@ func Compare(w io.Writer, all []Design, dir string, elapsed time.Duration) error
 	p.gap()
 	p.head("Results")
 	p.path(2, dir)
-	p.para(2, AlternativesFile+": this table; and a folder of each alternative with its summary, hourly series and pictures.")
+	p.para(2, SheetFile+": the page to open in a browser. "+AlternativesFile+": this table; and a folder of each alternative with its summary, hourly series and pictures.")
 	p.item(0, "", lipgloss.NewStyle(), 0, fmt.Sprintf("Computed in %s on %s.", durationWords(elapsed), count(first.Settings.Workers, "thread", "threads")))
 	return p.print(w)
 }

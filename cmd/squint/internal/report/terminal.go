@@ -264,7 +264,7 @@ func whereSection(p *page, r *study.Result, dir string, elapsed time.Duration) {
 	if dir != "" {
 		p.head("Results")
 		p.path(2, dir)
-		text := "summary.json: every verdict and number"
+		text := SheetFile + ": the page to open in a browser; summary.json: every verdict and number"
 		if len(r.Views) > 0 {
 			text += "; hours-views.csv"
 		}

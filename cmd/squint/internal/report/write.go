@@ -4,6 +4,7 @@ import (
 	"errors"
 	"io"
 
+	sheet "squint/cmd/squint/internal/page"
 	"squint/cmd/squint/internal/study"
 )
 
@@ -71,6 +72,10 @@ func stageAll(f *folder, r *study.Result, o Options) error {
 		if err := add(OpeningsFile, func(w io.Writer) error { return writeOpeningHours(w, r) }); err != nil {
 			return err
 		}
+	}
+	data := sheet.Build(r, sheetWords(r, o))
+	if err := add(SheetDataFile, data.Write); err != nil {
+		return err
 	}
 	return f.stage(SummaryFile, func(w io.Writer) error { return writeSummary(w, r, o, files) })
 }

@@ -35,6 +35,7 @@ type ViewResult struct {
 	Refined int
 
 	Worst *Worst // nil where no hour in use has daylight
+	Shots *Shots // nil where none were asked for
 
 	// Levels holds the verdict of every EN 17037 level; Asked is the level
 	// that the project asks for, -1 for none.
@@ -115,6 +116,7 @@ type glareSink struct {
 	mu    []sync.Mutex // by view
 	cause []map[Cause]int16
 	work  []sinkScratch // by worker
+	shots *shotPlan     // nil: no pictures are kept
 }
 
 // standingSink serves the frames of one standing, which has eyes and parts of
@@ -143,6 +145,7 @@ type sinkScratch struct {
 	wide    []float32 // image of half as many pixels across
 	coarse  glare.Scratch
 	discs   []glare.Disc
+	shot    shotScratch
 }
 
 func newGlareSink(in *Input, workers int) *glareSink {
@@ -193,6 +196,7 @@ func (g *standingSink) take(worker int, f *annual.Frame) {
 	v.DGP[h], v.Ev[h], v.StdErr[h], v.EvErr[h] = float32(dgp), float32(ev), float32(se), float32(evErr)
 	v.InRange[h] = glare.InRange(dgp, ev)
 	v.Coarse[h] = float32(g.atHalf(w, e, f.Mean))
+	g.keepShot(w, e, f)
 	g.mu[f.Eye].Lock()
 	defer g.mu[f.Eye].Unlock()
 	worst := v.Worst == nil || dgp > v.Worst.DGP || (dgp == v.Worst.DGP && h < v.Worst.Moment.Hour)

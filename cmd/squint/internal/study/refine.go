@@ -30,6 +30,7 @@ func (r *Result) refine(ctx context.Context, in *Input, opt Options, y *year) er
 	}
 	z := r.zViews()
 	again := opt
+	again.shots = nil
 	again.Progress = func(s Stage, done, total int) {
 		if s == StageYear {
 			opt.Progress(StageAgain, done, total)

@@ -156,7 +156,51 @@ func (o *operation) settled(ctx context.Context, looks map[control.Combination]*
 		o.openYear = l
 	}
 	whole.adoptClear(o, looks, chosen)
+	if err := o.reshoot(ctx, chosen, opt); err != nil {
+		return nil, err
+	}
+	opt.shots = nil
 	return whole, o.worstHours(ctx, whole, looks, chosen, opt)
+}
+
+// reshoot makes the small pictures anew of hours that were looked at last in
+// another combination than the one chosen.
+func (o *operation) reshoot(ctx context.Context, chosen []control.Combination, opt Options) error {
+	if opt.shots == nil {
+		return nil
+	}
+	wrong := map[control.Combination][]*scene.Moment{}
+	var order []control.Combination
+	for i, m := range o.in.Climate.Moments {
+		frame := opt.shots.frame[m.Hour]
+		if !m.Occupied || frame < 0 || opt.shots.of[frame] == nil {
+			continue
+		}
+		st, err := o.stand(chosen[i])
+		if err != nil {
+			return err
+		}
+		if opt.shots.of[frame] == st.Scene {
+			continue
+		}
+		if wrong[chosen[i]] == nil {
+			order = append(order, chosen[i])
+		}
+		wrong[chosen[i]] = append(wrong[chosen[i]], m)
+	}
+	for _, c := range order {
+		st, err := o.stand(c)
+		if err != nil {
+			return err
+		}
+		st.Moments = wrong[c]
+		sub := *o.in
+		sub.Standings = []Standing{st}
+		if _, err := computeYear(ctx, &sub, opt, &Result{}); err != nil {
+			return err
+		}
+	}
+	return nil
 }
 
 // adoptClear takes each moment under a clear sky from the combination that

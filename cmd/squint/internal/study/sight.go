@@ -199,6 +199,7 @@ func closedFactor(ctx context.Context, in *Input, shut *trace.World, opt Options
 	s.Viewpoints = nil
 	sub.Scene = &s
 	sub.Standings = []Standing{{Scene: &s, World: shut}}
+	opt.shots = nil
 	y, err := computeYear(ctx, &sub, opt, &Result{})
 	if err != nil {
 		return 0, err

@@ -22,6 +22,9 @@ type Options struct {
 	Workers int // threads; results do not depend on it
 	// Progress, if not nil, hears of each stage's work done.
 	Progress func(stage Stage, done, total int)
+	// Shots keeps small pictures of every view's hours in use, for display.
+	Shots bool
+	shots *shotPlan
 }
 
 // Stage names a part of the run.
@@ -222,8 +225,14 @@ func Run(ctx context.Context, in *Input, opt Options) (*Result, error) {
 	for i := range in.Clear {
 		r.ClearNames = append(r.ClearNames, fmt.Sprintf("%d h", equinoxClockH[i]))
 	}
+	if opt.Shots {
+		opt.shots = newShotPlan(in)
+	}
 	y, err := operatedYear(ctx, in, opt, r)
 	if err != nil {
+		return nil, err
+	}
+	if err := y.glare.develop(ctx, opt.shots); err != nil {
 		return nil, err
 	}
 	if in.operation != nil {

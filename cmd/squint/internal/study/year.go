@@ -56,6 +56,7 @@ func newYear(in *Input, opt Options) *year {
 // and puts the results together.
 func computeYear(ctx context.Context, in *Input, opt Options, r *Result) (*year, error) {
 	y := newYear(in, opt)
+	y.glare.shots = opt.shots
 	total := 0
 	for _, st := range in.Standings {
 		total += len(st.Moments)

@@ -1,0 +1,169 @@
+package film
+
+import (
+	"math"
+	"slices"
+)
+
+// Film is a developed roll: what a page needs to show any frame.
+type Film struct {
+	Points, Frames, Rank int
+	Least, StepLn        float64 // value = Least exp(StepLn code)
+
+	Mean   []int16 // by point, code times 128
+	Basis  []int8  // [rank][point], 127 is the pattern's largest size
+	Weight []int16 // [rank][frame], what 127 stands for in codes times 16
+
+	Lit      []uint8 // bits, [frame][point], each frame from a whole byte
+	LitPoint []int16 // by point, code times 128
+	LitFrame []int16 // by frame, code times 128
+
+	// MedianError and WideError are the median and the 95th percentile of the
+	// relative difference between a point's value as kept on the roll, itself
+	// good to half a step, and as shown.
+	MedianError, WideError float64
+}
+
+const (
+	meanScale   = 128
+	weightScale = 16
+)
+
+// rowBytes is the length of a frame's mask.
+func (f *Film) rowBytes() int { return (f.Points + 7) / 8 }
+
+func (f *Film) lit(frame, point int) bool {
+	return f.Lit[frame*f.rowBytes()+point>>3]>>(point&7)&1 != 0
+}
+
+func (f *Film) value(code float64) float64 { return f.Least * math.Exp(f.StepLn*code) }
+
+// At fills out, a value for each point, with a frame as it is shown.
+func (f *Film) At(frame int, out []float64) {
+	for p := range out {
+		code := float64(f.Mean[p]) / meanScale
+		for k := range f.Rank {
+			code += float64(f.Weight[k*f.Frames+frame]) / weightScale * float64(f.Basis[k*f.Points+p]) / 127
+		}
+		out[p] = f.value(code)
+		if f.lit(frame, p) {
+			out[p] += f.value(float64(f.LitPoint[p])/meanScale + float64(f.LitFrame[frame])/meanScale)
+		}
+	}
+}
+
+// Develop reduces the roll to patterns, at most rank of them.
+func (r *Roll) Develop(rank int) *Film {
+	f := &Film{Points: r.Points, Frames: r.Frames, Least: r.Least, StepLn: r.stepLn()}
+	r.developSun(f)
+	rest := r.centred(f)
+	basis, weights := patterns(rest, min(rank, r.Points, r.Frames))
+	f.Rank = len(basis)
+	f.Basis, f.Weight = make([]int8, f.Rank*f.Points), make([]int16, f.Rank*f.Frames)
+	for k := range basis {
+		most := 0.0
+		for _, b := range basis[k] {
+			most = math.Max(most, math.Abs(float64(b)))
+		}
+		for p, b := range basis[k] {
+			f.Basis[k*f.Points+p] = int8(math.Round(float64(b) / most * 127))
+		}
+		for i, w := range weights[k] {
+			f.Weight[k*f.Frames+i] = int16(math.Max(-32768, math.Min(32767, math.Round(float64(w)*most*weightScale))))
+		}
+	}
+	r.measure(f)
+	return f
+}
+
+// centred are the codes of the rest less their mean by point.
+func (r *Roll) centred(f *Film) matrix {
+	sum := make([]float64, r.Points)
+	for i := range r.Frames {
+		for p, c := range r.rest[i*r.Points:][:r.Points] {
+			sum[p] += float64(c)
+		}
+	}
+	f.Mean = make([]int16, r.Points)
+	for p := range sum {
+		f.Mean[p] = int16(math.Round(sum[p] / float64(max(r.Frames, 1)) * meanScale))
+	}
+	m := newMatrix(r.Frames, r.Points)
+	for i := range r.Frames {
+		row := m.row(i)
+		for p, c := range r.rest[i*r.Points:][:r.Points] {
+			row[p] = float32(c) - float32(f.Mean[p])/meanScale
+		}
+	}
+	return m
+}
+
+// sunRounds is how often hours and points are fitted in turn: two settle what
+// a sum of two has. Own choice.
+const sunRounds = 3
+
+// developSun fits a number to each hour and each point whose sum is the code
+// of the sun on it.
+func (r *Roll) developSun(f *Film) {
+	f.Lit = make([]uint8, r.Frames*f.rowBytes())
+	byFrame, byPoint := make([]float64, r.Frames), make([]float64, r.Points)
+	sum, n := make([]float64, r.Points), make([]float64, r.Points)
+	for range sunRounds {
+		for i, lit := range r.lit {
+			mean := 0.0
+			for _, l := range lit {
+				mean += (float64(l.code) - byPoint[l.point]) / float64(len(lit))
+			}
+			byFrame[i] = mean
+		}
+		clear(sum)
+		clear(n)
+		for i, lit := range r.lit {
+			for _, l := range lit {
+				sum[l.point] += float64(l.code) - byFrame[i]
+				n[l.point]++
+			}
+		}
+		for p := range sum {
+			byPoint[p] = sum[p] / math.Max(n[p], 1)
+		}
+	}
+	for i, lit := range r.lit {
+		for _, l := range lit {
+			f.Lit[i*f.rowBytes()+int(l.point)>>3] |= 1 << (l.point & 7)
+		}
+	}
+	f.LitFrame, f.LitPoint = fixed(byFrame), fixed(byPoint)
+}
+
+func fixed(v []float64) []int16 {
+	out := make([]int16, len(v))
+	for i, x := range v {
+		out[i] = int16(math.Max(-32768, math.Min(32767, math.Round(x*meanScale))))
+	}
+	return out
+}
+
+// measure compares every few frames as shown with the roll.
+func (r *Roll) measure(f *Film) {
+	const every = 7
+	var off []float64
+	shown, kept := make([]float64, r.Points), make([]float64, r.Points)
+	for i := 0; i < r.Frames; i += every {
+		f.At(i, shown)
+		for p, c := range r.rest[i*r.Points:][:r.Points] {
+			kept[p] = f.value(float64(c))
+		}
+		for _, l := range r.lit[i] {
+			kept[l.point] += f.value(float64(l.code))
+		}
+		for p := range kept {
+			off = append(off, math.Abs(shown[p]-kept[p])/kept[p])
+		}
+	}
+	if len(off) == 0 {
+		return
+	}
+	slices.Sort(off)
+	f.MedianError, f.WideError = off[len(off)/2], off[len(off)*19/20]
+}

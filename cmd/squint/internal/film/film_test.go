@@ -1,0 +1,104 @@
+package film
+
+import (
+	"math"
+	"slices"
+	"sync"
+	"testing"
+)
+
+// scene is a picture that is made of three patterns that change smoothly and a
+// sun patch that moves: what a film is for, so it must come back within the
+// steps of the scale. exact: by construction.
+func scene(frame, point int) (all, sun float32) {
+	x, t := float64(point)/200, float64(frame)/90
+	rest := math.Exp(4 + math.Sin(3*x)*math.Cos(t) + 0.5*x*math.Sin(2*t) + 0.2*math.Cos(9*x)*math.Sin(5*t))
+	if point/10 == frame%20 {
+		sun = float32(3000 * (1 + x) * (1.2 + math.Sin(t)))
+	}
+	return float32(rest) + sun, sun
+}
+
+func shoot(workers int) *Roll {
+	r := NewRoll(200, 300, 0.1, 1e6)
+	var wg sync.WaitGroup
+	for w := range workers {
+		wg.Add(1)
+		go func() {
+			defer wg.Done()
+			all, sun := make([]float32, 200), make([]float32, 200)
+			for i := 299 - w; i >= 0; i -= workers {
+				for p := range all {
+					all[p], sun[p] = scene(i, p)
+				}
+				r.Keep(i, all, sun)
+			}
+		}()
+	}
+	wg.Wait()
+	return r
+}
+
+// worst is the largest relative difference between scene and film.
+func worst(f *Film) float64 {
+	out := make([]float64, f.Points)
+	far := 0.0
+	for i := range f.Frames {
+		f.At(i, out)
+		for p, v := range out {
+			all, _ := scene(i, p)
+			far = math.Max(far, math.Abs(v-float64(all))/float64(all))
+		}
+	}
+	return far
+}
+
+// Bound: half a step of the scale for the rest and for the sun each, and a
+// quarter step for the rounding of patterns and weights.
+func TestFilmShowsWhatWasKept(t *testing.T) {
+	r := shoot(1)
+	bound := math.Exp(1.25*r.stepLn()) - 1
+	f := r.Develop(6)
+	if far := worst(f); far > bound {
+		t.Errorf("largest relative difference: got %.4f, want at most %.4f", far, bound)
+	}
+	if !(f.MedianError > 0 && f.MedianError < f.WideError && f.WideError < bound) {
+		t.Errorf("stated errors: got median %.4f, 95th percentile %.4f, want 0 < median < wide < %.4f", f.MedianError, f.WideError, bound)
+	}
+}
+
+// The twin: with too few patterns the same scene must miss the bound, and the
+// film must say so.
+func TestFilmWithTooFewPatternsIsFound(t *testing.T) {
+	r := shoot(1)
+	bound := math.Exp(1.25*r.stepLn()) - 1
+	f := r.Develop(1)
+	if far := worst(f); far <= bound {
+		t.Errorf("one pattern: got a largest difference of %.4f, want more than %.4f", far, bound)
+	}
+	if f.WideError <= bound {
+		t.Errorf("one pattern: got a stated error of %.4f, want more than %.4f", f.WideError, bound)
+	}
+}
+
+func TestFilmDoesNotDependOnOrder(t *testing.T) {
+	a, b := shoot(1).Develop(6), shoot(7).Develop(6)
+	if !slices.Equal(a.Basis, b.Basis) || !slices.Equal(a.Weight, b.Weight) || !slices.Equal(a.Lit, b.Lit) || !slices.Equal(a.LitPoint, b.LitPoint) {
+		t.Error("films of the same frames kept in another order differ")
+	}
+}
+
+func TestFilmOfNothing(t *testing.T) {
+	for _, r := range []*Roll{NewRoll(0, 5, 1, 10), NewRoll(5, 0, 1, 10), NewRoll(3, 4, 1, 10)} {
+		f := r.Develop(4)
+		out := make([]float64, f.Points)
+		for i := range f.Frames {
+			f.At(i, out)
+			for _, v := range out {
+				if math.Abs(v-1) > 0.01 {
+					t.Errorf("dark frame: got %g, want the least value 1", v)
+				}
+			}
+		}
+	}
+}

@@ -1,0 +1,256 @@
+package page
+
+import (
+	"math"
+	"slices"
+
+	"gonum.org/v1/gonum/spatial/r3"
+
+	"squint/cmd/squint/internal/film"
+	"squint/cmd/squint/internal/study"
+	"squint/glare/verdict"
+	"squint/scene/view"
+	"squint/trace/annual"
+	"squint/trace/coeff"
+)
+
+// Series are packed in these steps; noValue marks hours that were not
+// evaluated.
+const (
+	dgpScale   = 1e4
+	errorScale = 1e5
+	noValue    = math.MaxUint16
+)
+
+// mostSources is how many sources of a worst hour are numbered: as in the
+// other pictures of it.
+const mostSources = 6
+
+// mostDiscs is the number of discs that a picture shows: the strongest ones. A
+// blind of mirrored slats has an image in each.
+const mostDiscs = 12
+
+// view packs a viewpoint's year and its pictures.
+func (a *Archive) view(r *study.Result, v *study.ViewResult) View {
+	out := View{Name: v.Viewpoint.Name, Subject: v.Viewpoint.Name, Position: vec(v.Viewpoint.Position),
+		Outcome: "none", When: v.When, Over: -1, Causes: []string{}, Worst: -1}
+	if len(v.Levels) > 0 && v.Levels[0].Subject != "" {
+		out.Subject = v.Levels[0].Subject
+	}
+	if v.Asked >= 0 && v.Asked < len(v.Levels) {
+		l := v.Levels[v.Asked]
+		out.Outcome, out.Text, out.Over = l.Outcome.String(), l.Text, l.Estimate
+	} else if len(v.Levels) > 0 {
+		out.Outcome = verdict.Undecided.String()
+	}
+	for _, c := range v.Causes {
+		out.Causes = append(out.Causes, c.String())
+	}
+	out.Series = a.series(v)
+	forward := v.Viewpoint.Direction
+	if s := v.Shots; s != nil {
+		f, l, u := s.Eye.Frame()
+		out.Axes = [3][3]float64{vec(f), vec(l), vec(u)}
+		out.HasShots = true
+		out.Shots = a.shots(s.Film, &s.View, s.Inside, s.Records, s.Discs)
+		out.WorstPx = s.Eye.Width
+		out.Seen = a.seen(r, s)
+	} else {
+		up := r3.Vec{Z: 1}
+		if math.Abs(forward.Z) > 0.999 {
+			up = r3.Vec{Y: 1}
+		}
+		left := r3.Unit(r3.Cross(up, forward))
+		out.Axes = [3][3]float64{vec(forward), vec(left), vec(r3.Cross(forward, left))}
+	}
+	if w := v.Worst; w != nil && w.InsideOf != nil {
+		out.Worst, out.WorstPx = w.Moment.Hour, w.InsideOf.View.Width
+		code := make([]uint16, len(w.Lum))
+		for i, l := range w.Lum {
+			if l > 0 {
+				code[i] = uint16(math.Max(1, math.Min(noValue, math.Round(worstScale*math.Log(float64(l)/worstLeast)))))
+			}
+		}
+		var p packer
+		pack(&p, "lum", "u16", code)
+		packDiscs(&p, &w.InsideOf.View, [][]annual.Disc{w.Discs})
+		var x, y []uint16
+		for i, s := range w.Result.Sources {
+			if px, py, ok := w.InsideOf.View.LocalProject(s.Dir); ok && i < mostSources {
+				x, y = append(x, part16(px/float64(out.WorstPx))), append(y, part16(py/float64(out.WorstPx)))
+			}
+		}
+		pack(&p, "source_x", "u16", x)
+		pack(&p, "source_y", "u16", y)
+		out.WorstShot = a.add(&p)
+	}
+	return out
+}
+
+// The full picture of a worst hour: luminance is worstLeast times
+// exp(code/worstScale), good to 0.02 %.
+const (
+	worstScale = 2500
+	worstLeast = 1e-3
+)
+
+func (a *Archive) series(v *study.ViewResult) Blob {
+	n := len(v.DGP)
+	dgp, se, ev, cause := make([]uint16, n), make([]uint16, n), make([]uint32, n), make([]uint8, n)
+	for h := range n {
+		dgp[h], se[h], cause[h] = noValue, noValue, math.MaxUint8
+		if x := float64(v.DGP[h]); x == x {
+			dgp[h] = uint16(math.Max(0, math.Min(noValue-1, math.Round(x*dgpScale))))
+			ev[h] = uint32(math.Round(float64(v.Ev[h])))
+		}
+		if x := float64(v.StdErr[h]); x == x {
+			se[h] = uint16(math.Min(noValue-1, math.Round(x*errorScale)))
+		}
+		if c := v.Cause[h]; c >= 0 && c < math.MaxUint8 {
+			cause[h] = uint8(c)
+		}
+	}
+	var p packer
+	pack(&p, "dgp", "u16", dgp)
+	pack(&p, "error", "u16", se)
+	pack(&p, "ev", "u32", ev)
+	pack(&p, "cause", "u8", cause)
+	return a.add(&p)
+}
+
+// shots packs a film; v, inside and discs are of a view's, nil for a plane.
+func (a *Archive) shots(f *film.Film, v *view.View, inside []int32, records []int, discs [][]annual.Disc) Shots {
+	out := Shots{Rank: f.Rank, Least: f.Least, StepLn: f.StepLn, Median: f.MedianError, Wide: f.WideError, Frames: f.Frames, Points: f.Points}
+	var p packer
+	if v != nil {
+		out.Pixels = v.Width
+		pack(&p, "inside", "u16", narrow(inside))
+	}
+	pack(&p, "record", "u16", narrow(records))
+	pack(&p, "mean", "i16", f.Mean)
+	pack(&p, "basis", "i8", f.Basis)
+	pack(&p, "weight", "i16", f.Weight)
+	pack(&p, "lit", "u8", f.Lit)
+	pack(&p, "lit_point", "i16", f.LitPoint)
+	pack(&p, "lit_frame", "i16", f.LitFrame)
+	if v != nil {
+		packDiscs(&p, v, discs)
+	}
+	out.Numbers = a.add(&p)
+	return out
+}
+
+func narrow[T int | int32](v []T) []uint16 {
+	out := make([]uint16, len(v))
+	for i, x := range v {
+		out[i] = uint16(x)
+	}
+	return out
+}
+
+// packDiscs packs the sun's discs by frame: where they are seen, in parts of the
+// picture's width, and the logarithms of solid angle and luminance.
+func packDiscs(p *packer, v *view.View, discs [][]annual.Disc) {
+	count := make([]uint8, len(discs))
+	var x, y, size, lum []uint16
+	for i, list := range discs {
+		list = slices.Clone(list)
+		slices.SortStableFunc(list, func(a, b annual.Disc) int {
+			if a.OmegaSr*a.Luminance > b.OmegaSr*b.Luminance {
+				return -1
+			}
+			return 1
+		})
+		for _, d := range list {
+			px, py, ok := v.Project(d.Dir)
+			if !ok || count[i] == mostDiscs || !(d.OmegaSr > 0) || !(d.Luminance > 0) {
+				continue
+			}
+			count[i]++
+			x = append(x, part16(px/float64(v.Width)))
+			y = append(y, part16(py/float64(v.Height)))
+			size = append(size, logCode(d.OmegaSr, 1e-9))
+			lum = append(lum, logCode(d.Luminance, 1))
+		}
+	}
+	pack(p, "discs", "u8", count)
+	pack(p, "disc_x", "u16", x)
+	pack(p, "disc_y", "u16", y)
+	pack(p, "disc_sr", "u16", size)
+	pack(p, "disc_lum", "u16", lum)
+}
+
+// part16 is a part of a width, 0 to 1, in 16 bits.
+func part16(t float64) uint16 {
+	return uint16(math.Round(math.Max(0, math.Min(1, t)) * math.MaxUint16))
+}
+
+func logCode(v, least float64) uint16 {
+	return uint16(math.Max(0, math.Min(noValue, math.Round(worstScale*math.Log(v/least)))))
+}
+
+// What stands in a pixel of the eye's picture.
+const (
+	outsidePixel = iota
+	surfacePixel
+	skyPixel
+	groundPixel
+)
+
+// seen packs what each pixel shows: its kind, part and the opening looked
+// through, 0 for none.
+func (a *Archive) seen(r *study.Result, s *study.Shots) Blob {
+	n := s.Eye.Width * s.Eye.Height
+	kind, part, via := make([]uint8, n), make([]uint16, n), make([]uint8, n)
+	for i, x := range s.Seen {
+		px := s.SeenInside[i]
+		switch x.Part {
+		case coeff.SkySeen:
+			kind[px] = skyPixel
+		case coeff.GroundSeen:
+			kind[px] = groundPixel
+		default:
+			kind[px], part[px] = surfacePixel, uint16(min(x.Part, math.MaxUint16-1)+1)
+		}
+		if x.Via >= 0 && int(x.Via) < len(r.Scene.Parts) {
+			via[px] = uint8(min(r.Scene.Parts[x.Via].Opening+1, math.MaxUint8))
+		}
+		if x.Mirrored {
+			kind[px] |= 16
+		}
+	}
+	var p packer
+	pack(&p, "kind", "u8", kind)
+	pack(&p, "part", "u16", part)
+	pack(&p, "via", "u8", via)
+	return a.add(&p)
+}
+
+// planeRank is the number of patterns of a work plane. Own choice.
+const planeRank = 12
+
+// The range of illuminance that plane pictures show, lx.
+const (
+	leastLx = 1
+	mostLx  = 2e5
+)
+
+// planeShots makes the pictures of a plane's hours.
+func (a *Archive) planeShots(r *study.Result, p *study.PlaneResult) Shots {
+	n := len(p.E)
+	if n > film.MostPoints {
+		return Shots{}
+	}
+	moments := r.Climate.Moments
+	roll := film.NewRoll(n, len(moments), leastLx, mostLx)
+	all, sun := make([]float32, n), make([]float32, n)
+	records := make([]int, len(moments))
+	for k, m := range moments {
+		records[k] = m.Hour
+		for i := range n {
+			all[i], sun[i] = p.E[i][m.Hour], p.Direct[i][m.Hour]
+		}
+		roll.Keep(k, all, sun)
+	}
+	return a.shots(roll.Develop(planeRank), nil, nil, records, nil)
+}

@@ -1,0 +1,81 @@
+// The page's numbers: JSON blocks, inflated when they are first needed.
+
+export const page = JSON.parse(document.getElementById("data").textContent);
+export const designs = page.designs;
+
+const width = { u8: 1, i8: 1, u16: 2, i16: 2, u32: 4 };
+const cache = new Map();
+
+// load returns a promise of a blob's lists by name; null where the page does
+// not hold it.
+export function load(blob) {
+  if (!blob || !blob.id) return Promise.resolve(null);
+  // Blobs of equal bytes may be cut into lists in other ways.
+  const key = blob.id + blob.parts.map((p) => p.name + p.n).join();
+  if (!cache.has(key)) cache.set(key, inflate(blob));
+  return cache.get(key);
+}
+
+async function inflate(blob) {
+  const block = document.getElementById("n-" + blob.id);
+  if (!block) return null;
+  const text = atob(JSON.parse(block.textContent));
+  const packed = new Uint8Array(text.length);
+  for (let i = 0; i < text.length; i++) packed[i] = text.charCodeAt(i);
+  const stream = new Blob([packed]).stream().pipeThrough(new DecompressionStream("deflate-raw"));
+  const bytes = new Uint8Array(await new Response(stream).arrayBuffer());
+  const lists = {};
+  let at = 0;
+  for (const { name, type, n } of blob.parts) {
+    lists[name] = unpack(bytes.subarray(at, at + n * width[type]), type, n);
+    at += n * width[type];
+  }
+  return lists;
+}
+
+// unpack turns planes of bytes, the lowest first, into numbers.
+function unpack(bytes, type, n) {
+  if (type === "u8") return bytes;
+  if (type === "i8") return new Int8Array(bytes.buffer, bytes.byteOffset, n);
+  const out = type === "u16" ? new Uint16Array(n) : type === "i16" ? new Int16Array(n) : new Uint32Array(n);
+  for (let k = 0; k < width[type]; k++) for (let i = 0; i < n; i++) out[i] |= bytes[k * n + i] << (8 * k);
+  return out;
+}
+
+export const noValue = 65535;
+
+const months = ["January", "February", "March", "April", "May", "June", "July", "August", "September", "October", "November", "December"];
+const lengths = [31, 28, 31, 30, 31, 30, 31, 31, 30, 31, 30, 31];
+export const monthNames = months;
+export const monthStart = lengths.map((_, i) => lengths.slice(0, i).reduce((a, b) => a + b, 0));
+export const monthOf = (day) => { let m = 11; while (monthStart[m] > day) m--; return m; };
+export const dateOf = (day) => `${day - monthStart[monthOf(day)] + 1} ${months[monthOf(day)]}`;
+
+// whole groups thousands by thin spaces.
+export const whole = (x) => Math.round(x).toString().replace(/\B(?=(\d{3})+(?!\d))/g, "\u202f");
+export const percent = (x, digits = 1) => `${(100 * x).toFixed(digits).replace(/\.0$/, "")} %`;
+
+// year holds what all parts of the page read of one design.
+const years = new Map();
+export function year(design) {
+  if (!years.has(design)) years.set(design, readYear(designs[design]));
+  return years.get(design);
+}
+
+async function readYear(d) {
+  const [records, days, moments, ...series] = await Promise.all([load(d.records), load(d.days), load(d.moments), ...d.views.map((v) => load(v.series))]);
+  const byRecord = new Int32Array(records.used.length).fill(-1);
+  moments.record.forEach((r, i) => { byRecord[r] = i; });
+  const clock = (record) => (record % 24) + days.shift[Math.floor(record / 24)];
+  return { design: d, records, days, moments, series, byRecord, clock };
+}
+
+// sunAt is the unit direction to the sun of a moment.
+export const sunAt = (y, moment) => [0, 1, 2].map((k) => y.moments.sun[3 * moment + k] / 32767);
+
+// timeOf is the clock's time of a record.
+export function timeOf(y, record) {
+  const day = Math.floor(record / 24), m = y.byRecord[record];
+  const minutes = (m >= 0 ? y.moments.minute[m] : (record % 24) * 60 + 30) + 60 * y.days.shift[day];
+  return `${dateOf(day)}, ${String(Math.floor(minutes / 60)).padStart(2, "0")}:${String(minutes % 60).padStart(2, "0")} h`;
+}

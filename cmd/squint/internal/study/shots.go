@@ -1,0 +1,187 @@
+package study
+
+import (
+	"context"
+	"math"
+
+	"squint/cmd/squint/internal/film"
+	"squint/scene"
+	"squint/scene/view"
+	"squint/trace/annual"
+	"squint/trace/coeff"
+)
+
+// Shots are small pictures of a view's hours in use with daylight, for display
+// only: luminance, cd/m2, without the sun's discs.
+type Shots struct {
+	View    view.View // of the pictures
+	Inside  []int32   // by point of the film: pixel, row-major
+	Records []int     // by frame
+	Film    *film.Film
+	Discs   [][]annual.Disc // by frame
+
+	// Seen says what stands in the pixels of Eye, by position in SeenInside.
+	Eye        view.View
+	Seen       []coeff.Seen
+	SeenInside []int32
+
+	roll    *film.Roll
+	shrinks []shrink
+}
+
+// shrink moves a share of a pixel of the eye to a point of the picture.
+type shrink struct {
+	from, to int32
+	weight   float32
+}
+
+// shotScratch are one worker's small images.
+type shotScratch struct{ all, sun []float32 }
+
+// The range of luminance that the pictures show, cd/m2: from what is dark in
+// a dim room to sunlit white, which a few parts of the sky beside the sun
+// exceed. Own choice.
+const (
+	leastShown = 0.05
+	mostShown  = 1e6
+)
+
+// Sizes of the pictures by the number of views: across, in pixels, and the
+// patterns that they are made of. What they are kept in must fit beside the
+// rest, and the page must not grow without bound. Own choice.
+var shotSizes = []struct{ views, pixels, rank int }{
+	{16, 48, 12},
+	{48, 32, 10},
+	{math.MaxInt, 24, 8},
+}
+
+// shotPlan says which frames there are and how large they are.
+type shotPlan struct {
+	pixels, rank int
+	records      []int
+	frame        []int          // by record, -1 for none
+	kept         []*Shots       // by view; nil where it has no frame yet
+	of           []*scene.Scene // by frame: of which standing the picture is
+}
+
+func newShotPlan(in *Input) *shotPlan {
+	s := &shotPlan{frame: make([]int, len(in.Climate.SinAltitude))}
+	for _, size := range shotSizes {
+		if len(in.Scene.Viewpoints) <= size.views {
+			s.pixels, s.rank = min(size.pixels, in.Project.Simulation.FisheyePixels), size.rank
+			break
+		}
+	}
+	for i := range s.frame {
+		s.frame[i] = -1
+	}
+	for _, m := range in.Climate.Moments {
+		if m.Occupied {
+			s.frame[m.Hour] = len(s.records)
+			s.records = append(s.records, m.Hour)
+		}
+	}
+	s.kept, s.of = make([]*Shots, len(in.Scene.Viewpoints)), make([]*scene.Scene, len(s.records))
+	return s
+}
+
+// open makes room for one view's pictures.
+func (s *shotPlan) open(e *coeff.Eye) *Shots {
+	x := &Shots{Records: s.records, Discs: make([][]annual.Disc, len(s.records)), Eye: e.View, Seen: e.Seen, SeenInside: e.Inside, View: e.View}
+	x.View.Width, x.View.Height = s.pixels, s.pixels
+	x.shrink(e)
+	x.roll = film.NewRoll(len(x.Inside), len(s.records), leastShown, mostShown)
+	return x
+}
+
+// shrink spreads the eye's pixels over the picture's by the area they share.
+func (x *Shots) shrink(e *coeff.Eye) {
+	from, to := e.View.Width, x.View.Width
+	scale := float64(to) / float64(from)
+	// overlap lists the pixels of the picture along one axis and the length of i in each.
+	overlap := func(i int) (first int, share []float64) {
+		lo, hi := float64(i)*scale, float64(i+1)*scale
+		first = int(lo + 1e-9)
+		for k := first; float64(k) < hi-1e-9; k++ {
+			share = append(share, math.Min(hi, float64(k+1))-math.Max(lo, float64(k)))
+		}
+		return first, share
+	}
+	point := make([]int32, to*to)
+	for i := range point {
+		point[i] = -1
+	}
+	var sum []float32
+	for _, px := range e.Inside {
+		x0, sx := overlap(int(px) % from)
+		y0, sy := overlap(int(px) / from)
+		for j, wy := range sy {
+			for i, wx := range sx {
+				at := (y0+j)*to + x0 + i
+				if point[at] < 0 {
+					point[at] = int32(len(x.Inside))
+					x.Inside = append(x.Inside, int32(at))
+					sum = append(sum, 0)
+				}
+				x.shrinks = append(x.shrinks, shrink{px, point[at], float32(wx * wy)})
+				sum[point[at]] += float32(wx * wy)
+			}
+		}
+	}
+	for i := range x.shrinks {
+		x.shrinks[i].weight /= sum[x.shrinks[i].to]
+	}
+}
+
+// keep stores a frame; different frames may be kept at the same time.
+func (x *Shots) keep(frame int, f *annual.Frame, w *shotScratch) {
+	n := len(x.Inside)
+	if len(w.all) < n {
+		w.all, w.sun = make([]float32, n), make([]float32, n)
+	}
+	all, sun := w.all[:n], w.sun[:n]
+	clear(all)
+	clear(sun)
+	for _, s := range x.shrinks {
+		all[s.to] += f.Mean[s.from] * s.weight
+		sun[s.to] += f.Sunlit[s.from] * s.weight
+	}
+	x.roll.Keep(frame, all, sun)
+	x.Discs[frame] = append([]annual.Disc(nil), f.Discs...)
+}
+
+// keepShot stores a frame where pictures are asked for; a later one of the same
+// hour, with other systems closed, takes its place.
+func (g *standingSink) keepShot(w *sinkScratch, e *coeff.Eye, f *annual.Frame) {
+	if g.shots == nil {
+		return
+	}
+	frame := g.shots.frame[f.Moment.Hour]
+	g.mu[f.Eye].Lock()
+	if g.shots.kept[f.Eye] == nil {
+		g.shots.kept[f.Eye] = g.shots.open(e)
+	}
+	x := g.shots.kept[f.Eye]
+	g.shots.of[frame] = g.scene
+	g.mu[f.Eye].Unlock()
+	x.keep(frame, f, &w.shot)
+}
+
+// develop reduces the pictures and lets go of what they were kept in.
+func (g *glareSink) develop(ctx context.Context, shots *shotPlan) error {
+	if shots == nil {
+		return nil
+	}
+	for i := range g.views {
+		x := shots.kept[i]
+		if g.views[i].Shots = x; x == nil {
+			continue
+		}
+		if err := ctx.Err(); err != nil {
+			return err
+		}
+		x.Film = x.roll.Develop(shots.rank)
+		x.roll, x.shrinks = nil, nil
+	}
+	return nil
+}

@@ -1,0 +1,99 @@
+package study
+
+import (
+	"context"
+	"math"
+	"slices"
+	"testing"
+
+	"gonum.org/v1/gonum/spatial/r3"
+
+	"squint/scene/view"
+	"squint/trace/annual"
+	"squint/trace/coeff"
+)
+
+// The pictures of a view must show its worst hour, which is kept at full size
+// by another way, within the errors that they state.
+func TestShotsShowTheWorstHour(t *testing.T) {
+	in := tiny(t, 2, 1024)
+	r, err := Run(context.Background(), in, Options{Workers: 2, Shots: true})
+	if err != nil {
+		t.Fatal(err)
+	}
+	v := &r.Views[0]
+	s := v.Shots
+	if s == nil || s.Film == nil {
+		t.Fatal("got no pictures, want those of one view")
+	}
+	frame := slices.Index(s.Records, v.Worst.Moment.Hour)
+	if frame < 0 {
+		t.Fatalf("record %d has no picture", v.Worst.Moment.Hour)
+	}
+	if s.View.Width != v.Worst.InsideOf.View.Width {
+		t.Fatalf("got pictures of %d pixels, want the view's own %d, as it has fewer than the pictures may have", s.View.Width, v.Worst.InsideOf.View.Width)
+	}
+	shown := make([]float64, len(s.Inside))
+	s.Film.At(frame, shown)
+	var off []float64
+	for p, px := range s.Inside {
+		if l := float64(v.Worst.Lum[px]); l > 1 {
+			off = append(off, math.Abs(shown[p]-l)/l)
+		}
+	}
+	slices.Sort(off)
+	// The film's own error, and half a step of the scale in which it was kept.
+	bound := s.Film.WideError + math.Expm1(s.Film.StepLn/2)
+	if got := off[len(off)/2]; got > bound {
+		t.Errorf("worst hour: half of the points are off by %.3f or more, want at most %.3f", got, bound)
+	}
+	if len(s.Discs[frame]) != len(v.Worst.Discs) {
+		t.Errorf("got %d discs, want %d", len(s.Discs[frame]), len(v.Worst.Discs))
+	}
+	// The twin: another hour's picture is not this one.
+	other := slices.IndexFunc(s.Records, func(h int) bool { return v.Ev[h] < v.Ev[v.Worst.Moment.Hour]/2 })
+	if other < 0 {
+		t.Skip("all hours are alike in this year")
+	}
+	s.Film.At(other, shown)
+	bad := 0
+	for p, px := range s.Inside {
+		if l := float64(v.Worst.Lum[px]); math.Abs(shown[p]-l)/l > bound {
+			bad++
+		}
+	}
+	if bad < len(s.Inside)/2 {
+		t.Errorf("a darker hour's picture passes for the worst hour's at all but %d of %d points", bad, len(s.Inside))
+	}
+}
+
+// Shrinking keeps a constant, and light in its place. exact: areas.
+func TestShotsShrink(t *testing.T) {
+	v, err := view.New(r3.Vec{}, r3.Vec{X: 1}, r3.Vec{Z: 1}, view.Equidistant, math.Pi, 8, 8)
+	if err != nil {
+		t.Fatal(err)
+	}
+	e := &coeff.Eye{View: v}
+	for i := range 64 {
+		e.Inside = append(e.Inside, int32(i)) // a square keeps the sums plain
+	}
+	x := (&shotPlan{pixels: 6, records: []int{0}}).open(e)
+	f := &annual.Frame{Mean: make([]float32, 64), Sunlit: make([]float32, 64)}
+	for i := range f.Mean {
+		f.Mean[i] = 100
+	}
+	f.Mean[0] = 500
+	x.keep(0, f, &shotScratch{})
+	out := make([]float64, 36)
+	x.roll.Develop(4).At(0, out)
+	step := math.Log(mostShown/leastShown) / 255
+	for p, px := range x.Inside {
+		want := 100.0
+		if px == 0 { // 4/3 pixels wide: 9/16 of it is the bright pixel
+			want = 100 + 400*9.0/16
+		}
+		if math.Abs(math.Log(out[p]/want)) > 0.6*step {
+			t.Errorf("pixel %d: got %.1f, want %.1f", px, out[p], want)
+		}
+	}
+}
