@@ -315,6 +315,32 @@ func TestGuideListsTheGallery(t *testing.T) {
 	}
 }
 
+// Every project has its picture in the guide, and no other picture is there.
+func TestGuideShowsTheGallery(t *testing.T) {
+	want := slices.Sorted(slices.Values(galleryNames()))
+	if got := guide.Pictures(); !slices.Equal(got, want) {
+		t.Errorf("pictures of %q, want of %q; run go generate ./cmd/squint/guide", got, want)
+	}
+	page, err := guide.HTML(nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if n := strings.Count(string(page), "<img src=\"data:image/png;base64,"); n != len(want) {
+		t.Errorf("the page has %d pictures, want %d", n, len(want))
+	}
+	for _, topic := range guide.Names() {
+		if !strings.Contains(string(page), "<section id=\""+topic+"\"") {
+			t.Errorf("the page lacks %s", topic)
+		}
+	}
+	// Nothing is fetched.
+	for _, from := range []string{"src=\"http", "href=\"http", "url("} {
+		if strings.Contains(string(page), from) {
+			t.Errorf("the page fetches something: %s", from)
+		}
+	}
+}
+
 // Each project is of the variant that its name says, and of no other.
 func TestGalleryShowsEachVariant(t *testing.T) {
 	_, files := galleryFiles(t)
