@@ -18,7 +18,7 @@ import (
 //
 //go:generate go run ./generate ../../../testdata/gallery pictures
 
-//go:embed pictures/*.png
+//go:embed pictures/*.png pictures/demo/*.png
 var pictures embed.FS
 
 // Pictures are the names of the gallery's pictures, without ending, in order.
@@ -42,12 +42,33 @@ type chapter struct {
 }
 
 type figure struct {
-	Name string
-	Data template.URL // of the picture itself
+	Caption, Alt string
+	Data         template.URL // of the picture itself
 }
 
-// galleryTopic is the page that the pictures belong to.
-const galleryTopic = "systems"
+func newFigure(file, caption, alt string) (figure, error) {
+	data, err := pictures.ReadFile("pictures/" + file)
+	return figure{caption, alt, template.URL("data:image/png;base64," + base64.StdEncoding.EncodeToString(data))}, err
+}
+
+// figures are the pictures of a topic.
+func figures(topic string) (list []figure, err error) {
+	add := func(file, caption, alt string) {
+		f, e := newFigure(file, caption, alt)
+		if err == nil {
+			list, err = append(list, f), e
+		}
+	}
+	switch topic {
+	case "systems":
+		for _, name := range Pictures() {
+			add(name+".png", name+".toml", name+".toml of the gallery, seen from indoors and from outdoors in false colours")
+		}
+	case "look":
+		add("demo/sheet.png", "The demo's morning and noon with each of its designs, by the command above.", "Ten fisheye pictures of one desk, in false colours with one scale")
+	}
+	return list, err
+}
 
 // HTML is the whole guide as one page that needs nothing else.
 func HTML(statuses []Status) ([]byte, error) {
@@ -63,14 +84,8 @@ func HTML(statuses []Status) ([]byte, error) {
 			return nil, err
 		}
 		c := chapter{Name: t.Name, About: t.About, Text: template.HTML(b.String())}
-		if t.Name == galleryTopic {
-			for _, name := range Pictures() {
-				data, err := pictures.ReadFile("pictures/" + name + ".png")
-				if err != nil {
-					return nil, err
-				}
-				c.Figures = append(c.Figures, figure{name, template.URL("data:image/png;base64," + base64.StdEncoding.EncodeToString(data))})
-			}
+		if c.Figures, err = figures(t.Name); err != nil {
+			return nil, err
 		}
 		chapters = append(chapters, c)
 	}
@@ -126,7 +141,7 @@ body { background: var(--paper); color: var(--ink); font: 16px/1.5 "Segoe UI", "
 h1, h2 { font-family: Georgia, "Noto Serif", serif; font-weight: normal; line-height: 1.2; }
 section { border-top: 1px solid var(--hair); margin-top: 3rem; padding-top: 1rem; }
 h2 { font-size: 1.15rem; margin-top: 2rem; }
-nav ol { padding-left: 1.2rem; columns: 2; }
+nav ol { padding-left: 1.6rem; columns: 2; column-gap: 3rem; }
 nav li span { color: var(--quiet); }
 a { color: inherit; text-decoration-color: var(--sun); }
 pre { overflow-x: auto; font-size: 0.85rem; line-height: 1.4; border-left: 2px solid var(--hair); padding-left: 0.8rem; }
@@ -142,7 +157,7 @@ figure { margin: 1.5rem 0; } figcaption { color: var(--quiet); font-size: 0.9rem
 <h1>squint: the guide</h1>
 <nav aria-label="Topics"><ol>{{range .}}<li><a href="#{{.Name}}">{{.Name}}</a> <span>{{.About}}</span></li>{{end}}</ol></nav>
 {{range .}}<section id="{{.Name}}" aria-label="{{.Name}}">
-{{.Text}}{{range .Figures}}<figure><img src="{{.Data}}" alt="{{.Name}}.toml of the gallery, seen from indoors and from outdoors in false colours"><figcaption>{{.Name}}.toml</figcaption></figure>
+{{.Text}}{{range .Figures}}<figure><img src="{{.Data}}" alt="{{.Alt}}"><figcaption>{{.Caption}}</figcaption></figure>
 {{end}}</section>
 {{end}}</main>
 </body>

@@ -156,5 +156,20 @@ func lookSheet(shots []*study.Shot, figures []falsecolour.Figure) (*image.RGBA, 
 		worst = math.Max(worst, s.Picture.MedianError)
 	}
 	return falsecolour.Sheet(title(shots[0].Project, newPaths(shots[0].Project, shots[0].Scene)),
-		[]string{"Median relative standard error of the pixels: at most " + percent(worst) + "."}, min(sheetColumns, len(cells)), cells...)
+		[]string{"Median relative standard error of the pixels: at most " + percent(worst) + "."}, sheetWidth(shots), cells...)
+}
+
+// sheetWidth is the number of pictures side by side: those of one design, where
+// there are several of each and they fit.
+func sheetWidth(shots []*study.Shot) int {
+	of := 0
+	for _, s := range shots {
+		if s.Design == shots[0].Design {
+			of++
+		}
+	}
+	if of > 1 && of <= sheetColumns && of < len(shots) {
+		return of
+	}
+	return min(sheetColumns, len(shots))
 }
