@@ -126,6 +126,7 @@ func runCheck(ctx context.Context, h host, o checkOptions) error {
 			err = report.Terminal(h.out, r, folder, h.now().Sub(start))
 		} else {
 			err = report.Brief(h.out, r, folder, h.now().Sub(began))
+			r.Forget()
 		}
 		if err != nil {
 			return err
@@ -168,8 +169,9 @@ func (o checkOptions) prepare(d designs) ([]*study.Input, error) {
 }
 
 func runStudy(ctx context.Context, h host, in *study.Input, o checkOptions, d designs) (*study.Result, error) {
-	// The collector works harder as the project's own limit comes near.
-	debug.SetMemoryLimit(int64(in.Project.Simulation.MemoryMiB) << 20)
+	// The collector works harder as the project's own limit comes near; a
+	// sixteenth is for the program itself, which it does not count.
+	debug.SetMemoryLimit(int64(in.Project.Simulation.MemoryMiB) << 20 / 16 * 15)
 	bar := newProgress(h)
 	r, err := study.Run(ctx, in, study.Options{Workers: o.Workers, Progress: bar.Report, Shots: true})
 	bar.Close(err == nil)

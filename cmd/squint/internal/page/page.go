@@ -214,7 +214,7 @@ func share(x float64) string {
 	if x < 0 {
 		return "-"
 	}
-	return fmt.Sprintf("%.1f %%", 100*x)
+	return fmt.Sprintf("%.1f\u00a0%%", 100*x)
 }
 
 // viewOf finds a viewpoint by its name; nil where the design has none such.

@@ -18,7 +18,7 @@ import (
 // evaluated.
 const (
 	dgpScale   = 1e4
-	errorScale = 1e5
+	errorScale = 1e4
 	noValue    = math.MaxUint16
 )
 
@@ -88,9 +88,9 @@ func (a *Archive) view(r *study.Result, v *study.ViewResult) View {
 }
 
 // The full picture of a worst hour: luminance is worstLeast times
-// exp(code/worstScale), good to 0.02 %.
+// exp(code/worstScale), good to 0.25 %.
 const (
-	worstScale = 2500
+	worstScale = 200
 	worstLeast = 1e-3
 )
 
@@ -185,8 +185,11 @@ func part16(t float64) uint16 {
 	return uint16(math.Round(math.Max(0, math.Min(1, t)) * math.MaxUint16))
 }
 
+// discScale makes discs good to 0.02 %.
+const discScale = 2500
+
 func logCode(v, least float64) uint16 {
-	return uint16(math.Max(0, math.Min(noValue, math.Round(worstScale*math.Log(v/least)))))
+	return uint16(math.Max(0, math.Min(noValue, math.Round(discScale*math.Log(v/least)))))
 }
 
 // What stands in a pixel of the eye's picture.

@@ -267,6 +267,19 @@ func Run(ctx context.Context, in *Input, opt Options) (*Result, error) {
 	return r, nil
 }
 
+// Forget lets go of the series and pictures of a study that was written; what
+// sums them up stays, for comparing.
+func (r *Result) Forget() {
+	for i := range r.Views {
+		v := &r.Views[i]
+		v.DGP, v.StdErr, v.Ev, v.InRange, v.Cause, v.Worst, v.Shots = nil, nil, nil, nil, nil, nil, nil
+	}
+	for i := range r.Planes {
+		p := &r.Planes[i]
+		p.E, p.StdErr, p.Direct = nil, nil, nil
+	}
+}
+
 // combine orders the asked verdicts, failing ones first, and sums them up.
 func (r *Result) combine() {
 	var ordered []verdict.Verdict

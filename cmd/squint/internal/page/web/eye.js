@@ -109,7 +109,7 @@ function hourPicture(y, v, f, seen) {
     sources(g, w, lum, px, y.design);
     rings(g, w, f.discs(frame));
     looked = { lum, px, w, seen, v, d: y.design };
-    t += `DGP ${(s.dgp[state.record] / 1e4).toFixed(3)} \u00b1 ${(s.error[state.record] / 1e5).toFixed(3)}, ${whole(s.ev[state.record])} lx at the eye. For display: half of the points lie within ${percent(v.shots.median_error)} of the computed ones, 95 % within ${percent(v.shots.wide_error, 0)}; no verdict comes from it.`;
+    t += `DGP ${(s.dgp[state.record] / 1e4).toFixed(3)} \u00b1 ${(s.error[state.record] / 1e4).toFixed(3)}, ${whole(s.ev[state.record])} lx at the eye. For display: half of the points lie within ${percent(v.shots.median_error)} of the computed ones, 95 % within ${percent(v.shots.wide_error, 0)}; no verdict comes from it.`;
   } else {
     if (seen) outlines(g, w, v.worst_px, (a, b) => seen.kind[a] && seen.kind[b] && seen.part[a] !== seen.part[b], css("quiet"), 0.5);
     t += !f ? "Pictures of any hour are in this page for one design only; see the method." : y.byRecord[state.record] < 0 ? "It is dark." : "Not an hour of use, so it was not looked at.";
@@ -176,7 +176,7 @@ async function worst(y, v) {
   const n = await load(v.worst_shot), lines = (y.design.worst && y.design.worst[state.view]) || [], paper = sheet(canvas.worst, (w) => w), { w } = paper;
   if (!n) { clip(paper.g, w); rim(paper.g, w); reading.worst.textContent = "No hour in use has daylight."; return; }
   const lum = new Float32Array(n.lum.length), px = v.worst_px;
-  for (let i = 0; i < lum.length; i++) lum[i] = n.lum[i] ? 1e-3 * Math.exp(n.lum[i] / 2500) : 0;
+  for (let i = 0; i < lum.length; i++) lum[i] = n.lum[i] ? 1e-3 * Math.exp(n.lum[i] / 200) : 0;
   kept(canvas.worst, paper, [state.design, state.view].join(), (g) => {
     clip(g, w);
     picture(g, w, lum, px);
