@@ -22,7 +22,7 @@ var topics = []Topic{
 	{"project", "the project file, key by key"},
 	{"geometry", "room models: formats, units, groups, openings"},
 	{"finishes", "surfaces: from matte walls to glass, cloth and mirrors"},
-	{"systems", "light shelves and roller blinds"},
+	{"systems", "light shelves, blinds, louvres, rollers; the gallery"},
 	{"anidolic", "anidolic ceilings: collector, mirrored duct and outlet"},
 	{"control", "when what moves is opened and closed"},
 	{"weather", "weather files, and the moment each record stands for"},
