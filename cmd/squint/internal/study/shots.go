@@ -161,17 +161,15 @@ func (g *standingSink) keepShot(w *sinkScratch, e *coeff.Eye, f *annual.Frame) {
 }
 
 // develop reduces the pictures and lets go of what they were kept in.
-func (g *glareSink) develop(ctx context.Context) error {
-	for i := range g.views {
-		x := g.views[i].Shots
-		if x == nil {
-			continue
-		}
-		if err := ctx.Err(); err != nil {
-			return err
-		}
-		x.Film = x.roll.Develop(g.shots.rank)
-		x.roll, x.shrinks = nil, nil
+func (g *glareSink) develop(ctx context.Context, opt Options) error {
+	if g.shots == nil {
+		return nil
 	}
-	return nil
+	return each(ctx, opt, StageShots, len(g.views), func(i int) error {
+		if x := g.views[i].Shots; x != nil {
+			x.Film = x.roll.Develop(g.shots.rank)
+			x.roll, x.shrinks = nil, nil
+		}
+		return nil
+	})
 }

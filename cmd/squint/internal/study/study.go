@@ -34,6 +34,7 @@ const (
 	StageSurfaces Stage = "linking the surfaces"
 	StageSensors  Stage = "gathering at the sensors"
 	StageYear     Stage = "the year"
+	StageShots    Stage = "keeping pictures of any hour"
 	StageAgain    Stage = "a closer look at close hours"
 	StageHazard   Stage = "looking for sun that mirrors concentrate"
 )
@@ -185,7 +186,7 @@ func Run(ctx context.Context, in *Input, opt Options) (*Result, error) {
 	if err != nil {
 		return nil, err
 	}
-	if err := y.glare.develop(ctx); err != nil {
+	if err := y.glare.develop(ctx, opt); err != nil {
 		return nil, err
 	}
 	if err := r.refine(ctx, in, opt, y); err != nil {
