@@ -168,20 +168,17 @@ func (g *standingSink) keepShot(w *sinkScratch, e *coeff.Eye, f *annual.Frame) {
 }
 
 // develop reduces the pictures and lets go of what they were kept in.
-func (g *glareSink) develop(ctx context.Context, shots *shotPlan) error {
-	if shots == nil {
+func (g *glareSink) develop(ctx context.Context, opt Options) error {
+	if opt.shots == nil {
 		return nil
 	}
-	for i := range g.views {
-		x := shots.kept[i]
-		if g.views[i].Shots = x; x == nil {
-			continue
+	return each(ctx, opt, StageShots, len(g.views), func(i int) error {
+		x := opt.shots.kept[i]
+		g.views[i].Shots = x
+		if x != nil {
+			x.Film = x.roll.Develop(opt.shots.rank)
+			x.roll, x.shrinks = nil, nil
 		}
-		if err := ctx.Err(); err != nil {
-			return err
-		}
-		x.Film = x.roll.Develop(shots.rank)
-		x.roll, x.shrinks = nil, nil
-	}
-	return nil
+		return nil
+	})
 }

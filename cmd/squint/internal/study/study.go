@@ -36,6 +36,7 @@ const (
 	StageSurfaces Stage = "linking the surfaces"
 	StageSensors  Stage = "gathering at the sensors"
 	StageYear     Stage = "the year"
+	StageShots    Stage = "keeping pictures of any hour"
 	StageAgain    Stage = "a closer look at close hours"
 	StagePicture  Stage = "the pictures"
 	StageHazard   Stage = "looking for sun that mirrors concentrate"
@@ -232,7 +233,7 @@ func Run(ctx context.Context, in *Input, opt Options) (*Result, error) {
 	if err != nil {
 		return nil, err
 	}
-	if err := y.glare.develop(ctx, opt.shots); err != nil {
+	if err := y.glare.develop(ctx, opt); err != nil {
 		return nil, err
 	}
 	if in.operation != nil {
