@@ -2,6 +2,7 @@ package main
 
 import (
 	"bytes"
+	"context"
 	"encoding/binary"
 	"errors"
 	"flag"
@@ -14,6 +15,7 @@ import (
 	"strconv"
 	"strings"
 	"testing"
+	"time"
 
 	"github.com/rogpeppe/go-internal/testscript"
 )
@@ -21,7 +23,16 @@ import (
 var update = flag.Bool("update", false, "rewrite the expected texts in testdata/script")
 
 func TestMain(m *testing.M) {
-	testscript.Main(m, map[string]func(){"squint": main})
+	testscript.Main(m, map[string]func(){"squint": patient})
+}
+
+// patient is main with a clock that stands, so that a slow machine does not
+// print lines of progress into what scripts compare.
+func patient() {
+	h := machine()
+	start := h.now()
+	h.now = func() time.Time { return start }
+	os.Exit(int(run(context.Background(), h, os.Args[1:])))
 }
 
 // TestScripts runs every script in the folder.
