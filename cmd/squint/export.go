@@ -5,7 +5,6 @@ import (
 	"errors"
 	"fmt"
 	"io"
-	"io/fs"
 	"os"
 	"path/filepath"
 	"slices"
@@ -171,69 +170,17 @@ func exportFiles(s *scene.Scene, o exportOptions) (files []exportFile, notes []s
 
 // writeTogether writes all files whole under temporary names, and then gives
 // them their own. On an error or a stop before that, nothing has changed.
-func writeTogether(ctx context.Context, dir string, files []exportFile) (err error) {
-	made, err := makeFolders(dir)
-	var staged []string
-	defer func() {
-		if err == nil {
-			return
-		}
-		for _, s := range staged {
-			_ = os.Remove(s) // those renamed are gone
-		}
-		for _, d := range slices.Backward(made) {
-			_ = os.Remove(d) // a folder that is not empty stays
-		}
-	}()
-	if err != nil {
-		return err
-	}
+func writeTogether(ctx context.Context, dir string, files []exportFile) error {
+	var list []report.File
 	for _, f := range files {
-		path := filepath.Join(dir, f.name)
-		if info, err := os.Stat(path); err == nil && info.IsDir() {
-			return inputError{fmt.Errorf("%s: got a folder, want a file or nothing; move it away", path)}
-		}
-		file, err := os.CreateTemp(dir, ".partial-*")
-		if err != nil {
-			return err
-		}
-		staged = append(staged, file.Name())
-		// CreateTemp makes files for the owner alone; these are for others too.
-		err = errors.Join(file.Chmod(0o644), f.write(file), file.Sync())
-		if err = errors.Join(err, file.Close()); err != nil {
-			return fmt.Errorf("%s: %w", path, err)
-		}
-		if err := ctx.Err(); err != nil {
-			return err
-		}
+		list = append(list, report.File{Name: f.name, Write: f.write})
 	}
-	for i, f := range files {
-		if err := os.Rename(staged[i], filepath.Join(dir, f.name)); err != nil {
-			return err
-		}
+	err := report.WriteFiles(ctx, dir, list)
+	var in *report.InTheWayError
+	if errors.As(err, &in) {
+		return inputError{err}
 	}
-	return nil
-}
-
-// makeFolders makes a folder and those above it, and returns which it made,
-// outermost first.
-func makeFolders(dir string) (made []string, err error) {
-	var missing []string
-	for d := filepath.Clean(dir); ; d = filepath.Dir(d) {
-		if _, err := os.Stat(d); err == nil || d == filepath.Dir(d) {
-			break
-		} else if !errors.Is(err, fs.ErrNotExist) {
-			return nil, err
-		}
-		missing = append(missing, d)
-	}
-	for _, d := range slices.Backward(missing) {
-		if err := os.Mkdir(d, 0o777); err != nil && !errors.Is(err, fs.ErrExist) {
-			return made, err
-		}
-		made = append(made, d)
-	}
-	return made, nil
+	return err
 }
 
 // left names the files of an earlier export that this one did not replace.

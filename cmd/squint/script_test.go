@@ -2,7 +2,6 @@ package main
 
 import (
 	"bytes"
-	"context"
 	"encoding/binary"
 	"errors"
 	"flag"
@@ -32,7 +31,7 @@ func patient() {
 	h := machine()
 	start := h.now()
 	h.now = func() time.Time { return start }
-	os.Exit(int(run(context.Background(), h, os.Args[1:])))
+	live(h)
 }
 
 // TestScripts runs every script in the folder.

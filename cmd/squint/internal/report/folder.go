@@ -2,6 +2,7 @@ package report
 
 import (
 	"bufio"
+	"context"
 	"errors"
 	"fmt"
 	"io"
@@ -19,6 +20,42 @@ type folder struct {
 }
 
 type staged struct{ temporary, name string }
+
+// File is one file to write, its name a slash path within the folder.
+type File struct {
+	Name  string
+	Write func(w io.Writer) error
+}
+
+// WriteFiles writes files into a folder, which it makes, all or none.
+func WriteFiles(ctx context.Context, dir string, files []File) error {
+	f, err := openFolder(dir)
+	if err != nil {
+		return err
+	}
+	for _, x := range files {
+		if err == nil {
+			err = f.stage(x.Name, x.Write)
+		}
+		if err == nil {
+			err = ctx.Err()
+		}
+	}
+	if err == nil {
+		err = f.commit()
+	}
+	if err != nil {
+		return errors.Join(err, f.abandon())
+	}
+	return nil
+}
+
+// InTheWayError is a folder where a file is to be written.
+type InTheWayError struct{ Path string }
+
+func (e *InTheWayError) Error() string {
+	return e.Path + ": got a folder, want a file or nothing; move it away"
+}
 
 func openFolder(dir string) (*folder, error) {
 	f := &folder{dir: dir}
@@ -57,7 +94,7 @@ func (f *folder) stage(name string, write func(w io.Writer) error) (err error) {
 		return err
 	}
 	if info, err := os.Stat(path); err == nil && info.IsDir() {
-		return fmt.Errorf("%s: got a folder, want a file or nothing; move it away", path)
+		return &InTheWayError{path}
 	}
 	file, err := os.CreateTemp(filepath.Dir(path), ".partial-*")
 	if err != nil {
