@@ -29,7 +29,7 @@ func TestReportByGroup(t *testing.T) {
 		Light: func(i int, c Combination) float64 { return 1000 - 100*float64(c.State(0)) },
 	})
 	want := []Lasting{
-		{"blind: raised, roller: raised", 0.5, 0.5},
+		{"blind, roller: raised", 0.5, 0.5},
 		{"blind: shut, roller: raised", 1.5, 0.5},
 		{"blind: shut, roller: drawn", 1, 1},
 	}
@@ -62,5 +62,20 @@ func TestViewOfTwoOpenings(t *testing.T) {
 	r := p.Report(Losses{View: func(_, state int) float64 { return 1 - 0.9*float64(state) }})
 	if got := r.Groups[0].ViewLost; math.Abs(got-0.45) > 1e-12 {
 		t.Errorf("one of two openings with a tenth of its view: got %g lost, want 0.45", got)
+	}
+}
+
+func TestWords(t *testing.T) {
+	for _, c := range []struct {
+		names, states []string
+		want          string
+	}{
+		{[]string{"a"}, []string{"up"}, "a: up"},
+		{[]string{"a", "b", "c"}, []string{"up", "down", "up"}, "a, c: up, b: down"},
+		{[]string{"a", "b", "c", "d", "e"}, []string{"up", "up", "down", "up", "up"}, "a and 3 more: up, c: down"},
+	} {
+		if got := Words(c.names, c.states); got != c.want {
+			t.Errorf("got %q, want %q", got, c.want)
+		}
 	}
 }

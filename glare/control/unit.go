@@ -91,11 +91,11 @@ func combination(states []int) Combination {
 	return Combination(b)
 }
 
-// Label names the states of those units, "name: state" each; all of them for
-// no units.
+// Label names the states of those units, as Words does; all of them for no
+// units.
 func (c Combination) Label(units []Unit, only ...int) string {
-	var words []string
-	add := func(i int) { words = append(words, units[i].Name+": "+units[i].States[c.State(i)]) }
+	var names, states []string
+	add := func(i int) { names, states = append(names, units[i].Name), append(states, units[i].States[c.State(i)]) }
 	for _, i := range only {
 		add(i)
 	}
@@ -103,6 +103,32 @@ func (c Combination) Label(units []Unit, only ...int) string {
 		for i := range units {
 			add(i)
 		}
+	}
+	return Words(names, states)
+}
+
+// mostNamed is how many units of one state are named; of more the first is.
+const mostNamed = 3
+
+// Words says how systems stand, those of one state together, in order of the
+// first: "blind 1 and 11 more: tilt -32.1, roller: drawn". It is for reading:
+// combinations that differ may read alike.
+func Words(names, states []string) string {
+	of := map[string][]string{}
+	var order []string
+	for i, s := range states {
+		if of[s] == nil {
+			order = append(order, s)
+		}
+		of[s] = append(of[s], names[i])
+	}
+	var words []string
+	for _, s := range order {
+		list := strings.Join(of[s], ", ")
+		if n := len(of[s]); n > mostNamed {
+			list = fmt.Sprintf("%s and %d more", of[s][0], n-1)
+		}
+		words = append(words, list+": "+s)
 	}
 	return strings.Join(words, ", ")
 }

@@ -120,8 +120,8 @@ func (k *Look) addDesign(fsys fs.FS, p *project.Project, words string, c *scene.
 		if err != nil {
 			return err
 		}
-		choice, label := follow(following, first, m)
-		st := sets[label]
+		choice, key, label := follow(following, first, m)
+		st := sets[key]
 		if st == nil {
 			s := first
 			if len(choice) > 0 {
@@ -130,8 +130,8 @@ func (k *Look) addDesign(fsys fs.FS, p *project.Project, words string, c *scene.
 				}
 			}
 			st = &stood{set: &lookSet{world: trace.Accelerate(s, k.opt.Workers)}}
-			sets[label] = st
-			order = append(order, label)
+			sets[key] = st
+			order = append(order, key)
 		}
 		shots, err := k.shots(p, st.set.world.Scene)
 		if err != nil {

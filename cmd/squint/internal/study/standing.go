@@ -5,6 +5,7 @@ import (
 
 	"gonum.org/v1/gonum/spatial/r3"
 
+	"squint/glare/control"
 	"squint/glare/daylight"
 	"squint/scene"
 	"squint/scene/project"
@@ -31,10 +32,10 @@ func followers(p *project.Project) []project.Movable {
 	return list
 }
 
-// follow is how followers stand at a moment, and that in words.
-func follow(following []project.Movable, s *scene.Scene, m *scene.Moment) (choice map[string]string, label string) {
+// follow is how followers stand at a moment, a key of that, and words for it.
+func follow(following []project.Movable, s *scene.Scene, m *scene.Moment) (choice map[string]string, key, words string) {
 	choice = map[string]string{}
-	var words []string
+	var names, states []string
 	for _, f := range following {
 		k, ok := openingOf(s, f.Opening)
 		if !ok {
@@ -43,9 +44,9 @@ func follow(following []project.Movable, s *scene.Scene, m *scene.Moment) (choic
 		rect := s.Openings[k].Rect
 		state := stateUnder(f, rect, m)
 		choice[f.Name] = state
-		words = append(words, f.Name+": "+state)
+		names, states = append(names, f.Name), append(states, state)
 	}
-	return choice, strings.Join(words, ", ")
+	return choice, strings.Join(states, "\n"), control.Words(names, states)
 }
 
 // stateUnder is the state of a follower that suits a moment's sun.
