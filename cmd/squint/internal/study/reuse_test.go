@@ -31,10 +31,9 @@ azimuth_deg = 180
 // kept is one check of the tiny room with two viewpoints, its text edited by
 // pairs of old and new, from what a store holds.
 type kept struct {
-	r    *Result
-	ran  map[Stage]int // receivers or sides of each stage
-	in   *Input
-	opts Options
+	r   *Result
+	ran map[Stage]int // receivers or sides of each stage
+	in  *Input
 }
 
 func check(t *testing.T, store Store, opt Options, edits ...string) kept {
@@ -46,11 +45,22 @@ func check(t *testing.T, store Store, opt Options, edits ...string) kept {
 		}
 		text = strings.Replace(text, edits[i], edits[i+1], 1)
 	}
-	fsys := fstest.MapFS{"project.toml": {Data: []byte(text)}, "room.obj": {Data: []byte(tinyRoom())}, "site.epw": {Data: tinyYear(t)}}
+	return runKept(t, store, opt, prepared(t, fstest.MapFS{"project.toml": {Data: []byte(text)}, "room.obj": {Data: []byte(tinyRoom())}}))
+}
+
+// prepared is a project in the tiny room's year.
+func prepared(t *testing.T, fsys fstest.MapFS) *Input {
+	t.Helper()
+	fsys["site.epw"] = &fstest.MapFile{Data: tinyYear(t)}
 	in, err := prepareFile(fsys, "project.toml", "", 1)
 	if err != nil {
 		t.Fatal(err)
 	}
+	return in
+}
+
+func runKept(t *testing.T, store Store, opt Options, in *Input) kept {
+	t.Helper()
 	k := kept{ran: map[Stage]int{}, in: in}
 	opt.Store, opt.Shots = store, true
 	if opt.Program == "" {
@@ -60,6 +70,7 @@ func check(t *testing.T, store Store, opt Options, edits ...string) kept {
 	if opt.Workers == 1 {
 		opt.Progress = func(s Stage, _, total int) { k.ran[s] = max(k.ran[s], total) }
 	}
+	var err error
 	if k.r, err = Run(context.Background(), in, opt); err != nil {
 		t.Fatal(err)
 	}
@@ -67,7 +78,7 @@ func check(t *testing.T, store Store, opt Options, edits ...string) kept {
 }
 
 // engine is whether anything was traced.
-func (k kept) engine() bool { return k.ran[StageSurfaces] > 0 || k.ran[StageViews] > 0 }
+func (k kept) engine() bool { return k.ran[StageSurfaces]+k.ran[StageViews]+k.ran[StageAgain] > 0 }
 
 // view is all that a result says of a viewpoint, as a digest.
 func (k kept) view(i int) string {
@@ -280,5 +291,62 @@ func TestDigestSees(t *testing.T) {
 	}
 	if digest(func() {}) != "" {
 		t.Errorf("got a digest of a function")
+	}
+}
+
+// TestReuseOperated: where a roller closes for glare, whose positions show in
+// rounds, a second run traces nothing and says the same; with another limit
+// for closing the first position is reused, and the year is that of a run
+// from nothing but for the rounding of other blocks of moments.
+func TestReuseOperated(t *testing.T) {
+	room := func(limit string) *Input {
+		in := prepared(t, operatedRoom(operatedRoller+"[[control]]\nname = \"by glare\"\nsystems = [\"roller\"]\nrule = \"glare\"\ndgp_limit = "+limit+"\nhysteresis = 0\n"))
+		in.Project.Criteria.Glare = "none"
+		return in
+	}
+	store := memory{}
+	first := runKept(t, store, Options{}, room("0.4"))
+	again := runKept(t, maps.Clone(store), Options{}, room("0.4"))
+	if again.engine() || again.r.Reused == "" {
+		t.Errorf("the second run traced %v, reused %q", again.ran, again.r.Reused)
+	}
+	if again.view(0) != first.view(0) || again.plane(0) != first.plane(0) {
+		t.Errorf("the second run differs from the first")
+	}
+	want, got := runKept(t, memory{}, Options{}, room("0.5")), runKept(t, store, Options{}, room("0.5"))
+	if w, g := want.r.Views[0].Worst.Moment.Hour, got.r.Views[0].Worst.Moment.Hour; w != g {
+		t.Errorf("another limit: the worst hour is %d, want %d", g, w)
+	}
+	moved := 0
+	for h, d := range got.r.Views[0].DGP {
+		w := want.r.Views[0].DGP[h]
+		if (d == d) != (w == w) || d == d && (d-w > 1e-5 || w-d > 1e-5) {
+			t.Fatalf("another limit, hour %d: got DGP %v, want %v", h, d, w)
+		}
+		if d != first.r.Views[0].DGP[h] && d == d {
+			moved++
+		}
+	}
+	if moved == 0 {
+		t.Errorf("another limit changes no hour: the test sees nothing")
+	}
+}
+
+// TestReuseRefined: the closer looks are kept too, under the samples and seeds
+// of their own.
+func TestReuseRefined(t *testing.T) {
+	store := memory{}
+	run := func() kept {
+		in := evenRoom(t, 23000)
+		in.Project.Simulation.Batches = 2
+		return runKept(t, store, Options{}, in)
+	}
+	first := run()
+	again := run()
+	if first.r.Views[0].Refined == 0 || !first.engine() {
+		t.Fatalf("no hour was looked at again: the test sees nothing")
+	}
+	if again.engine() || again.view(0) != first.view(0) || again.r.Views[0].Refined != first.r.Views[0].Refined {
+		t.Errorf("the second run traced %v, or differs", again.ran)
 	}
 }
