@@ -70,7 +70,7 @@ Exit status:
 	f.StringVar(&o.Out, "out", "", "`folder` of the results; else results/NAME beside\nthe project file, results/demo here for the demo")
 	f.IntVar(&o.Workers, "workers", h.cpus, "`number` of threads, by default one for each CPU; the\nresults do not depend on it")
 	f.BoolVar(&o.RequireMet, "require-met", false, "end with another exit status where a criterion is\nnot met or undecided")
-	f.BoolVar(&o.Fresh, "fresh", false, "compute everything anew, also what earlier runs left in\nthe results' folder "+reuseDir)
+	f.BoolVar(&o.Fresh, "fresh", false, "compute everything anew, also what earlier runs kept\nin the folder "+reuseDir+" of the results")
 	f.Uint64Var(&seed, "seed", 0, "`number` from which all random numbers follow, instead\nof the project's")
 	return cmd
 }

@@ -30,7 +30,7 @@ type summary struct {
 	Cautions  []string      `json:"cautions"`
 	Notes     []string      `json:"notes"`
 	Positions []string      `json:"positions"`
-	Reused    string        `json:"reused"` // in words, what earlier runs had computed
+	Reused    string        `json:"reused"` // in words, what was not computed again
 
 	Sights []sightJSON `json:"view_taken"`
 

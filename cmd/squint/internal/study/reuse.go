@@ -39,7 +39,7 @@ func (t traced) words(s *scene.Scene) string {
 	if list == nil {
 		return ""
 	}
-	return strings.Join(list, " and ") + " reused from earlier runs"
+	return strings.Join(list, " and ") + " reused"
 }
 
 // skies is the digest of the moments as the engine sees them, in use or not.
@@ -94,7 +94,9 @@ func reuseYear(ctx context.Context, in *Input, opt Options, r *Result) (*year, e
 	for _, st := range in.Standings {
 		total += len(st.Moments)
 	}
-	r.Settings.Workers = max(r.Settings.Workers, 1)
+	if r.Settings.Workers == 0 { // where nothing is missing, nothing limits them
+		r.Settings.Workers = opt.Workers
+	}
 	for k := range in.Standings {
 		st := &in.Standings[k]
 		if len(st.Moments) == 0 && k > 0 {

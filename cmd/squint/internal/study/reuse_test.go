@@ -137,10 +137,10 @@ func TestReuse(t *testing.T) {
 			t.Errorf("%s: traced %v, want %d viewpoints and %d planes", c.name, got.ran, c.views, c.planes)
 		}
 		want := map[[2]int]string{
-			{0, 0}: "2 of 2 viewpoints and 1 of 1 work plane reused from earlier runs",
-			{1, 0}: "1 of 2 viewpoints and 1 of 1 work plane reused from earlier runs",
-			{0, 1}: "2 of 2 viewpoints reused from earlier runs",
-			{2, 0}: "1 of 1 work plane reused from earlier runs",
+			{0, 0}: "2 of 2 viewpoints and 1 of 1 work plane reused",
+			{1, 0}: "1 of 2 viewpoints and 1 of 1 work plane reused",
+			{0, 1}: "2 of 2 viewpoints reused",
+			{2, 0}: "1 of 1 work plane reused",
 			{2, 1}: "",
 		}[[2]int{c.views, c.planes}]
 		if got.r.Reused != want {

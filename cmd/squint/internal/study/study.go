@@ -71,7 +71,7 @@ type Result struct {
 	// ClearNames name the moments under a clear sky, if asked for.
 	ClearNames []string
 
-	// Reused says what was taken over from earlier runs; "" for nothing.
+	// Reused says what was taken over instead of computed; "" for nothing.
 	Reused string
 	traced traced
 
