@@ -127,13 +127,18 @@ type standingSink struct {
 	*glareSink
 	scene *scene.Scene
 	eyes  []*coeff.Eye
+	seen  []*coeff.Eye // without samples, which worst hours would hold on to
 }
 
 func (g *glareSink) sink(s *scene.Scene, eyes []*coeff.Eye) annual.Sink {
 	if len(eyes) > 0 {
 		g.look(eyes[0].View)
 	}
-	return (&standingSink{g, s, eyes}).take
+	seen := make([]*coeff.Eye, len(eyes))
+	for i, e := range eyes {
+		seen[i] = &coeff.Eye{View: e.View, Seen: e.Seen, Inside: e.Inside}
+	}
+	return (&standingSink{g, s, eyes, seen}).take
 }
 
 // look prepares for views of that size, which all of a study have.
@@ -213,14 +218,21 @@ func (g *standingSink) take(worker int, f *annual.Frame) {
 	if dgp < causeFrom && !top {
 		return
 	}
-	full := glare.Evaluate(g.field, f.Mean, w.discs, g.opt, &w.scratch)
+	// What is kept of each cell is evaluated in full where it is read again.
+	var full glare.Result
+	if dgp >= causeFrom || g.cells == nil {
+		full = glare.Evaluate(g.field, f.Mean, w.discs, g.opt, &w.scratch)
+	}
 	if dgp >= causeFrom {
 		c := g.causeOf(e, f, &full)
 		v.Cause[h] = g.causeID(f.Eye, c)
 	}
 	if top {
-		w := &Worst{Moment: f.Moment, DGP: dgp, Ev: ev, StdErr: se, Result: full,
-			Lum: append([]float32(nil), f.Mean...), Discs: append([]annual.Disc(nil), f.Discs...), InsideOf: e}
+		w := &Worst{Moment: f.Moment, DGP: dgp, Ev: ev, StdErr: se,
+			Lum: append([]float32(nil), f.Mean...), Discs: append([]annual.Disc(nil), f.Discs...), InsideOf: g.seen[f.Eye]}
+		if g.cells == nil {
+			w.Result = full
+		}
 		g.tops[f.Eye][cell] = w
 		if brighter(dgp, h, v.Worst) {
 			v.Worst = w

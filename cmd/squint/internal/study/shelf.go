@@ -142,6 +142,11 @@ func (s *shelf) compute(ctx context.Context, r *Result) error {
 	for j, i := range s.lackViews {
 		r.traced.views[i] = true
 		s.views[i].learn(y, j, c.Moments, opt.shots, &own.Settings)
+		// A year of pictures is large: what is learnt is let go of.
+		y.glare.tops[j] = nil
+		if opt.shots != nil {
+			opt.shots.kept[j] = nil
+		}
 		save(s, s.views[i].Key, s.views[i], r)
 	}
 	first := 0
