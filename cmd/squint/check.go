@@ -26,6 +26,7 @@ type checkOptions struct {
 	Workers    int
 	RequireMet bool
 	Seed       *uint64 // nil for the project's
+	Fresh      bool    // computes all anew
 }
 
 func newCheck(h host, run func(context.Context, host, checkOptions) error) *cobra.Command {
@@ -69,6 +70,7 @@ Exit status:
 	f.StringVar(&o.Out, "out", "", "`folder` of the results; else results/NAME beside\nthe project file, results/demo here for the demo")
 	f.IntVar(&o.Workers, "workers", h.cpus, "`number` of threads, by default one for each CPU; the\nresults do not depend on it")
 	f.BoolVar(&o.RequireMet, "require-met", false, "end with another exit status where a criterion is\nnot met or undecided")
+	f.BoolVar(&o.Fresh, "fresh", false, "compute everything anew, also what earlier runs kept\nin the folder "+reuseDir+" of the results")
 	f.Uint64Var(&seed, "seed", 0, "`number` from which all random numbers follow, instead\nof the project's")
 	return cmd
 }
@@ -98,6 +100,12 @@ func runCheck(ctx context.Context, h host, o checkOptions) error {
 	if !compares(inputs) {
 		folders[0] = ""
 	}
+	// A program that cannot read itself reuses nothing.
+	program, programErr := programHash()
+	var store study.Store
+	if programErr == nil {
+		store = newReuseFolder(out, o.Fresh)
+	}
 	var headers report.Headers
 	var done []report.Design
 	for i, in := range inputs {
@@ -105,7 +113,7 @@ func runCheck(ctx context.Context, h host, o checkOptions) error {
 			return err
 		}
 		began := h.now()
-		r, err := runStudy(ctx, h, in, o, d)
+		r, err := runStudy(ctx, h, in, d, study.Options{Workers: o.Workers, Shots: true, Store: store, Program: program})
 		if err != nil {
 			return err
 		}
@@ -168,12 +176,13 @@ func (o checkOptions) prepare(d designs) ([]*study.Input, error) {
 	return inputs, nil
 }
 
-func runStudy(ctx context.Context, h host, in *study.Input, o checkOptions, d designs) (*study.Result, error) {
+func runStudy(ctx context.Context, h host, in *study.Input, d designs, opt study.Options) (*study.Result, error) {
 	// The collector works harder as the project's own limit comes near; a
 	// sixteenth is for the program itself, which it does not count.
 	debug.SetMemoryLimit(int64(in.Project.Simulation.MemoryMiB) << 20 / 16 * 15)
 	bar := newProgress(h)
-	r, err := study.Run(ctx, in, study.Options{Workers: o.Workers, Progress: bar.Report, Shots: true})
+	opt.Progress = bar.Report
+	r, err := study.Run(ctx, in, opt)
 	bar.Close(err == nil)
 	// A stop in the last moments of a run counts as well.
 	if stopped := ctx.Err(); stopped != nil {

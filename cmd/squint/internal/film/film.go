@@ -80,7 +80,7 @@ func (r *Roll) Develop(rank int) *Film {
 func (r *Roll) centred(f *Film) matrix {
 	sum := make([]float64, r.Points)
 	for i := range r.Frames {
-		for p, c := range r.rest[i*r.Points:][:r.Points] {
+		for p, c := range r.rest(i) {
 			sum[p] += float64(c)
 		}
 	}
@@ -91,7 +91,7 @@ func (r *Roll) centred(f *Film) matrix {
 	m := newMatrix(r.Frames, r.Points)
 	for i := range r.Frames {
 		row := m.row(i)
-		for p, c := range r.rest[i*r.Points:][:r.Points] {
+		for p, c := range r.rest(i) {
 			row[p] = float32(c) - float32(f.Mean[p])/meanScale
 		}
 	}
@@ -109,28 +109,28 @@ func (r *Roll) developSun(f *Film) {
 	byFrame, byPoint := make([]float64, r.Frames), make([]float64, r.Points)
 	sum, n := make([]float64, r.Points), make([]float64, r.Points)
 	for range sunRounds {
-		for i, lit := range r.lit {
-			mean := 0.0
+		for i := range r.frames {
+			lit, mean := r.frames[i].Lit, 0.0
 			for _, l := range lit {
-				mean += (float64(l.code) - byPoint[l.point]) / float64(len(lit))
+				mean += (float64(l.Code) - byPoint[l.Point]) / float64(len(lit))
 			}
 			byFrame[i] = mean
 		}
 		clear(sum)
 		clear(n)
-		for i, lit := range r.lit {
-			for _, l := range lit {
-				sum[l.point] += float64(l.code) - byFrame[i]
-				n[l.point]++
+		for i := range r.frames {
+			for _, l := range r.frames[i].Lit {
+				sum[l.Point] += float64(l.Code) - byFrame[i]
+				n[l.Point]++
 			}
 		}
 		for p := range sum {
 			byPoint[p] = sum[p] / math.Max(n[p], 1)
 		}
 	}
-	for i, lit := range r.lit {
-		for _, l := range lit {
-			f.Lit[i*f.rowBytes()+int(l.point)>>3] |= 1 << (l.point & 7)
+	for i := range r.frames {
+		for _, l := range r.frames[i].Lit {
+			f.Lit[i*f.rowBytes()+int(l.Point)>>3] |= 1 << (l.Point & 7)
 		}
 	}
 	f.LitFrame, f.LitPoint = fixed(byFrame), fixed(byPoint)
@@ -151,11 +151,11 @@ func (r *Roll) measure(f *Film) {
 	shown, kept := make([]float64, r.Points), make([]float64, r.Points)
 	for i := 0; i < r.Frames; i += every {
 		f.At(i, shown)
-		for p, c := range r.rest[i*r.Points:][:r.Points] {
+		for p, c := range r.rest(i) {
 			kept[p] = f.value(float64(c))
 		}
-		for _, l := range r.lit[i] {
-			kept[l.point] += f.value(float64(l.code))
+		for _, l := range r.frames[i].Lit {
+			kept[l.Point] += f.value(float64(l.Code))
 		}
 		for p := range kept {
 			off = append(off, math.Abs(shown[p]-kept[p])/kept[p])

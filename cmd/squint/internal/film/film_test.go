@@ -2,6 +2,7 @@ package film
 
 import (
 	"math"
+	"reflect"
 	"slices"
 	"sync"
 	"testing"
@@ -100,5 +101,26 @@ func TestFilmOfNothing(t *testing.T) {
 				}
 			}
 		}
+	}
+}
+
+// TestKeptAgain: a frame that is kept a second time, or put from another roll,
+// shows nothing of what was there before; one that does not fit is refused.
+func TestKeptAgain(t *testing.T) {
+	sunny, dull := []float32{100, 100}, []float32{50, 50}
+	r := NewRoll(2, 1, 0.1, 1000)
+	r.Keep(0, sunny, []float32{90, 90})
+	r.Keep(0, dull, []float32{0, 0})
+	once := NewRoll(2, 1, 0.1, 1000)
+	once.Keep(0, dull, []float32{0, 0})
+	if !reflect.DeepEqual(r.Frame(0), once.Frame(0)) {
+		t.Errorf("got %v, want %v as kept once", r.Frame(0), once.Frame(0))
+	}
+	other := NewRoll(2, 1, 0.1, 1000)
+	if !other.Put(0, r.Frame(0)) || !reflect.DeepEqual(other.Develop(1), once.Develop(1)) {
+		t.Errorf("a frame put from another roll differs")
+	}
+	if NewRoll(3, 1, 0.1, 1000).Put(0, r.Frame(0)) || other.Put(0, Frame{Rest: []uint8{1, 2}, Lit: []LitPoint{{Point: 2}}}) {
+		t.Errorf("a frame that does not fit was taken")
 	}
 }

@@ -6,14 +6,20 @@ import "math"
 type Roll struct {
 	Points, Frames int
 	Least, Most    float64 // the range of values kept
-	rest           []uint8 // [frame][point]
-	lit            [][]litPoint
+	frames         []Frame
+	dark           []uint8 // stands for the rest of a frame that was not kept
 }
 
-// litPoint is a point that the sun lights in a frame.
-type litPoint struct {
-	point uint16
-	code  uint8
+// Frame is one frame as it is kept.
+type Frame struct {
+	Rest []uint8 // code by point of all but the sun's part; nil: not kept
+	Lit  []LitPoint
+}
+
+// LitPoint is a point that the sun lights in a frame.
+type LitPoint struct {
+	Point uint16
+	Code  uint8
 }
 
 // litShare is the part of a value from which the sun on it is kept apart:
@@ -27,7 +33,33 @@ const MostPoints = math.MaxUint16
 // lies outside is moved to the ends.
 func NewRoll(points, frames int, least, most float64) *Roll {
 	return &Roll{Points: points, Frames: frames, Least: least, Most: most,
-		rest: make([]uint8, points*frames), lit: make([][]litPoint, frames)}
+		frames: make([]Frame, frames), dark: make([]uint8, points)}
+}
+
+// Frame is a frame as it was kept, which is not to be changed.
+func (r *Roll) Frame(frame int) Frame { return r.frames[frame] }
+
+// Put keeps a frame of another roll of as many points and the same range; what
+// does not fit is refused.
+func (r *Roll) Put(frame int, f Frame) bool {
+	for _, l := range f.Lit {
+		if int(l.Point) >= r.Points {
+			return false
+		}
+	}
+	if len(f.Rest) != r.Points {
+		return false
+	}
+	r.frames[frame] = f
+	return true
+}
+
+// rest are the codes of a frame by point.
+func (r *Roll) rest(frame int) []uint8 {
+	if f := r.frames[frame].Rest; f != nil {
+		return f
+	}
+	return r.dark
 }
 
 // stepLn is one step of the scale, in natural logarithms.
@@ -41,15 +73,17 @@ func (r *Roll) code(v float64) uint8 {
 }
 
 // Keep stores one frame: all is the whole value by point, sun its part that
-// falls straight from the sun. Different frames may be kept at the same time.
+// falls straight from the sun. It takes the place of what was kept before.
+// Different frames may be kept at the same time.
 func (r *Roll) Keep(frame int, all, sun []float32) {
-	row := r.rest[frame*r.Points:][:r.Points]
-	for p := range row {
+	f := Frame{Rest: make([]uint8, r.Points)}
+	for p := range f.Rest {
 		a, s := float64(all[p]), float64(sun[p])
 		if s > litShare*a {
-			r.lit[frame] = append(r.lit[frame], litPoint{uint16(p), r.code(s)})
+			f.Lit = append(f.Lit, LitPoint{uint16(p), r.code(s)})
 			a -= s
 		}
-		row[p] = r.code(a)
+		f.Rest[p] = r.code(a)
 	}
+	r.frames[frame] = f
 }

@@ -279,7 +279,11 @@ func Brief(w io.Writer, r *study.Result, dir string, elapsed time.Duration) erro
 	for _, t := range r.Warnings {
 		p.item(0, "Warning", warm(), 9, newPaths(r.Project, r.Scene).in(sentence(t)))
 	}
-	p.item(0, word, verdictStyle(r.Outcome), verdictIndent, fmt.Sprintf("%s, in %s; written to", r.Project.Alternative, durationWords(elapsed)))
+	text := fmt.Sprintf("%s, in %s", r.Project.Alternative, durationWords(elapsed))
+	if r.Reused != "" {
+		text += ", " + r.Reused
+	}
+	p.item(0, word, verdictStyle(r.Outcome), verdictIndent, text+"; written to")
 	p.path(verdictIndent, dir)
 	p.gap()
 	return p.print(w)

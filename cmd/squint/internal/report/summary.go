@@ -30,6 +30,7 @@ type summary struct {
 	Cautions  []string      `json:"cautions"`
 	Notes     []string      `json:"notes"`
 	Positions []string      `json:"positions"`
+	Reused    string        `json:"reused"` // in words, what was not computed again
 
 	Sights []sightJSON `json:"view_taken"`
 
@@ -82,7 +83,7 @@ func writeSummary(w io.Writer, r *study.Result, o Options, files []string) error
 		Title: title(r.Project, f), Invented: invented(r.Project, r.Climate.Year),
 		Outcome: r.Outcome.String(), Verdicts: toVerdicts(r.Verdicts), Caveat: verdict.Caveat,
 		Warnings: texts(warnings(r.Warnings, r.Climate, r.Project), f),
-		Cautions: texts(cautions(r.Project), f), Notes: texts(r.Notes, f), Positions: texts(r.Positions, f),
+		Cautions: texts(cautions(r.Project), f), Notes: texts(r.Notes, f), Positions: texts(r.Positions, f), Reused: r.Reused,
 		Sights: sightsJSON(r), Views: viewsJSON(r, files), WorkPlanes: planesJSON(r), Openings: openingsJSON(r), GlareAutonomy: toBracket(r.GlareAutonomy), Hazard: hazards(r),
 		Hours:  hoursJSON{Occupied: len(r.Occupied), Clock: len(r.Clock), Daylight: len(r.Daylight)},
 		Inputs: inputs(r, o, f), Settings: settings(r), Files: append([]string{}, files...),

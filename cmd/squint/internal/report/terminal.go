@@ -279,7 +279,16 @@ func whereSection(p *page, r *study.Result, dir string, elapsed time.Duration) {
 		}
 		p.para(2, text+".")
 	}
-	p.item(0, "", lipgloss.NewStyle(), 0, fmt.Sprintf("Computed in %s on %s.", durationWords(elapsed), count(r.Settings.Workers, "thread", "threads")))
+	p.item(0, "", lipgloss.NewStyle(), 0, computed(r, elapsed))
+}
+
+// computed says how long it took, and what of it had been computed before.
+func computed(r *study.Result, elapsed time.Duration) string {
+	s := fmt.Sprintf("Computed in %s on %s", durationWords(elapsed), count(r.Settings.Workers, "thread", "threads"))
+	if r.Reused != "" {
+		s += "; " + r.Reused
+	}
+	return s + "."
 }
 
 // durationWords is a duration to the second, below ten seconds to the tenth.

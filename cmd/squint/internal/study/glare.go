@@ -115,8 +115,10 @@ type glareSink struct {
 	views []ViewResult
 	mu    []sync.Mutex // by view
 	cause []map[Cause]int16
-	work  []sinkScratch // by worker
-	shots *shotPlan     // nil: no pictures are kept
+	work  []sinkScratch    // by worker
+	shots *shotPlan        // nil: no pictures are kept
+	cells []int            // by record; nil: one for all
+	tops  []map[int]*Worst // by view and cell
 }
 
 // standingSink serves the frames of one standing, which has eyes and parts of
@@ -125,19 +127,28 @@ type standingSink struct {
 	*glareSink
 	scene *scene.Scene
 	eyes  []*coeff.Eye
+	seen  []*coeff.Eye // without samples, which worst hours would hold on to
 }
 
 func (g *glareSink) sink(s *scene.Scene, eyes []*coeff.Eye) annual.Sink {
 	if len(eyes) > 0 {
-		g.once.Do(func() {
-			v := eyes[0].View
-			g.field = glare.NewField(v)
-			if half, err := view.New(v.Position, v.Direction, v.Up, v.Projection, v.FOVRad, v.Width/2, v.Height/2); err == nil && v.Width%2 == 0 && v.Height%2 == 0 {
-				g.wide = glare.NewField(half)
-			}
-		})
+		g.look(eyes[0].View)
 	}
-	return (&standingSink{g, s, eyes}).take
+	seen := make([]*coeff.Eye, len(eyes))
+	for i, e := range eyes {
+		seen[i] = &coeff.Eye{View: e.View, Seen: e.Seen, Inside: e.Inside}
+	}
+	return (&standingSink{g, s, eyes, seen}).take
+}
+
+// look prepares for views of that size, which all of a study have.
+func (g *glareSink) look(v view.View) {
+	g.once.Do(func() {
+		g.field = glare.NewField(v)
+		if half, err := view.New(v.Position, v.Direction, v.Up, v.Projection, v.FOVRad, v.Width/2, v.Height/2); err == nil && v.Width%2 == 0 && v.Height%2 == 0 {
+			g.wide = glare.NewField(half)
+		}
+	})
 }
 
 type sinkScratch struct {
@@ -151,7 +162,7 @@ type sinkScratch struct {
 func newGlareSink(in *Input, workers int) *glareSink {
 	n := len(in.Scene.Viewpoints)
 	g := &glareSink{in: in, views: make([]ViewResult, n), mu: make([]sync.Mutex, n),
-		cause: make([]map[Cause]int16, n), work: make([]sinkScratch, workers)}
+		cause: make([]map[Cause]int16, n), work: make([]sinkScratch, workers), tops: make([]map[int]*Worst, n)}
 	g.opt = sourceOptions(in.Project.Criteria)
 	for i := range g.views {
 		v := &g.views[i]
@@ -166,7 +177,7 @@ func newGlareSink(in *Input, workers int) *glareSink {
 		for _, h := range in.Occupied {
 			v.DGP[h], v.StdErr[h], v.Ev[h], v.EvErr[h] = 0, 0, 0, 0
 		}
-		g.cause[i] = map[Cause]int16{}
+		g.cause[i], g.tops[i] = map[Cause]int16{}, map[int]*Worst{}
 	}
 	return g
 }
@@ -199,19 +210,39 @@ func (g *standingSink) take(worker int, f *annual.Frame) {
 	g.keepShot(w, e, f)
 	g.mu[f.Eye].Lock()
 	defer g.mu[f.Eye].Unlock()
-	worst := v.Worst == nil || dgp > v.Worst.DGP || (dgp == v.Worst.DGP && h < v.Worst.Moment.Hour)
-	if dgp < causeFrom && !worst {
+	cell := 0
+	if g.cells != nil {
+		cell = g.cells[h]
+	}
+	top := brighter(dgp, h, g.tops[f.Eye][cell])
+	if dgp < causeFrom && !top {
 		return
 	}
-	full := glare.Evaluate(g.field, f.Mean, w.discs, g.opt, &w.scratch)
+	// What is kept of each cell is evaluated in full where it is read again.
+	var full glare.Result
+	if dgp >= causeFrom || g.cells == nil {
+		full = glare.Evaluate(g.field, f.Mean, w.discs, g.opt, &w.scratch)
+	}
 	if dgp >= causeFrom {
 		c := g.causeOf(e, f, &full)
 		v.Cause[h] = g.causeID(f.Eye, c)
 	}
-	if worst {
-		v.Worst = &Worst{Moment: f.Moment, DGP: dgp, Ev: ev, StdErr: se, Result: full,
-			Lum: append([]float32(nil), f.Mean...), Discs: append([]annual.Disc(nil), f.Discs...), InsideOf: e}
+	if top {
+		w := &Worst{Moment: f.Moment, DGP: dgp, Ev: ev, StdErr: se,
+			Lum: append([]float32(nil), f.Mean...), Discs: append([]annual.Disc(nil), f.Discs...), InsideOf: g.seen[f.Eye]}
+		if g.cells == nil {
+			w.Result = full
+		}
+		g.tops[f.Eye][cell] = w
+		if brighter(dgp, h, v.Worst) {
+			v.Worst = w
+		}
 	}
+}
+
+// brighter is whether an hour takes the place of what was the worst.
+func brighter(dgp float64, hour int, w *Worst) bool {
+	return w == nil || dgp > w.DGP || dgp == w.DGP && hour < w.Moment.Hour
 }
 
 // causeID is the index of a cause among those of a view.

@@ -89,6 +89,7 @@ func (o *operation) look(ctx context.Context, looks map[control.Combination]*loo
 	st.Moments = moments
 	sub := *o.in
 	sub.Standings = []Standing{st}
+	opt.anyWorst = true // worstHours finds what is missing in the end
 	y, err := computeYear(ctx, &sub, opt, r)
 	if err != nil {
 		return err

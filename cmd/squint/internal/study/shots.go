@@ -158,13 +158,18 @@ func (g *standingSink) keepShot(w *sinkScratch, e *coeff.Eye, f *annual.Frame) {
 	}
 	frame := g.shots.frame[f.Moment.Hour]
 	g.mu[f.Eye].Lock()
-	if g.shots.kept[f.Eye] == nil {
-		g.shots.kept[f.Eye] = g.shots.open(e)
-	}
-	x := g.shots.kept[f.Eye]
+	x := g.shots.opened(f.Eye, e)
 	g.shots.of[frame] = g.scene
 	g.mu[f.Eye].Unlock()
 	x.keep(frame, f, &w.shot)
+}
+
+// opened are the pictures of a view, which begin with its first frame.
+func (s *shotPlan) opened(view int, e *coeff.Eye) *Shots {
+	if s.kept[view] == nil {
+		s.kept[view] = s.open(e)
+	}
+	return s.kept[view]
 }
 
 // develop reduces the pictures and lets go of what they were kept in.

@@ -25,6 +25,16 @@ type Options struct {
 	// Shots keeps small pictures of every view's hours in use, for display.
 	Shots bool
 	shots *shotPlan
+
+	// Store, if not nil, keeps what was computed for later runs, under names
+	// that stand for everything it depends on. Program, the program itself
+	// down to its last byte, is part of that.
+	Store   Store
+	Program string
+	skies   string // digest of all moments
+	cells   []int  // by record: the brightest frame of each cell is kept
+	// anyWorst lets the worst hour's picture be missing where the rest is known.
+	anyWorst bool
 }
 
 // Stage names a part of the run.
@@ -60,6 +70,10 @@ type Result struct {
 	GlareAutonomy verdict.Bracket
 	// ClearNames name the moments under a clear sky, if asked for.
 	ClearNames []string
+
+	// Reused says what was taken over instead of computed; "" for nothing.
+	Reused string
+	traced traced
 
 	// Positions says how long what moves stands in each of its positions.
 	Positions []string
@@ -229,6 +243,9 @@ func Run(ctx context.Context, in *Input, opt Options) (*Result, error) {
 	if opt.Shots {
 		opt.shots = newShotPlan(in)
 	}
+	if opt.Store != nil {
+		opt.skies, opt.cells = skies(in.Climate.Moments), cellsOf(in)
+	}
 	y, err := operatedYear(ctx, in, opt, r)
 	if err != nil {
 		return nil, err
@@ -240,6 +257,9 @@ func Run(ctx context.Context, in *Input, opt Options) (*Result, error) {
 		report := in.operation.report(y)
 		r.Operation = &report
 		r.Positions = positions(r.Operation)
+	}
+	if opt.Store != nil {
+		r.Reused = r.traced.words(in.Scene)
 	}
 	r.Standings, r.Standing = standingByHour(in.Standings)
 	if err := r.refine(ctx, in, opt, y); err != nil {

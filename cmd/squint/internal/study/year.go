@@ -52,11 +52,22 @@ func newYear(in *Input, opt Options) *year {
 	return &year{glare: newGlareSink(in, max(opt.Workers, 1)), light: annual.NewDaylight(in.Scene.Sensors(), len(in.Climate.Moments))}
 }
 
-// computeYear runs every standing of the movable systems over its own moments
-// and puts the results together.
+// computeYear is the year of an input, as far as it is not kept computed.
 func computeYear(ctx context.Context, in *Input, opt Options, r *Result) (*year, error) {
+	if in.Project.Simulation.Photons == 0 {
+		r.Notes = once(r.Notes, "photons = 0: the sun that mirrors, glossy surfaces and panes throw on other surfaces is left out.")
+	}
+	if opt.Store != nil {
+		return reuseYear(ctx, in, opt, r)
+	}
+	return traceYear(ctx, in, opt, r)
+}
+
+// traceYear runs every standing of the movable systems over its own moments
+// and puts the results together.
+func traceYear(ctx context.Context, in *Input, opt Options, r *Result) (*year, error) {
 	y := newYear(in, opt)
-	y.glare.shots = opt.shots
+	y.glare.shots, y.glare.cells = opt.shots, opt.cells
 	total := 0
 	for _, st := range in.Standings {
 		total += len(st.Moments)
@@ -64,9 +75,6 @@ func computeYear(ctx context.Context, in *Input, opt Options, r *Result) (*year,
 	place := make(map[*scene.Moment]int, len(in.Climate.Moments))
 	for i, m := range in.Climate.Moments {
 		place[m] = i
-	}
-	if in.Project.Simulation.Photons == 0 {
-		r.Notes = once(r.Notes, "photons = 0: the sun that mirrors, glossy surfaces and panes throw on other surfaces is left out.")
 	}
 	before := 0
 	for k := range in.Standings {
@@ -134,9 +142,6 @@ func newEngine(ctx context.Context, in *Input, st *Standing, opt Options, r *Res
 		}
 		t = surface.NewTransport(st.World, sky.NewPatches(patchFactor), cfg)
 	}
-	if cfg.Coarsen > 1 {
-		r.Warnings = once(r.Warnings, fmt.Sprintf("surfaces are cut %.1f times more coarsely than asked, to fit memory_mib = %d.", cfg.Coarsen, sim.MemoryMiB))
-	}
 	opt.Workers = max(1, min(opt.Workers, int(float64(sim.MemoryMiB)/memoryMiB(t, sim.Batches))))
 	eyes, err := traceEyes(ctx, in, st, t, opt)
 	if err != nil {
@@ -174,10 +179,19 @@ func newEngine(ctx context.Context, in *Input, st *Standing, opt Options, r *Res
 			rec.Rows[b].Add(t, &g[b])
 		}
 	}
-	r.Settings.Workers, r.Settings.Confidence, r.Settings.Kernel = opt.Workers, confidence, bvh.Kernel()
-	r.Settings.TexelSides = max(r.Settings.TexelSides, t.Len())
-	r.Settings.Coarsen = math.Max(r.Settings.Coarsen, cfg.Coarsen)
+	r.Settings.Workers = opt.Workers
+	r.tell(in, t.Len(), cfg.Coarsen)
 	return &engine{t: t, rec: rec, cfg: annual.Config{Workers: opt.Workers, Seed: sim.Seed}}, nil
+}
+
+// tell takes over how finely surfaces were cut.
+func (r *Result) tell(in *Input, sides int, coarsen float64) {
+	if coarsen > 1 {
+		r.Warnings = once(r.Warnings, fmt.Sprintf("surfaces are cut %.1f times more coarsely than asked, to fit memory_mib = %d.", coarsen, in.Project.Simulation.MemoryMiB))
+	}
+	r.Settings.Confidence, r.Settings.Kernel = confidence, bvh.Kernel()
+	r.Settings.TexelSides = max(r.Settings.TexelSides, sides)
+	r.Settings.Coarsen = math.Max(r.Settings.Coarsen, coarsen)
 }
 
 // daylightFactors runs the one moment of the CIE overcast sky.

@@ -1,0 +1,170 @@
+package study
+
+import (
+	"context"
+
+	"squint/scene"
+	"squint/trace/bvh"
+)
+
+// shelf is what a store holds for one standing.
+type shelf struct {
+	opt    Options
+	in     *Input
+	st     *Standing
+	hours  []int // of the standing's moments
+	used   []int // those in use
+	clear  []*scene.Moment
+	views  []*viewRecord
+	planes []*planeRecord
+	// lackViews and lackPlanes are to be computed, for lackHours.
+	lackViews, lackPlanes []int
+	lackHours             map[int]bool
+}
+
+// newShelf reads what is known of standing k and finds what is missing.
+func newShelf(in *Input, k int, opt Options) *shelf {
+	s := &shelf{opt: opt, in: in, st: &in.Standings[k], lackHours: map[int]bool{}}
+	for _, m := range s.st.Moments {
+		s.hours = append(s.hours, m.Hour)
+		if m.Occupied {
+			s.used = append(s.used, m.Hour)
+		}
+	}
+	for _, m := range in.Clear {
+		if in.standingAt(m.Hour) == k {
+			s.clear = append(s.clear, m)
+		}
+	}
+	// What receivers are, is in their own keys; the project is in the scene,
+	// but for how it is simulated. Workers change nothing.
+	bare := *s.st.Scene
+	bare.Project, bare.Viewpoints, bare.WorkPlanes, bare.Meshes, bare.Notes = nil, nil, nil, nil, nil
+	room := digest(opt.Program, bvh.Kernel(), bare, in.Project.Simulation, opt.skies)
+	if room == "" || opt.skies == "" {
+		s.opt.Store = nowhere{} // something has no digest
+	}
+	for i, v := range s.st.Scene.Viewpoints {
+		x := &viewRecord{}
+		load(s, digest("viewpoint", room, v.Position, v.Direction, sourceOptions(in.Project.Criteria)), x, &x.Key)
+		s.views = append(s.views, x)
+		s.missingView(i)
+	}
+	for i, w := range s.st.Scene.WorkPlanes {
+		x := &planeRecord{}
+		load(s, digest("work plane", room, w.Sensors), x, &x.Key)
+		s.planes = append(s.planes, x)
+		s.missingPlane(i)
+	}
+	return s
+}
+
+// pixels is the width of the small pictures that are asked for.
+func (s *shelf) pixels() int {
+	if s.opt.shots == nil {
+		return 0
+	}
+	return s.opt.shots.pixels
+}
+
+func (s *shelf) missingView(i int) {
+	x := s.views[i]
+	missing := false
+	for _, h := range s.hours {
+		if !x.known(h, s.pixels()) {
+			missing, s.lackHours[h] = true, true
+		}
+	}
+	if !missing && !s.opt.anyWorst && len(s.used) > 0 && x.top(s.used) == nil {
+		missing = true
+		for _, h := range s.hours {
+			s.lackHours[h] = true
+		}
+	}
+	if missing {
+		s.lackViews = append(s.lackViews, i)
+	}
+}
+
+func (s *shelf) missingPlane(i int) {
+	x := s.planes[i]
+	missing := x.Factor == nil && len(s.st.Scene.WorkPlanes[i].Sensors) > 0
+	for _, h := range s.hours {
+		if x.at(h) == nil {
+			missing, s.lackHours[h] = true, true
+		}
+	}
+	for _, m := range s.clear {
+		missing = missing || x.clear(digest(*m)) == nil
+	}
+	if missing {
+		s.lackPlanes = append(s.lackPlanes, i)
+	}
+}
+
+// compute fills what is missing and saves it.
+func (s *shelf) compute(ctx context.Context, r *Result) error {
+	if len(s.lackViews)+len(s.lackPlanes) == 0 {
+		return nil
+	}
+	sub := *s.in
+	c := *s.in.Climate
+	c.Moments = nil
+	for _, m := range s.st.Moments {
+		if s.lackHours[m.Hour] {
+			open := *m
+			open.Occupied = true
+			c.Moments = append(c.Moments, &open)
+		}
+	}
+	sub.Climate, sub.Clear = &c, nil
+	if len(s.lackPlanes) > 0 {
+		sub.Clear = s.clear
+	}
+	sub.Scene = some(s.st.Scene, s.lackViews, s.lackPlanes)
+	sub.Standings = []Standing{{Label: s.st.Label, World: s.st.World, Scene: sub.Scene, Moments: c.Moments}}
+	opt := s.opt
+	opt.Store = nil
+	if opt.shots != nil {
+		all := newShotPlan(&sub)
+		all.pixels, all.rank = opt.shots.pixels, opt.shots.rank
+		opt.shots = all
+	}
+	var own Result
+	y, err := traceYear(ctx, &sub, opt, &own)
+	if err != nil {
+		return err
+	}
+	r.Settings.Workers = own.Settings.Workers
+	if r.traced.views == nil {
+		r.traced = traced{map[int]bool{}, map[int]bool{}}
+	}
+	for j, i := range s.lackViews {
+		r.traced.views[i] = true
+		s.views[i].learn(y, j, c.Moments, opt.shots, &own.Settings)
+		// A year of pictures is large: what is learnt is let go of.
+		y.glare.tops[j] = nil
+		if opt.shots != nil {
+			opt.shots.kept[j] = nil
+		}
+		save(s, s.views[i].Key, s.views[i], r)
+	}
+	first := 0
+	for _, i := range s.lackPlanes {
+		r.traced.planes[i] = true
+		n := len(s.st.Scene.WorkPlanes[i].Sensors)
+		s.planes[i].learn(y, first, n, c.Moments, sub.Clear, &own.Settings)
+		first += n
+		save(s, s.planes[i].Key, s.planes[i], r)
+	}
+	return nil
+}
+
+// some is a scene with some of its viewpoints and work planes.
+func some(s *scene.Scene, views, planes []int) *scene.Scene {
+	few := reduced(s, views)
+	for _, i := range planes {
+		few.WorkPlanes = append(few.WorkPlanes, s.WorkPlanes[i])
+	}
+	return few
+}
