@@ -69,6 +69,7 @@ type Opening struct {
 type Viewpoint struct {
 	Name                string
 	Position, Direction r3.Vec
+	Grid                string // name of the project's view grid that it is of; "" for none
 	Line                int
 }
 

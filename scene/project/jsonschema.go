@@ -147,6 +147,8 @@ func valueSchema(k described) object {
 		return list(number, 12, 12)
 	case *[4][3]float64:
 		return list(list(number, 3, 3), 4, 4)
+	case *[]float64:
+		return list(number, 1, 0)
 	case *[][2]float64:
 		return list(list(number, 2, 2), 3, 0)
 	case *[][3]float64:

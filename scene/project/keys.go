@@ -114,6 +114,8 @@ func sections() []section {
 			func(c *Control) string { return c.Name }, checkControl),
 		many("viewpoint", "an eye that is checked for glare", viewpointKeys, func(p *Project) *[]Viewpoint { return &p.Viewpoints },
 			func(v *Viewpoint) string { return v.Name }, checkViewpoint),
+		many("view_grid", "eyes all over an area, each looking in several directions", viewGridKeys, func(p *Project) *[]ViewGrid { return &p.ViewGrids },
+			func(g *ViewGrid) string { return g.Name }, checkViewGrid),
 		many("work_plane", "a plane that is checked for daylight", workPlaneKeys, func(p *Project) *[]WorkPlane { return &p.WorkPlanes },
 			func(w *WorkPlane) string { return w.Name }, checkWorkPlane),
 		one("criteria", "the levels asked for", slices.Concat(criteriaKeys, wantedKeys), func(p *Project) *Criteria { return &p.Criteria }, checkCriteria),

@@ -104,7 +104,7 @@ func (r *reader) checkAsked(root *node, p *Project) {
 			r.reject(n, section, key, "got no [[%s]] to judge, want at least one", table)
 		}
 	}
-	planes, eyes, openings := len(p.WorkPlanes) == 0, len(p.Viewpoints) == 0, len(p.Openings) == 0
+	planes, eyes, openings := len(p.WorkPlanes) == 0, len(p.Viewpoints)+len(p.ViewGrids) == 0, len(p.Openings) == 0
 	n := root.table["criteria"]
 	for _, a := range []struct {
 		key, table string

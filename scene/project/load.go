@@ -93,9 +93,10 @@ func (r *reader) document(root *node, p *Project) {
 	if root.table["mesh"] == nil || !root.table["mesh"].bad {
 		r.needRoom(root, p)
 	}
-	if !root.has("viewpoint") && !root.has("work_plane") {
-		r.add(0, "viewpoint", "missing; want at least one [[viewpoint]] or [[work_plane]]")
+	if !root.has("viewpoint") && !root.has("view_grid") && !root.has("work_plane") {
+		r.add(0, "viewpoint", "missing; want at least one [[viewpoint]], [[view_grid]] or [[work_plane]]")
 	}
+	r.expandViewGrids(p)
 	r.resolveReferences(p)
 	r.checkSides(p)
 	r.checkSystems(p)

@@ -37,7 +37,7 @@ func TestProblems(t *testing.T) {
 		{"value for a table", "[weather]\nfile = \"a.epw\"", "weather = 3\n", ":1: weather: got 3, want a table"},
 		{"no weather", "[weather]\nfile = \"a.epw\"", "", ": weather.file: missing; want a path in quotes"},
 		{"no mesh", minimal[strings.Index(minimal, "[[mesh]]"):strings.Index(minimal, "[[finish]]")], "", ": mesh: missing; want at least one [[mesh]] of role \"room\""},
-		{"nothing to check", minimal[strings.Index(minimal, "[[viewpoint]]"):], "", ": viewpoint: missing; want at least one [[viewpoint]] or [[work_plane]]"},
+		{"nothing to check", minimal[strings.Index(minimal, "[[viewpoint]]"):], "", ": viewpoint: missing; want at least one [[viewpoint]], [[view_grid]] or [[work_plane]]"},
 		// values
 		{"latitude", "", "[site]\nlatitude_deg = 95\n", ":25: site.latitude_deg: got 95, want -90 to 90"},
 		{"not a number", "", "[site]\nnorth_deg = nan\n", ":25: site.north_deg: got NaN, want -360 to 360"},

@@ -7,20 +7,21 @@ import (
 
 // reader collects the problems of one file.
 type reader struct {
-	file     string
-	dir      string // of the project file, from the root of the file system
-	problems Problems
-	refs     []reference
-	finishes []*node // of Project.Finishes, in step
-	shelves  []*node // of Project.LightShelves, in step
-	sills    []*node
-	rollers  []*node
-	blinds   []*node
-	louvres  []*node
-	openings []*node
-	anidolic []*node // of Project.AnidolicCeilings, in step
-	controls []*node
-	limits   []*node
+	file      string
+	dir       string // of the project file, from the root of the file system
+	problems  Problems
+	refs      []reference
+	finishes  []*node // of Project.Finishes, in step
+	shelves   []*node // of Project.LightShelves, in step
+	sills     []*node
+	rollers   []*node
+	blinds    []*node
+	louvres   []*node
+	openings  []*node
+	anidolic  []*node // of Project.AnidolicCeilings, in step
+	controls  []*node
+	limits    []*node
+	viewGrids []*node // of Project.ViewGrids, in step
 }
 
 // reference is a name that must exist.
@@ -177,6 +178,18 @@ func (r *reader) set(n *node, key string, s *spec, field any) string {
 				return fmt.Sprintf("corner %d: %s", i+1, why)
 			}
 		}
+	case *[]float64:
+		if n.list == nil {
+			return wrong()
+		}
+		if len(n.list) == 0 {
+			return "got no numbers, want at least one"
+		}
+		v := make([]float64, len(n.list))
+		if why := fill(n, s, field, v); why != "" {
+			return why
+		}
+		*f = v
 	case *[][2]float64:
 		rows, why := rowsOf(n, s, field, 2)
 		for _, row := range rows {

@@ -26,7 +26,8 @@ type Project struct {
 	Louvres          []Louvres
 	AnidolicCeilings []AnidolicCeiling
 	Controls         []Control
-	Viewpoints       []Viewpoint
+	Viewpoints       []Viewpoint // then those of ViewGrids, in order
+	ViewGrids        []ViewGrid
 	WorkPlanes       []WorkPlane
 
 	Criteria   Criteria
@@ -234,6 +235,7 @@ type Viewpoint struct {
 	AzimuthDeg *float64
 	TowardM    *[3]float64 // a point of the model that is looked at
 	PitchDeg   float64     // with AzimuthDeg; up positive
+	Grid       string      // name of the ViewGrid that it is of; "" for none
 	Line       int
 }
 

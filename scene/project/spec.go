@@ -99,6 +99,8 @@ func (s *spec) want(field any) string {
 		return numbers("12")
 	case *[4][3]float64:
 		return "4 corners of 3 numbers each"
+	case *[]float64:
+		return "a list of" + numbers("")
 	case *[][2]float64:
 		return "a list of points of 2 numbers each"
 	case *[][3]float64:

@@ -2,6 +2,7 @@ package soundness
 
 import (
 	"fmt"
+	"strings"
 
 	"squint/scene"
 	"squint/trace"
@@ -47,6 +48,53 @@ func Receivers(w *trace.World) (errs []error, notes []string) {
 		notes = append(notes, fmt.Sprintf("%d viewpoints and sensors see surfaces from behind only: the room is modelled as single sheets with their normals outwards, or inside out. Light is reflected by either side, but a receiver inside a solid cannot be told from one in the room.", behind))
 	}
 	return errs, notes
+}
+
+// OfGrids are the viewpoints of view grids that do not lie in a room, by index,
+// with a note for each grid that has such. A grid of which nothing is left is an
+// error.
+func OfGrids(w *trace.World) (out []int, notes []string, errs []error) {
+	file := w.Scene.Project.File
+	views := w.Scene.Viewpoints
+	for _, g := range w.Scene.Project.ViewGrids {
+		var count [thinShell + 1]int // positions
+		all, at := 0, inRoom
+		for i, v := range views {
+			if v.Grid != g.Name {
+				continue
+			}
+			if i == 0 || views[i-1].Grid != g.Name || views[i-1].Position != v.Position {
+				at = place(w, v.Position)
+				count[at]++
+				all++
+			}
+			if trouble(at) != "" {
+				out = append(out, i)
+			}
+		}
+		wrong := count[inSolid] + count[outdoors] + count[underground]
+		switch {
+		case wrong == 0:
+		case wrong == all:
+			errs = append(errs, fmt.Errorf("%s:%d: view_grid %q: none of %d positions lies in a room; check polygon_m and height_m, the mesh's unit, up and translate_m, and whether it has a roof", file, g.Line, g.Name, all))
+		default:
+			notes = append(notes, fmt.Sprintf("view grid %q leaves out %d of %d positions: %s.", g.Name, wrong, all, whereWords(count)))
+		}
+	}
+	return out, notes, errs
+}
+
+func whereWords(count [thinShell + 1]int) string {
+	var parts []string
+	for _, k := range []struct {
+		at    where
+		words string
+	}{{inSolid, "inside walls, furniture or other solids"}, {outdoors, "outside the building"}, {underground, "below the ground"}} {
+		if n := count[k.at]; n > 0 {
+			parts = append(parts, fmt.Sprintf("%d %s", n, k.words))
+		}
+	}
+	return strings.Join(parts, ", ")
 }
 
 func tally(w *trace.World, p *scene.WorkPlane) (count [thinShell + 1]int) {

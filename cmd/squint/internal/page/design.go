@@ -97,6 +97,7 @@ type View struct {
 	Subject  string        `json:"subject"`
 	Position [3]float64    `json:"position"`
 	Axes     [3][3]float64 `json:"axes"` // forward, left, up
+	Grid     bool          `json:"grid"` // one of a view grid, with neighbours at its own place
 	Outcome  string        `json:"outcome"`
 	Text     string        `json:"text"`
 	When     string        `json:"when"`

@@ -32,7 +32,7 @@ const mostDiscs = 12
 
 // view packs a viewpoint's year and its pictures.
 func (a *Archive) view(r *study.Result, v *study.ViewResult) View {
-	out := View{Name: v.Viewpoint.Name, Subject: v.Viewpoint.Name, Position: vec(v.Viewpoint.Position),
+	out := View{Name: v.Viewpoint.Name, Subject: v.Viewpoint.Name, Grid: v.Viewpoint.Grid != "", Position: vec(v.Viewpoint.Position),
 		Outcome: "none", When: v.When, Over: -1, Causes: []string{}, Worst: -1}
 	if len(v.Levels) > 0 && v.Levels[0].Subject != "" {
 		out.Subject = v.Levels[0].Subject

@@ -173,7 +173,7 @@ func defaultTexts(p *project.Project) []string {
 	}
 	has := map[string]bool{"mesh": len(p.Meshes) > 0, "finish": len(p.Finishes) > 0, "opening": len(p.Openings) > 0,
 		"light_shelf": len(p.LightShelves) > 0, "roller": len(p.Rollers) > 0, "blind": len(p.Blinds) > 0,
-		"louvres": len(p.Louvres) > 0, "sill": len(p.Sills) > 0, "anidolic_ceiling": len(p.AnidolicCeilings) > 0, "control": len(p.Controls) > 0, "viewpoint": len(p.Viewpoints) > 0, "limit": len(p.Limits) > 0, "work_plane": len(p.WorkPlanes) > 0}
+		"louvres": len(p.Louvres) > 0, "sill": len(p.Sills) > 0, "anidolic_ceiling": len(p.AnidolicCeilings) > 0, "control": len(p.Controls) > 0, "viewpoint": len(p.Viewpoints) > 0, "view_grid": len(p.ViewGrids) > 0, "limit": len(p.Limits) > 0, "work_plane": len(p.WorkPlanes) > 0}
 	keys := map[string][]string{}
 	var order []string
 	for _, k := range project.Defaults() {

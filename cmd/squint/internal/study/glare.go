@@ -1,7 +1,6 @@
 package study
 
 import (
-	"fmt"
 	"math"
 	"sync"
 
@@ -364,7 +363,7 @@ func (r *Result) judgeViews(y *year) {
 		for k, l := range verdict.ProtectionLevels {
 			hours := r.glareHours(v, l.DGP, z)
 			when := v.when(r, l.DGP)
-			out := verdict.Glare(fmt.Sprintf("%s, looking %s", v.Viewpoint.Name, r.bearing(v.Viewpoint.Direction)), l, hours, when)
+			out := verdict.Glare(r.subject(&v.Viewpoint), l, hours, when)
 			v.Hours = append(v.Hours, hours)
 			v.Levels = append(v.Levels, out)
 			if l.Name == r.Project.Criteria.Glare {
@@ -375,10 +374,18 @@ func (r *Result) judgeViews(y *year) {
 	}
 }
 
+// subject names a viewpoint and its direction, which is in the name already
+// where it is one of a grid.
+func (r *Result) subject(v *scene.Viewpoint) string {
+	if v.Grid != "" {
+		return v.Name
+	}
+	return v.Name + ", looking " + r.bearing(v.Direction)
+}
+
 // bearing is the compass direction of a line of sight in words.
 func (r *Result) bearing(d r3.Vec) string {
 	az := math.Atan2(d.X, d.Y)*180/math.Pi + r.Project.Site.NorthDeg
-	names := []string{"north", "north-east", "east", "south-east", "south", "south-west", "west", "north-west"}
 	k := int(math.Floor(math.Mod(az+22.5+720, 360) / 45))
-	return names[k]
+	return project.Winds[k]
 }

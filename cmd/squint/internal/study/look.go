@@ -6,7 +6,6 @@ import (
 	"io/fs"
 	"math"
 	"slices"
-	"strings"
 	"time"
 
 	"gonum.org/v1/gonum/spatial/r3"
@@ -92,7 +91,15 @@ func PrepareLook(fsys fs.FS, designs []Design, o LookOptions) (*Look, error) {
 		if err != nil {
 			return nil, err
 		}
-		for _, n := range append(slices.Clone(first.Notes), c.Notes...) {
+		in := &Input{Project: p, Scene: first}
+		if len(p.ViewGrids) > 0 {
+			in.World = trace.Accelerate(first, o.Workers)
+			if err := in.leaveOut(); err != nil {
+				return nil, err
+			}
+			p = in.Project
+		}
+		for _, n := range slices.Concat(in.Notes, first.Notes, c.Notes) {
 			if !slices.Contains(k.Notes, n) {
 				k.Notes = append(k.Notes, n)
 			}
@@ -181,8 +188,8 @@ func (k *Look) shots(p *project.Project, s *scene.Scene) ([]*Shot, error) {
 		out = append(out, &Shot{Name: v.Name, View: vw})
 	}
 	for _, name := range k.opt.Views {
-		if !slices.ContainsFunc(s.Viewpoints, func(v scene.Viewpoint) bool { return v.Name == name }) {
-			return nil, fmt.Errorf("%s: got view %q, want one of %s", p.File, name, viewpointNames(s))
+		if names := viewpointNames(s); !slices.Contains(names, name) {
+			return nil, fmt.Errorf("%s: got view %q, want a viewpoint of the project; %s", p.File, name, project.DidYouMean(name, names))
 		}
 	}
 	if len(out) == 0 {
@@ -191,15 +198,11 @@ func (k *Look) shots(p *project.Project, s *scene.Scene) ([]*Shot, error) {
 	return out, nil
 }
 
-func viewpointNames(s *scene.Scene) string {
-	var names []string
+func viewpointNames(s *scene.Scene) (names []string) {
 	for _, v := range s.Viewpoints {
-		names = append(names, fmt.Sprintf("%q", v.Name))
+		names = append(names, v.Name)
 	}
-	if len(names) == 0 {
-		return "(none)"
-	}
-	return strings.Join(names, ", ")
+	return names
 }
 
 // planOf is the plan of the rooms.

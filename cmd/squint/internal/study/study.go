@@ -147,7 +147,11 @@ func Prepare(fsys fs.FS, p *project.Project, workers int) (*Input, error) {
 	if err != nil {
 		return nil, err
 	}
-	in := &Input{Project: p, Scene: s, fsys: fsys}
+	in := &Input{Project: p, Scene: s, World: trace.Accelerate(s, workers), fsys: fsys}
+	if err := in.leaveOut(); err != nil {
+		return nil, err
+	}
+	p = in.Project
 	// The year decides the weekday of 1 January, so it is read before the
 	// hours are chosen; the moments are marked afterwards.
 	c, err := scene.ReadClimate(fsys, p, nil)
@@ -173,7 +177,6 @@ func Prepare(fsys fs.FS, p *project.Project, workers int) (*Input, error) {
 		return nil, err
 	}
 	in.Notes = append(in.Notes, clockNotes(p, s)...)
-	in.World = trace.Accelerate(s, workers)
 	in.Standings = []Standing{{Scene: s, World: in.World, Moments: c.Moments}}
 	if in.operation, err = newOperation(in, fsys, workers); err != nil {
 		return nil, err

@@ -71,12 +71,15 @@ photons = 64
 texel_m = %g
 `
 
+// box is one by its lowest and its highest corner, metres.
+type box [6]float64
+
 // tinyRoom is its model: 0.3 m of floor, ceiling and walls around the room, with
-// a hole for the window.
-func tinyRoom() string {
+// a hole for the window, and further boxes.
+func tinyRoom(more ...box) string {
 	var b strings.Builder
 	n := 0
-	box := func(x0, y0, z0, x1, y1, z1 float64) {
+	add := func(x0, y0, z0, x1, y1, z1 float64) {
 		for i := range 8 {
 			p := [3]float64{x0, y0, z0}
 			for k, hi := range [3]float64{x1, y1, z1} {
@@ -93,17 +96,20 @@ func tinyRoom() string {
 		n += 8
 	}
 	b.WriteString("g floor\n")
-	box(-0.3, -0.3, -0.3, 4.3, 4.3, 0)
+	add(-0.3, -0.3, -0.3, 4.3, 4.3, 0)
 	b.WriteString("g ceiling\n")
-	box(-0.3, -0.3, 3, 4.3, 4.3, 3.3)
+	add(-0.3, -0.3, 3, 4.3, 4.3, 3.3)
 	b.WriteString("g walls\n")
-	box(-0.3, 4, 0, 4.3, 4.3, 3)
-	box(-0.3, 0, 0, 0, 4, 3)
-	box(4, 0, 0, 4.3, 4, 3)
-	box(-0.3, -0.3, 0, 4.3, 0, 1)
-	box(-0.3, -0.3, 2.5, 4.3, 0, 3)
-	box(-0.3, -0.3, 1, 0.5, 0, 2.5)
-	box(3.5, -0.3, 1, 4.3, 0, 2.5)
+	add(-0.3, 4, 0, 4.3, 4.3, 3)
+	add(-0.3, 0, 0, 0, 4, 3)
+	add(4, 0, 0, 4.3, 4, 3)
+	add(-0.3, -0.3, 0, 4.3, 0, 1)
+	add(-0.3, -0.3, 2.5, 4.3, 0, 3)
+	add(-0.3, -0.3, 1, 0.5, 0, 2.5)
+	add(3.5, -0.3, 1, 4.3, 0, 2.5)
+	for _, x := range more {
+		add(x[0], x[1], x[2], x[3], x[4], x[5])
+	}
 	return b.String()
 }
 

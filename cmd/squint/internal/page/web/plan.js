@@ -27,7 +27,8 @@ export async function plan() {
   const moment = y.byRecord[state.record];
   if (moment >= 0 && y.moments.direct[moment] > 500) sunPatches(g, m, sunAt(y, moment), to, cut);
   drawing(g, m, to, cut, box);
-  d.views.forEach((v, i) => marker(g, to(v.position), v, i));
+  d.views.forEach((v, i) => { if (i !== state.view) marker(g, to(v.position), v, i); });
+  if (d.views[state.view]) marker(g, to(d.views[state.view].position), d.views[state.view], state.view);
   north(g, d.north, w - 26, 30);
   bar(g, s, left, h - 12);
   dimension(g, to, d, m, box);
@@ -116,7 +117,25 @@ function hatch(g) {
   return p;
 }
 
+// Of a grid several views share a place: there the wedge tells the outcome, and
+// only the chosen one has its name beside it.
+const gridReach = 17; // pixels
+
+function wedge(g, [x, y], v, i) {
+  const dir = Math.atan2(-v.axes[0][1], v.axes[0][0]), chosen = i === state.view;
+  const sector = (r) => { g.beginPath(); g.moveTo(x, y); g.arc(x, y, r, dir - 0.5, dir + 0.5); g.closePath(); };
+  const colour = v.outcome === "met" ? css("met") : v.outcome === "not met" ? css("not") : css("ink");
+  sector(gridReach); g.fillStyle = css("paper"); g.fill();
+  if (v.outcome !== "met") { sector(v.outcome === "not met" ? gridReach : gridReach / 2); g.fillStyle = colour; g.fill(); }
+  sector(gridReach); g.strokeStyle = chosen ? css("ink") : colour; g.lineWidth = chosen ? 2.4 : 1; g.stroke();
+  if (chosen) text(g, v.name, x, y - gridReach - 9, { align: "center", colour: "ink", size: 11.5, weight: 700, halo: true });
+}
+
+// handle is where a click chooses the view.
+const handle = (v) => (v.grid ? v.position.map((p, k) => p + (v.axes[0][k] * gridReach) / 2 / view.s) : v.position);
+
 function marker(g, [x, y], v, i) {
+  if (v.grid) return wedge(g, [x, y], v, i);
   const dir = Math.atan2(-v.axes[0][1], v.axes[0][0]), chosen = i === state.view;
   g.beginPath(); g.moveTo(x, y); g.arc(x, y, 26, dir - 0.5, dir + 0.5); g.closePath();
   g.fillStyle = chosen ? css("sun") : css("paper"); g.globalAlpha = chosen ? 0.55 : 0.6; g.fill(); g.globalAlpha = 1;
@@ -178,7 +197,7 @@ const nearest = (list, pos, reach) => {
 };
 canvas.addEventListener("pointermove", (e) => { if (view && view.cells) { const i = nearest(view.cells.points.map((p) => [p.x, p.y]), place(canvas, e), view.s); if (i >= 0) say(i); } });
 canvas.addEventListener("pointerleave", () => say(null));
-canvas.addEventListener("click", (e) => { if (!view) return; const i = nearest(view.d.views.map((v) => v.position), place(canvas, e), 28); if (i >= 0) show({ view: i }); });
+canvas.addEventListener("click", (e) => { if (!view) return; const i = nearest(view.d.views.map(handle), place(canvas, e), 28); if (i >= 0) show({ view: i }); });
 canvas.addEventListener("keydown", (e) => {
   const c = view && view.cells, move = { ArrowLeft: -1, ArrowRight: 1, ArrowUp: 1, ArrowDown: -1 }[e.key];
   if (!c || !move) return;
