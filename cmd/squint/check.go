@@ -25,6 +25,7 @@ type checkOptions struct {
 	Out        string // "" for the default
 	Workers    int
 	RequireMet bool
+	Sensitive  bool    // also with finishes varied
 	Seed       *uint64 // nil for the project's
 }
 
@@ -69,6 +70,7 @@ Exit status:
 	f.StringVar(&o.Out, "out", "", "`folder` of the results; else results/NAME beside\nthe project file, results/demo here for the demo")
 	f.IntVar(&o.Workers, "workers", h.cpus, "`number` of threads, by default one for each CPU; the\nresults do not depend on it")
 	f.BoolVar(&o.RequireMet, "require-met", false, "end with another exit status where a criterion is\nnot met or undecided")
+	f.BoolVar(&o.Sensitive, "sensitivity", false, "also check with finishes varied within usual\ntolerances, one group at a time: which verdicts turn")
 	f.Uint64Var(&seed, "seed", 0, "`number` from which all random numbers follow, instead\nof the project's")
 	return cmd
 }
@@ -105,17 +107,21 @@ func runCheck(ctx context.Context, h host, o checkOptions) error {
 			return err
 		}
 		began := h.now()
-		r, err := runStudy(ctx, h, in, o, d)
+		r, err := runStudy(ctx, h, in, d, study.Options{Workers: o.Workers, Shots: true})
 		if err != nil {
 			return err
 		}
 		inputs[i] = nil // what was traced is not needed any more
+		variants, err := variantsOf(ctx, h, r, o, d)
+		if err != nil {
+			return err
+		}
 		folder := filepath.Join(out, folders[i])
 		weather, err := hashOf(d.fsys, r.Project.Weather.File)
 		if err != nil {
 			return err
 		}
-		if err := report.Write(folder, r, report.Options{Version: h.version, WeatherSHA256: weather}); err != nil {
+		if err := report.Write(folder, r, report.Options{Version: h.version, WeatherSHA256: weather, Variants: variants}); err != nil {
 			return fmt.Errorf("results: %w", err)
 		}
 		done = append(done, report.Design{Result: r, Folder: folders[i]})
@@ -130,6 +136,11 @@ func runCheck(ctx context.Context, h host, o checkOptions) error {
 		}
 		if err != nil {
 			return err
+		}
+		if o.Sensitive {
+			if err := report.Sensitivity(h.out, r, variants); err != nil {
+				return err
+			}
 		}
 	}
 	if folders[0] != "" {
@@ -168,12 +179,13 @@ func (o checkOptions) prepare(d designs) ([]*study.Input, error) {
 	return inputs, nil
 }
 
-func runStudy(ctx context.Context, h host, in *study.Input, o checkOptions, d designs) (*study.Result, error) {
+func runStudy(ctx context.Context, h host, in *study.Input, d designs, opt study.Options) (*study.Result, error) {
 	// The collector works harder as the project's own limit comes near; a
 	// sixteenth is for the program itself, which it does not count.
 	debug.SetMemoryLimit(int64(in.Project.Simulation.MemoryMiB) << 20 / 16 * 15)
 	bar := newProgress(h)
-	r, err := study.Run(ctx, in, study.Options{Workers: o.Workers, Progress: bar.Report, Shots: true})
+	opt.Progress = bar.Report
+	r, err := study.Run(ctx, in, opt)
 	bar.Close(err == nil)
 	// A stop in the last moments of a run counts as well.
 	if stopped := ctx.Err(); stopped != nil {
