@@ -38,19 +38,20 @@ func shifted(x, by, most float64) float64 {
 func Variations(p *Project) []Variation {
 	var list []Variation
 	for _, g := range []struct {
-		group, size string
-		vary        func(p *Project, sign float64)
+		group string
+		by    string // %s stands for the sign
+		vary  func(p *Project, sign float64)
 	}{
-		{"diffuse reflectances", decimal(DiffuseTolerance), varyDiffuse},
-		{"mirrors", decimal(MirrorTolerance), varyMirrors},
-		{"glazing", decimal(GlazingTolerance), varyGlazing},
-		{"cloths", decimal(ClothTolerance) + ", openness " + decimal(OpennessTolerance), varyCloths},
+		{"diffuse reflectances", "%s" + decimal(DiffuseTolerance), varyDiffuse},
+		{"mirrors", "%s" + decimal(MirrorTolerance), varyMirrors},
+		{"glazing", "%s" + decimal(GlazingTolerance), varyGlazing},
+		{"cloths", "%s" + decimal(ClothTolerance) + ", openness %[1]s" + decimal(OpennessTolerance), varyCloths},
 	} {
 		for _, c := range []struct {
 			change, mark string
 			sign         float64
 		}{{"low", "-", -1}, {"high", "+", 1}} {
-			v := Variation{g.group, c.change, c.mark + g.size, func(p *Project) { g.vary(p, c.sign) }}
+			v := Variation{g.group, c.change, fmt.Sprintf(g.by, c.mark), func(p *Project) { g.vary(p, c.sign) }}
 			if v.changes(p) {
 				list = append(list, v)
 			}

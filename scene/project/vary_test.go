@@ -90,6 +90,11 @@ func TestVariationsLeftOut(t *testing.T) {
 	if got := find(t, r, "cloths", "low").Rollers[0].Openness; math.Abs(got-0.02) > 1e-12 || r.Rollers[0].Openness != 0.03 {
 		t.Errorf("roller: got %g beside %g, want 0.02 beside 0.03", got, r.Rollers[0].Openness)
 	}
+	for _, v := range Variations(r) {
+		if want := map[string]string{"low": "-0.02, openness -0.01", "high": "+0.02, openness +0.01"}[v.Change]; v.Group == "cloths" && v.By != want {
+			t.Errorf("cloths %s: by %q, want %q", v.Change, v.By, want)
+		}
+	}
 	if l := (&Project{Rollers: []Roller{{Cloth: "screen", Openness: 0.03}}}); named(l) != nil {
 		t.Errorf("a roller with a named cloth: got %v, want none", named(l))
 	}

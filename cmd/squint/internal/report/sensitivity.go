@@ -185,23 +185,15 @@ func Sensitivity(w io.Writer, r *study.Result, all []Variant) error {
 
 // byText lists what each group is varied by.
 func byText(all []Variant) string {
-	var order []string
-	by := map[string][]string{}
+	var groups []string
+	last := ""
 	for i := range all {
-		v := all[i].Variation
-		if by[v.Group] == nil {
-			order = append(order, v.Group)
+		if v := all[i].Variation; v.Group != last {
+			last = v.Group
+			groups = append(groups, v.Group+" "+strings.NewReplacer("+", "±", "-", "±").Replace(v.By))
 		}
-		by[v.Group] = append(by[v.Group], v.By)
 	}
-	for k, g := range order {
-		text := by[g][0]
-		if len(by[g]) == 2 && strings.TrimLeft(by[g][0], "+-") == strings.TrimLeft(by[g][1], "+-") {
-			text = "±" + strings.TrimLeft(text, "+-")
-		}
-		order[k] = g + " " + text
-	}
-	return sentence("varied: " + strings.Join(order, "; "))
+	return "Varied: " + strings.Join(groups, "; ")
 }
 
 // turnedText is the finding.
