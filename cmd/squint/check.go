@@ -25,6 +25,7 @@ type checkOptions struct {
 	Out        string // "" for the default
 	Workers    int
 	RequireMet bool
+	Sensitive  bool    // also with finishes varied
 	Seed       *uint64 // nil for the project's
 	Fresh      bool    // computes all anew
 }
@@ -71,6 +72,7 @@ Exit status:
 	f.IntVar(&o.Workers, "workers", h.cpus, "`number` of threads, by default one for each CPU; the\nresults do not depend on it")
 	f.BoolVar(&o.RequireMet, "require-met", false, "end with another exit status where a criterion is\nnot met or undecided")
 	f.BoolVar(&o.Fresh, "fresh", false, "compute everything anew, also what earlier runs kept\nin the folder "+reuseDir+" of the results")
+	f.BoolVar(&o.Sensitive, "sensitivity", false, "also check with finishes varied within usual\ntolerances, one group at a time: which verdicts turn")
 	f.Uint64Var(&seed, "seed", 0, "`number` from which all random numbers follow, instead\nof the project's")
 	return cmd
 }
@@ -118,12 +120,16 @@ func runCheck(ctx context.Context, h host, o checkOptions) error {
 			return err
 		}
 		inputs[i] = nil // what was traced is not needed any more
+		variants, err := variantsOf(ctx, h, r, o, d)
+		if err != nil {
+			return err
+		}
 		folder := filepath.Join(out, folders[i])
 		weather, err := hashOf(d.fsys, r.Project.Weather.File)
 		if err != nil {
 			return err
 		}
-		if err := report.Write(folder, r, report.Options{Version: h.version, WeatherSHA256: weather}); err != nil {
+		if err := report.Write(folder, r, report.Options{Version: h.version, WeatherSHA256: weather, Variants: variants}); err != nil {
 			return fmt.Errorf("results: %w", err)
 		}
 		done = append(done, report.Design{Result: r, Folder: folders[i]})
@@ -138,6 +144,11 @@ func runCheck(ctx context.Context, h host, o checkOptions) error {
 		}
 		if err != nil {
 			return err
+		}
+		if o.Sensitive {
+			if err := report.Sensitivity(h.out, r, variants); err != nil {
+				return err
+			}
 		}
 	}
 	if folders[0] != "" {

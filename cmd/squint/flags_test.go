@@ -63,6 +63,7 @@ func TestFlags(t *testing.T) {
 		{"check", check, checkOptions{Workers: 3}},
 		{"check a.toml", check, checkOptions{pick: pick{Project: "a.toml"}, Workers: 3}},
 		{"check --out x --workers 1 --require-met --seed 2 a.toml", check, checkOptions{pick: pick{Project: "a.toml"}, Out: "x", Workers: 1, RequireMet: true, Seed: &two}},
+		{"check a.toml --sensitivity", check, checkOptions{pick: pick{Project: "a.toml"}, Workers: 3, Sensitive: true}},
 		{"check a.toml --workers=7", check, checkOptions{pick: pick{Project: "a.toml"}, Workers: 7}},
 		{"check a.toml --alternative bare --alternative b --state s=open", check, checkOptions{pick: pick{"a.toml", []string{"bare", "b"}, []string{"s=open"}}, Workers: 3}},
 		{"check a.toml b.toml", check, nil},

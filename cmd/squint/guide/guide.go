@@ -30,6 +30,7 @@ var topics = []Topic{
 	{"outlook", "view out, exposure to sunlight, sun on the glass"},
 	{"glare", "HDR images and site photographs evaluated for glare"},
 	{"results", "the results folder, confidence, exit statuses"},
+	{"sensitivity", "what finishes that are off by a little would change"},
 	{"report", "the interactive page: one file for client and authority"},
 	{"look", "luminance pictures of a moment, and plans"},
 	{"export", "the built scene as files for CAD and viewers"},
@@ -69,7 +70,7 @@ func Index() string {
 	var b strings.Builder
 	b.WriteString("Topics, each shown by \"squint guide TOPIC\":\n\n")
 	for _, t := range topics {
-		fmt.Fprintf(&b, "  %-10s %s\n", t.Name, t.About)
+		fmt.Fprintf(&b, "  %-11s %s\n", t.Name, t.About)
 	}
 	return b.String()
 }

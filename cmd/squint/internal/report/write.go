@@ -23,6 +23,9 @@ const (
 type Options struct {
 	Version       string // of the program
 	WeatherSHA256 string // of the weather file's bytes, hexadecimal; "" unknown
+	// Variants are studies of the same project with finishes varied; nil for
+	// none, and no file of them.
+	Variants []Variant
 }
 
 // Write writes the results of a study to the folder dir, which it makes. On an
@@ -70,6 +73,11 @@ func stageAll(f *folder, r *study.Result, o Options) error {
 	}
 	if len(r.Openings) > 0 {
 		if err := add(OpeningsFile, func(w io.Writer) error { return writeOpeningHours(w, r) }); err != nil {
+			return err
+		}
+	}
+	if o.Variants != nil {
+		if err := add(SensitivityFile, func(w io.Writer) error { return writeSensitivity(w, r, o.Variants) }); err != nil {
 			return err
 		}
 	}

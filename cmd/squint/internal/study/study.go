@@ -24,6 +24,9 @@ type Options struct {
 	Progress func(stage Stage, done, total int)
 	// Shots keeps small pictures of every view's hours in use, for display.
 	Shots bool
+	// Bare leaves out what no verdict needs: what systems take of the view out,
+	// and sun that mirrors concentrate.
+	Bare  bool
 	shots *shotPlan
 
 	// Store, if not nil, keeps what was computed for later runs, under names
@@ -268,11 +271,13 @@ func Run(ctx context.Context, in *Input, opt Options) (*Result, error) {
 	if err := r.refine(ctx, in, opt, y); err != nil {
 		return nil, err
 	}
-	if r.Sights, err = sights(ctx, in.fsys, in, opt); err != nil {
-		return nil, err
-	}
-	if r.Hazard, err = hazard(ctx, in, opt); err != nil {
-		return nil, err
+	if !opt.Bare {
+		if r.Sights, err = sights(ctx, in.fsys, in, opt); err != nil {
+			return nil, err
+		}
+		if r.Hazard, err = hazard(ctx, in, opt); err != nil {
+			return nil, err
+		}
 	}
 	if err := r.findSun(ctx, in, opt); err != nil {
 		return nil, err
