@@ -27,10 +27,12 @@ type glareOptions struct {
 	Pigmentation      float64
 
 	Format, Out, Picture string
+	Overlay              report.Overlay
 }
 
 func newGlare(h host, run func(context.Context, host, glareOptions) error) *cobra.Command {
 	var o glareOptions
+	var over overlayFlags
 	cmd := &cobra.Command{
 		Use:   "glare IMAGE...",
 		Short: "Evaluate HDR fisheye images, computed or photographed, for glare",
@@ -52,6 +54,13 @@ leads through the evaluation of a photograph step by step.`,
 			if err := o.check(cmd.Flags().Changed); err != nil {
 				return usageError{err}
 			}
+			var err error
+			if o.Overlay, err = over.read(); err != nil {
+				return usageError{err}
+			}
+			if o.Out == "" && (len(o.Overlay.Contours) > 0 || len(o.Overlay.Points) > 0) {
+				return usageError{errors.New("--contours, --point: got no --out, want the folder of the pictures too")}
+			}
 			return run(cmd.Context(), h, o)
 		},
 	}
@@ -68,6 +77,7 @@ leads through the evaluation of a photograph step by step.`,
 	f.Float64Var(&o.Pigmentation, "pigmentation", 0.5, "`share` in the eye, for the same: 0 black,\n0.5 brown, 1 blue-green, 1.2 very light\nblue")
 	f.StringVar(&o.Format, "format", "text", "`output` as text, json or csv")
 	f.StringVar(&o.Out, "out", "", "`folder` for false-colour pictures and tables")
+	over.bind(f)
 	f.StringVar(&o.Picture, "picture", "png", "`kind` of pictures: png or tiff")
 	return cmd
 }
@@ -133,7 +143,7 @@ func runGlare(ctx context.Context, h host, o glareOptions) error {
 	}
 	var files []string
 	if o.Out != "" {
-		list := glareFiles(images, o.Picture)
+		list := glareFiles(images, o.Picture, o.Overlay)
 		if err := writeTogether(ctx, o.Out, list); err != nil {
 			return err
 		}

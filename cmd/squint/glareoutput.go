@@ -16,12 +16,12 @@ const largestPicture = 1200
 
 // glareFiles are the files that --out writes: a picture of each image, one
 // sheet of several, and the tables.
-func glareFiles(images []*report.Image, format string) []exportFile {
+func glareFiles(images []*report.Image, format string, over report.Overlay) []exportFile {
 	scale := report.ImagesScale(images)
 	var files []exportFile
 	for i, name := range pictureNames(images) {
 		files = append(files, exportFile{name + "." + format, "false-colour pictures", func(w io.Writer) error {
-			picture, err := falsecolour.Render(report.ImageFigure(images[i], scale, largestPicture))
+			picture, err := falsecolour.Render(report.ImageFigure(images[i], scale, over, largestPicture))
 			if err != nil {
 				return err
 			}
@@ -30,7 +30,7 @@ func glareFiles(images []*report.Image, format string) []exportFile {
 	}
 	if len(images) > 1 {
 		files = append(files, exportFile{"sheet." + format, "sheet." + format + ": all on one scale", func(w io.Writer) error {
-			picture, err := report.ImagesSheet(images, scale)
+			picture, err := report.ImagesSheet(images, scale, over)
 			if err != nil {
 				return err
 			}

@@ -55,6 +55,7 @@ type lookOptions struct {
 	StandardError bool
 	Map           *falsecolour.Map
 	Scale         *falsecolour.Scale
+	Overlay       report.Overlay
 }
 
 func newLook(h host, run func(context.Context, host, lookOptions) error) *cobra.Command {
@@ -124,7 +125,7 @@ func runLook(ctx context.Context, h host, o lookOptions) error {
 	if err != nil {
 		return err
 	}
-	files, err := report.WriteLook(out, taken, report.LookOptions{Version: h.version, Formats: o.Formats, StandardError: o.StandardError, Map: o.Map, Scale: o.Scale})
+	files, err := report.WriteLook(out, taken, report.LookOptions{Version: h.version, Formats: o.Formats, StandardError: o.StandardError, Map: o.Map, Scale: o.Scale, Overlay: o.Overlay})
 	if err != nil {
 		return fmt.Errorf("pictures: %w", err)
 	}

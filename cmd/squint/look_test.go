@@ -174,6 +174,12 @@ func TestLookFlags(t *testing.T) {
 		{[]string{"--sun-path", "--plan", "illuminance"}, nil},
 		{[]string{"--sun-path", "--at", "03-21 12:00"}, nil},
 		{[]string{"--sun-path", "--view", "a", "--view", "b"}, nil},
+		{[]string{"--contours", "500,2000", "--point", "10,20"}, with(func(o *lookOptions) {
+			o.Overlay = report.Overlay{Contours: []float64{500, 2000}, Points: [][2]float64{{10, 20}}}
+		})},
+		{[]string{"--contours", "bright"}, nil},
+		{[]string{"--point", "10"}, nil},
+		{[]string{"--point", "-1,2"}, nil},
 		{[]string{"--error", "1"}, nil},
 		{[]string{"--error", "-0.1"}, nil},
 		{[]string{"--error", "NaN"}, nil},

@@ -52,6 +52,7 @@ type lookFlags struct {
 	ats                                      []string
 	diffuse, direct, skyLx, sunLx            float64
 	cut                                      float64
+	over                                     overlayFlags
 }
 
 func (f *lookFlags) bind(s *pflag.FlagSet, o *lookOptions) {
@@ -80,6 +81,7 @@ func (f *lookFlags) bind(s *pflag.FlagSet, o *lookOptions) {
 	s.StringSliceVar(&o.Formats, "format", []string{"exr", "png"}, "`formats` of exr, png, tiff and pfm, with commas\nbetween")
 	s.BoolVar(&o.StandardError, "standard-error", false, "also a picture of the standard errors")
 	s.StringVar(&f.colours, "map", "", "`colours`: inferno, cividis or viridis")
+	f.over.bind(s)
 	s.StringVar(&f.scale, "scale", "", "`range` of the colours, such as 10:10000 (logarithmic)\nor linear:0:500; by default it fits all pictures")
 }
 
@@ -137,6 +139,9 @@ func (f *lookFlags) read(changed func(name string) bool, o *lookOptions) (err er
 	}
 	if len(o.At) == 0 {
 		o.At = []study.ClockTime{usualAt}
+	}
+	if o.Overlay, err = f.over.read(); err != nil {
+		return err
 	}
 	if o.Projection, err = view.ParseProjection(f.projection); err != nil {
 		return fmt.Errorf("--projection: %w", err)

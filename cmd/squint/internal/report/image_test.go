@@ -148,7 +148,7 @@ func TestImageFigure(t *testing.T) {
 	small, large := evaluated(t, 64, 64, view.Equidistant), evaluated(t, 300, 300, view.Equidistant)
 	scale := ImagesScale([]*Image{small, large})
 	for _, im := range []*Image{small, large} {
-		f := ImageFigure(im, scale, 100)
+		f := ImageFigure(im, scale, Overlay{}, 100)
 		if f.Width > 100 || len(f.Marks) != 2 {
 			t.Fatalf("%d pixels: got %d wide and %d marks, want at most 100 and 2", im.Photo.View.Width, f.Width, len(f.Marks))
 		}
@@ -167,7 +167,7 @@ func TestImageFigure(t *testing.T) {
 			t.Error(err)
 		}
 	}
-	if _, err := ImagesSheet([]*Image{small, large}, scale); err != nil {
+	if _, err := ImagesSheet([]*Image{small, large}, scale, Overlay{}); err != nil {
 		t.Error(err)
 	}
 }

@@ -22,10 +22,11 @@ func ImagesScale(images []*Image) falsecolour.Scale {
 // ImageFigure draws an image with its sources outlined and numbered, cut to the
 // image circle and made smaller, by a whole number, to at most maxPx pixels
 // each way.
-func ImageFigure(im *Image, scale falsecolour.Scale, maxPx int) falsecolour.Figure {
+func ImageFigure(im *Image, scale falsecolour.Scale, o Overlay, maxPx int) falsecolour.Figure {
 	s := newShrunk(im, maxPx)
 	f := falsecolour.Figure{Width: s.size.X, Height: s.size.Y, Values: s.lum, Inside: s.inside, Smooth: true,
 		Scale: scale, Map: falsecolour.Inferno, Title: plain(im.File)}
+	o.on(&f, float64(s.at.X), float64(s.at.Y), float64(s.by))
 	v := im.Photo.View
 	if _, _, r := v.Circle(); v.Placement.RadiusPx == 0 && v.Projection.Fisheye() && s.by == 1 {
 		f.Round = 2*r == float64(s.size.X) && s.size.X == s.size.Y
@@ -60,10 +61,10 @@ func ImageFigure(im *Image, scale falsecolour.Scale, maxPx int) falsecolour.Figu
 }
 
 // ImagesSheet lays the pictures of several images side by side, with one scale.
-func ImagesSheet(images []*Image, scale falsecolour.Scale) (*image.RGBA, error) {
+func ImagesSheet(images []*Image, scale falsecolour.Scale, o Overlay) (*image.RGBA, error) {
 	var figures []falsecolour.Figure
 	for _, im := range images {
-		f := ImageFigure(im, scale, 380)
+		f := ImageFigure(im, scale, o, 380)
 		f.Caption = f.Caption[:1]
 		figures = append(figures, f)
 	}

@@ -25,8 +25,9 @@ type LookOptions struct {
 	// StandardError adds a picture of the standard errors to each.
 	StandardError bool
 	// Map and Scale are those of all pictures; nil for those that fit.
-	Map   *falsecolour.Map
-	Scale *falsecolour.Scale
+	Map     *falsecolour.Map
+	Scale   *falsecolour.Scale
+	Overlay Overlay
 }
 
 // LookFormats are the formats of pictures: OpenEXR, PNG and TIFF in false

@@ -48,6 +48,7 @@ func lookFigures(shots []*study.Shot, o LookOptions) []falsecolour.Figure {
 		if o.Scale != nil {
 			f.Scale.Min, f.Scale.Max, f.Scale.Log = o.Scale.Min, o.Scale.Max, o.Scale.Log
 		}
+		o.Overlay.on(&f, 0, 0, 1)
 		figures[i] = f
 	}
 	return figures
