@@ -48,11 +48,11 @@ const maxLookPixels = 2048
 
 // lookFlags are look's flags as text, before they are read into options.
 type lookFlags struct {
-	at, projection, sky, fov, colours, scale string
-	ats                                      []string
-	diffuse, direct, skyLx, sunLx            float64
-	cut                                      float64
-	over                                     overlayFlags
+	projection, sky, colours, scale string
+	ats                             []string
+	diffuse, direct, skyLx, sunLx   float64
+	cut                             float64
+	over                            overlayFlags
 }
 
 func (f *lookFlags) bind(s *pflag.FlagSet, o *lookOptions) {
@@ -72,7 +72,7 @@ func (f *lookFlags) bind(s *pflag.FlagSet, o *lookOptions) {
 	s.IntVar(&o.Pixels, "pixels", 512, "`number` of pixels along the longer side")
 	s.StringVar(&o.Plan, "plan", "", "instead of views a plan, the ceiling cut away, of a\n`quantity`: illuminance or luminance")
 	s.Float64Var(&f.cut, "cut", 0, "of a plan: `metres` at which it is cut, as z of the\nmodel; by default 0.5 m above viewpoints and planes")
-	s.BoolVar(&o.SunPath, "sun-path", false, "instead of pictures, when the sun gets to the viewpoint")
+	s.BoolVar(&o.SunPath, "sun-path", false, "instead of pictures: when the sun gets to a viewpoint")
 	s.StringVar(&o.Opening, "opening", "", "of the sun path: `name` of an opening, instead of a\nviewpoint")
 	s.StringVar(&o.Form, "form", "", "of the sun path: `form`, ahead along the line of sight\nor up to the zenith")
 	s.Float64Var(&o.Error, "error", 0.05, "median relative standard `error` of the pixels to\nreach; 0 for none")

@@ -1,7 +1,6 @@
 package weather
 
 import (
-	"io/fs"
 	"math"
 	"os"
 	"testing"
@@ -198,7 +197,7 @@ func TestFill(t *testing.T) {
 func TestStepsOfRealYears(t *testing.T) {
 	dir := sharedDir(t)
 	for _, name := range []string{"greensboro-nc-tmy3.csv", "piedmont-45n-8e-pvgis.epw"} {
-		y, err := Read(os.DirFS(dir).(fs.FS), name)
+		y, err := Read(os.DirFS(dir), name)
 		if err != nil {
 			t.Fatal(err)
 		}

@@ -33,8 +33,6 @@ func NewVariant(v project.Variation, r *study.Result) Variant {
 	return Variant{Variation: v, outcome: q.Outcome, verdicts: r.Verdicts, row: q, warnings: r.Warnings}
 }
 
-func (v *Variant) name() string { return v.Variation.Group + " " + v.Variation.Change }
-
 // turned is a verdict that comes out otherwise with some variation.
 type turned struct {
 	Criterion string  `json:"criterion"`
