@@ -17,8 +17,13 @@ import (
 type eyeScratch struct {
 	image  [][]surface.Row // [batch][pixel]
 	sunlit []surface.Row   // summed over batches
-	frame  Frame
+	frames [framesAtOnce]Frame
 }
+
+// framesAtOnce is the number of moments whose images are taken out of the rows
+// together: a row's moments lie beside each other, so that one at a time would
+// fetch each row as often as there are moments.
+const framesAtOnce = 8
 
 func (s *eyeScratch) prepare(e *coeff.Eye, batches int) {
 	if len(s.image) != batches || len(s.sunlit) != len(e.Inside) {
@@ -29,10 +34,12 @@ func (s *eyeScratch) prepare(e *coeff.Eye, batches int) {
 		s.sunlit = make([]surface.Row, len(e.Inside))
 	}
 	size := e.View.Width * e.View.Height
-	if len(s.frame.Mean) != size {
-		s.frame = Frame{Mean: make([]float32, size), Sunlit: make([]float32, size)}
-		for range batches {
-			s.frame.Batch = append(s.frame.Batch, make([]float32, size))
+	for k := range s.frames {
+		if f := &s.frames[k]; len(f.Mean) != size || len(f.Batch) != batches {
+			*f = Frame{Mean: make([]float32, size), Sunlit: make([]float32, size)}
+			for range batches {
+				f.Batch = append(f.Batch, make([]float32, size))
+			}
 		}
 	}
 	for p := range s.sunlit {
@@ -49,23 +56,30 @@ func (w *worker) see(bl *surface.Block, b block, eye int, lit []uint64) {
 	for batch := range w.lights {
 		w.render(bl, e, eye, batch, lit)
 	}
-	f := &s.frame
-	f.Eye = eye
 	inv := 1 / float32(batches)
-	for h, m := range bl.Moments {
-		f.Moment, f.Index = m, b[h]
+	for first := 0; first < len(bl.Moments); first += framesAtOnce {
+		frames := s.frames[:min(framesAtOnce, len(bl.Moments)-first)]
 		for p, px := range e.Inside {
-			var sum float32
+			var sum [framesAtOnce]float32
 			for batch := range s.image {
-				v := s.image[batch][p][h]
-				f.Batch[batch][px] = v
-				sum += v
+				row := s.image[batch][p][first : first+len(frames)]
+				for k, v := range row {
+					frames[k].Batch[batch][px] = v
+					sum[k] += v
+				}
 			}
-			f.Mean[px] = sum * inv
-			f.Sunlit[px] = s.sunlit[p][h] * inv
+			for k := range frames {
+				frames[k].Mean[px] = sum[k] * inv
+				frames[k].Sunlit[px] = s.sunlit[p][first+k] * inv
+			}
 		}
-		f.Discs, w.images = Discs(w.t, e.View.Position, inFront(e.View.Direction), e.Mirrors, m.Sun, &bl.Sun[h], f.Discs[:0], w.images)
-		w.sink(w.number, f)
+		for k := range frames {
+			f, h := &frames[k], first+k
+			m := bl.Moments[h]
+			f.Eye, f.Moment, f.Index = eye, m, b[h]
+			f.Discs, w.images = Discs(w.t, e.View.Position, inFront(e.View.Direction), e.Mirrors, m.Sun, &bl.Sun[h], f.Discs[:0], w.images)
+			w.sink(w.number, f)
+		}
 	}
 }
 
