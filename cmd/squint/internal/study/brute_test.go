@@ -51,7 +51,7 @@ func TestAnnualAgainstBruteForce(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	var sum, worst, bruteSE float64
+	var sum, worst, bruteSE, bruteSquares float64
 	n := 0
 	for k, v := range in.Scene.Viewpoints {
 		dgp, se := bruteForce(t, in, v, moments, 256)
@@ -63,6 +63,7 @@ func TestAnnualAgainstBruteForce(t *testing.T) {
 			sum += d * d
 			worst = math.Max(worst, math.Abs(d))
 			bruteSE = math.Max(bruteSE, se[i])
+			bruteSquares += se[i] * se[i]
 			n++
 		}
 	}
@@ -71,8 +72,10 @@ func TestAnnualAgainstBruteForce(t *testing.T) {
 	if rmse > 0.01 || worst > 0.03 {
 		t.Errorf("RMSE %.4f, largest %.4f; want at most 0.01 and 0.03", rmse, worst)
 	}
-	if bruteSE > 0.002 {
-		t.Errorf("brute force is not converged: standard error %.4f, want at most a fifth of 0.01", bruteSE)
+	// Brute force may be off by a fifth of each bound: in the mean square, and
+	// at most.
+	if rms := math.Sqrt(bruteSquares / float64(n)); rms > 0.002 || bruteSE > 0.006 {
+		t.Errorf("brute force is not converged: standard error %.4f RMS, %.4f at most; want 0.002 and 0.006", rms, bruteSE)
 	}
 }
 
