@@ -12,7 +12,7 @@ import (
 	"squint/materials/sampling"
 	"squint/scene"
 	"squint/scene/photometry"
-	"squint/scene/project"
+	"squint/scene/scenetest"
 	"squint/trace"
 )
 
@@ -25,17 +25,13 @@ type mirroredModel struct {
 }
 
 func newMirroredModel(t testing.TB) *mirroredModel {
-	return &mirroredModel{t, &scene.Scene{Project: &project.Project{File: "mirrors"}}}
+	return &mirroredModel{t, scenetest.New()}
 }
 
 // quad adds a rectangle as a part of its own and returns the part.
 func (m *mirroredModel) quad(f materials.BSDF, a, b, c, d r3.Vec) int32 {
-	part, fin := int32(len(m.s.Parts)), int32(len(m.s.Finishes))
-	m.s.Parts = append(m.s.Parts, scene.Part{Opening: -1, TexelM: 1})
-	m.s.Finishes = append(m.s.Finishes, scene.Finish{BSDF: f})
-	for _, v := range [2][3]r3.Vec{{a, b, c}, {a, c, d}} {
-		m.s.Triangles = append(m.s.Triangles, scene.Triangle{V: v, Finish: fin, Part: part})
-	}
+	part := scenetest.Part(m.s, "", scene.Room, 1)
+	scenetest.Quad(m.s, part, scenetest.Finish(m.t, m.s, f, nil), a, b, c, d)
 	return part
 }
 

@@ -8,9 +8,8 @@ import (
 
 	"squint/materials"
 	"squint/scene"
-	"squint/scene/project"
+	"squint/scene/scenetest"
 	"squint/scene/sky"
-	"squint/scene/system"
 	"squint/trace"
 )
 
@@ -21,34 +20,20 @@ type room struct {
 }
 
 func newRoom(t testing.TB) *room {
-	return &room{t, &scene.Scene{Project: &project.Project{File: "test"}}}
+	return &room{t, scenetest.New()}
 }
 
 func (r *room) finish(b materials.BSDF, err error) int32 {
-	if err != nil {
-		r.t.Fatal(err)
-	}
-	r.s.Finishes = append(r.s.Finishes, scene.Finish{BSDF: b})
-	return int32(len(r.s.Finishes) - 1)
+	return scenetest.Finish(r.t, r.s, b, err)
 }
 
-func (r *room) matte(rho float64) int32 {
-	b, err := materials.NewMatte(rho)
-	return r.finish(b, err)
-}
+func (r *room) matte(rho float64) int32 { return scenetest.Matte(r.t, r.s, rho) }
 
-func (r *room) part(name string) int32 {
-	r.s.Parts = append(r.s.Parts, scene.Part{Name: name, Opening: -1, TexelM: .2})
-	return int32(len(r.s.Parts) - 1)
-}
+func (r *room) part(name string) int32 { return scenetest.Part(r.s, name, scene.Room, .2) }
 
 // rect adds a rectangle from org along u and v.
 func (r *room) rect(part, finish int32, org, u, v r3.Vec) {
-	a, b := r3.Add(org, u), r3.Add(org, v)
-	c := r3.Add(a, v)
-	r.s.Triangles = append(r.s.Triangles,
-		scene.Triangle{V: [3]r3.Vec{org, a, c}, Finish: finish, Part: part},
-		scene.Triangle{V: [3]r3.Vec{org, c, b}, Finish: finish, Part: part})
+	scenetest.Rect(r.s, part, finish, org, u, v)
 }
 
 func vec(x, y, z float64) r3.Vec { return r3.Vec{X: x, Y: y, Z: z} }
@@ -70,9 +55,7 @@ func (r *room) shell(finish int32) {
 
 // opening names the rectangle from org along across and up, seen from indoors.
 func (r *room) opening(org, across, up r3.Vec) {
-	out := r3.Scale(-1, r3.Unit(r3.Cross(across, up)))
-	r.s.Openings = append(r.s.Openings, scene.Opening{Name: "opening", Rect: system.Rect{
-		Origin: org, Across: r3.Unit(across), Up: r3.Unit(up), Outward: out, WidthM: r3.Norm(across), HeightM: r3.Norm(up)}})
+	scenetest.Opening(r.s, "opening", org, across, up)
 }
 
 func (r *room) world() *trace.World { return trace.Accelerate(r.s, 1) }

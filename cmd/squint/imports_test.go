@@ -32,6 +32,7 @@ var order = []string{
 	"scene/sizing",
 	"scene/project",
 	"scene",
+	"scene/scenetest",
 	"scene/export",
 	"trace/bvh",
 	"trace",

@@ -8,7 +8,7 @@ import (
 
 	"squint/materials"
 	"squint/scene"
-	"squint/scene/project"
+	"squint/scene/scenetest"
 	"squint/scene/sky"
 	"squint/scene/system"
 	"squint/trace"
@@ -23,34 +23,25 @@ type model struct {
 }
 
 func newModel(t testing.TB, texelM float64) *model {
-	return &model{t: t, s: &scene.Scene{Project: &project.Project{File: "test"}}, texelM: texelM}
+	return &model{t: t, s: scenetest.New(), texelM: texelM}
 }
 
 func (m *model) finish(b materials.BSDF) int32 {
-	m.s.Finishes = append(m.s.Finishes, scene.Finish{BSDF: b})
-	return int32(len(m.s.Finishes) - 1)
+	return scenetest.Finish(m.t, m.s, b, nil)
 }
 
-func (m *model) matte(rho float64) int32 {
-	b, err := materials.NewMatte(rho)
-	if err != nil {
-		m.t.Fatal(err)
-	}
-	return m.finish(b)
-}
+func (m *model) matte(rho float64) int32 { return scenetest.Matte(m.t, m.s, rho) }
 
 func (m *model) part(name string, kind scene.Kind) int32 {
-	m.s.Parts = append(m.s.Parts, scene.Part{Name: name, Kind: kind, Opening: -1, TexelM: m.texelM})
-	return int32(len(m.s.Parts) - 1)
+	return scenetest.Part(m.s, name, kind, m.texelM)
 }
 
 func (m *model) tri(part, finish int32, a, b, c r3.Vec) {
-	m.s.Triangles = append(m.s.Triangles, scene.Triangle{V: [3]r3.Vec{a, b, c}, Finish: finish, Part: part})
+	scenetest.Triangle(m.s, part, finish, a, b, c)
 }
 
 func (m *model) quad(part, finish int32, a, b, c, d r3.Vec) {
-	m.tri(part, finish, a, b, c)
-	m.tri(part, finish, a, c, d)
+	scenetest.Quad(m.s, part, finish, a, b, c, d)
 }
 
 // hole is a rectangle in a face's own coordinates.

@@ -8,7 +8,7 @@ import (
 
 	"squint/materials"
 	"squint/scene"
-	"squint/scene/project"
+	"squint/scene/scenetest"
 	"squint/scene/system"
 	"squint/trace"
 )
@@ -24,7 +24,8 @@ type model struct {
 }
 
 func newModel(t testing.TB) *model {
-	m := &model{t, &scene.Scene{Project: &project.Project{File: "test"}, GroundLevelM: -100}}
+	m := &model{t, scenetest.New()}
+	m.s.GroundLevelM = -100
 	m.finish(materials.NewMatte(.5)) // 0
 	// A far corner, so that a scene of openings alone has a tree.
 	m.rect(scene.Room, 0, vec(-40, -40, 40), vec(.1, 0, 0), vec(0, .1, 0))
@@ -33,27 +34,17 @@ func newModel(t testing.TB) *model {
 
 func (m *model) finish(b materials.BSDF, err error) int32 {
 	m.t.Helper()
-	if err != nil {
-		m.t.Fatal(err)
-	}
-	m.s.Finishes = append(m.s.Finishes, scene.Finish{BSDF: b})
-	return int32(len(m.s.Finishes) - 1)
+	return scenetest.Finish(m.t, m.s, b, err)
 }
 
 func (m *model) glass() int32 { return m.finish(materials.NewGlazing(.8, 1)) }
 
 func (m *model) part(kind scene.Kind) int32 {
-	m.s.Parts = append(m.s.Parts, scene.Part{Kind: kind, Opening: -1, TexelM: 1})
-	return int32(len(m.s.Parts) - 1)
+	return scenetest.Part(m.s, "", kind, 1)
 }
 
 func (m *model) rect(kind scene.Kind, finish int32, org, u, v r3.Vec) {
-	p := m.part(kind)
-	a, b := r3.Add(org, u), r3.Add(org, v)
-	c := r3.Add(a, v)
-	m.s.Triangles = append(m.s.Triangles,
-		scene.Triangle{V: [3]r3.Vec{org, a, c}, Finish: finish, Part: p},
-		scene.Triangle{V: [3]r3.Vec{org, c, b}, Finish: finish, Part: p})
+	scenetest.Rect(m.s, m.part(kind), finish, org, u, v)
 }
 
 // window is an opening from (x0, z0) to (x1, z1).

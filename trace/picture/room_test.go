@@ -9,9 +9,8 @@ import (
 
 	"squint/materials"
 	"squint/scene"
-	"squint/scene/project"
+	"squint/scene/scenetest"
 	"squint/scene/sky"
-	"squint/scene/system"
 	"squint/scene/view"
 	"squint/trace"
 )
@@ -23,32 +22,19 @@ type model struct {
 }
 
 func newModel(t testing.TB) *model {
-	return &model{t, &scene.Scene{Project: &project.Project{File: "test"}}}
+	return &model{t, scenetest.New()}
 }
 
 func (m *model) finish(b materials.BSDF, err error) int32 {
-	if err != nil {
-		m.t.Fatal(err)
-	}
-	m.s.Finishes = append(m.s.Finishes, scene.Finish{BSDF: b})
-	return int32(len(m.s.Finishes) - 1)
+	return scenetest.Finish(m.t, m.s, b, err)
 }
 
-func (m *model) matte(rho float64) int32 {
-	b, err := materials.NewMatte(rho)
-	return m.finish(b, err)
-}
+func (m *model) matte(rho float64) int32 { return scenetest.Matte(m.t, m.s, rho) }
 
 // rect adds a rectangle from org along u and v, its front on the side of u x v,
 // as a part of its own.
 func (m *model) rect(finish int32, texelM float64, org, u, v r3.Vec) {
-	m.s.Parts = append(m.s.Parts, scene.Part{Name: "part", Opening: -1, TexelM: texelM})
-	part := int32(len(m.s.Parts) - 1)
-	a, b := r3.Add(org, u), r3.Add(org, v)
-	c := r3.Add(a, v)
-	m.s.Triangles = append(m.s.Triangles,
-		scene.Triangle{V: [3]r3.Vec{org, a, c}, Finish: finish, Part: part},
-		scene.Triangle{V: [3]r3.Vec{org, c, b}, Finish: finish, Part: part})
+	scenetest.Rect(m.s, scenetest.Part(m.s, "part", scene.Room, texelM), finish, org, u, v)
 }
 
 func at(x, y, z float64) r3.Vec { return r3.Vec{X: x, Y: y, Z: z} }
@@ -71,8 +57,7 @@ func office(t testing.TB) *trace.World {
 	m.rect(wall, texel, at(3.5, 0, 1), at(0, 0, 1.4), at(0.5, 0, 0))
 	m.rect(floor, 0.1, at(1, 2, 0.75), at(1.6, 0, 0), at(0, 0.8, 0))
 	m.rect(m.matte(0.8), 0.1, at(0.5, -0.3, 1.9), at(3, 0, 0), at(0, 0.6, 0))
-	m.s.Openings = []scene.Opening{{Name: "opening", Rect: system.Rect{
-		Origin: at(3.5, 0, 1), Across: at(-1, 0, 0), Up: at(0, 0, 1), Outward: at(0, -1, 0), WidthM: 3, HeightM: 1.4}}}
+	scenetest.Opening(m.s, "opening", at(3.5, 0, 1), at(-3, 0, 0), at(0, 0, 1.4))
 	return trace.Accelerate(m.s, 2)
 }
 

@@ -7,7 +7,7 @@ import (
 
 	"squint/materials"
 	"squint/scene"
-	"squint/scene/project"
+	"squint/scene/scenetest"
 	"squint/scene/system"
 	"squint/trace"
 )
@@ -26,27 +26,17 @@ type model struct {
 
 func newModel(t *testing.T) *model {
 	t.Helper()
-	white, err := materials.NewMatte(0.5)
-	if err != nil {
-		t.Fatal(err)
-	}
+	s := scenetest.New()
+	s.Project.File = "p.toml"
+	scenetest.Matte(t, s, 0.5) // matte
 	pane, err := materials.NewGlazing(0.8, 2)
-	if err != nil {
-		t.Fatal(err)
-	}
-	return &model{t: t, s: &scene.Scene{
-		Project:  &project.Project{File: "p.toml"},
-		Finishes: []scene.Finish{{Name: "matte", BSDF: white}, {Name: "glass", BSDF: pane}},
-	}}
+	scenetest.Finish(t, s, pane, err) // glass
+	return &model{t, s}
 }
 
 // quad is wound counter-clockwise seen from its front.
 func (m *model) quad(kind scene.Kind, finish int32, a, b, c, d r3.Vec) {
-	m.s.Parts = append(m.s.Parts, scene.Part{Kind: kind, Opening: -1})
-	part := int32(len(m.s.Parts) - 1)
-	m.s.Triangles = append(m.s.Triangles,
-		scene.Triangle{V: [3]r3.Vec{a, b, c}, Finish: finish, Part: part},
-		scene.Triangle{V: [3]r3.Vec{a, c, d}, Finish: finish, Part: part})
+	scenetest.Quad(m.s, scenetest.Part(m.s, "", kind, 0), finish, a, b, c, d)
 }
 
 // sides of a box.

@@ -6,11 +6,9 @@ import (
 
 	"gonum.org/v1/gonum/spatial/r3"
 
-	"squint/materials"
 	"squint/scene"
-	"squint/scene/project"
+	"squint/scene/scenetest"
 	"squint/scene/sky"
-	"squint/scene/system"
 	"squint/trace"
 )
 
@@ -21,33 +19,22 @@ type room struct {
 }
 
 func newRoom(t testing.TB) *room {
-	return &room{t, &scene.Scene{Project: &project.Project{File: "test"}}}
+	return &room{t, scenetest.New()}
 }
 
-func (r *room) matte(rho float64) int32 {
-	b, err := materials.NewMatte(rho)
-	if err != nil {
-		r.t.Fatal(err)
-	}
-	r.s.Finishes = append(r.s.Finishes, scene.Finish{BSDF: b})
-	return int32(len(r.s.Finishes) - 1)
-}
+func (r *room) matte(rho float64) int32 { return scenetest.Matte(r.t, r.s, rho) }
 
 func (r *room) part(name string, texelM float64) int32 {
-	r.s.Parts = append(r.s.Parts, scene.Part{Name: name, Opening: -1, TexelM: texelM})
-	return int32(len(r.s.Parts) - 1)
+	return scenetest.Part(r.s, name, scene.Room, texelM)
 }
 
 func (r *room) tri(part, finish int32, a, b, c r3.Vec) {
-	r.s.Triangles = append(r.s.Triangles, scene.Triangle{V: [3]r3.Vec{a, b, c}, Finish: finish, Part: part})
+	scenetest.Triangle(r.s, part, finish, a, b, c)
 }
 
 // rect adds a rectangle from org along u and v.
 func (r *room) rect(part, finish int32, org, u, v r3.Vec) {
-	a, b := r3.Add(org, u), r3.Add(org, v)
-	c := r3.Add(a, v)
-	r.tri(part, finish, org, a, c)
-	r.tri(part, finish, org, c, b)
+	scenetest.Rect(r.s, part, finish, org, u, v)
 }
 
 // solid adds a closed box whose fronts look outwards.
@@ -64,9 +51,7 @@ func (r *room) solid(part, finish int32, lo, hi r3.Vec) {
 
 // opening names the rectangle from org along across and up, seen from indoors.
 func (r *room) opening(org, across, up r3.Vec) {
-	out := r3.Scale(-1, r3.Unit(r3.Cross(across, up)))
-	r.s.Openings = append(r.s.Openings, scene.Opening{Name: "opening", Rect: system.Rect{
-		Origin: org, Across: r3.Unit(across), Up: r3.Unit(up), Outward: out, WidthM: r3.Norm(across), HeightM: r3.Norm(up)}})
+	scenetest.Opening(r.s, "opening", org, across, up)
 }
 
 // facadeRoom is a room of 3.6 x 8.2 x 2.8 m like the demo's: walls of solids
