@@ -53,7 +53,7 @@ func TestShotsShowTheWorstHour(t *testing.T) {
 	// The twin: another hour's picture is not this one.
 	other := slices.IndexFunc(s.Records, func(h int) bool { return v.Ev[h] < v.Ev[v.Worst.Moment.Hour]/2 })
 	if other < 0 {
-		t.Skip("all hours are alike in this year")
+		t.Fatal("all hours are alike in this year: the twin sees nothing")
 	}
 	s.Film.At(other, shown)
 	bad := 0
