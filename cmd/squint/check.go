@@ -106,7 +106,7 @@ func runCheck(ctx context.Context, h host, o checkOptions) error {
 	program, programErr := programHash()
 	var store study.Store
 	if programErr == nil {
-		store = newReuseFolder(out, o.Fresh)
+		store = newReuseFolder(out, o.Fresh, h.now)
 	}
 	var headers report.Headers
 	var done []report.Design
@@ -116,6 +116,9 @@ func runCheck(ctx context.Context, h host, o checkOptions) error {
 		}
 		began := h.now()
 		r, err := runStudy(ctx, h, in, d, study.Options{Workers: o.Workers, Shots: true, Store: store, Program: program})
+		if len(done) > 0 && errors.Is(err, context.Canceled) {
+			return stopError{out}
+		}
 		if err != nil {
 			return err
 		}
@@ -134,7 +137,11 @@ func runCheck(ctx context.Context, h host, o checkOptions) error {
 		}
 		done = append(done, report.Design{Result: r, Folder: folders[i]})
 		if folders[i] == "" {
-			if err := report.WriteSheet(folder, ""); err != nil {
+			// An earlier check of the same project may have had several.
+			if err := report.RemoveComparison(out); err != nil {
+				return fmt.Errorf("results: %w", err)
+			}
+			if err := report.WriteSheet(out, folders, ""); err != nil {
 				return fmt.Errorf("results: %w", err)
 			}
 			err = report.Terminal(h.out, r, folder, h.now().Sub(start))
@@ -155,7 +162,7 @@ func runCheck(ctx context.Context, h host, o checkOptions) error {
 		if err := report.WriteComparison(out, done); err != nil {
 			return fmt.Errorf("results: %w", err)
 		}
-		if err := report.WriteSheet(out, ""); err != nil {
+		if err := report.WriteSheet(out, folders, ""); err != nil {
 			return fmt.Errorf("results: %w", err)
 		}
 		if err := report.Compare(h.out, done, out, h.now().Sub(start)); err != nil {

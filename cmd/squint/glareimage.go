@@ -76,7 +76,10 @@ func readImage(name string) (*luminance.Image, error) {
 	if err != nil {
 		return nil, err
 	}
-	return im, im.Validate()
+	if err := im.Validate(); err != nil {
+		return nil, fmt.Errorf("%s: %w", name, err)
+	}
+	return im, nil
 }
 
 // settings are what image and flags say together; the flags come first.

@@ -38,6 +38,8 @@ type lookOptions struct {
 	Projection view.Projection
 	FOVDeg     float64 // 0 for the projection's usual one
 	Pixels     int
+	// PixelsGiven tells a sun path, whose usual width is another.
+	PixelsGiven bool
 
 	Plan string // "", "illuminance" or "luminance"
 	CutM *float64

@@ -92,7 +92,7 @@ func (f *lookFlags) read(changed func(name string) bool, o *lookOptions) (err er
 		return fmt.Errorf("--workers: got %d, want 1 or more", o.Workers)
 	case changed("out") && o.Out == "":
 		return errors.New("--out: got an empty path, want a folder")
-	case o.Pixels < 8 || o.Pixels > maxLookPixels:
+	case !o.SunPath && (o.Pixels < 8 || o.Pixels > maxLookPixels):
 		return fmt.Errorf("--pixels: got %d, want 8 to %d", o.Pixels, maxLookPixels)
 	case !(o.Error >= 0 && o.Error < 1):
 		return fmt.Errorf("--error: got %g, want 0 to below 1, such as 0.05", o.Error)
@@ -114,8 +114,12 @@ func (f *lookFlags) read(changed func(name string) bool, o *lookOptions) (err er
 		return errors.New("--opening, --form: got them without --sun-path, want both")
 	case o.SunPath && (o.AllViews || len(o.Views) > 1 || o.Plan != ""):
 		return errors.New("--sun-path: want one --view or one --opening")
-	case o.SunPath && (len(f.ats) > 0 || changed("sky")):
-		return errors.New("--sun-path: got a moment or a sky too; it shows the whole year")
+	case o.SunPath && len(f.ats) > 0:
+		return errors.New("--sun-path: got a moment too; it shows the whole year")
+	case o.SunPath && stray(changed) != "":
+		return fmt.Errorf("--%s: it has no place with --sun-path", stray(changed))
+	case o.Plan != "" && (changed("projection") || changed("fov")):
+		return errors.New("--projection, --fov: they have no place with --plan")
 	case len(o.Formats) == 0:
 		return fmt.Errorf("--format: got none, want one or more of %s", strings.Join(report.LookFormats, ", "))
 	}
@@ -124,6 +128,7 @@ func (f *lookFlags) read(changed func(name string) bool, o *lookOptions) (err er
 			return fmt.Errorf("--format: got %q, want one or more of %s", name, strings.Join(report.LookFormats, ", "))
 		}
 	}
+	o.PixelsGiven = changed("pixels")
 	// A twin of a format would be written over itself.
 	slices.Sort(o.Formats)
 	o.Formats = slices.Compact(o.Formats)
@@ -160,6 +165,17 @@ func (f *lookFlags) read(changed func(name string) bool, o *lookOptions) (err er
 	return err
 }
 
+// stray is a flag that was given and that a sun path does not know; "" for none.
+func stray(changed func(string) bool) string {
+	for _, name := range []string{"beside", "sky", "sky-lx", "sun-lx", "diffuse", "direct", "projection", "fov", "error", "samples", "limit",
+		"format", "standard-error", "map", "scale", "contours", "point", "seed"} {
+		if changed(name) {
+			return name
+		}
+	}
+	return ""
+}
+
 // parseClockTime reads "03-21 09:00".
 func parseClockTime(text string) (study.ClockTime, error) {
 	t, err := time.Parse("01-02 15:04", text)
@@ -174,9 +190,12 @@ func parseClockTime(text string) (study.ClockTime, error) {
 
 func (f *lookFlags) readSky(changed func(string) bool) (skyChoice, error) {
 	c := skyChoice{DiffuseLx: f.skyLx, SunLx: f.sunLx, DiffuseWM2: f.diffuse, DirectWM2: f.direct}
-	for name, x := range map[string]float64{"sky-lx": f.skyLx, "sun-lx": f.sunLx, "diffuse": f.diffuse, "direct": f.direct} {
-		if !(x >= 0) || math.IsInf(x, 0) {
-			return c, fmt.Errorf("--%s: got %g, want 0 or more", name, x)
+	for _, x := range []struct {
+		name  string
+		value float64
+	}{{"sky-lx", f.skyLx}, {"sun-lx", f.sunLx}, {"diffuse", f.diffuse}, {"direct", f.direct}} {
+		if !(x.value >= 0) || math.IsInf(x.value, 0) {
+			return c, fmt.Errorf("--%s: got %g, want 0 or more", x.name, x.value)
 		}
 	}
 	number, isCIE := strings.CutPrefix(f.sky, "cie ")
@@ -232,6 +251,9 @@ func (o lookOptions) sunPath() sunPathOptions {
 	p := sunPathOptions{pick: o.pick, Opening: o.Opening, Form: o.Form, Out: o.Out, Workers: o.Workers}
 	if len(o.Views) > 0 {
 		p.View = o.Views[0]
+	}
+	if o.PixelsGiven {
+		p.WidthPx = o.Pixels
 	}
 	return p
 }

@@ -49,7 +49,7 @@ results/demo. The page holds pictures of any hour for one design.`,
 }
 
 func runReport(ctx context.Context, h host, o reportOptions) error {
-	if err := report.WriteSheet(o.Results, o.Alternative); err != nil {
+	if err := report.RemakeSheet(o.Results, o.Alternative); err != nil {
 		if errors.Is(err, page.ErrNoAlternative) {
 			return usageError{fmt.Errorf("--alternative: %w", err)}
 		}

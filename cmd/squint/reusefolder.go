@@ -9,6 +9,7 @@ import (
 	"path/filepath"
 	"slices"
 	"strings"
+	"time"
 )
 
 // reuseDir holds, below the results folder, what later runs need not compute.
@@ -24,14 +25,20 @@ type reuseFolder struct {
 	cap int64
 	// fresh reads nothing but what this run saved.
 	fresh bool
+	now   func() time.Time
 	saved map[string]bool
 }
 
-func newReuseFolder(out string, fresh bool) *reuseFolder {
-	return &reuseFolder{dir: filepath.Join(out, reuseDir), cap: reuseCap, fresh: fresh, saved: map[string]bool{}}
+func newReuseFolder(out string, fresh bool, now func() time.Time) *reuseFolder {
+	return &reuseFolder{dir: filepath.Join(out, reuseDir), cap: reuseCap, fresh: fresh, now: now, saved: map[string]bool{}}
 }
 
-const reuseSuffix = ".part"
+const (
+	reuseSuffix  = ".part"
+	reusePartial = ".partial-" // of what is being written
+	// reuseStale is how old such a file is that nobody writes any more.
+	reuseStale = time.Hour
+)
 
 func (f *reuseFolder) path(key string) string { return filepath.Join(f.dir, key+reuseSuffix) }
 
@@ -50,7 +57,7 @@ func (f *reuseFolder) Save(key string, data []byte) (err error) {
 	if err := os.MkdirAll(f.dir, 0o777); err != nil {
 		return err
 	}
-	file, err := os.CreateTemp(f.dir, ".partial-*")
+	file, err := os.CreateTemp(f.dir, reusePartial+"*")
 	if err != nil {
 		return err
 	}
@@ -74,6 +81,12 @@ func (f *reuseFolder) shrink() error {
 	var entries []os.FileInfo
 	var size int64
 	for _, e := range list {
+		if strings.HasPrefix(e.Name(), reusePartial) {
+			if info, err := e.Info(); err == nil && f.now().Sub(info.ModTime()) > reuseStale {
+				_ = os.Remove(filepath.Join(f.dir, e.Name())) // of a run that was killed
+			}
+			continue
+		}
 		key, ours := strings.CutSuffix(e.Name(), reuseSuffix)
 		info, err := e.Info()
 		if err != nil || !ours || len(key) != 2*sha256.Size || !info.Mode().IsRegular() {

@@ -22,7 +22,7 @@ func TestReuseFolder(t *testing.T) {
 			t.Fatal(err)
 		}
 	}
-	old := newReuseFolder(out, false)
+	old := newReuseFolder(out, false, time.Now)
 	put(old, reuseKey("a"), 40)
 	put(old, reuseKey("b"), 40)
 	foreign := filepath.Join(out, reuseDir, "letter.txt")
@@ -36,7 +36,7 @@ func TestReuseFolder(t *testing.T) {
 			t.Fatal(err)
 		}
 	}
-	f := newReuseFolder(out, false)
+	f := newReuseFolder(out, false, time.Now)
 	f.cap = 100
 	put(f, reuseKey("c"), 50)
 	for key, want := range map[string]bool{"a": true, "b": false, "c": true, "d": false} {
@@ -55,7 +55,7 @@ func TestReuseFolder(t *testing.T) {
 	if want := []string{reuseKey("a") + reuseSuffix, reuseKey("c") + reuseSuffix, "letter.txt"}; !slices.Equal(names, want) {
 		t.Errorf("got %v, want %v", names, want)
 	}
-	fresh := newReuseFolder(out, true)
+	fresh := newReuseFolder(out, true, time.Now)
 	if _, ok := fresh.Load(reuseKey("a")); ok {
 		t.Errorf("a fresh run read an earlier entry")
 	}
@@ -71,7 +71,7 @@ func TestReuseFolderInTheWay(t *testing.T) {
 	if err := os.WriteFile(filepath.Join(out, reuseDir), nil, 0o666); err != nil {
 		t.Fatal(err)
 	}
-	f := newReuseFolder(out, false)
+	f := newReuseFolder(out, false, time.Now)
 	if err := f.Save(reuseKey("a"), []byte("x")); err == nil {
 		t.Errorf("got no error with a file in the way")
 	}

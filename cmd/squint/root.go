@@ -2,6 +2,7 @@ package main
 
 import (
 	"context"
+	"errors"
 	"fmt"
 	"io"
 	"os"
@@ -42,7 +43,11 @@ func run(ctx context.Context, h host, args []string) status {
 	case statusDone, statusNotMet, statusUndecided:
 		return st
 	case statusCancelled:
-		fmt.Fprintln(h.err, "squint: stopped; no results were written.")
+		text := "stopped; no results were written"
+		if kept := (stopError{}); errors.As(err, &kept) {
+			text = kept.Error()
+		}
+		fmt.Fprintf(h.err, "squint: %s.\n", text)
 		return st
 	}
 	text := err.Error()

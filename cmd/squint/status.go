@@ -27,10 +27,10 @@ const (
 var statuses = []guide.Status{
 	{Code: int(statusDone), Name: "completed", Meaning: "the work was done, whatever the verdict"},
 	{Code: int(statusFailed), Name: "failed", Meaning: "the results could not be written"},
-	{Code: int(statusUsage), Name: "usage", Meaning: "could not check: the command line, the project or one of its files is wrong; nothing was written"},
+	{Code: int(statusUsage), Name: "usage", Meaning: "could not check: the command line, the project or one of its files is wrong"},
 	{Code: int(statusNotMet), Name: "not met", Meaning: "with --require-met: a criterion is not met"},
 	{Code: int(statusUndecided), Name: "undecided", Meaning: "with --require-met: none is known to fail, but not all are known to be met"},
-	{Code: int(statusCancelled), Name: "cancelled", Meaning: "stopped by Ctrl-C or a termination signal; nothing was written"},
+	{Code: int(statusCancelled), Name: "cancelled", Meaning: "stopped by Ctrl-C or a termination signal; only designs that were finished are written"},
 }
 
 // usageError is a wrong command line: the only error that prints usage.
@@ -38,6 +38,12 @@ type usageError struct{ err error }
 
 func (e usageError) Error() string { return e.err.Error() }
 func (e usageError) Unwrap() error { return e.err }
+
+// stopError is a stop after some designs were written into a folder.
+type stopError struct{ kept string }
+
+func (e stopError) Error() string { return "stopped; the designs that were finished are in " + e.kept }
+func (e stopError) Unwrap() error { return context.Canceled }
 
 // inputError is something wrong with the project or its files.
 type inputError struct{ err error }

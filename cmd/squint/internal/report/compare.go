@@ -127,6 +127,15 @@ func WriteComparison(dir string, all []Design) error {
 	return nil
 }
 
+// RemoveComparison takes an earlier comparison out of the folder of one design.
+func RemoveComparison(dir string) error {
+	err := os.Remove(filepath.Join(dir, AlternativesFile))
+	if errors.Is(err, os.ErrNotExist) {
+		return nil
+	}
+	return err
+}
+
 // comparedFolders reads the designs' folders, in order.
 func comparedFolders(dir string) ([]string, error) {
 	path := filepath.Join(dir, AlternativesFile)

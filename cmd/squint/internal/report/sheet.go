@@ -20,16 +20,22 @@ const (
 	SheetDataFile = "report-data.zip"
 )
 
-// WriteSheet makes report.html in dir from the page data there, or in the
-// folders below it that a comparison has. pictures names the alternative whose
-// views can be seen at any hour, "" for the one that does best.
-func WriteSheet(dir, pictures string) (err error) {
-	var all []*sheet.Archive
+// RemakeSheet is WriteSheet of what a folder of results holds: the designs of
+// its comparison, or the one design in it.
+func RemakeSheet(dir, pictures string) error {
 	names, err := sheetFolders(dir)
 	if err != nil {
 		return err
 	}
-	for _, name := range names {
+	return WriteSheet(dir, names, pictures)
+}
+
+// WriteSheet makes report.html in dir from the page data of designs, whose
+// folders stand below it; "" is dir itself. pictures names the alternative
+// whose views can be seen at any hour, "" for the one that does best.
+func WriteSheet(dir string, designs []string, pictures string) error {
+	var all []*sheet.Archive
+	for _, name := range designs {
 		a, err := readSheetData(filepath.Join(dir, name, SheetDataFile))
 		if err != nil {
 			return err
@@ -130,8 +136,12 @@ func remembered(r *study.Result, q row) string {
 		}
 		switch fails := q.Views - q.ViewsMet; {
 		case fails == 0:
-			parts = append(parts, fmt.Sprintf("All %s are protected from glare; %s comes nearest to the limit, with %s of the hours in use over it where %s are allowed",
-				count(q.Views, "viewpoint", "viewpoints"), plain(q.WorstView), percent(float64(q.WorstOver)), percent(limit)))
+			which := "All " + count(q.Views, "viewpoint", "viewpoints") + " are"
+			if q.Views == 1 {
+				which = "The viewpoint is"
+			}
+			parts = append(parts, fmt.Sprintf("%s protected from glare; %s comes nearest to the limit, with %s of the hours in use over it where %s are allowed",
+				which, plain(q.WorstView), percent(float64(q.WorstOver)), percent(limit)))
 		default:
 			verb := "have"
 			if fails == 1 {
@@ -142,7 +152,7 @@ func remembered(r *study.Result, q row) string {
 		}
 	}
 	if !math.IsNaN(float64(q.RearDA)) {
-		parts = append(parts, fmt.Sprintf("the back of the room has 300 lx of daylight in %s of them", percent(float64(q.RearDA))))
+		parts = append(parts, fmt.Sprintf("the back of the room has 300 lx of daylight in %s of the hours in use", percent(float64(q.RearDA))))
 	}
 	if len(parts) == 0 {
 		return "Nothing was asked."

@@ -39,7 +39,7 @@ func TestSheetStaysInItsFolder(t *testing.T) {
 	if err := os.WriteFile(filepath.Join(dir, AlternativesFile), []byte(`{"alternatives":[{"folder":"../other"}]}`), 0o666); err != nil {
 		t.Fatal(err)
 	}
-	if err := WriteSheet(dir, ""); err == nil || !strings.Contains(err.Error(), `got folder "../other", want one below it`) {
+	if err := RemakeSheet(dir, ""); err == nil || !strings.Contains(err.Error(), `got folder "../other", want one below it`) {
 		t.Errorf("got %v", err)
 	}
 }
