@@ -41,7 +41,7 @@ own or a camera's, and computes DGP and the other indices. What an image does
 not say itself (projection, field of view, unit) is given by flags; the image
 circle of a fisheye is found. Several images give a table. "squint guide glare"
 leads through the evaluation of a photograph step by step.`,
-		Example: `  squint glare results/demo/worst-hour/desk-4.exr
+		Example: `  squint glare results/demo/bare/worst-hour/desk-4.exr
   squint glare site.exr --projection equisolid --fov-deg 185 --spot 812,440=350
   squint glare *.exr --out evaluated --format csv`,
 		Args: arguments(cobra.MinimumNArgs(1), "one image or more"),

@@ -18,7 +18,7 @@ import (
 // that SQUINT_IMAGES names (patterns with blanks between), such as a check's
 // worst hours:
 //
-//	SQUINT_IMAGES='results/demo/worst-hour/*.exr' go test -count=1 -run GroupingSensitivity -v ./cmd/squint
+//	SQUINT_IMAGES='results/demo/bare/worst-hour/*.exr' go test -count=1 -run GroupingSensitivity -v ./cmd/squint
 //
 // The table of "squint guide glare" comes from it.
 func TestGroupingSensitivity(t *testing.T) {
@@ -67,6 +67,12 @@ func TestGroupingSensitivity(t *testing.T) {
 						in = max(in, off)
 					}
 					sources += len(r.Sources)
+				}
+				// What the guide says of its table, besides the numbers.
+				if fine := variant.about != "768 pixels wide, the discs in the pixels"; fine && core == defaultCore && g == byDefault && in > 0.0001 {
+					t.Errorf("%s: cores of their own change DGP by %.4f at the default grouping, want nothing", variant.about, in)
+				} else if fine && core == 0 && in > 0.01 {
+					t.Errorf("%s: grouping at %g degrees changes DGP by %.4f, want at most 0.01", variant.about, g, in)
 				}
 				fmt.Fprintf(&table, "    %7.4f %7.4f %5.1f", in, whole, float64(sources)/float64(len(names)))
 			}

@@ -14,7 +14,8 @@ import (
 	"github.com/yuin/goldmark/extension"
 )
 
-// The pictures are drawn by go generate, a quarter of an hour on two cores.
+// The gallery's pictures are drawn by go generate, a quarter of an hour on two
+// cores; pictures/demo/sheet.png is made by the command in text/look.md.
 //
 //go:generate go run ./generate ../../../testdata/gallery pictures
 

@@ -55,10 +55,16 @@ func imageInFull(p *page, im *Image) {
 	pictureSection(p, im)
 }
 
+// glares is whether a class of DGP is disturbing or worse.
+func glares(dgp float64) bool {
+	c := glare.Class(dgp)
+	return c == glare.Class(0.45) || c == glare.Class(1)
+}
+
 // classStyle colours the finding: intolerable and disturbing as what is not
 // met, the others keep the terminal's ink.
 func classStyle(im *Image) lipgloss.Style {
-	if im.Indices && im.Result.DGP >= 0.40 { // as glare.Class
+	if im.Indices && glares(im.Result.DGP) {
 		return verdictStyle(verdict.NotMet)
 	}
 	return bold()
@@ -218,7 +224,7 @@ func imageTable(p *page, images []*Image) {
 			continue
 		}
 		judged++
-		if im.Result.DGP >= 0.40 { // as glare.Class: disturbing and worse
+		if glares(im.Result.DGP) {
 			glaring++
 		}
 		if worst == nil || im.Result.DGP > worst.Result.DGP {

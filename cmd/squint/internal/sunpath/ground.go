@@ -23,6 +23,7 @@ var tones = [kinds]uint32{
 }
 
 // crease is the cosine between two surfaces from which on their edge is drawn.
+// Own choice.
 const crease = 0.9
 
 // outlook is what the point sees, as lines of sight over the square about the

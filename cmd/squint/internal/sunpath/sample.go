@@ -35,6 +35,7 @@ func (s *Sample) Veiled() bool { return s.Cloth > s.Free/2 }
 const (
 	// discRays is the number of lines of sight over the disc: shares come in
 	// steps of a thirty-second. discScramble spreads them, the same everywhere.
+	// Own choice.
 	discRays     = 32
 	discScramble = 0x5d15c
 	// leastMirrored is the share of the sun's own light from which on its images

@@ -127,8 +127,12 @@ func TestVeils(t *testing.T) {
 		least, most float64 // of tau
 	}{
 		{"open", nil, r3.Vec{Y: -1}, false, 1, 0, 1, 1},
-		{"glass", glass, r3.Vec{Y: -1}, false, 1, 0, .7, .81},
-		{"cloth", cloth, r3.Vec{Y: -1}, false, 1, 1, .001, .06},
+		// At 16.70 degrees: Fresnel and Bouguer with n = 1.526 and the extinction
+		// that gives 0.8 straight on (Duffie, Beckman, 2013, chapter 5) give
+		// 0.79784, worked by hand; Kotey, Wright, Collins 2009 as materials has
+		// them, 0.05 cos(90 x 16.70/70)^0.5994 = 0.04789.
+		{"glass", glass, r3.Vec{Y: -1}, false, 1, 0, .7977, .7979},
+		{"cloth", cloth, r3.Vec{Y: -1}, false, 1, 1, .0478, .0480},
 		{"behind a viewpoint", nil, r3.Vec{Y: 1}, false, 1, 0, 1, 1},
 		{"out of an opening", nil, r3.Vec{Y: -1}, true, 1, 0, 1, 1},
 		{"behind an opening", nil, r3.Vec{Y: 1}, true, 0, 0, 0, 0},

@@ -32,7 +32,7 @@ type Input struct {
 
 const (
 	// dayStep days share one path, that of their middle, and stepMin is the
-	// time between suns on it, each in the middle of its step.
+	// time between suns on it, each in the middle of its step. Own choice.
 	dayStep  = 5
 	stepMin  = 10
 	yearDays = 365
