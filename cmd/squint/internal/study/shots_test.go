@@ -2,9 +2,12 @@ package study
 
 import (
 	"context"
+	"fmt"
 	"math"
 	"slices"
+	"strings"
 	"testing"
+	"testing/fstest"
 
 	"gonum.org/v1/gonum/spatial/r3"
 
@@ -16,7 +19,17 @@ import (
 // The pictures of a view must show its worst hour, which is kept at full size
 // by another way, within the errors that they state.
 func TestShotsShowTheWorstHour(t *testing.T) {
-	in := tiny(t, 2, 1024)
+	// In use from 8 to 18 h every day, for hours that differ.
+	text := strings.NewReplacer(`["wed"]`, `["mon", "tue", "wed", "thu", "fri", "sat", "sun"]`, `"11:00"`, `"08:00"`, `"12:00"`, `"18:00"`).
+		Replace(fmt.Sprintf(tinyProject, 2.0))
+	in, err := prepareFile(fstest.MapFS{
+		"project.toml": {Data: []byte(text)},
+		"room.obj":     {Data: []byte(tinyRoom())},
+		"site.epw":     {Data: tinyYear(t)},
+	}, "project.toml", "", 1)
+	if err != nil {
+		t.Fatal(err)
+	}
 	r, err := Run(context.Background(), in, Options{Workers: 2, Shots: true})
 	if err != nil {
 		t.Fatal(err)
@@ -51,7 +64,7 @@ func TestShotsShowTheWorstHour(t *testing.T) {
 		t.Errorf("got %d discs, want %d", len(s.Discs[frame]), len(v.Worst.Discs))
 	}
 	// The twin: another hour's picture is not this one.
-	other := slices.IndexFunc(s.Records, func(h int) bool { return v.Ev[h] < v.Ev[v.Worst.Moment.Hour]/2 })
+	other := slices.IndexFunc(s.Records, func(h int) bool { return v.Ev[h] > 0 && v.Ev[h] < v.Ev[v.Worst.Moment.Hour]/2 })
 	if other < 0 {
 		t.Fatal("all hours are alike in this year: the twin sees nothing")
 	}
