@@ -10,7 +10,7 @@ import (
 )
 
 // BenchmarkRun is the year's part of a small office: 256 moments, 4 sensors
-// and, where named, 2 views of 48 pixels, surfaces traced beforehand.
+// and, where named, 2 views of 96 pixels, surfaces traced beforehand.
 func BenchmarkRun(b *testing.B) {
 	w, sensors := office(b, .2)
 	moments := officeMoments(b, 256)
@@ -23,7 +23,7 @@ func BenchmarkRun(b *testing.B) {
 		name  string
 		views []scene.Viewpoint
 	}{{"sensors", nil}, {"sensors and views", views}} {
-		e := prepare(b, w, sensors, c.views, 48, f)
+		e := prepare(b, w, sensors, c.views, 96, f)
 		var sink annual.Sink
 		if c.views != nil {
 			sink = func(int, *annual.Frame) {}

@@ -13,25 +13,32 @@ import (
 	"squint/trace/surface"
 )
 
+// tileWidth is the number of pixels whose rows are turned round together: a
+// cache line of float32.
+const tileWidth = 16
+
+// tile holds tileWidth pixels of the images of a block's moments.
+type tile [surface.Width][tileWidth]float32
+
 // eyeScratch holds the images of one eye over a block.
 type eyeScratch struct {
-	image  [][]surface.Row // [batch][pixel]
-	sunlit []surface.Row   // summed over batches
+	image  [][]tile // [batch][tile]
+	sunlit []tile   // summed over batches
 	frames [framesAtOnce]Frame
 }
 
-// framesAtOnce is the number of moments whose images are taken out of the rows
-// together: a row's moments lie beside each other, so that one at a time would
-// fetch each row as often as there are moments.
-const framesAtOnce = 8
+// framesAtOnce is the number of moments whose images are taken out of the tiles
+// together: their lines lie beside each other.
+const framesAtOnce = 4
 
 func (s *eyeScratch) prepare(e *coeff.Eye, batches int) {
-	if len(s.image) != batches || len(s.sunlit) != len(e.Inside) {
-		s.image = make([][]surface.Row, batches)
+	tiles := (len(e.Inside) + tileWidth - 1) / tileWidth
+	if len(s.image) != batches || len(s.sunlit) != tiles {
+		s.image = make([][]tile, batches)
 		for b := range s.image {
-			s.image[b] = make([]surface.Row, len(e.Inside))
+			s.image[b] = make([]tile, tiles)
 		}
-		s.sunlit = make([]surface.Row, len(e.Inside))
+		s.sunlit = make([]tile, tiles)
 	}
 	size := e.View.Width * e.View.Height
 	for k := range s.frames {
@@ -42,37 +49,20 @@ func (s *eyeScratch) prepare(e *coeff.Eye, batches int) {
 			}
 		}
 	}
-	for p := range s.sunlit {
-		s.sunlit[p] = surface.Row{}
-	}
+	clear(s.sunlit)
 }
 
 // see makes the images of one eye for a block and hands them on.
 func (w *worker) see(bl *surface.Block, b block, eye int, lit []uint64) {
 	e := w.r.Eyes[eye]
-	batches := len(w.lights)
 	s := &w.eye
-	s.prepare(e, batches)
+	s.prepare(e, len(w.lights))
 	for batch := range w.lights {
 		w.render(bl, e, eye, batch, lit)
 	}
-	inv := 1 / float32(batches)
 	for first := 0; first < len(bl.Moments); first += framesAtOnce {
 		frames := s.frames[:min(framesAtOnce, len(bl.Moments)-first)]
-		for p, px := range e.Inside {
-			var sum [framesAtOnce]float32
-			for batch := range s.image {
-				row := s.image[batch][p][first : first+len(frames)]
-				for k, v := range row {
-					frames[k].Batch[batch][px] = v
-					sum[k] += v
-				}
-			}
-			for k := range frames {
-				frames[k].Mean[px] = sum[k] * inv
-				frames[k].Sunlit[px] = s.sunlit[p][first+k] * inv
-			}
-		}
+		s.develop(e, frames, first)
 		for k := range frames {
 			f, h := &frames[k], first+k
 			m := bl.Moments[h]
@@ -83,50 +73,96 @@ func (w *worker) see(bl *surface.Block, b block, eye int, lit []uint64) {
 	}
 }
 
-// render fills one batch's image rows: D from the surfaces, A from the sky,
+// develop takes the images of the moments from first on out of the tiles.
+func (s *eyeScratch) develop(e *coeff.Eye, frames []Frame, first int) {
+	inv := 1 / float32(len(s.image))
+	for t := range s.sunlit {
+		inside := e.Inside[t*tileWidth : min((t+1)*tileWidth, len(e.Inside))]
+		var sum [framesAtOnce][tileWidth]float32
+		for batch, image := range s.image {
+			lines := image[t][first : first+len(frames)]
+			for i := range lines {
+				line, out, sum := &lines[i], frames[i].Batch[batch], &sum[i]
+				for k, px := range inside {
+					out[px] = line[k]
+					sum[k] += line[k]
+				}
+			}
+		}
+		lit := s.sunlit[t][first : first+len(frames)]
+		for i := range frames {
+			f := &frames[i]
+			for k, px := range inside {
+				f.Mean[px] = sum[i][k] * inv
+				f.Sunlit[px] = lit[i][k] * inv
+			}
+		}
+	}
+}
+
+// render fills one batch's images: D from the surfaces, A from the sky,
 // B by shadow rays from the first diffuse surface.
 func (w *worker) render(bl *surface.Block, e *coeff.Eye, eye, batch int, lit []uint64) {
 	eb := &e.Batches[batch]
 	light := &w.lights[batch]
-	img := w.eye.image[batch]
 	var random [surface.Width]sampling.Stream
 	for h, m := range bl.Moments {
 		random[h] = sampling.NewStream(w.cfg.Seed, streamEyeSun, uint64(eye), uint64(m.Hour), uint64(batch))
 	}
-	for p := range e.Inside {
-		row := surface.Row{}
-		surfaces := eb.SurfacesOf(p)
-		for i := range surfaces {
-			sf := &surfaces[i]
-			if sf.Side < 0 {
-				continue
+	var rows [tileWidth]surface.Row
+	for t := range w.eye.sunlit {
+		pixels := min(tileWidth, len(e.Inside)-t*tileWidth)
+		sun := sunOn{tile: &w.eye.sunlit[t]}
+		for k := range pixels {
+			p := t*tileWidth + k
+			row := &rows[k]
+			*row = surface.Row{}
+			sun.pixel = k
+			surfaces := eb.SurfacesOf(p)
+			for i := range surfaces {
+				sf := &surfaces[i]
+				if sf.Side < 0 {
+					continue
+				}
+				weight := sf.Weight
+				if sf.Ground {
+					weight *= bl.GroundReflectance
+				}
+				surface.AddScaled(row, &light.Rest[sf.Side], weight)
+				if lit[sf.Side] != 0 {
+					w.sunlit(bl, sf, weight, lit[sf.Side], &random, row, &sun)
+				}
 			}
-			weight := sf.Weight
-			if sf.Ground {
-				weight *= bl.GroundReflectance
+			for _, x := range eb.ExitsOf(p) {
+				for h, m := range bl.Moments {
+					row[h] += x.Weight * float32(m.Sky.Luminance(x.Dir))
+				}
 			}
-			surface.AddScaled(&row, &light.Rest[sf.Side], weight)
-			if lit[sf.Side] != 0 {
-				w.sunlit(bl, sf, weight, lit[sf.Side], &random, &row, &w.eye.sunlit[p])
+			for _, x := range eb.ShinesOf(p) {
+				w.shine(bl, &x, &random, row)
+			}
+			if g := eb.Below[p]; g > 0 {
+				surface.AddScaled(row, &bl.Below, g)
 			}
 		}
-		for _, x := range eb.ExitsOf(p) {
-			for h, m := range bl.Moments {
-				row[h] += x.Weight * float32(m.Sky.Luminance(x.Dir))
+		image := &w.eye.image[batch][t]
+		for h := range bl.Moments {
+			line := &image[h]
+			for k := range rows {
+				line[k] = rows[k][h]
 			}
 		}
-		for _, x := range eb.ShinesOf(p) {
-			w.shine(bl, &x, &random, &row)
-		}
-		if g := eb.Below[p]; g > 0 {
-			surface.AddScaled(&row, &bl.Below, g)
-		}
-		img[p] = row
 	}
 }
 
+// sunOn is where the sun on a pixel's first surface is summed.
+type sunOn struct {
+	tile  *tile
+	pixel int
+}
+
 // sunlit adds the sun on one surface sample for the moments in mask.
-func (w *worker) sunlit(bl *surface.Block, sf *coeff.SurfaceSample, weight float32, mask uint64, random *[surface.Width]sampling.Stream, row, lit *surface.Row) {
+func (w *worker) sunlit(bl *surface.Block, sf *coeff.SurfaceSample, weight float32, mask uint64, random *[surface.Width]sampling.Stream, row *surface.Row, lit *sunOn) {
 	n := vec(sf.Normal)
 	p := vec(sf.Point)
 	for ; mask != 0; mask &= mask - 1 {
@@ -143,7 +179,7 @@ func (w *worker) sunlit(bl *surface.Block, sf *coeff.SurfaceSample, weight float
 		if tr := w.t.World.Transmittance(p, dir, math.Inf(1)); tr > 0 {
 			v := weight * float32(rays.NormalLx*cos*tr)
 			row[h] += v
-			lit[h] += v
+			lit.tile[h][lit.pixel] += v
 		}
 	}
 }
