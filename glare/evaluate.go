@@ -100,11 +100,21 @@ func Evaluate(f *Field, lum []float32, discs []Disc, o Options, scratch *Scratch
 func DGPOnly(f *Field, lum []float32, discs []Disc, o Options, scratch *Scratch) (dgp, ev float64) {
 	scratch.gather(f, lum, o)
 	scratch.group(f, lum, o)
-	sum := 0.0
+	sum, discEv := sumDiscs(discs)
 	for i := range scratch.groups {
 		sum += scratch.groups[i].contribution(o.Position)
 	}
-	ev = scratch.ev
+	ev = scratch.ev + discEv
+	dgp = DGP(ev, sum)
+	if o.LowLight {
+		dgp *= LowLight(ev)
+	}
+	return dgp, ev
+}
+
+// sumDiscs adds up what discs contribute, cd2/m4 sr, and their illuminance at the
+// eye, lx.
+func sumDiscs(discs []Disc) (sum, ev float64) {
 	for _, d := range discs {
 		if !d.counts() {
 			continue
@@ -113,9 +123,5 @@ func DGPOnly(f *Field, lum []float32, discs []Disc, o Options, scratch *Scratch)
 		p := PositionIndex(d.Dir)
 		sum += d.Luminance * d.Luminance * d.OmegaSr / (p * p)
 	}
-	dgp = DGP(ev, sum)
-	if o.LowLight {
-		dgp *= LowLight(ev)
-	}
-	return dgp, ev
+	return sum, ev
 }

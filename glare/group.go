@@ -21,7 +21,8 @@ type Scratch struct {
 	groupOf []int32       // group of each bright pixel
 	groups  []group
 
-	rest []float32 // an image with one batch left out
+	rest     []float32 // an image with one batch left out
+	partFlux []float64 // of each group in one batch, cd/m2 sr
 
 	// The work zone's pixels, kept while field and zone stay the same.
 	zoneField  *Field
@@ -85,8 +86,8 @@ func (s *Scratch) group(f *Field, lum []float32, o Options) {
 	}
 	s.touch(f)
 	grouping := orDefault(o.GroupingRad, DefaultGroupingRad)
-	if grouping > 0 && s.components() > 1 {
-		s.merge(f, grouping)
+	if spare := s.spare(); grouping > 0 && spare > 0 {
+		s.merge(f, grouping, spare)
 	}
 	for _, b := range s.bright {
 		s.label[b.at] = 0
@@ -156,21 +157,29 @@ func (s *Scratch) join(i int, core bool, at int32) bool {
 	return true
 }
 
-func (s *Scratch) components() int {
+// spare is the number of groups beside one of each kind: when so many are joined
+// there is nothing left to join.
+func (s *Scratch) spare() int {
 	n := 0
+	var kinds [2]int
 	for i, p := range s.parent {
 		if int32(i) == p {
 			n++
+			if s.bright[i].core {
+				kinds[1] = 1
+			} else {
+				kinds[0] = 1
+			}
 		}
 	}
-	return n
+	return n - kinds[0] - kinds[1]
 }
 
 // merge joins groups of the same kind with pixels at most grouping rad apart.
 // The nearest pixels of two groups lie on their edges, so only those are
 // compared, swept in order of height: points further apart in one coordinate
 // than the chord are further apart in all.
-func (s *Scratch) merge(f *Field, grouping float64) {
+func (s *Scratch) merge(f *Field, grouping float64, spare int) {
 	stride := int32(f.Width + 2)
 	s.edge = s.edge[:0]
 	for i, b := range s.bright {
@@ -202,8 +211,10 @@ func (s *Scratch) merge(f *Field, grouping float64) {
 			if -dz > chord {
 				break
 			}
-			if dx*dx+dy*dy+dz*dz <= chord*chord && a.core == b.core {
-				s.union(a.bright, b.bright)
+			if dx*dx+dy*dy+dz*dz <= chord*chord && a.core == b.core && s.union(a.bright, b.bright) {
+				if spare--; spare == 0 {
+					return
+				}
 			}
 		}
 	}
@@ -218,12 +229,14 @@ func (s *Scratch) find(i int32) int32 {
 	return i
 }
 
-// union makes the smaller index the root.
-func (s *Scratch) union(i, j int32) {
+// union makes the smaller index the root; false where i and j were in one group
+// already.
+func (s *Scratch) union(i, j int32) bool {
 	i, j = s.find(i), s.find(j)
 	if i < j {
 		s.parent[j] = i
 	} else {
 		s.parent[i] = j
 	}
+	return i != j
 }

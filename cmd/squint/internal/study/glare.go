@@ -100,8 +100,8 @@ type Worst struct {
 	InsideOf *coeff.Eye
 }
 
-// causeFrom is the DGP from which an hour's cause is looked for: the strictest
-// level's limit. Source: EN 17037:2018 annex E.
+// causeFrom is the DGP from which an hour's cause is looked for, and the limit
+// next to which errors are found with all care: the strictest level's. Source: EN 17037:2018 annex E.
 const causeFrom = 0.35
 
 // glareSink turns frames into series as they come.
@@ -200,8 +200,7 @@ func (g *standingSink) take(worker int, f *annual.Frame) {
 	e := g.eyes[f.Eye]
 	v := &g.views[f.Eye]
 	w.discs = toView(w.discs[:0], e, f.Discs)
-	dgp, ev := glare.DGPOnly(g.field, f.Mean, w.discs, g.opt, &w.scratch)
-	se, evErr := glare.Jackknife(g.field, f.Mean, f.Batch, w.discs, g.opt, &w.scratch)
+	dgp, ev, se, evErr := glare.Pooled(g.field, f.Mean, f.Batch, w.discs, g.opt, causeFrom, &w.scratch)
 	h := f.Moment.Hour
 	v.DGP[h], v.Ev[h], v.StdErr[h], v.EvErr[h] = float32(dgp), float32(ev), float32(se), float32(evErr)
 	v.InRange[h] = glare.InRange(dgp, ev)
@@ -276,16 +275,15 @@ func (g *standingSink) causeOf(e *coeff.Eye, f *annual.Frame, r *glare.Result) C
 		return g.causeOfDisc(e, f, top)
 	}
 	// Within the source, the share of each thing seen, weighted by what it
-	// sends to the eye.
-	number := map[int32]int{}
-	for p, px := range e.Inside {
-		number[px] = p
-	}
+	// sends to the eye. Both lists of pixels ascend.
+	p := 0
 	weight := map[Cause]float64{}
 	var order []Cause
 	for _, px := range top.Pixels {
-		seen := e.Seen[number[px]]
-		c := g.causeOfPixel(seen, f.Sunlit[px] > 0.5*f.Mean[px])
+		for e.Inside[p] < px {
+			p++
+		}
+		c := g.causeOfPixel(e.Seen[p], f.Sunlit[px] > 0.5*f.Mean[px])
 		if _, ok := weight[c]; !ok {
 			order = append(order, c)
 		}

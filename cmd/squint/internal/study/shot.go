@@ -63,5 +63,5 @@ func (s *Shot) judge() {
 	}
 	r := glare.Evaluate(field, s.Picture.Mean, discs, opt, &scratch)
 	s.Glare = &r
-	s.DGPError, _ = glare.Jackknife(field, s.Picture.Mean, s.Picture.Batch, discs, opt, &scratch)
+	_, _, s.DGPError, _ = glare.Pooled(field, s.Picture.Mean, s.Picture.Batch, discs, opt, 0, &scratch)
 }
