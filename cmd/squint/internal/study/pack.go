@@ -6,6 +6,7 @@ import (
 	"crypto/sha256"
 	"encoding/gob"
 	"fmt"
+	"sync"
 )
 
 // pack makes a record into bytes that begin with their own SHA-256.
@@ -46,14 +47,19 @@ func load[T any](s *shelf, key string, record *T, name *string) {
 }
 
 // save keeps a record and turns it into what a later run will read: packing
-// does not tell -0 from 0. A full disk is no reason to lose the run.
-func save[T any](s *shelf, key string, record *T, r *Result) {
+// does not tell -0 from 0. A full disk is no reason to lose the run. Records are
+// packed side by side; one at a time holds the store and the result's notes.
+func save[T any](s *shelf, key string, record *T, r *Result, one *sync.Mutex) {
 	data, err := pack(record)
 	if err == nil {
 		var read T
 		if unpack(data, &read) {
 			*record = read
 		}
+	}
+	one.Lock()
+	defer one.Unlock()
+	if err == nil {
 		err = s.opt.Store.Save(key, data)
 	}
 	if err != nil {

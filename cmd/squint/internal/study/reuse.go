@@ -81,8 +81,8 @@ func cellsOf(in *Input) []int {
 }
 
 // reuseYear is traceYear for what the store does not have, which it then gets.
-// Eyes are open at every moment, in use or not, so that other hours of use
-// need no computing; what is not in use is left out of the year again.
+// Eyes are open at the moments in use: other hours of use cost those that are
+// new.
 func reuseYear(ctx context.Context, in *Input, opt Options, r *Result) (*year, error) {
 	y := newYear(in, opt)
 	y.glare.shots = opt.shots

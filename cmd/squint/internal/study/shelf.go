@@ -2,6 +2,7 @@ package study
 
 import (
 	"context"
+	"sync"
 
 	"squint/scene"
 	"squint/trace/bvh"
@@ -20,11 +21,12 @@ type shelf struct {
 	// lackViews and lackPlanes are to be computed, for lackHours.
 	lackViews, lackPlanes []int
 	lackHours             map[int]bool
+	seenHours             map[int]bool // those of lackHours that views lack
 }
 
 // newShelf reads what is known of standing k and finds what is missing.
 func newShelf(in *Input, k int, opt Options) *shelf {
-	s := &shelf{opt: opt, in: in, st: &in.Standings[k], lackHours: map[int]bool{}}
+	s := &shelf{opt: opt, in: in, st: &in.Standings[k], lackHours: map[int]bool{}, seenHours: map[int]bool{}}
 	for _, m := range s.st.Moments {
 		s.hours = append(s.hours, m.Hour)
 		if m.Occupied {
@@ -70,15 +72,15 @@ func (s *shelf) pixels() int {
 func (s *shelf) missingView(i int) {
 	x := s.views[i]
 	missing := false
-	for _, h := range s.hours {
+	for _, h := range s.used {
 		if !x.known(h, s.pixels()) {
-			missing, s.lackHours[h] = true, true
+			missing, s.lackHours[h], s.seenHours[h] = true, true, true
 		}
 	}
 	if !missing && !s.opt.anyWorst && len(s.used) > 0 && x.top(s.used) == nil {
 		missing = true
-		for _, h := range s.hours {
-			s.lackHours[h] = true
+		for _, h := range s.used {
+			s.lackHours[h], s.seenHours[h] = true, true
 		}
 	}
 	if missing {
@@ -113,7 +115,7 @@ func (s *shelf) compute(ctx context.Context, r *Result) error {
 	for _, m := range s.st.Moments {
 		if s.lackHours[m.Hour] {
 			open := *m
-			open.Occupied = true
+			open.Occupied = s.seenHours[m.Hour]
 			c.Moments = append(c.Moments, &open)
 		}
 	}
@@ -139,15 +141,25 @@ func (s *shelf) compute(ctx context.Context, r *Result) error {
 	if r.traced.views == nil {
 		r.traced = traced{map[int]bool{}, map[int]bool{}}
 	}
-	for j, i := range s.lackViews {
-		r.traced.views[i] = true
-		s.views[i].learn(y, j, c.Moments, opt.shots, &own.Settings)
+	var one sync.Mutex
+	quiet := opt
+	quiet.Progress = func(Stage, int, int) {}
+	err = each(ctx, quiet, StageYear, len(s.lackViews), func(j int) error {
+		x := s.views[s.lackViews[j]]
+		x.learn(y, j, c.Moments, opt.shots, &own.Settings)
 		// A year of pictures is large: what is learnt is let go of.
 		y.glare.tops[j] = nil
 		if opt.shots != nil {
 			opt.shots.kept[j] = nil
 		}
-		save(s, s.views[i].Key, s.views[i], r)
+		save(s, x.Key, x, r, &one)
+		return nil
+	})
+	if err != nil {
+		return err
+	}
+	for _, i := range s.lackViews {
+		r.traced.views[i] = true
 	}
 	first := 0
 	for _, i := range s.lackPlanes {
@@ -155,7 +167,7 @@ func (s *shelf) compute(ctx context.Context, r *Result) error {
 		n := len(s.st.Scene.WorkPlanes[i].Sensors)
 		s.planes[i].learn(y, first, n, c.Moments, sub.Clear, &own.Settings)
 		first += n
-		save(s, s.planes[i].Key, s.planes[i], r)
+		save(s, s.planes[i].Key, s.planes[i], r, &one)
 	}
 	return nil
 }

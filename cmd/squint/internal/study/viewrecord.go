@@ -106,6 +106,9 @@ func (v *viewRecord) learn(y *year, j int, moments []*scene.Moment, shots *shotP
 	}
 	var news []viewHour
 	for _, m := range moments {
+		if !m.Occupied { // for work planes alone
+			continue
+		}
 		h := m.Hour
 		x := v.at(h)
 		if x == nil {
