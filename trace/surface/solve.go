@@ -128,18 +128,25 @@ func (t *Transport) Solve(bl *Block, b int, light *Light) {
 			gather(&e, light.E, rows.groundLink[rows.groundFrom[i]:rows.groundFrom[i+1]], bl.GroundReflectance)
 			settle(&e, &light.E[i], &change, &total)
 		}
+		var still uint64
 		for h := range bl.Moments {
-			if open&(1<<h) == 0 || change[h] > sweepTolerance*total[h] {
-				continue
+			if open&(1<<h) != 0 && change[h] <= sweepTolerance*total[h] {
+				still |= 1 << h
 			}
-			open &^= 1 << h
-			if open == 0 {
-				break // the last to settle needs no copy
+		}
+		if open &^= still; open == 0 {
+			continue // the last to settle need no copy
+		}
+		light.done |= still
+		if still == 0 {
+			continue
+		}
+		for i := range n {
+			from, to := &light.E[i], &light.settled[i]
+			for m := still; m != 0; m &= m - 1 {
+				h := bits.TrailingZeros64(m) & (Width - 1)
+				to[h] = from[h]
 			}
-			for i := range n {
-				light.settled[i][h] = light.E[i][h]
-			}
-			light.done |= 1 << h
 		}
 	}
 	for i := range n {
