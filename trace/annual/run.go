@@ -169,11 +169,13 @@ func (w *worker) run(ctx context.Context, moments []*scene.Moment, b block, d *D
 		ms[i] = moments[k]
 	}
 	bl := w.t.NewBlock(ms, w.r.Fine)
+	var near *surface.Light
 	for batch := range w.lights {
 		if ctx.Err() != nil {
 			return
 		}
-		w.t.Solve(bl, batch, &w.lights[batch])
+		w.t.Solve(bl, batch, &w.lights[batch], near)
+		near = &w.lights[batch]
 	}
 	w.sensors(bl, b, d)
 	if w.sink == nil || !ms[0].Occupied {

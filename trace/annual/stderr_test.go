@@ -40,7 +40,7 @@ func TestStdErrDigits(t *testing.T) {
 		}
 		var light surface.Light
 		for b := range f.batches {
-			e.t.Solve(bl, b, &light)
+			e.t.Solve(bl, b, &light, nil)
 			for i := range sensors {
 				var row surface.Row
 				bl.Gather(&e.rec.Rows[b], &light, i, &row)

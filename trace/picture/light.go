@@ -65,7 +65,7 @@ func (s *Stage) Light(ctx context.Context, m *scene.Moment) (*Light, error) {
 	near, whole := make([][]uint64, Batches), make([][]float32, Batches)
 	err := each(ctx, s.cfg.Workers, Batches, func(b int) {
 		lights := make([]surface.Light, 1)
-		t.Solve(bl, b, &lights[0])
+		t.Solve(bl, b, &lights[0], nil)
 		near[b] = t.LitNear(lights)
 		l.rest[b], whole[b] = overLanes(lights[0].Rest), overLanes(lights[0].E)
 	})

@@ -7,7 +7,7 @@ import (
 )
 
 // BenchmarkSolve solves one block of 64 moments in one batch, in a room like
-// the demo's.
+// the demo's: from the dark, and from the light of another batch.
 func BenchmarkSolve(b *testing.B) {
 	tr := everySide(b, facadeRoom(b, .2, true).world(), Config{Batches: 2, Samples: 64, Seed: 1, Workers: 1})
 	var moments []*scene.Moment
@@ -17,13 +17,20 @@ func BenchmarkSolve(b *testing.B) {
 		moments = append(moments, m)
 	}
 	bl := tr.NewBlock(moments, nil)
-	var light Light
-	b.ResetTimer()
-	for b.Loop() {
-		tr.Solve(bl, 0, &light)
+	var light, other Light
+	tr.Solve(bl, 1, &other, nil)
+	for _, start := range []struct {
+		name string
+		near *Light
+	}{{"dark", nil}, {"another batch", &other}} {
+		b.Run(start.name, func(b *testing.B) {
+			for b.Loop() {
+				tr.Solve(bl, 0, &light, start.near)
+			}
+			b.ReportMetric(float64(tr.Len()), "sides")
+			b.ReportMetric(float64(light.Sweeps), "sweeps")
+		})
 	}
-	b.ReportMetric(float64(tr.Len()), "sides")
-	b.ReportMetric(float64(light.Sweeps), "sweeps")
 }
 
 // BenchmarkCut cuts the room into texels.

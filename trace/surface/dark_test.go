@@ -115,7 +115,7 @@ func TestClosedRoomStaysDark(t *testing.T) {
 		tr := everySide(t, r.world(), Config{Batches: 2, Samples: 128, Seed: 1, Workers: 1})
 		bl := tr.NewBlock(skies(t), nil)
 		var light Light
-		tr.Solve(bl, 0, &light)
+		tr.Solve(bl, 0, &light, nil)
 		var bright, dark, nb, nd float64
 		for i, side := range tr.sides {
 			p, _ := tr.Texels.Sample(side/2, .5, .5, .5)

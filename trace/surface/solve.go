@@ -87,8 +87,10 @@ const sweepTolerance = 2e-4
 const maxSweeps = 400
 
 // Solve computes the illuminance of every active side in batch b for a block.
-// light is reused between calls.
-func (t *Transport) Solve(bl *Block, b int, light *Light) {
+// light is reused between calls. near is the solution of another batch for the
+// same block, to start from: the batches differ by their noise alone. nil starts
+// in the dark.
+func (t *Transport) Solve(bl *Block, b int, light, near *Light) {
 	n := len(t.sides)
 	if len(light.E) != n {
 		light.E, light.Sun, light.Rest, light.Lit = make([]Row, n), make([]Row, n), make([]Row, n), make([]uint64, n)
@@ -109,6 +111,10 @@ func (t *Transport) Solve(bl *Block, b int, light *Light) {
 			AddScaled(e, &bl.Below, g)
 		}
 		light.E[i] = *e
+		if near != nil {
+			light.E[i] = light.Sun[i]
+			AddScaled(&light.E[i], &near.Rest[i], 1)
+		}
 	}
 	// Each moment is settled by its own change and keeps the values of that
 	// sweep, so that it does not depend on what shares its block.
