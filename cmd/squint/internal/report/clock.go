@@ -5,8 +5,6 @@ import (
 	"math"
 	"time"
 
-	"gonum.org/v1/gonum/spatial/r3"
-
 	"squint/glare/daylight"
 	"squint/scene"
 )
@@ -26,22 +24,7 @@ func clockTime(c daylight.Calendar, m *scene.Moment) time.Time {
 // dateWords is such a moment in words: 21 December, 11:30 h.
 func dateWords(t time.Time) string { return t.Format("2 January, 15:04 h") }
 
-// azimuthDeg is the azimuth of a model direction, clockwise from north, 0 to
-// 360; northDeg is the azimuth of the model's +y.
-func azimuthDeg(d r3.Vec, northDeg float64) float64 {
-	az := math.Mod(math.Atan2(d.X, d.Y)*180/math.Pi+northDeg, 360)
-	if az < 0 {
-		az += 360
-	}
-	if az >= 360 { // -1e-15 + 360
-		az = 0
-	}
-	return az
-}
-
-// altitudeDeg is the angle of a unit vector above the horizon.
-func altitudeDeg(d r3.Vec) float64 { return degreesOfSine(d.Z) }
-
+// degreesOfSine is the angle above the horizon by its sine.
 func degreesOfSine(s float64) float64 {
 	return math.Asin(math.Max(-1, math.Min(1, s))) * 180 / math.Pi
 }

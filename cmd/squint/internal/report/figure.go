@@ -74,7 +74,7 @@ func skyText(m *scene.Moment, northDeg float64) string {
 		return "No sun; sky " + sky
 	}
 	return fmt.Sprintf("Sun %s° high, azimuth %s°, %s lx on a plane that faces it; sky ",
-		fixed(altitudeDeg(m.Sun), 0), fixed(azimuthDeg(m.Sun, northDeg), 0), whole(m.SunNormalLx)) + sky
+		fixed(scene.AltitudeDeg(m.Sun), 0), fixed(scene.AzimuthDeg(m.Sun, northDeg), 0), whole(m.SunNormalLx)) + sky
 }
 
 // subject is the viewpoint with its bearing, as verdicts name it.

@@ -7,6 +7,7 @@ import (
 	"strings"
 
 	"squint/cmd/squint/internal/study"
+	"squint/scene"
 )
 
 // table builds CSV rows: RFC 4180, with comment lines that begin with #.
@@ -147,7 +148,7 @@ func sunAzimuths(r *study.Result) []float64 {
 		a[h] = math.NaN()
 	}
 	for _, m := range r.Climate.Moments {
-		a[m.Hour] = azimuthDeg(m.Sun, r.Project.Site.NorthDeg)
+		a[m.Hour] = scene.AzimuthDeg(m.Sun, r.Project.Site.NorthDeg)
 	}
 	return a
 }

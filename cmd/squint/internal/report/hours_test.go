@@ -113,7 +113,7 @@ func TestAzimuth(t *testing.T) {
 		d           r3.Vec
 		north, want float64
 	}{{r3.Vec{Y: 1}, 0, 0}, {r3.Vec{X: 1}, 0, 90}, {r3.Vec{Y: -1}, 0, 180}, {r3.Vec{X: -1}, 0, 270}, {r3.Vec{Y: -1}, 345, 165}, {r3.Vec{X: -1e-17, Y: 1}, 0, 0}, {r3.Vec{X: 1}, -100, 350}} {
-		if got := azimuthDeg(x.d, x.north); math.Abs(got-x.want) > 1e-9 {
+		if got := scene.AzimuthDeg(x.d, x.north); math.Abs(got-x.want) > 1e-9 {
 			t.Errorf("%v, north %g: got %g, want %g", x.d, x.north, got, x.want)
 		}
 	}

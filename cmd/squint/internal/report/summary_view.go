@@ -7,6 +7,7 @@ import (
 	"squint/cmd/squint/internal/study"
 	"squint/glare"
 	"squint/glare/verdict"
+	"squint/scene"
 )
 
 type viewJSON struct {
@@ -71,7 +72,7 @@ func viewsJSON(r *study.Result, files []string) []viewJSON {
 		v := &r.Views[i]
 		d := v.Viewpoint.Direction
 		j := viewJSON{Name: v.Viewpoint.Name, PositionM: toVector(v.Viewpoint.Position), Direction: toVector(d),
-			AzimuthDeg: number(azimuthDeg(d, r.Project.Site.NorthDeg)), PitchDeg: number(altitudeDeg(d)),
+			AzimuthDeg: number(scene.AzimuthDeg(d, r.Project.Site.NorthDeg)), PitchDeg: number(scene.AltitudeDeg(d)),
 			Asked: "none", Refined: v.Refined, Levels: []levelJSON{}, When: v.When, Causes: causes(r, v)}
 		if v.Asked >= 0 && v.Asked < len(verdict.ProtectionLevels) {
 			j.Asked = verdict.ProtectionLevels[v.Asked].Name
@@ -114,7 +115,7 @@ func worst(r *study.Result, v *study.ViewResult, name string, files []string) *w
 	m := w.Moment
 	j := &worstJSON{Record: m.Hour, Moment: m.Time.Format(time.RFC3339), Clock: clockTime(r.Calendar, m).Format("01-02 15:04"),
 		DGP: number(w.DGP), StandardError: number(w.StdErr), InRange: glare.InRange(w.DGP, w.Ev), EvLx: number(w.Ev),
-		SunAzimuthDeg: number(azimuthDeg(m.Sun, r.Project.Site.NorthDeg)), SunAltitudeDeg: number(altitudeDeg(m.Sun)),
+		SunAzimuthDeg: number(scene.AzimuthDeg(m.Sun, r.Project.Site.NorthDeg)), SunAltitudeDeg: number(scene.AltitudeDeg(m.Sun)),
 		SunNormalLx: number(m.SunNormalLx), DiffuseLx: number(m.DiffuseLx), Sources: []sourceJSON{}, Pictures: []string{}}
 	for _, s := range w.Result.Sources {
 		j.Sources = append(j.Sources, sourceJSON{s.Disc, number(s.MeanLuminance), number(s.OmegaSr),

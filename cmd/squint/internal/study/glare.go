@@ -1,7 +1,6 @@
 package study
 
 import (
-	"math"
 	"sync"
 
 	"gonum.org/v1/gonum/spatial/r3"
@@ -383,7 +382,6 @@ func (r *Result) subject(v *scene.Viewpoint) string {
 
 // bearing is the compass direction of a line of sight in words.
 func (r *Result) bearing(d r3.Vec) string {
-	az := math.Atan2(d.X, d.Y)*180/math.Pi + r.Project.Site.NorthDeg
-	k := int(math.Floor(math.Mod(az+22.5+720, 360) / 45))
+	k := int(scene.AzimuthDeg(d, r.Project.Site.NorthDeg+22.5) / 45)
 	return project.Winds[k]
 }

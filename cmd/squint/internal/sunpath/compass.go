@@ -7,6 +7,7 @@ import (
 	"gonum.org/v1/gonum/spatial/r3"
 
 	"squint/glare/falsecolour"
+	"squint/scene"
 )
 
 var points = [8]string{"N", "NE", "E", "SE", "S", "SW", "W", "NW"}
@@ -70,7 +71,7 @@ func (d *drawing) directions() {
 // the sun's noon or ahead.
 func (d *drawing) altitudes() {
 	for _, alt := range []float64{30, 60} {
-		for _, az := range []float64{azimuthDeg(level(d.year.Input.Point.Ahead), d.NorthRad) - 60, 0, 180, 90, 270} {
+		for _, az := range []float64{scene.AzimuthDeg(level(d.year.Input.Point.Ahead), d.NorthRad*180/math.Pi) - 60, 0, 180, 90, 270} {
 			if at, ok := d.on(d.compass(az, alt)); ok {
 				if d.name(falsecolour.SmallFace, at, strconv.Itoa(int(alt))+"\u00b0", falsecolour.Quiet) {
 					break
@@ -92,7 +93,7 @@ func (d *drawing) rose(c falsecolour.Place) {
 	if r3.Norm(r3.Vec{X: a.X, Y: a.Y}) < 0.1 {
 		return // it looks up
 	}
-	az := azimuthDeg(level(a), d.NorthRad)
+	az := scene.AzimuthDeg(level(a), d.NorthRad*180/math.Pi)
 	ray := func(az, r float64) falsecolour.Place {
 		s, c0 := math.Sincos(az * math.Pi / 180)
 		return falsecolour.Place{X: c.X + r*s, Y: c.Y - r*c0}

@@ -1,8 +1,6 @@
 package sunpath
 
 import (
-	"math"
-
 	"gonum.org/v1/gonum/spatial/r3"
 
 	"squint/scene"
@@ -44,19 +42,4 @@ func level(d r3.Vec) r3.Vec {
 		return r3.Vec{Y: 1}
 	}
 	return r3.Unit(flat)
-}
-
-// azimuth of a model direction in degrees clockwise from true north, 0 to 360;
-// northRad is the azimuth of the model's +y.
-func azimuthDeg(d r3.Vec, northRad float64) float64 {
-	a := math.Mod((math.Atan2(d.X, d.Y)+northRad)*180/math.Pi+720, 360)
-	if a >= 359.9999999 { // -1e-15 + 360
-		a = 0
-	}
-	return a
-}
-
-// altitudeDeg is the angle of a unit vector above the horizon.
-func altitudeDeg(d r3.Vec) float64 {
-	return math.Asin(math.Max(-1, math.Min(1, d.Z))) * 180 / math.Pi
 }

@@ -9,6 +9,8 @@ import (
 	"time"
 
 	"gonum.org/v1/gonum/spatial/r3"
+
+	"squint/scene"
 )
 
 // row is a sample as files have it; angles in degrees, azimuth clockwise from
@@ -27,10 +29,10 @@ type row struct {
 }
 
 func (y *Year) row(s *Sample, northRad float64) row {
-	r := row{Moment: s.Time.Format(time.RFC3339), AltitudeDeg: rounded(altitudeDeg(s.Sun), 3), AzimuthDeg: rounded(azimuthDeg(s.Sun, northRad), 3),
+	r := row{Moment: s.Time.Format(time.RFC3339), AltitudeDeg: rounded(scene.AltitudeDeg(s.Sun), 3), AzimuthDeg: rounded(scene.AzimuthDeg(s.Sun, northRad*180/math.Pi), 3),
 		Free: rounded(s.Free, 5), Cloth: rounded(s.Cloth, 5), Tau: rounded(s.Tau, 4), Mirrored: rounded(s.Mirrored, 4)}
 	if s.Mirrored > 0 {
-		alt, az := rounded(altitudeDeg(s.Image), 3), rounded(azimuthDeg(s.Image, northRad), 3)
+		alt, az := rounded(scene.AltitudeDeg(s.Image), 3), rounded(scene.AzimuthDeg(s.Image, northRad*180/math.Pi), 3)
 		r.ImageAltitude, r.ImageAzimuth = &alt, &az
 		r.Mirror = s.Mirror
 	}
@@ -97,7 +99,7 @@ func (y *Year) WriteJSON(w io.Writer, northRad float64, invented bool) error {
 		Direct    sums       `json:"direct"`
 		Mirrored  sums       `json:"mirrored"`
 		Samples   []row      `json:"samples"`
-	}{Point: p.Name, Invented: invented, PositionM: vector(p.Position), Facing: rounded(azimuthDeg(level(p.Ahead), northRad), 2),
+	}{Point: p.Name, Invented: invented, PositionM: vector(p.Position), Facing: rounded(scene.AzimuthDeg(level(p.Ahead), northRad*180/math.Pi), 2),
 		DayStep: dayStep, StepMin: stepMin, Direct: toSums(&y.Direct), Mirrored: toSums(&y.Mirrored), Samples: []row{}}
 	for i := range y.Samples {
 		out.Samples = append(out.Samples, y.row(&y.Samples[i], northRad))
