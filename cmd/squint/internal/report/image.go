@@ -56,17 +56,17 @@ func (im *Image) dgpValid() bool {
 	return im.Indices && glare.InRange(glare.DGP(im.Result.Ev, im.Result.SourceSum), im.Result.Ev)
 }
 
-// SunCdM2 is the luminance from which a source is taken for the sun or its
+// sunCdM2 is the luminance from which a source is taken for the sun or its
 // mirror image, for which DGPs was not made. Own choice: far above any cloud
 // or lamp, far below the sun through thin haze.
-const SunCdM2 = 1e6
+const sunCdM2 = 1e6
 
 func (im *Image) dgpsValid() bool {
 	if !im.Result.DGPsValid {
 		return false
 	}
 	for _, s := range im.Result.Sources {
-		if s.PeakLuminance >= SunCdM2 {
+		if s.PeakLuminance >= sunCdM2 {
 			return false
 		}
 	}

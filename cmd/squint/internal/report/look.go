@@ -34,8 +34,8 @@ type LookOptions struct {
 // colours, and PFM.
 var LookFormats = []string{"exr", "png", "tiff", "pfm"}
 
-// SheetName is the sheet of several pictures, without its ending.
-const SheetName = "sheet"
+// sheetName is the sheet of several pictures, without its ending.
+const sheetName = "sheet"
 
 // sheetColumns is the largest number of pictures side by side.
 const sheetColumns = 3
@@ -85,7 +85,7 @@ func stageLook(f *folder, shots []*study.Shot, o LookOptions) (files []string, e
 	if len(shots) > 1 {
 		for _, format := range o.Formats {
 			if format == "png" || format == "tiff" {
-				add(SheetName+"."+format, figureWriter(format, func() (*image.RGBA, error) { return lookSheet(shots, figures) }))
+				add(sheetName+"."+format, figureWriter(format, func() (*image.RGBA, error) { return lookSheet(shots, figures) }))
 			}
 		}
 	}

@@ -14,9 +14,9 @@ import (
 	"squint/scene/project"
 )
 
-// SensitivityFile holds what finishes that are off by a usual amount would
+// sensitivityFile holds what finishes that are off by a usual amount would
 // change.
-const SensitivityFile = "sensitivity.json"
+const sensitivityFile = "sensitivity.json"
 
 // Variant is what counts of a study whose finishes were varied.
 type Variant struct {
@@ -150,7 +150,7 @@ func Sensitivity(w io.Writer, r *study.Result, all []Variant) error {
 	p.para(2, turnedText(r, all))
 	for k, t := range turnedSubjects(r, all) {
 		if k == mostNamed {
-			p.para(4, "Further ones stand in "+SensitivityFile+".")
+			p.para(4, "Further ones stand in "+sensitivityFile+".")
 			break
 		}
 		p.item(2, "-", lipgloss.NewStyle(), 4, t)

@@ -27,7 +27,7 @@ func openingsJSON(r *study.Result) []openingJSON {
 	for i := range r.Openings {
 		o := &r.Openings[i]
 		j := openingJSON{Name: o.Opening.Name, Group: o.Opening.Group, AreaM2: number(o.Opening.Rect.WidthM * o.Opening.Rect.HeightM),
-			SunHours: number(o.SunH), Cloth: number(o.Class), SharesCSV: OpeningsFile}
+			SunHours: number(o.SunH), Cloth: number(o.Class), SharesCSV: openingsFile}
 		for k, s := range o.Seasons {
 			j.Seasons = append(j.Seasons, seasonJSON{study.Seasons[k], s.Hours, number(s.Lit), number(s.Kept())})
 		}

@@ -14,8 +14,8 @@ const (
 	SummaryFile = "summary.json"
 	ViewsFile   = "hours-views.csv"
 	SensorsFile = "hours-sensors.csv"
-	// OpeningsFile holds the sunlit share of each opening.
-	OpeningsFile = "hours-openings.csv"
+	// openingsFile holds the sunlit share of each opening.
+	openingsFile = "hours-openings.csv"
 	PictureDir   = "worst-hour"
 )
 
@@ -72,12 +72,12 @@ func stageAll(f *folder, r *study.Result, o Options) error {
 		}
 	}
 	if len(r.Openings) > 0 {
-		if err := add(OpeningsFile, func(w io.Writer) error { return writeOpeningHours(w, r) }); err != nil {
+		if err := add(openingsFile, func(w io.Writer) error { return writeOpeningHours(w, r) }); err != nil {
 			return err
 		}
 	}
 	if o.Variants != nil {
-		if err := add(SensitivityFile, func(w io.Writer) error { return writeSensitivity(w, r, o.Variants) }); err != nil {
+		if err := add(sensitivityFile, func(w io.Writer) error { return writeSensitivity(w, r, o.Variants) }); err != nil {
 			return err
 		}
 	}
