@@ -1,6 +1,7 @@
 package scene
 
 import (
+	"cmp"
 	"errors"
 	"fmt"
 	"io/fs"
@@ -98,7 +99,7 @@ func ReadClimate(fsys fs.FS, p *project.Project, occupied []bool) (*Climate, err
 	north := p.Site.NorthDeg * math.Pi / 180
 	c.SinAltitude = make([]float64, len(y.Records))
 	c.DiffuseLx = make([]float64, len(y.Records))
-	c.Parts = 60 / p.Simulation.StepMin
+	c.Parts = 60 / cmp.Or(p.Simulation.StepMin, 60)
 	steps, err := c.steps(c.Parts)
 	if err != nil {
 		return nil, err
