@@ -7,6 +7,8 @@ import (
 	"slices"
 	"testing"
 
+	"squint/scene"
+	"squint/scene/scenetest"
 	"squint/scene/view"
 	"squint/trace"
 )
@@ -120,6 +122,46 @@ func TestErrorIsHonest(t *testing.T) {
 	// Twin: errors stated at half their size have four times that.
 	if twin := got * 4; math.Abs(twin-median) <= allowed {
 		t.Errorf("twin with halved errors was accepted: %.3f", twin)
+	}
+}
+
+// TestLevelsOfOnePart: of a pixel that shows a table's edge, the samples on the
+// floor below, of the same part, do not count as light on the table top.
+func TestLevelsOfOnePart(t *testing.T) {
+	const samples = 4 * Batches
+	counts := func(height float64) (edge, table int32) {
+		m := newModel(t)
+		part, white := scenetest.Part(m.s, "room", scene.Room, 0.2), m.matte(0.5)
+		scenetest.Rect(m.s, part, white, at(0, 0, 0), at(4, 0, 0), at(0, 4, 0))
+		scenetest.Rect(m.s, part, white, at(0, 0, height), at(2.06, 0, 0), at(0, 4, 0))
+		c, err := view.NewPlan(0, 4, 0, 4, 1.5, 40)
+		if err != nil {
+			t.Fatal(err)
+		}
+		l := light(t, trace.Accelerate(m.s, 1), sunny(t), 1, c)
+		f, err := l.newFilm(context.Background(), c, Illuminance)
+		if err != nil {
+			t.Fatal(err)
+		}
+		for f.rounds*Batches < samples {
+			if err := l.round(context.Background(), f); err != nil {
+				t.Fatal(err)
+			}
+		}
+		for b := range f.batch {
+			edge += f.batch[b][20*f.width+20].count
+			table += f.batch[b][20*f.width+10].count
+		}
+		return edge, table
+	}
+	// The edge at 2.06 m lies in the pixel from 2.0 to 2.1 m, the table under its
+	// middle: 0.6 of 32 samples, 19.2, within one of 4 strata in each of 8 batches.
+	if edge, table := counts(0.75); edge < 12 || edge > 26 || table != samples {
+		t.Errorf("got %d samples that share light at the edge and %d on the table, want 19 and %d", edge, table, samples)
+	}
+	// Twin: a sheet on the floor is one level with it.
+	if edge, _ := counts(0.005); edge != samples {
+		t.Errorf("a sheet of 5 mm: got %d samples that share light, want %d", edge, samples)
 	}
 }
 
