@@ -91,7 +91,7 @@ func (w *worker) render(bl *surface.Block, e *coeff.Eye, eye, batch int, lit []u
 	img := w.eye.image[batch]
 	var random [surface.Width]sampling.Stream
 	for h, m := range bl.Moments {
-		random[h] = sampling.NewStream(w.cfg.Seed, streamEyeSun, uint64(eye), uint64(m.Hour), uint64(batch))
+		random[h] = sampling.NewStream(w.cfg.Seed, streamEyeSun, uint64(eye), uint64(m.Step), uint64(batch))
 	}
 	for p := range e.Inside {
 		row := surface.Row{}
