@@ -46,7 +46,7 @@ func (c *Climate) sunFor(t time.Time) (sky.Sun, error) {
 
 // finished completes a moment whose sun and sky stand in the world frame.
 func finished(p *project.Project, m *Moment) (*Moment, error) {
-	m.Hour = -1
+	m.Step = -1
 	m.turn(p.Site.NorthDeg * math.Pi / 180)
 	h, has, err := turnedHorizon(p)
 	if err != nil {

@@ -14,7 +14,7 @@ func hourly(days, weekday int) []Step {
 	var list []Step
 	for d := range days {
 		for h := range 24 {
-			list = append(list, Step{Hour: d*24 + h, Day: d, Weekday: (weekday + d) % 7, ClockH: float64(h) + 0.5, Share: 1, Occupied: h >= 8 && h < 18})
+			list = append(list, Step{At: d*24 + h, Day: d, Weekday: (weekday + d) % 7, ClockH: float64(h) + 0.5, Share: 1, Occupied: h >= 8 && h < 18})
 		}
 	}
 	return list

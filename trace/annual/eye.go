@@ -107,7 +107,7 @@ func (w *worker) render(bl *surface.Block, e *coeff.Eye, eye, batch int, lit []u
 	light := &w.lights[batch]
 	var random [surface.Width]sampling.Stream
 	for h, m := range bl.Moments {
-		random[h] = sampling.NewStream(w.cfg.Seed, streamEyeSun, uint64(eye), uint64(m.Hour), uint64(batch))
+		random[h] = sampling.NewStream(w.cfg.Seed, streamEyeSun, uint64(eye), uint64(m.Step), uint64(batch))
 	}
 	var rows [tileWidth]surface.Row
 	for t := range w.eye.sunlit {

@@ -21,7 +21,7 @@ func Build(r *study.Result, words Words) *Archive {
 	*d = Design{
 		Schema: Schema, SchemaVersion: SchemaVersion, Words: words,
 		NorthRad: r.Project.Site.NorthDeg * math.Pi / 180,
-		FromH:    r.Calendar.FromH, ToH: r.Calendar.ToH, Use: len(r.Occupied),
+		FromH:    r.Calendar.FromH, ToH: r.Calendar.ToH, Use: int(r.Calendar.InHours(len(r.Occupied))),
 		Levels: levels(), Asked: -1,
 		SourceRule: c.SourceRule, SourceCdM2: c.SourceLuminance, SourceMultiple: c.SourceMultiple,
 		Standings: r.Standings, Views: []View{}, Planes: []Plane{},
@@ -62,7 +62,7 @@ func (a *Archive) addYear(r *study.Result) {
 	pack(&p, "standing", "u8", standing)
 	a.Design.Records = a.add(&p)
 
-	days := n / 24
+	days := n / (24 * r.Climate.PerHour())
 	shift, rise, set := make([]uint8, days), make([]uint16, days), make([]uint16, days)
 	for d := range days {
 		shift[d] = uint8(r.Calendar.ClockShiftH(d))
@@ -78,7 +78,7 @@ func (a *Archive) addYear(r *study.Result) {
 	var sun []int16
 	var direct, sky []uint32
 	for _, m := range r.Climate.Moments {
-		record = append(record, uint16(m.Hour))
+		record = append(record, uint16(m.Step))
 		minute = append(minute, uint16(m.Time.Hour()*60+m.Time.Minute()))
 		for _, x := range vec(m.Sun) {
 			sun = append(sun, int16(math.Round(x*32767)))
@@ -169,7 +169,7 @@ func (a *Archive) plane(r *study.Result, p *study.PlaneResult) Plane {
 	for k, m := range r.Climate.Moments {
 		sum := 0.0
 		for i := range n {
-			sum += float64(p.E[i][m.Hour])
+			sum += float64(p.E[i][m.Step])
 		}
 		mean[k] = uint32(math.Round(sum / float64(n)))
 	}

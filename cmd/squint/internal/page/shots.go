@@ -64,7 +64,7 @@ func (a *Archive) view(r *study.Result, v *study.ViewResult) View {
 		out.Axes = [3][3]float64{vec(forward), vec(left), vec(r3.Cross(forward, left))}
 	}
 	if w := v.Worst; w != nil && w.InsideOf != nil {
-		out.Worst, out.WorstPx = w.Moment.Hour, w.InsideOf.View.Width
+		out.Worst, out.WorstPx = w.Moment.Step, w.InsideOf.View.Width
 		code := make([]uint16, len(w.Lum))
 		for i, l := range w.Lum {
 			if l > 0 {
@@ -249,9 +249,9 @@ func (a *Archive) planeShots(r *study.Result, p *study.PlaneResult) Shots {
 	all, sun := make([]float32, n), make([]float32, n)
 	records := make([]int, len(moments))
 	for k, m := range moments {
-		records[k] = m.Hour
+		records[k] = m.Step
 		for i := range n {
-			all[i], sun[i] = p.E[i][m.Hour], p.Direct[i][m.Hour]
+			all[i], sun[i] = p.E[i][m.Step], p.Direct[i][m.Step]
 		}
 		roll.Keep(k, all, sun)
 	}

@@ -223,7 +223,7 @@ func (r *Result) hoursOf(name string) (daylight.Hours, string) {
 	case project.HoursDaylight:
 		return r.Daylight, "the daylight hours"
 	case project.HoursAll:
-		all := make(daylight.Hours, daylight.HoursPerYear)
+		all := make(daylight.Hours, r.Calendar.Steps())
 		for h := range all {
 			all[h] = h
 		}
@@ -265,7 +265,7 @@ func (y *year) runClear(ctx context.Context, in *Input, e *engine, k int) error 
 		return nil
 	}
 	for i, m := range in.Clear {
-		if in.standingAt(m.Hour) != k {
+		if in.standingAt(m.Step) != k {
 			continue
 		}
 		d, err := annual.Run(ctx, e.t, e.rec, []*scene.Moment{m}, e.cfg, nil, nil)
@@ -282,11 +282,11 @@ func (y *year) runClear(ctx context.Context, in *Input, e *engine, k int) error 
 	return nil
 }
 
-// standingAt is the standing that holds a record, the first where none does.
-func (in *Input) standingAt(hour int) int {
+// standingAt is the standing that holds a step, the first where none does.
+func (in *Input) standingAt(step int) int {
 	for k := range in.Standings {
 		for _, m := range in.Standings[k].Moments {
-			if m.Hour == hour {
+			if m.Step == step {
 				return k
 			}
 		}

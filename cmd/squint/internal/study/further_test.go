@@ -152,7 +152,7 @@ func TestSunOnOpenings(t *testing.T) {
 		t.Fatal(err)
 	}
 	o := &r.Openings[0]
-	with, hours := 0, 0
+	with, hours := 0.0, 0.0
 	for h, x := range o.Sunlit {
 		if x != x {
 			continue
@@ -169,7 +169,7 @@ func TestSunOnOpenings(t *testing.T) {
 		}
 	}
 	if with == 0 || with != hours {
-		t.Errorf("%d records with a share, %d hours in seasons", with, hours)
+		t.Errorf("%g records with a share, %g hours in seasons", with, hours)
 	}
 	for month, want := range map[int]int{11: 0, 0: 0, 1: 0, 2: 1, 5: 2, 8: 3, 10: 3} {
 		if got := seasonOf(month); got != want {

@@ -14,7 +14,7 @@ import (
 	"squint/trace/coeff"
 )
 
-// ViewResult is one viewpoint's year. Series have one value per record; hours
+// ViewResult is one viewpoint's year. Series have one value per step; hours
 // in use without daylight hold 0, hours not in use NaN.
 type ViewResult struct {
 	Viewpoint scene.Viewpoint
@@ -200,7 +200,7 @@ func (g *standingSink) take(worker int, f *annual.Frame) {
 	v := &g.views[f.Eye]
 	w.discs = toView(w.discs[:0], e, f.Discs)
 	dgp, ev, se, evErr := glare.Pooled(g.field, f.Mean, f.Batch, w.discs, g.opt, causeFrom, &w.scratch)
-	h := f.Moment.Hour
+	h := f.Moment.Step
 	v.DGP[h], v.Ev[h], v.StdErr[h], v.EvErr[h] = float32(dgp), float32(ev), float32(se), float32(evErr)
 	v.InRange[h] = glare.InRange(dgp, ev)
 	v.Coarse[h] = float32(g.atHalf(w, e, f.Mean))
@@ -239,7 +239,7 @@ func (g *standingSink) take(worker int, f *annual.Frame) {
 
 // brighter is whether an hour takes the place of what was the worst.
 func brighter(dgp float64, hour int, w *Worst) bool {
-	return w == nil || dgp > w.DGP || dgp == w.DGP && hour < w.Moment.Hour
+	return w == nil || dgp > w.DGP || dgp == w.DGP && hour < w.Moment.Step
 }
 
 // causeID is the index of a cause among those of a view.

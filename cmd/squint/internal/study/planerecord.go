@@ -60,8 +60,8 @@ func (p *planeRecord) learn(y *year, first, n int, moments, clear []*scene.Momen
 	}
 	var news []planeHour
 	for k, m := range moments {
-		if p.at(m.Hour) == nil {
-			news = append(news, planeHour{m.Hour, column(y.light.E, k), column(y.light.StdErr, k), column(y.light.Direct, k)})
+		if p.at(m.Step) == nil {
+			news = append(news, planeHour{m.Step, column(y.light.E, k), column(y.light.StdErr, k), column(y.light.Direct, k)})
 		}
 	}
 	p.Hours = append(p.Hours, news...)

@@ -8,7 +8,7 @@ import (
 	"squint/scene"
 )
 
-// PlaneResult is one work plane's year. Series are [sensor][record] in lx, 0
+// PlaneResult is one work plane's year. Series are [sensor][step] in lx, 0
 // at night.
 type PlaneResult struct {
 	Plane     scene.WorkPlane
@@ -75,7 +75,7 @@ func (r *Result) spread(byMoment [][]float32) [][]float32 {
 	for s := range byMoment {
 		out[s] = make([]float32, len(r.Climate.SinAltitude))
 		for k, m := range r.Climate.Moments {
-			out[s][m.Hour] = byMoment[s][k]
+			out[s][m.Step] = byMoment[s][k]
 		}
 	}
 	return out
@@ -95,8 +95,8 @@ func (r *Result) judgePlane(p *PlaneResult, z float64) {
 	}
 	p.Factors = daylight.Factors(p.Factor)
 	plane := daylight.Plane{E: p.E, SE: p.StdErr, Z: z}
-	p.SDA = daylight.SDA(plane, r.Clock, daylight.DefaultSpatial)
-	p.ASE = daylight.ASE(p.Direct, r.Clock, daylight.DefaultExposure)
+	p.SDA = daylight.SDA(plane, r.Clock, daylight.DefaultSpatial, r.Climate.PerHour())
+	p.ASE = daylight.ASE(p.Direct, r.Clock, daylight.DefaultExposure, r.Climate.PerHour())
 	for k, l := range provisionLevels(r.Project) {
 		res := daylight.Provision(plane, r.Daylight, l)
 		v := verdict.Provision(p.Plane.Name, res)

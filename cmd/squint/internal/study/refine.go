@@ -70,7 +70,7 @@ func (r *Result) refine(ctx context.Context, in *Input, opt Options, y *year) er
 			to.Refined = round
 			to.lookCloser(from)
 		}
-		r.Notes = append(r.Notes, fmt.Sprintf("look %d: %s of %s lay too near the limit and were computed again with %d times the samples.", round+1, count(len(open), "hour"), count(len(views), "viewpoint"), factor))
+		r.Notes = append(r.Notes, fmt.Sprintf("look %d: %s of %s lay too near the limit and were computed again with %d times the samples.", round+1, count(len(open), stepWord(in.Climate)), count(len(views), "viewpoint"), factor))
 	}
 	return nil
 }
@@ -79,12 +79,20 @@ func (r *Result) refine(ctx context.Context, in *Input, opt Options, y *year) er
 // computed again.
 func (v *ViewResult) lookCloser(again *ViewResult) {
 	if v.Worst != nil {
-		h := v.Worst.Moment.Hour
+		h := v.Worst.Moment.Step
 		v.Worst.DGP, v.Worst.StdErr, v.Worst.Ev = float64(v.DGP[h]), float64(v.StdErr[h]), float64(v.Ev[h])
 	}
 	if again.Worst != nil && (v.Worst == nil || again.Worst.DGP >= v.Worst.DGP) {
 		v.Worst = again.Worst
 	}
+}
+
+// stepWord is what the year is counted in.
+func stepWord(c *scene.Climate) string {
+	if c.PerHour() > 1 {
+		return "step"
+	}
+	return "hour"
 }
 
 func count(n int, what string) string {
@@ -122,7 +130,7 @@ func subset(in *Input, views []int, open map[int]bool, factor, round int) *Input
 	for _, st := range in.Standings {
 		few := Standing{Label: st.Label, World: st.World, Scene: reduced(st.Scene, views)}
 		for _, m := range st.Moments {
-			if open[m.Hour] {
+			if open[m.Step] {
 				few.Moments = append(few.Moments, m)
 			}
 		}
@@ -134,7 +142,7 @@ func subset(in *Input, views []int, open map[int]bool, factor, round int) *Input
 	c := *in.Climate
 	c.Moments = nil
 	for _, m := range in.Climate.Moments {
-		if open[m.Hour] {
+		if open[m.Step] {
 			c.Moments = append(c.Moments, m)
 		}
 	}
@@ -171,5 +179,5 @@ func (r *Result) glareHours(v *ViewResult, limit, z float64) verdict.GlareHours 
 			half[k] = float32(z)*v.StdErr[h] + v.Bias[h]
 		}
 	}
-	return verdict.CountGlare(dgp, half, limit, 1)
+	return verdict.CountGlare(dgp, half, limit, 1).OfSteps(r.Climate.PerHour())
 }

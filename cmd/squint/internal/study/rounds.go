@@ -105,7 +105,7 @@ func (o *operation) look(ctx context.Context, looks map[control.Combination]*loo
 // observed is what the viewpoints saw at a step, and through which groups of
 // openings what glared most.
 func (o *operation) observed(y *year, step int) control.Observed {
-	h := o.in.Climate.Moments[step].Hour
+	h := o.in.Climate.Moments[step].Step
 	seen := control.Observed{DGP: make([]float64, len(y.glare.views)), Through: make([][]string, len(y.glare.views))}
 	for i := range y.glare.views {
 		v := &y.glare.views[i]
@@ -173,7 +173,7 @@ func (o *operation) reshoot(ctx context.Context, chosen []control.Combination, o
 	wrong := map[control.Combination][]*scene.Moment{}
 	var order []control.Combination
 	for i, m := range o.in.Climate.Moments {
-		frame := opt.shots.frame[m.Hour]
+		frame := opt.shots.frame[m.Step]
 		if !m.Occupied || frame < 0 || opt.shots.of[frame] == nil {
 			continue
 		}
@@ -210,7 +210,7 @@ func (y *year) adoptClear(o *operation, looks map[control.Combination]*look, cho
 	for i, m := range o.in.Clear {
 		c := chosen[0]
 		for k, s := range o.steps {
-			if s.Hour == m.Hour {
+			if s.At == m.Step {
 				c = chosen[k]
 			}
 		}
@@ -239,15 +239,15 @@ func (o *operation) worstHours(ctx context.Context, y *year, looks map[control.C
 		v := &y.glare.views[i]
 		worst := -1
 		for k, m := range o.in.Climate.Moments {
-			if m.Occupied && (worst < 0 || v.DGP[m.Hour] > v.DGP[o.in.Climate.Moments[worst].Hour]) {
+			if m.Occupied && (worst < 0 || v.DGP[m.Step] > v.DGP[o.in.Climate.Moments[worst].Step]) {
 				worst = k
 			}
 		}
 		if worst < 0 {
 			continue
 		}
-		c, h := chosen[worst], o.in.Climate.Moments[worst].Hour
-		if w := looks[c].year.glare.views[i].Worst; w != nil && w.Moment.Hour == h {
+		c, h := chosen[worst], o.in.Climate.Moments[worst].Step
+		if w := looks[c].year.glare.views[i].Worst; w != nil && w.Moment.Step == h {
 			v.Worst = w
 			continue
 		}
@@ -278,7 +278,7 @@ func (o *operation) worstHours(ctx context.Context, y *year, looks map[control.C
 				continue
 			}
 			v.Worst = w
-			h := w.Moment.Hour
+			h := w.Moment.Step
 			w.DGP, w.StdErr, w.Ev = float64(v.DGP[h]), float64(v.StdErr[h]), float64(v.Ev[h])
 		}
 	}
@@ -303,7 +303,7 @@ func (y *year) adopt(from *year, in *Input, moments []*scene.Moment) {
 			a.Worst = b.Worst
 		}
 		for _, m := range moments {
-			h := m.Hour
+			h := m.Step
 			a.DGP[h], a.StdErr[h], a.Ev[h], a.EvErr[h], a.InRange[h] = b.DGP[h], b.StdErr[h], b.Ev[h], b.EvErr[h], b.InRange[h]
 			a.Coarse[h], a.Bias[h], a.Cause[h] = b.Coarse[h], b.Bias[h], -1
 			if b.Cause[h] >= 0 {

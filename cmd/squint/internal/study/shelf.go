@@ -28,13 +28,13 @@ type shelf struct {
 func newShelf(in *Input, k int, opt Options) *shelf {
 	s := &shelf{opt: opt, in: in, st: &in.Standings[k], lackHours: map[int]bool{}, seenHours: map[int]bool{}}
 	for _, m := range s.st.Moments {
-		s.hours = append(s.hours, m.Hour)
+		s.hours = append(s.hours, m.Step)
 		if m.Occupied {
-			s.used = append(s.used, m.Hour)
+			s.used = append(s.used, m.Step)
 		}
 	}
 	for _, m := range in.Clear {
-		if in.standingAt(m.Hour) == k {
+		if in.standingAt(m.Step) == k {
 			s.clear = append(s.clear, m)
 		}
 	}
@@ -113,9 +113,9 @@ func (s *shelf) compute(ctx context.Context, r *Result) error {
 	c := *s.in.Climate
 	c.Moments = nil
 	for _, m := range s.st.Moments {
-		if s.lackHours[m.Hour] {
+		if s.lackHours[m.Step] {
 			open := *m
-			open.Occupied = s.seenHours[m.Hour]
+			open.Occupied = s.seenHours[m.Step]
 			c.Moments = append(c.Moments, &open)
 		}
 	}

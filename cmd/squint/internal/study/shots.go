@@ -77,8 +77,8 @@ func newShotPlan(in *Input) *shotPlan {
 	}
 	for _, m := range in.Climate.Moments {
 		if m.Occupied {
-			s.frame[m.Hour] = len(s.records)
-			s.records = append(s.records, m.Hour)
+			s.frame[m.Step] = len(s.records)
+			s.records = append(s.records, m.Step)
 		}
 	}
 	s.kept, s.of = make([]*Shots, len(in.Scene.Viewpoints)), make([]*scene.Scene, len(s.records))
@@ -156,7 +156,7 @@ func (g *standingSink) keepShot(w *sinkScratch, e *coeff.Eye, f *annual.Frame) {
 	if g.shots == nil {
 		return
 	}
-	frame := g.shots.frame[f.Moment.Hour]
+	frame := g.shots.frame[f.Moment.Step]
 	g.mu[f.Eye].Lock()
 	x := g.shots.opened(f.Eye, e)
 	g.shots.of[frame] = g.scene

@@ -39,9 +39,9 @@ func TestShotsShowTheWorstHour(t *testing.T) {
 	if s == nil || s.Film == nil {
 		t.Fatal("got no pictures, want those of one view")
 	}
-	frame := slices.Index(s.Records, v.Worst.Moment.Hour)
+	frame := slices.Index(s.Records, v.Worst.Moment.Step)
 	if frame < 0 {
-		t.Fatalf("record %d has no picture", v.Worst.Moment.Hour)
+		t.Fatalf("record %d has no picture", v.Worst.Moment.Step)
 	}
 	if s.View.Width != v.Worst.InsideOf.View.Width {
 		t.Fatalf("got pictures of %d pixels, want the view's own %d, as it has fewer than the pictures may have", s.View.Width, v.Worst.InsideOf.View.Width)
@@ -64,7 +64,7 @@ func TestShotsShowTheWorstHour(t *testing.T) {
 		t.Errorf("got %d discs, want %d", len(s.Discs[frame]), len(v.Worst.Discs))
 	}
 	// The twin: another hour's picture is not this one.
-	other := slices.IndexFunc(s.Records, func(h int) bool { return v.Ev[h] > 0 && v.Ev[h] < v.Ev[v.Worst.Moment.Hour]/2 })
+	other := slices.IndexFunc(s.Records, func(h int) bool { return v.Ev[h] > 0 && v.Ev[h] < v.Ev[v.Worst.Moment.Step]/2 })
 	if other < 0 {
 		t.Fatal("all hours are alike in this year: the twin sees nothing")
 	}

@@ -143,9 +143,6 @@ type Input struct {
 // Prepare reads everything that a project names and checks it. Errors are the
 // user's to mend, all of them joined.
 func Prepare(fsys fs.FS, p *project.Project, workers int) (*Input, error) {
-	if err := operated(p); err != nil {
-		return nil, err
-	}
 	s, err := scene.Build(fsys, p)
 	if err != nil {
 		return nil, err
@@ -165,16 +162,13 @@ func Prepare(fsys fs.FS, p *project.Project, workers int) (*Input, error) {
 	in.Calendar = calendar(p, c)
 	in.Occupied = in.Calendar.Occupied()
 	in.Clock = in.Calendar.Clock(8, 18)
-	in.Daylight = daylight.SunHighest(c.SinAltitude, daylight.DaylightHoursPerYear)
+	in.Daylight = daylight.SunHighest(c.SinAltitude, daylight.DaylightHoursPerYear*c.PerHour())
 	if len(in.Occupied) == 0 {
 		return nil, fmt.Errorf("%s: occupancy: got no hour of use, want at least one; check days, from, to and holidays", p.File)
 	}
-	used := make([]bool, daylight.HoursPerYear)
-	for _, h := range in.Occupied {
-		used[h] = true
-	}
+	used := in.Occupied.Mask(in.Calendar.Steps())
 	for _, m := range c.Moments {
-		m.Occupied = used[m.Hour]
+		m.Occupied = used[m.Step]
 	}
 	if in.Clear, err = clearMoments(p, c, in.Calendar); err != nil {
 		return nil, err
@@ -198,19 +192,12 @@ func Prepare(fsys fs.FS, p *project.Project, workers int) (*Input, error) {
 	return in, nil
 }
 
-// operated refuses what the file may say but a study does not do yet.
-func operated(p *project.Project) error {
-	if n := p.Simulation.StepMin; n != 60 {
-		return fmt.Errorf("%s: simulation.step_min: got %d, which a check does not take yet; want 60, or leave it out", p.File, n)
-	}
-	return nil
-}
-
 // calendar translates the project's occupancy.
 func calendar(p *project.Project, c *scene.Climate) daylight.Calendar {
 	first := c.Year.Moment(0, -0.5)
 	jan1 := time.Date(first.Year(), 1, 1, 0, 0, 0, 0, time.UTC)
 	k := daylight.Calendar{
+		PerHour:      c.PerHour(),
 		FirstWeekday: (int(jan1.Weekday()) + 6) % 7,
 		Days:         p.Occupancy.Days,
 		FromH:        p.Occupancy.FromH,
@@ -267,7 +254,7 @@ func Run(ctx context.Context, in *Input, opt Options) (*Result, error) {
 	if opt.Store != nil {
 		r.Reused = r.traced.words(in.Scene)
 	}
-	r.Standings, r.Standing = standingByHour(in.Standings)
+	r.Standings, r.Standing = standingByStep(in.Standings, in.Calendar.Steps())
 	if err := r.refine(ctx, in, opt, y); err != nil {
 		return nil, err
 	}

@@ -109,7 +109,7 @@ func (v *viewRecord) learn(y *year, j int, moments []*scene.Moment, shots *shotP
 		if !m.Occupied { // for work planes alone
 			continue
 		}
-		h := m.Hour
+		h := m.Step
 		x := v.at(h)
 		if x == nil {
 			news = append(news, viewHour{Hour: h, DGP: from.DGP[h], StdErr: from.StdErr[h], Ev: from.Ev[h], EvErr: from.EvErr[h],
@@ -141,7 +141,7 @@ func (v *viewRecord) learnTops(tops map[int]*Worst) {
 	for _, w := range tops {
 		e := w.InsideOf
 		v.View, v.Seen, v.Inside = e.View, e.Seen, e.Inside
-		t := topFrame{Hour: w.Moment.Hour, DGP: w.DGP, Ev: w.Ev, StdErr: w.StdErr, Discs: w.Discs}
+		t := topFrame{Hour: w.Moment.Step, DGP: w.DGP, Ev: w.Ev, StdErr: w.StdErr, Discs: w.Discs}
 		for _, px := range e.Inside {
 			t.Lum = append(t.Lum, w.Lum[px])
 		}
@@ -162,7 +162,7 @@ func (y *year) readView(s *shelf, i int, r *Result) {
 	r.tell(s.in, x.Sides, x.Coarsen)
 	var eye *coeff.Eye
 	for _, m := range s.st.Moments {
-		h := m.Hour
+		h := m.Step
 		a := x.at(h)
 		if !m.Occupied || a == nil {
 			continue
@@ -192,7 +192,7 @@ func (y *year) readView(s *shelf, i int, r *Result) {
 		w.Lum[px] = t.Lum[k]
 	}
 	for _, m := range s.st.Moments {
-		if m.Hour == t.Hour {
+		if m.Step == t.Hour {
 			w.Moment = m
 		}
 	}

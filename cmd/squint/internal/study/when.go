@@ -48,9 +48,9 @@ func (v *ViewResult) when(r *Result, limit float64) string {
 			continue
 		}
 		n++
-		clock := (h%24 + int(r.Calendar.ClockShiftH(h/24))) % 24
-		byHour[clock]++
-		byMonth[r.Climate.Year.Records[h].Month-1]++
+		_, clock := r.Calendar.ClockAt(h)
+		byHour[int(clock)]++
+		byMonth[r.Climate.Year.Records[h/r.Climate.PerHour()].Month-1]++
 		byCause[v.Cause[h]]++
 	}
 	if n == 0 {
