@@ -46,7 +46,7 @@ func TestPageOfAFloor(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	r := &study.Result{Project: p, Scene: in.Scene, Climate: in.Climate, Calendar: in.Calendar, Occupied: in.Occupied, Standings: []string{""}, Standing: make([]int16, 8760), Outcome: verdict.NotMet}
+	r := &study.Result{Project: p, Scene: in.Scene, Climate: in.Climate, Calendar: in.Calendar, Occupied: in.Occupied, Standings: []string{""}, Stood: []*scene.Scene{in.Scene}, Standing: make([]int16, 8760), Outcome: verdict.NotMet}
 	w, err := view.New(r3.Vec{X: 2, Y: 2, Z: 1.2}, r3.Vec{Y: -1}, r3.Vec{Z: 1}, view.Equidistant, math.Pi, pixels, pixels)
 	if err != nil {
 		t.Fatal(err)
@@ -111,10 +111,11 @@ func floorView(r *study.Result, i int, w view.View, inside []int32, rank int) st
 	}
 	s := &study.Shots{View: w, Eye: w, Inside: inside, Records: records, Film: roll.Develop(rank)}
 	s.Discs = make([][]annual.Disc, len(records))
+	var seen []coeff.Seen
 	for range inside {
-		s.Seen = append(s.Seen, coeff.Seen{Part: int32(random.IntN(2)), Via: -1})
+		seen = append(seen, coeff.Seen{Part: int32(random.IntN(2)), Via: -1})
 	}
-	s.SeenInside = inside
+	s.Stood, s.SeenInside = []study.Stood{{Scene: r.Scene, Seen: seen}}, inside
 	v.Shots = s
 	return v
 }

@@ -12,21 +12,36 @@ type Film struct {
 
 	Mean   []int16 // by point, code times 128
 	Basis  []int8  // [rank][point], 127 is the pattern's largest size
-	Weight []int16 // [rank][frame], what 127 stands for in codes times 16
+	Weight []int16 // [rank][frame], what 127 stands for in codes times 4
 
 	Lit      []uint8 // bits, [frame][point], each frame from a whole byte
 	LitPoint []int16 // by point, code times 128
 	LitFrame []int16 // by frame, code times 128
 
-	// MedianError and WideError are the median and the 95th percentile of the
-	// relative difference between a point's value as kept on the roll, itself
-	// good to half a step, and as shown.
-	MedianError, WideError float64
+	// Steps says how exact the first patterns alone are; the last step is all.
+	Steps []Step
 }
 
+// Step is a number of patterns and what they leave: the median and the 95th
+// percentile of the relative difference between a point's value as kept on the
+// roll, itself good to half a code, and as shown.
+type Step struct {
+	Rank         int
+	Median, Wide float64
+}
+
+// Exact is the last step.
+func (f *Film) Exact() Step { return f.Steps[len(f.Steps)-1] }
+
+// stepEvery is the number of patterns in a step. Own choice.
+const stepEvery = 2
+
+// How finely codes are kept. A code is some per cent of a value, so that a
+// weight is off by an eighth of that at most, where its pattern is strongest.
+// Own choice.
 const (
 	meanScale   = 128
-	weightScale = 16
+	weightScale = 4
 )
 
 // rowBytes is the length of a frame's mask.
@@ -39,10 +54,13 @@ func (f *Film) lit(frame, point int) bool {
 func (f *Film) value(code float64) float64 { return f.Least * math.Exp(f.StepLn*code) }
 
 // At fills out, a value for each point, with a frame as it is shown.
-func (f *Film) At(frame int, out []float64) {
+func (f *Film) At(frame int, out []float64) { f.atStep(frame, f.Rank, out) }
+
+// atStep is At with the first patterns alone.
+func (f *Film) atStep(frame, rank int, out []float64) {
 	for p := range out {
 		code := float64(f.Mean[p]) / meanScale
-		for k := range f.Rank {
+		for k := range rank {
 			code += float64(f.Weight[k*f.Frames+frame]) / weightScale * float64(f.Basis[k*f.Points+p]) / 127
 		}
 		out[p] = f.value(code)
@@ -144,26 +162,35 @@ func fixed(v []float64) []int16 {
 	return out
 }
 
-// measure compares every few frames as shown with the roll.
+// measureEvery is the distance of the frames that are measured: a prime, so
+// that they fall on all hours of the day. Own choice.
+const measureEvery = 19
+
+// measure compares every few frames as shown, step by step, with the roll.
 func (r *Roll) measure(f *Film) {
-	const every = 7
-	var off []float64
+	off := make([]float64, 0, (r.Frames/measureEvery+1)*r.Points)
 	shown, kept := make([]float64, r.Points), make([]float64, r.Points)
-	for i := 0; i < r.Frames; i += every {
-		f.At(i, shown)
-		for p, c := range r.rest(i) {
-			kept[p] = f.value(float64(c))
+	for rank := min(stepEvery, f.Rank); ; rank = min(rank+stepEvery, f.Rank) {
+		off = off[:0]
+		for i := 0; i < r.Frames; i += measureEvery {
+			f.atStep(i, rank, shown)
+			for p, c := range r.rest(i) {
+				kept[p] = f.value(float64(c))
+			}
+			for _, l := range r.frames[i].Lit {
+				kept[l.Point] += f.value(float64(l.Code))
+			}
+			for p := range kept {
+				off = append(off, math.Abs(shown[p]-kept[p])/kept[p])
+			}
 		}
-		for _, l := range r.frames[i].Lit {
-			kept[l.Point] += f.value(float64(l.Code))
+		s := Step{Rank: rank}
+		if len(off) > 0 {
+			slices.Sort(off)
+			s.Median, s.Wide = off[len(off)/2], off[len(off)*19/20]
 		}
-		for p := range kept {
-			off = append(off, math.Abs(shown[p]-kept[p])/kept[p])
+		if f.Steps = append(f.Steps, s); rank == f.Rank {
+			return
 		}
 	}
-	if len(off) == 0 {
-		return
-	}
-	slices.Sort(off)
-	f.MedianError, f.WideError = off[len(off)/2], off[len(off)*19/20]
 }

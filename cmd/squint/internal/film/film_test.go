@@ -3,7 +3,6 @@ package film
 import (
 	"math"
 	"reflect"
-	"slices"
 	"sync"
 	"testing"
 )
@@ -63,8 +62,8 @@ func TestFilmShowsWhatWasKept(t *testing.T) {
 	if far := worst(f); far > bound {
 		t.Errorf("largest relative difference: got %.4f, want at most %.4f", far, bound)
 	}
-	if !(f.MedianError > 0 && f.MedianError < f.WideError && f.WideError < bound) {
-		t.Errorf("stated errors: got median %.4f, 95th percentile %.4f, want 0 < median < wide < %.4f", f.MedianError, f.WideError, bound)
+	if e := f.Exact(); e.Rank != f.Rank || !(e.Median > 0 && e.Median < e.Wide && e.Wide < bound) {
+		t.Errorf("stated errors: got %+v, want all %d patterns and 0 < median < wide < %.4f", e, f.Rank, bound)
 	}
 }
 
@@ -77,14 +76,34 @@ func TestFilmWithTooFewPatternsIsFound(t *testing.T) {
 	if far := worst(f); far <= bound {
 		t.Errorf("one pattern: got a largest difference of %.4f, want more than %.4f", far, bound)
 	}
-	if f.WideError <= bound {
-		t.Errorf("one pattern: got a stated error of %.4f, want more than %.4f", f.WideError, bound)
+	if f.Exact().Wide <= bound {
+		t.Errorf("one pattern: got a stated error of %.4f, want more than %.4f", f.Exact().Wide, bound)
+	}
+}
+
+// The first patterns alone are stated to be as exact as a film of no more: they
+// are its patterns. exact: but for the last digits of the singular directions,
+// bounded by the same fifth of a step.
+func TestStepsStateWhatTheyLeave(t *testing.T) {
+	r := shoot(1)
+	f := r.Develop(6)
+	for i, s := range f.Steps {
+		if want := stepEvery * (i + 1); s.Rank != want {
+			t.Errorf("step %d: got %d patterns, want %d", i, s.Rank, want)
+		}
+		alone := r.Develop(s.Rank).Exact()
+		if far := math.Abs(s.Wide - alone.Wide); far > 0.2*r.stepLn() {
+			t.Errorf("%d patterns: got %.4f, want %.4f as of a film of so many", s.Rank, s.Wide, alone.Wide)
+		}
+	}
+	if f.Steps[0].Wide <= f.Exact().Wide {
+		t.Errorf("got %.4f with %d patterns, want more than the %.4f of all", f.Steps[0].Wide, f.Steps[0].Rank, f.Exact().Wide)
 	}
 }
 
 func TestFilmDoesNotDependOnOrder(t *testing.T) {
 	a, b := shoot(1).Develop(6), shoot(7).Develop(6)
-	if !slices.Equal(a.Basis, b.Basis) || !slices.Equal(a.Weight, b.Weight) || !slices.Equal(a.Lit, b.Lit) || !slices.Equal(a.LitPoint, b.LitPoint) {
+	if !reflect.DeepEqual(a, b) {
 		t.Error("films of the same frames kept in another order differ")
 	}
 }

@@ -126,8 +126,8 @@ func (s *shelf) compute(ctx context.Context, r *Result) error {
 	opt := s.opt
 	opt.Store = nil
 	if opt.shots != nil {
-		all := newShotPlan(&sub)
-		all.pixels, all.rank = opt.shots.pixels, opt.shots.rank
+		all := newShotPlan(&sub, true)
+		all.pixels = opt.shots.pixels
 		opt.shots = all
 	}
 	var own Result

@@ -3,6 +3,7 @@ package study
 import (
 	"context"
 	"math"
+	"slices"
 
 	"squint/cmd/squint/internal/film"
 	"squint/scene"
@@ -11,8 +12,9 @@ import (
 	"squint/trace/coeff"
 )
 
-// Shots are small pictures of a view's hours in use with daylight, for display
-// only: luminance, cd/m2, without the sun's discs.
+// Shots are small pictures of a view's hours with daylight, for display only:
+// luminance, cd/m2, without the sun's discs. Hours out of use are among them
+// where eyes are open then.
 type Shots struct {
 	View    view.View // of the pictures
 	Inside  []int32   // by point of the film: pixel, row-major
@@ -20,13 +22,21 @@ type Shots struct {
 	Film    *film.Film
 	Discs   [][]annual.Disc // by frame
 
-	// Seen says what stands in the pixels of Eye, by position in SeenInside.
+	// Stood says what stands in the pixels of Eye, by position in SeenInside: in
+	// the first standings of which there are pictures.
 	Eye        view.View
-	Seen       []coeff.Seen
+	Stood      []Stood
 	SeenInside []int32
 
 	roll    *film.Roll
 	shrinks []shrink
+}
+
+// Stood is what a view sees in one standing. The numbers of parts are those of
+// its scene; another standing's scene has others.
+type Stood struct {
+	Scene *scene.Scene
+	Seen  []coeff.Seen
 }
 
 // shrink moves a share of a pixel of the eye to a point of the picture.
@@ -46,29 +56,36 @@ const (
 	mostShown  = 1e6
 )
 
-// Sizes of the pictures by the number of views: across, in pixels, and the
-// patterns that they are made of. What they are kept in must fit beside the
-// rest, and the page must not grow without bound. Own choice.
-var shotSizes = []struct{ views, pixels, rank int }{
-	{16, 48, 12},
-	{48, 32, 10},
-	{math.MaxInt, 24, 8},
+// Sizes of the pictures by the number of views: across, in pixels, the patterns
+// that they are made of, of how many standings it is kept what is seen, and
+// whether there are pictures of hours out of use. What they are kept in must fit
+// beside the rest, and the page must not grow without bound. Own choice.
+var shotSizes = []struct {
+	views, pixels, rank, stood int
+	always                     bool
+}{
+	{16, 48, 12, 16, true},
+	{48, 32, 10, 8, true},
+	{math.MaxInt, 24, 8, 2, false},
 }
 
 // shotPlan says which frames there are and how large they are.
 type shotPlan struct {
-	pixels, rank int
-	records      []int
-	frame        []int          // by record, -1 for none
-	kept         []*Shots       // by view; nil where it has no frame yet
-	of           []*scene.Scene // by frame: of which standing the picture is
+	pixels, rank, stood int
+	records             []int
+	frame               []int          // by record, -1 for none
+	kept                []*Shots       // by view; nil where it has no frame yet
+	of                  []*scene.Scene // by frame: of which standing the picture is
 }
 
-func newShotPlan(in *Input) *shotPlan {
+// newShotPlan plans for the moments in use, and where eyes are open at all for
+// all of them.
+func newShotPlan(in *Input, open bool) *shotPlan {
 	s := &shotPlan{frame: make([]int, len(in.Climate.SinAltitude))}
 	for _, size := range shotSizes {
 		if len(in.Scene.Viewpoints) <= size.views {
-			s.pixels, s.rank = min(size.pixels, in.Project.Simulation.FisheyePixels), size.rank
+			s.pixels, s.rank, s.stood = min(size.pixels, in.Project.Simulation.FisheyePixels), size.rank, size.stood
+			open = open && size.always
 			break
 		}
 	}
@@ -76,7 +93,7 @@ func newShotPlan(in *Input) *shotPlan {
 		s.frame[i] = -1
 	}
 	for _, m := range in.Climate.Moments {
-		if m.Occupied {
+		if m.Occupied || open {
 			s.frame[m.Hour] = len(s.records)
 			s.records = append(s.records, m.Hour)
 		}
@@ -87,7 +104,7 @@ func newShotPlan(in *Input) *shotPlan {
 
 // open makes room for one view's pictures.
 func (s *shotPlan) open(e *coeff.Eye) *Shots {
-	x := &Shots{Records: s.records, Discs: make([][]annual.Disc, len(s.records)), Eye: e.View, Seen: e.Seen, SeenInside: e.Inside, View: e.View}
+	x := &Shots{Records: s.records, Discs: make([][]annual.Disc, len(s.records)), Eye: e.View, SeenInside: e.Inside, View: e.View}
 	x.View.Width, x.View.Height = s.pixels, s.pixels
 	x.shrink(e)
 	x.roll = film.NewRoll(len(x.Inside), len(s.records), leastShown, mostShown)
@@ -157,19 +174,26 @@ func (g *standingSink) keepShot(w *sinkScratch, e *coeff.Eye, f *annual.Frame) {
 		return
 	}
 	frame := g.shots.frame[f.Moment.Hour]
+	if frame < 0 {
+		return
+	}
 	g.mu[f.Eye].Lock()
-	x := g.shots.opened(f.Eye, e)
+	x := g.shots.opened(f.Eye, e, g.scene)
 	g.shots.of[frame] = g.scene
 	g.mu[f.Eye].Unlock()
 	x.keep(frame, f, &w.shot)
 }
 
 // opened are the pictures of a view, which begin with its first frame.
-func (s *shotPlan) opened(view int, e *coeff.Eye) *Shots {
+func (s *shotPlan) opened(view int, e *coeff.Eye, of *scene.Scene) *Shots {
 	if s.kept[view] == nil {
 		s.kept[view] = s.open(e)
 	}
-	return s.kept[view]
+	x := s.kept[view]
+	if len(x.Stood) < s.stood && !slices.ContainsFunc(x.Stood, func(k Stood) bool { return k.Scene == of }) {
+		x.Stood = append(x.Stood, Stood{of, e.Seen})
+	}
+	return x
 }
 
 // develop reduces the pictures and lets go of what they were kept in.

@@ -110,3 +110,68 @@ func TestShotsShrink(t *testing.T) {
 		}
 	}
 }
+
+// A roller that is drawn at some hours has parts that the raised one lacks: what
+// a view sees is told for each standing, in the numbers of that standing's own
+// scene. With a store, which opens eyes at all hours with daylight, hours out of
+// use have pictures too; without one they have none.
+func TestShotsOfWhatMoves(t *testing.T) {
+	fsys := operatedRoom(operatedRoller + "[[control]]\nname = \"by glare\"\nsystems = [\"roller\"]\nrule = \"glare\"\ndgp_limit = 0.4\nhysteresis = 0\n")
+	fsys["site.epw"] = &fstest.MapFile{Data: tinyYear(t)}
+	for _, store := range []Store{nil, memory{}} {
+		in, err := prepareFile(fsys, "project.toml", "", 2)
+		if err != nil {
+			t.Fatal(err)
+		}
+		in.Project.Criteria.Glare = "none" // no closer looks
+		r, err := Run(t.Context(), in, Options{Workers: 2, Shots: true, Store: store, Program: "test", Bare: true})
+		if err != nil {
+			t.Fatal(err)
+		}
+		s := r.Views[0].Shots
+		if len(r.Stood) != 2 || len(s.Stood) != 2 {
+			t.Fatalf("got %d standings and what is seen in %d of them, want 2", len(r.Stood), len(s.Stood))
+		}
+		drawn := 0
+		for _, k := range s.Stood {
+			i := slices.Index(r.Stood, k.Scene)
+			if i < 0 {
+				t.Fatal("got a scene that is none of the result's")
+			}
+			found := false
+			for _, x := range k.Seen {
+				// The cloth lets some of the sight through: it is looked at or looked through.
+				for _, part := range []int32{x.Part, x.Via} {
+					found = found || part >= 0 && strings.HasPrefix(k.Scene.Parts[part].Name, "roller")
+				}
+			}
+			if want := r.Standings[i] == "roller: drawn"; found != want {
+				t.Errorf("%s: the roller is seen: got %v, want %v", r.Standings[i], found, want)
+			} else if want {
+				drawn++
+			}
+		}
+		if drawn != 1 {
+			t.Errorf("got %d standings with the roller drawn, want 1", drawn)
+		}
+		want := 0
+		for _, m := range r.Climate.Moments {
+			if m.Occupied || store != nil {
+				want++
+			}
+		}
+		if len(s.Records) != want {
+			t.Errorf("got pictures of %d hours, want %d", len(s.Records), want)
+		}
+		for i, h := range s.Records {
+			if f := s.Film; f.Frames != want || f.Points == 0 {
+				t.Fatalf("film: got %d frames of %d points, want %d", f.Frames, f.Points, want)
+			}
+			shown := make([]float64, s.Film.Points)
+			s.Film.At(i, shown)
+			if slices.Max(shown) <= 1 && r.Climate.SinAltitude[h] > 0.2 {
+				t.Errorf("record %d: got a black picture, want one of a room in daylight", h)
+			}
+		}
+	}
+}

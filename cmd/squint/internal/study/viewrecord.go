@@ -161,23 +161,19 @@ func (y *year) readView(s *shelf, i int, r *Result) {
 	for _, m := range s.st.Moments {
 		h := m.Hour
 		a := x.at(h)
-		if !m.Occupied || a == nil {
+		if a == nil {
+			continue
+		}
+		if eye == nil {
+			eye = &coeff.Eye{View: x.View, Seen: x.Seen, Inside: x.Inside}
+		}
+		y.readShot(s, i, eye, a)
+		if !m.Occupied {
 			continue
 		}
 		v.DGP[h], v.StdErr[h], v.Ev[h], v.EvErr[h], v.InRange[h], v.Coarse[h] = a.DGP, a.StdErr, a.Ev, a.EvErr, a.InRange, a.Coarse
 		if a.Cause >= 0 {
 			v.Cause[h] = g.causeID(i, x.Causes[a.Cause])
-		}
-		if eye == nil {
-			eye = &coeff.Eye{View: x.View, Seen: x.Seen, Inside: x.Inside}
-		}
-		if g.shots == nil {
-			continue
-		}
-		frame := g.shots.frame[h]
-		g.shots.of[frame] = s.st.Scene
-		if shots := g.shots.opened(i, eye); shots.roll.Put(frame, a.Shot) {
-			shots.Discs[frame] = a.Discs
 		}
 	}
 	t := x.top(s.used)
@@ -199,4 +195,17 @@ func (y *year) readView(s *shelf, i int, r *Result) {
 	g.look(x.View)
 	w.Result = glare.Evaluate(g.field, w.Lum, toView(nil, eye, w.Discs), g.opt, &glare.Scratch{})
 	v.Worst = w
+}
+
+// readShot takes the small picture of an hour into the year, where it is asked for.
+func (y *year) readShot(s *shelf, i int, eye *coeff.Eye, a *viewHour) {
+	plan := y.glare.shots
+	if plan == nil || plan.frame[a.Hour] < 0 {
+		return
+	}
+	frame := plan.frame[a.Hour]
+	plan.of[frame] = s.st.Scene
+	if shots := plan.opened(i, eye, s.st.Scene); shots.roll.Put(frame, a.Shot) {
+		shots.Discs[frame] = a.Discs
+	}
 }

@@ -10,19 +10,26 @@ export function film(shots) {
 
 async function develop(shots) {
   const n = shots && (await load(shots.numbers));
-  if (!n) return null;
+  // The page may hold the first patterns alone.
+  const steps = [];
+  for (const step of (n && shots.steps) || []) {
+    const lists = await load(step.numbers);
+    if (!lists) break;
+    steps.push({ ...step, ...lists });
+  }
+  if (!steps.length) return null;
   const frames = new Map();
   n.record.forEach((r, i) => frames.set(r, i));
-  const { rank, points, least, step } = shots, row = Math.ceil(points / 8);
+  const { points, least, step } = shots, row = Math.ceil(points / 8);
   return {
-    shots, numbers: n, frame: (record) => frames.get(record) ?? -1,
+    numbers: n, exact: steps[steps.length - 1], frame: (record) => frames.get(record) ?? -1,
     // values fills a list with the frame's values by point.
     values(frame) {
       const code = new Float32Array(points);
       for (let p = 0; p < points; p++) code[p] = n.mean[p] / 128;
-      for (let k = 0; k < rank; k++) {
-        const w = n.weight[k * shots.frames + frame] / 16 / 127;
-        if (w) for (let p = 0, b = k * points; p < points; p++, b++) code[p] += w * n.basis[b];
+      for (const s of steps) for (let k = 0; k * points < s.basis.length; k++) {
+        const w = s.weight[k * shots.frames + frame] / 4 / 127;
+        if (w) for (let p = 0, b = k * points; p < points; p++, b++) code[p] += w * s.basis[b];
       }
       for (let p = 0; p < points; p++) {
         code[p] = least * Math.exp(step * code[p]);
@@ -30,17 +37,16 @@ async function develop(shots) {
       }
       return code;
     },
-    // discs are the sun's disc and its images in a frame.
-    discs(frame) { return discs(n, frame); },
   };
 }
 
+// discs are where the sun's disc and its images stand in a frame.
 export function discs(n, frame) {
   let first = 0;
   for (let i = 0; i < frame; i++) first += n.discs[i];
   const out = [];
   for (let i = first; i < first + n.discs[frame]; i++) {
-    out.push({ x: n.disc_x[i] / 65535, y: n.disc_y[i] / 65535, omega: 1e-9 * Math.exp(n.disc_sr[i] / 2500), lum: Math.exp(n.disc_lum[i] / 2500) });
+    out.push({ x: n.disc_x[i] / 255, y: n.disc_y[i] / 255 });
   }
   return out;
 }
