@@ -10,13 +10,13 @@ type Film struct {
 	Points, Frames, Rank int
 	Least, StepLn        float64 // value = Least exp(StepLn code)
 
-	Mean   []int16 // by point, code times 128
+	Mean   []int16 // by point, code times 8
 	Basis  []int8  // [rank][point], 127 is the pattern's largest size
 	Weight []int16 // [rank][frame], what 127 stands for in codes times 4
 
 	Lit      []uint8 // bits, [frame][point], each frame from a whole byte
-	LitPoint []int16 // by point, code times 128
-	LitFrame []int16 // by frame, code times 128
+	LitPoint []int16 // by point, code times 8
+	LitFrame []int16 // by frame, code times 8
 
 	// Steps says how exact the first patterns alone are; the last step is all.
 	Steps []Step
@@ -36,11 +36,11 @@ func (f *Film) Exact() Step { return f.Steps[len(f.Steps)-1] }
 // stepEvery is the number of patterns in a step. Own choice.
 const stepEvery = 2
 
-// How finely codes are kept. A code is some per cent of a value, so that a
-// weight is off by an eighth of that at most, where its pattern is strongest.
-// Own choice.
+// How finely codes are kept. A code is some per cent of a value, so that a mean
+// is off by a sixteenth of that at most, and a weight by an eighth where its
+// pattern is strongest. Own choice.
 const (
-	meanScale   = 128
+	meanScale   = 8
 	weightScale = 4
 )
 

@@ -10,7 +10,7 @@ func BenchmarkDevelop(b *testing.B) {
 		for p := range all {
 			all[p], sun[p] = scene(i, p%200)
 		}
-		r.Keep(i, all, sun)
+		r.Keep(i, all, sun, 0)
 	}
 	for b.Loop() {
 		r.Develop(12)

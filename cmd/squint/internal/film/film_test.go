@@ -31,7 +31,7 @@ func shoot(workers int) *Roll {
 				for p := range all {
 					all[p], sun[p] = scene(i, p)
 				}
-				r.Keep(i, all, sun)
+				r.Keep(i, all, sun, 0)
 			}
 		}()
 	}
@@ -128,10 +128,10 @@ func TestFilmOfNothing(t *testing.T) {
 func TestKeptAgain(t *testing.T) {
 	sunny, dull := []float32{100, 100}, []float32{50, 50}
 	r := NewRoll(2, 1, 0.1, 1000)
-	r.Keep(0, sunny, []float32{90, 90})
-	r.Keep(0, dull, []float32{0, 0})
+	r.Keep(0, sunny, []float32{90, 90}, 0)
+	r.Keep(0, dull, []float32{0, 0}, 0)
 	once := NewRoll(2, 1, 0.1, 1000)
-	once.Keep(0, dull, []float32{0, 0})
+	once.Keep(0, dull, []float32{0, 0}, 0)
 	if !reflect.DeepEqual(r.Frame(0), once.Frame(0)) {
 		t.Errorf("got %v, want %v as kept once", r.Frame(0), once.Frame(0))
 	}
@@ -141,5 +141,29 @@ func TestKeptAgain(t *testing.T) {
 	}
 	if NewRoll(3, 1, 0.1, 1000).Put(0, r.Frame(0)) || other.Put(0, Frame{Rest: []uint8{1, 2}, Lit: []LitPoint{{Point: 2}}}) {
 		t.Errorf("a frame that does not fit was taken")
+	}
+}
+
+// Merged points are the means of their groups; a group is lit where half of it
+// is, and else the sun on it is part of the rest. Bound: half a step each of what
+// was kept and of what is kept now. exact: the means.
+func TestMergedPoints(t *testing.T) {
+	r := NewRoll(5, 2, 0.1, 1000)
+	all, sun := []float32{10, 30, 500, 100, 50}, []float32{0, 0, 300, 0, 0}
+	r.Keep(0, all, sun, 0)
+	m := r.Merged([][]uint16{{0, 1}, {2, 3}, {2, 3, 4}})
+	bound := math.Exp(r.stepLn()) - 1
+	value := func(c uint8) float64 { return 0.1 * math.Exp(r.stepLn()*float64(c)) }
+	for p, want := range []float64{20, 150, (500 + 100 + 50) / 3.0} {
+		if got := value(m.Frame(0).Rest[p]); math.Abs(got-want)/want > bound {
+			t.Errorf("point %d: got %.1f, want %.1f", p, got, want)
+		}
+	}
+	lit := m.Frame(0).Lit
+	if len(lit) != 1 || lit[0].Point != 1 || math.Abs(value(lit[0].Code)-150)/150 > bound {
+		t.Errorf("got the sun on %v, want on point 1 alone, 150", lit)
+	}
+	if m.Frame(1).Rest != nil {
+		t.Error("a frame that was not kept is there")
 	}
 }

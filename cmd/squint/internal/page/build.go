@@ -47,7 +47,7 @@ func Build(r *study.Result, words Words) *Archive {
 
 // perHour is the number of records in an hour.
 func perHour(r *study.Result) int {
-	return max(1, len(r.Climate.SinAltitude)/daylight.HoursPerYear)
+	return max(1, len(r.Standing)/daylight.HoursPerYear)
 }
 
 // sources resolves the project's rule for sources of glare.
@@ -61,7 +61,7 @@ func vec(v r3.Vec) [3]float64 { return [3]float64{v.X, v.Y, v.Z} }
 
 // addYear packs what belongs to the year and not to a receiver.
 func (a *Archive) addYear(r *study.Result) {
-	n := len(r.Climate.SinAltitude)
+	n := daylight.HoursPerYear * perHour(r)
 	used, standing := make([]uint8, n), make([]uint8, n)
 	for _, h := range r.Occupied {
 		used[h] = 1

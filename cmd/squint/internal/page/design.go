@@ -118,11 +118,12 @@ type View struct {
 	HasShots  bool    `json:"has_shots"`
 
 	Shots Shots  `json:"shots"`
-	Seen  []Blob `json:"seen"` // by standing: what stands in each pixel, WorstPx across; "" where not kept
+	Small Shots  `json:"small"` // the same with fewer pixels
+	Seen  []Blob `json:"seen"`  // by standing: what stands in each pixel, WorstPx across; "" where not kept
 }
 
 // Shots are the pictures of any hour; see package film for the numbers. A page
-// may hold the first of the steps only.
+// may hold the first of the steps only, and of a view the small ones alone.
 type Shots struct {
 	Pixels  int     `json:"pixels"`
 	Least   float64 `json:"least"`

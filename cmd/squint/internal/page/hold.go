@@ -27,7 +27,8 @@ type heldBlob struct {
 // hold chooses the blobs that the page holds, in a fixed order. written is the
 // page's size without them. All is held but pictures of any hour: of these each
 // design gets the first patterns, then all get more in turn, the chosen one
-// first, as long as the page does not become too large.
+// first, as long as the page does not become too large. Where it would with all
+// of them, the other designs' are the small ones.
 func hold(all []*Archive, chosen, written int) (out []heldBlob, err error) {
 	has := map[string]bool{}
 	take := func(a *Archive, ids []string) (list []heldBlob, size int, err error) {
@@ -61,18 +62,29 @@ func hold(all []*Archive, chosen, written int) (out []heldBlob, err error) {
 		put(list, size)
 		views += len(a.Design.Views)
 	}
+	budget := int(min(mostPage, max(leastPage, bytesByView*float64(views))))
 	order := []int{chosen}
 	for i := range all {
 		if i != chosen {
 			order = append(order, i)
 		}
 	}
-	budget := int(min(mostPage, max(leastPage, bytesByView*float64(views))))
+	whole := written
+	for _, i := range order {
+		for step, ids := 0, all[i].pictures(0, false); len(ids) > 0; ids = all[i].pictures(step, false) {
+			_, size, err := take(all[i], ids)
+			if err != nil {
+				return nil, err
+			}
+			whole += size
+			step++
+		}
+	}
 	full := map[int]bool{}
 	for step, more := 0, true; more; step++ {
 		more = false
 		for _, i := range order {
-			ids := all[i].pictures(step)
+			ids := all[i].pictures(step, whole > budget && i != chosen)
 			if full[i] || len(ids) == 0 {
 				continue
 			}
@@ -109,9 +121,9 @@ func (a *Archive) needed() []string {
 	return list
 }
 
-// pictures lists the blobs of one step of all pictures of any hour; none where
-// there is no such step.
-func (a *Archive) pictures(step int) (list []string) {
+// pictures lists the blobs of one step of all pictures of any hour, of views the
+// small ones where there are; none where there is no such step.
+func (a *Archive) pictures(step int, small bool) (list []string) {
 	add := func(s *Shots) {
 		if step >= len(s.Steps) {
 			return
@@ -125,7 +137,12 @@ func (a *Archive) pictures(step int) (list []string) {
 		add(&a.Design.Planes[i].Shots)
 	}
 	for i := range a.Design.Views {
-		add(&a.Design.Views[i].Shots)
+		v := &a.Design.Views[i]
+		if small && len(v.Small.Steps) > 0 {
+			add(&v.Small)
+		} else {
+			add(&v.Shots)
+		}
 	}
 	return list
 }

@@ -111,7 +111,15 @@ func Write(w io.Writer, all []*Archive, o Options) error {
 	}
 	// JSON blocks are not run by browsers. The JSON has no "<" (encoding/json
 	// escapes it), so that no text can end a block.
-	block, err := json.Marshal(data)
+	// Texts stand in the page already.
+	lean := data
+	lean.Designs = nil
+	for _, d := range data.Designs {
+		c := *d
+		c.Words = Words{Alternative: d.Alternative, Worst: d.Worst}
+		lean.Designs = append(lean.Designs, &c)
+	}
+	block, err := json.Marshal(lean)
 	if err != nil {
 		return err
 	}

@@ -57,7 +57,10 @@ func (a *Archive) view(b *build, r *study.Result, v *study.ViewResult) View {
 		f, l, u := s.Eye.Frame()
 		out.Axes = [3][3]float64{vec(f), vec(l), vec(u)}
 		out.HasShots = true
-		out.Shots = a.shots(s.Film, &s.View, s.Inside, s.Records, s.Discs)
+		out.Shots = a.shots(s.Film, &s.View, s.Inside, s.Records, s.Discs, perHour(r))
+		if s.Small != nil {
+			out.Small = a.shots(s.Small.Film, &s.Small.View, s.Small.Inside, s.Records, s.Discs, perHour(r))
+		}
 		out.WorstPx = s.Eye.Width
 		for _, of := range r.Stood {
 			seen := Blob{Parts: []Part{}}
@@ -101,9 +104,10 @@ func (a *Archive) view(b *build, r *study.Result, v *study.ViewResult) View {
 }
 
 // The full picture of a worst hour: luminance is worstLeast times
-// exp(code/worstScale), good to 0.25 %.
+// exp(code/worstScale), good to 0.8 %, half of what a step of its colours is.
+// Own choice.
 const (
-	worstScale = 200
+	worstScale = 60
 	worstLeast = 1e-3
 )
 
@@ -132,7 +136,7 @@ func (a *Archive) series(v *study.ViewResult) Blob {
 }
 
 // shots packs a film; v, inside and discs are of a view's, nil for a plane.
-func (a *Archive) shots(f *film.Film, v *view.View, inside []int32, records []int, discs [][]annual.Disc) Shots {
+func (a *Archive) shots(f *film.Film, v *view.View, inside []int32, records []int, discs [][]annual.Disc, perHour int) Shots {
 	out := Shots{Least: f.Least, StepLn: f.StepLn, Frames: f.Frames, Points: f.Points}
 	var p packer
 	if v != nil {
@@ -141,7 +145,9 @@ func (a *Archive) shots(f *film.Film, v *view.View, inside []int32, records []in
 	}
 	pack(&p, "record", "u16", narrow(records))
 	packSmall(&p, "mean", f.Mean)
-	pack(&p, "lit", "u8", f.Lit)
+	sunny, changes := litChanges(f, records, 24*perHour)
+	pack(&p, "sunny", "u8", sunny)
+	pack(&p, "lit", "u8", changes)
 	packSmall(&p, "lit_point", f.LitPoint)
 	packSmall(&p, "lit_frame", f.LitFrame)
 	if v != nil {
@@ -157,6 +163,36 @@ func (a *Archive) shots(f *film.Film, v *view.View, inside []int32, records []in
 		from = s.Rank
 	}
 	return out
+}
+
+// litChanges are masks of what the sun lights that pack well: frames in order of
+// the time of day and then of the day, each as the bits in which it differs from
+// the sunny one before. sunny are those, in that order, of which any bit is set;
+// the others are not there.
+func litChanges(f *film.Film, records []int, perDay int) (sunny, changes []uint8) {
+	order := make([]int, len(records))
+	for i := range order {
+		order[i] = i
+	}
+	slices.SortFunc(order, func(a, b int) int {
+		x, y := records[a], records[b]
+		return cmp.Or(cmp.Compare(x%perDay, y%perDay), cmp.Compare(x, y))
+	})
+	row := (f.Points + 7) / 8
+	before := make([]uint8, row)
+	for _, i := range order {
+		mask := f.Lit[i*row : (i+1)*row]
+		if !slices.ContainsFunc(mask, func(b uint8) bool { return b != 0 }) {
+			sunny = append(sunny, 0)
+			continue
+		}
+		sunny = append(sunny, 1)
+		for k, b := range mask {
+			changes = append(changes, b^before[k])
+		}
+		before = mask
+	}
+	return sunny, changes
 }
 
 func narrow[T int | int32](v []T) []uint16 {
@@ -267,7 +303,7 @@ func (a *Archive) planeShots(r *study.Result, p *study.PlaneResult) Shots {
 		for i := range n {
 			all[i], sun[i] = p.E[i][m.Hour], p.Direct[i][m.Hour]
 		}
-		roll.Keep(k, all, sun)
+		roll.Keep(k, all, sun, study.SunFrom(m))
 	}
-	return a.shots(roll.Develop(planeRank), nil, nil, records, nil)
+	return a.shots(roll.Develop(planeRank), nil, nil, records, nil, perHour(r))
 }

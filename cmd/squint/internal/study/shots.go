@@ -22,6 +22,10 @@ type Shots struct {
 	Film    *film.Film
 	Discs   [][]annual.Disc // by frame
 
+	// Small are the same pictures of half as many pixels across, with fewer
+	// patterns; nil where the number of pixels is odd.
+	Small *Small
+
 	// Stood says what stands in the pixels of Eye, by position in SeenInside: in
 	// the first standings of which there are pictures.
 	Eye        view.View
@@ -31,6 +35,19 @@ type Shots struct {
 	roll    *film.Roll
 	shrinks []shrink
 }
+
+// Small are smaller pictures.
+type Small struct {
+	View   view.View
+	Inside []int32 // by point of the film: pixel, row-major
+	Film   *film.Film
+}
+
+// leastHalved is the width from which pictures are halved, in pixels. Own choice.
+const leastHalved = 32
+
+// smallRank is the number of their patterns. Own choice.
+const smallRank = 6
 
 // Stood is what a view sees in one standing. The numbers of parts are those of
 // its scene; another standing's scene has others.
@@ -163,8 +180,47 @@ func (x *Shots) keep(frame int, f *annual.Frame, w *shotScratch) {
 		all[s.to] += f.Mean[s.from] * s.weight
 		sun[s.to] += f.Sunlit[s.from] * s.weight
 	}
-	x.roll.Keep(frame, all, sun)
+	x.roll.Keep(frame, all, sun, SunFrom(f.Moment)/math.Pi)
 	x.Discs[frame] = append([]annual.Disc(nil), f.Discs...)
+}
+
+// What of the sun's illuminance on a plane that faces it is kept apart from the
+// rest, for suns of so many lx: less is what half a pixel's edge catches, or a
+// cloudy sky hides. Own choice.
+const (
+	sunPart = 0.02
+	sunnyLx = 1000
+)
+
+// SunFrom is the illuminance, lx, from which pictures keep the sun's part at a
+// moment apart; none of it where the sun is weak.
+func SunFrom(m *scene.Moment) float64 {
+	if m.SunNormalLx < sunnyLx {
+		return math.Inf(1)
+	}
+	return sunPart * m.SunNormalLx
+}
+
+// half makes the smaller pictures.
+func (x *Shots) half() *Small {
+	if x.View.Width%2 != 0 || x.View.Width < leastHalved {
+		return nil
+	}
+	s := &Small{View: x.View}
+	s.View.Width, s.View.Height = x.View.Width/2, x.View.Height/2
+	place := map[int32]int{}
+	var groups [][]uint16
+	for p, px := range x.Inside {
+		at := px/int32(x.View.Width)/2*int32(s.View.Width) + px%int32(x.View.Width)/2
+		g, ok := place[at]
+		if !ok {
+			g = len(groups)
+			place[at], groups, s.Inside = g, append(groups, nil), append(s.Inside, at)
+		}
+		groups[g] = append(groups[g], uint16(p))
+	}
+	s.Film = x.roll.Merged(groups).Develop(smallRank)
+	return s
 }
 
 // keepShot stores a frame where pictures are asked for; a later one of the same
@@ -205,7 +261,7 @@ func (g *glareSink) develop(ctx context.Context, opt Options) error {
 		x := opt.shots.kept[i]
 		g.views[i].Shots = x
 		if x != nil {
-			x.Film = x.roll.Develop(opt.shots.rank)
+			x.Film, x.Small = x.roll.Develop(opt.shots.rank), x.half()
 			x.roll, x.shrinks = nil, nil
 		}
 		return nil

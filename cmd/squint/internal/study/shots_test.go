@@ -11,6 +11,7 @@ import (
 
 	"gonum.org/v1/gonum/spatial/r3"
 
+	"squint/scene"
 	"squint/scene/view"
 	"squint/trace/annual"
 	"squint/trace/coeff"
@@ -56,7 +57,7 @@ func TestShotsShowTheWorstHour(t *testing.T) {
 	}
 	slices.Sort(off)
 	// The film's own error, and half a step of the scale in which it was kept.
-	bound := s.Film.WideError + math.Expm1(s.Film.StepLn/2)
+	bound := s.Film.Exact().Wide + math.Expm1(s.Film.StepLn/2)
 	if got := off[len(off)/2]; got > bound {
 		t.Errorf("worst hour: half of the points are off by %.3f or more, want at most %.3f", got, bound)
 	}
@@ -91,7 +92,7 @@ func TestShotsShrink(t *testing.T) {
 		e.Inside = append(e.Inside, int32(i)) // a square keeps the sums plain
 	}
 	x := (&shotPlan{pixels: 6, records: []int{0}}).open(e)
-	f := &annual.Frame{Mean: make([]float32, 64), Sunlit: make([]float32, 64)}
+	f := &annual.Frame{Moment: &scene.Moment{}, Mean: make([]float32, 64), Sunlit: make([]float32, 64)}
 	for i := range f.Mean {
 		f.Mean[i] = 100
 	}

@@ -1,5 +1,5 @@
 // What a viewpoint sees: the chosen hour, the sun's paths, the worst hour.
-import { year, load, whole, percent, noValue, timeOf, minuteOf, hourMinute, sunAt, standingAt, monthStart } from "./data.js";
+import { year, load, whole, hours, percent, noValue, timeOf, minuteOf, hourMinute, sunAt, standingAt, monthStart } from "./data.js";
 import { state } from "./state.js";
 import { css, luminanceScale, legend } from "./colour.js";
 import { sheet, kept, text, line, place } from "./paper.js";
@@ -35,7 +35,7 @@ function onSheet(axes, d) {
 export async function eye() {
   const y = await year(state.design), v = y.design.views[state.view];
   if (!v) return;
-  const seen = await seenAt(y, v), f = await film(v.shots);
+  const seen = await seenAt(y, v), f = await film(v, 24 * y.n);
   hourPicture(y, v, f, seen);
   paths(y, v, seen);
   await worst(y, v);
@@ -122,7 +122,7 @@ function hourPicture(y, v, f, seen) {
   looked = null;
   let t = `${timeOf(y, state.record)}. `;
   if (frame >= 0) {
-    const px = v.shots.pixels, lum = new Float32Array(px * px), values = f.values(frame);
+    const px = f.pixels, lum = new Float32Array(px * px), values = f.values(frame);
     f.numbers.inside.forEach((p, i) => { lum[p] = values[i]; });
     picture(g, w, lum, px);
     partLines(g, w, v.worst_px, seen);
@@ -166,26 +166,26 @@ function paths(y, v, seen) {
   const m = y.byRecord[state.record], now = m >= 0 && onSheet(v.axes, sunAt(y, m));
   if (now && y.moments.direct[m] > 0) { const [x, yy] = to(now); g.beginPath(); g.arc(x, yy, 6, 0, 7); g.fillStyle = css("sun"); g.fill(); g.strokeStyle = css("paper"); g.lineWidth = 1.5; g.stroke(); }
   reading.path.textContent = "Where the sun stands for this eye, by month and hour of the clock; tinted is the sky that it sees." +
-    (over ? ` Dots: the sun at ${front < over ? whole(front) + " of " : ""}the ${whole(over)} hours over the limit${front < over ? "; at the others it is behind, or does not shine" : ""}.` : " No hour is over the limit.");
+    (over ? ` Dots: the sun at ${front < over ? hours(y, front) + " of " : ""}the ${hours(y, over)} hours over the limit${front < over ? "; at the others it is behind, or does not shine" : ""}.` : " No hour is over the limit.");
   canvas.path.setAttribute("aria-label", `The sun's paths as ${v.subject} sees them`);
 }
 
 function arc(g, y, v, day, to, name) {
-  const hours = [];
-  for (let h = 0; h < 24 * y.n; h++) { const r = day * 24 * y.n + h, m = y.byRecord[r]; if (m >= 0) hours.push([h / y.n, sunAt(y, m), r]); }
+  const times = [];
+  for (let h = 0; h < 24 * y.n; h++) { const r = day * 24 * y.n + h, m = y.byRecord[r]; if (m >= 0) times.push([h / y.n, sunAt(y, m), r]); }
   let run = [], best = null;
   const flush = () => { if (run.length > 1) line(g, run, "ink", 0.7); run = []; };
-  for (let i = 0; i < hours.length; i++) {
-    const p = onSheet(v.axes, hours[i][1]);
-    if (p && hours[i][1][2] > 0) {
+  for (let i = 0; i < times.length; i++) {
+    const p = onSheet(v.axes, times[i][1]);
+    if (p && times[i][1][2] > 0) {
       const [x, yy] = to(p);
-      if (hours[i][0] % 1 === 0) { g.beginPath(); g.arc(x, yy, 1.3, 0, 7); g.fillStyle = css("ink"); g.fill(); }
-      if ((day === monthStart[5] + 20 || day === monthStart[11] + 20) && hours[i][0] % 3 === 0 && Math.hypot(...p) < 0.92) text(g, hourMinute(minuteOf(y, hours[i][2])), x, yy - 9, { align: "center", colour: "ink", size: 10, halo: true });
+      if (times[i][0] % 1 === 0) { g.beginPath(); g.arc(x, yy, 1.3, 0, 7); g.fillStyle = css("ink"); g.fill(); }
+      if ((day === monthStart[5] + 20 || day === monthStart[11] + 20) && times[i][0] % 3 === 0 && Math.hypot(...p) < 0.92) text(g, hourMinute(minuteOf(y, times[i][2])), x, yy - 9, { align: "center", colour: "ink", size: 10, halo: true });
       if (!best || Math.abs(p[0]) < Math.abs(best.p[0])) best = { p, x, y: yy };
     }
-    if (i + 1 === hours.length) break;
+    if (i + 1 === times.length) break;
     for (let k = 0; k < 6; k++) {
-      const a = hours[i][1], b = hours[i + 1][1], d = a.map((c, j) => c + ((b[j] - c) * k) / 6), l = Math.hypot(...d), q = d[2] > 0 && onSheet(v.axes, d.map((c) => c / l));
+      const a = times[i][1], b = times[i + 1][1], d = a.map((c, j) => c + ((b[j] - c) * k) / 6), l = Math.hypot(...d), q = d[2] > 0 && onSheet(v.axes, d.map((c) => c / l));
       if (q) run.push(to(q)); else flush();
     }
   }
@@ -197,7 +197,7 @@ async function worst(y, v) {
   const n = await load(v.worst_shot), lines = (y.design.worst && y.design.worst[state.view]) || [], paper = sheet(canvas.worst, (w) => w), { w } = paper;
   if (!n) { clip(paper.g, w); rim(paper.g, w); reading.worst.textContent = "No hour in use has daylight."; return; }
   const lum = new Float32Array(n.lum.length), px = v.worst_px;
-  for (let i = 0; i < lum.length; i++) lum[i] = n.lum[i] ? 1e-3 * Math.exp(n.lum[i] / 200) : 0;
+  for (let i = 0; i < lum.length; i++) lum[i] = n.lum[i] ? 1e-3 * Math.exp(n.lum[i] / 60) : 0;
   kept(canvas.worst, paper, [state.design, state.view].join(), (g) => {
     clip(g, w);
     picture(g, w, lum, px);

@@ -1,9 +1,10 @@
 // The report's page: puts the parts together and listens to the reader.
-import { page, designs, holds, year, timeOf, hourMinute, percent, monthStart } from "./data.js";
+import { page, designs, year, timeOf, hourMinute, percent, monthStart } from "./data.js";
 import { state, show, draw, listen } from "./state.js";
 import { plan } from "./plan.js";
 import { drawYear, pointOf } from "./year.js";
 import { eye } from "./eye.js";
+import { best } from "./film.js";
 import { drawRoom } from "./room.js";
 
 const $ = (id) => document.getElementById(id);
@@ -56,7 +57,7 @@ function views(d) {
 function exact() {
   const p = document.createElement("p"), views = designs.flatMap((d) => d.views.filter((v) => v.has_shots)), said = designs.map(pictures).filter((t) => t);
   p.textContent = "Verdicts, counts and every DGP and illuminance at the eye come from the whole computation; this page only shows them." +
-    (views.length ? ` Pictures of any hour, ${views[0].shots.pixels} pixels across, are for display and made of a few patterns: ${said.join("; ")}. The worst hours are shown as they were computed, ${views[0].worst_px} pixels across.` : "") +
+    (views.length ? ` Pictures of any hour are for display and made of a few patterns: ${said.join("; ")}. The worst hours are shown as they were computed, ${views[0].worst_px} pixels across.` : "") +
     " The sun on plan and model is drawn by straight rays and sharp mirrors alone. Illuminance of surfaces in the model is their luminance as a viewpoint sees it, times pi, by their reflectance; mirrors, cloth and what stands behind glass are left out.";
   $("exact").append(p);
 }
@@ -66,10 +67,10 @@ function exact() {
 function pictures(d) {
   const name = designs.length > 1 ? `\u201c${d.alternative}\u201d: ` : "", films = d.views.filter((v) => v.has_shots);
   if (!films.length) return "";
-  const held = films.map((v) => (holds(v.shots.numbers) && (v.shots.steps || []).filter((s) => holds(s.numbers)).pop()) || null).filter((s) => s);
+  const held = films.map(best).filter((s) => s);
   if (!held.length) return name + "none, as the page would become too large";
-  const errors = held.map((s) => s.median_error), rank = Math.max(...held.map((s) => s.rank));
-  return `${name}${rank} patterns a view, half of the points within ${percent(Math.min(...errors))} to ${percent(Math.max(...errors))} of the computed ones, by view`;
+  const list = held.map((s) => s.median_error), [least, most] = [Math.min(...list), Math.max(...list)].map((e) => percent(e));
+  return `${name}${held[0].pixels} pixels across, ${Math.max(...held.map((s) => s.rank))} patterns a view, half of the points within ${least === most ? most : `${least} to ${most}, by view,`} of the computed ones`;
 }
 
 // perDay is the number of records in a day of the chosen design.

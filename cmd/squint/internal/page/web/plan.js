@@ -1,10 +1,10 @@
 // The room from above: section, workstations, and the work plane's light.
-import { designs, load, holds, whole, percent, year, sunAt } from "./data.js";
+import { designs, load, whole, percent, year, sunAt } from "./data.js";
 import { state, show } from "./state.js";
 import { Scale, css, legend, luxScale, shareScale } from "./colour.js";
 import { sheet, text, line, place } from "./paper.js";
 import { room, section, beams } from "./mesh.js";
-import { film } from "./film.js";
+import { film, best } from "./film.js";
 
 const canvas = document.getElementById("c-plan"), reading = document.getElementById("r-plan"), pick = document.getElementById("pick-metric");
 let view = null; // how the last drawing lies, and what it shows
@@ -58,7 +58,7 @@ function metrics(d) {
 }
 
 // hourly is whether the page holds the illuminance of any hour, on all planes.
-const hourly = (d) => d.planes.every((p) => holds(p.shots.numbers) && holds((p.shots.steps || [])[0]?.numbers));
+const hourly = (d) => d.planes.every(best);
 pick.addEventListener("change", () => show({ metric: pick.value }));
 
 // light reads what each sensor has, for the chosen metric; null where there is none.
@@ -70,7 +70,7 @@ async function light(d, y, metric = state.metric) {
     if (!at) continue;
     let value;
     if (metric === "hour") {
-      const f = await film(p.shots), frame = f ? f.frame(state.record) : -1;
+      const f = await film(p, 24 * y.n), frame = f ? f.frame(state.record) : -1;
       const v = frame < 0 ? null : f.values(frame);
       value = (i) => (v ? v[i] : 0);
       out.median = Math.max(out.median, f ? f.exact.median_error : 0);

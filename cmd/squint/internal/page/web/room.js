@@ -201,9 +201,9 @@ export async function drawRoom() {
   }
   plane.done("plane");
   if ((surface.value === "seen" || lux) && v) {
-    const f = await film(v.shots), seen = await seenAt(y, v), frame = f ? f.frame(state.record) : -1;
+    const f = await film(v, 24 * y.n), seen = await seenAt(y, v), frame = f ? f.frame(state.record) : -1;
     if (frame >= 0 && seen) {
-      const px = v.shots.pixels, lum = new Float32Array(px * px).fill(1), values = f.values(frame);
+      const px = f.pixels, lum = new Float32Array(px * px).fill(1), values = f.values(frame);
       f.numbers.inside.forEach((p, i) => { lum[p] = values[i]; });
       textures(m, v, lum, px, seen, lux);
       last.mode = 1;
