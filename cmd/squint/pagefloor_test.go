@@ -118,7 +118,7 @@ func floorView(r *study.Result, i int, w view.View, inside []int32, rank, perHou
 		}
 		roll.Keep(k, all, sun, 0)
 	}
-	s := &study.Shots{View: w, Eye: w, Inside: inside, Records: records, Film: roll.Develop(rank)}
+	s := &study.Shots{View: w, Eye: w, Inside: inside, Records: records, Film: roll.Develop(rank, film.Fine)}
 	s.Discs = make([][]annual.Disc, len(records))
 	var seen []coeff.Seen
 	for range inside {

@@ -10,13 +10,14 @@ type Film struct {
 	Points, Frames, Rank int
 	Least, StepLn        float64 // value = Least exp(StepLn code)
 
-	Mean   []int16 // by point, code times 8
+	Grain  Grain
+	Mean   []int16 // by point, code times 2 Grain
 	Basis  []int8  // [rank][point], 127 is the pattern's largest size
-	Weight []int16 // [rank][frame], what 127 stands for in codes times 4
+	Weight []int16 // [rank][frame], what 127 stands for in codes times Grain
 
 	Lit      []uint8 // bits, [frame][point], each frame from a whole byte
-	LitPoint []int16 // by point, code times 8
-	LitFrame []int16 // by frame, code times 8
+	LitPoint []int16 // by point, code times 2 Grain
+	LitFrame []int16 // by frame, code times 2 Grain
 
 	// Steps says how exact the first patterns alone are; the last step is all.
 	Steps []Step
@@ -36,13 +37,19 @@ func (f *Film) Exact() Step { return f.Steps[len(f.Steps)-1] }
 // stepEvery is the number of patterns in a step. Own choice.
 const stepEvery = 2
 
-// How finely codes are kept. A code is some per cent of a value, so that a mean
-// is off by a sixteenth of that at most, and a weight by an eighth where its
-// pattern is strongest. Own choice.
+// Grain says how finely codes are kept. A code is some per cent of a value. A
+// weight is off by half a code by Grain at most, where its pattern is strongest,
+// and a mean by half of that.
+type Grain int
+
+// The grains. Own choice.
 const (
-	meanScale   = 8
-	weightScale = 4
+	Fine   Grain = 4
+	Coarse Grain = 1
 )
+
+func (g Grain) weight() float64 { return float64(g) }
+func (g Grain) mean() float64   { return 2 * float64(g) }
 
 // rowBytes is the length of a frame's mask.
 func (f *Film) rowBytes() int { return (f.Points + 7) / 8 }
@@ -59,20 +66,20 @@ func (f *Film) At(frame int, out []float64) { f.atStep(frame, f.Rank, out) }
 // atStep is At with the first patterns alone.
 func (f *Film) atStep(frame, rank int, out []float64) {
 	for p := range out {
-		code := float64(f.Mean[p]) / meanScale
+		code := float64(f.Mean[p]) / f.Grain.mean()
 		for k := range rank {
-			code += float64(f.Weight[k*f.Frames+frame]) / weightScale * float64(f.Basis[k*f.Points+p]) / 127
+			code += float64(f.Weight[k*f.Frames+frame]) / f.Grain.weight() * float64(f.Basis[k*f.Points+p]) / 127
 		}
 		out[p] = f.value(code)
 		if f.lit(frame, p) {
-			out[p] += f.value(float64(f.LitPoint[p])/meanScale + float64(f.LitFrame[frame])/meanScale)
+			out[p] += f.value((float64(f.LitPoint[p]) + float64(f.LitFrame[frame])) / f.Grain.mean())
 		}
 	}
 }
 
 // Develop reduces the roll to patterns, at most rank of them.
-func (r *Roll) Develop(rank int) *Film {
-	f := &Film{Points: r.Points, Frames: r.Frames, Least: r.Least, StepLn: r.stepLn()}
+func (r *Roll) Develop(rank int, grain Grain) *Film {
+	f := &Film{Grain: grain, Points: r.Points, Frames: r.Frames, Least: r.Least, StepLn: r.stepLn()}
 	r.developSun(f)
 	rest := r.centred(f)
 	basis, weights := patterns(rest, min(rank, r.Points, r.Frames))
@@ -87,7 +94,7 @@ func (r *Roll) Develop(rank int) *Film {
 			f.Basis[k*f.Points+p] = int8(math.Round(float64(b) / most * 127))
 		}
 		for i, w := range weights[k] {
-			f.Weight[k*f.Frames+i] = int16(math.Max(-32768, math.Min(32767, math.Round(float64(w)*most*weightScale))))
+			f.Weight[k*f.Frames+i] = int16(math.Max(-32768, math.Min(32767, math.Round(float64(w)*most*f.Grain.weight()))))
 		}
 	}
 	r.measure(f)
@@ -104,13 +111,13 @@ func (r *Roll) centred(f *Film) matrix {
 	}
 	f.Mean = make([]int16, r.Points)
 	for p := range sum {
-		f.Mean[p] = int16(math.Round(sum[p] / float64(max(r.Frames, 1)) * meanScale))
+		f.Mean[p] = int16(math.Round(sum[p] / float64(max(r.Frames, 1)) * f.Grain.mean()))
 	}
 	m := newMatrix(r.Frames, r.Points)
 	for i := range r.Frames {
 		row := m.row(i)
 		for p, c := range r.rest(i) {
-			row[p] = float32(c) - float32(f.Mean[p])/meanScale
+			row[p] = float32(c) - float32(f.Mean[p])/float32(f.Grain.mean())
 		}
 	}
 	return m
@@ -151,13 +158,13 @@ func (r *Roll) developSun(f *Film) {
 			f.Lit[i*f.rowBytes()+int(l.Point)>>3] |= 1 << (l.Point & 7)
 		}
 	}
-	f.LitFrame, f.LitPoint = fixed(byFrame), fixed(byPoint)
+	f.LitFrame, f.LitPoint = f.Grain.fixed(byFrame), f.Grain.fixed(byPoint)
 }
 
-func fixed(v []float64) []int16 {
+func (g Grain) fixed(v []float64) []int16 {
 	out := make([]int16, len(v))
 	for i, x := range v {
-		out[i] = int16(math.Max(-32768, math.Min(32767, math.Round(x*meanScale))))
+		out[i] = int16(math.Max(-32768, math.Min(32767, math.Round(x*g.mean()))))
 	}
 	return out
 }

@@ -13,6 +13,6 @@ func BenchmarkDevelop(b *testing.B) {
 		r.Keep(i, all, sun, 0)
 	}
 	for b.Loop() {
-		r.Develop(12)
+		r.Develop(12, Fine)
 	}
 }

@@ -86,13 +86,14 @@ func (r *Roll) Keep(frame int, all, sun []float32, from float64) {
 	r.frames[frame] = f
 }
 
-// Merged is a roll of fewer points, each the mean of a group of this one's. A
-// group is lit where half of it is.
-func (r *Roll) Merged(groups [][]uint16) *Roll {
-	out := NewRoll(len(groups), r.Frames, r.Least, r.Most)
+// Merged is a roll of some of the frames and of fewer points, each the mean of a
+// group of this one's. A group is lit where half of it is.
+func (r *Roll) Merged(frames []int, groups [][]uint16) *Roll {
+	out := NewRoll(len(groups), len(frames), r.Least, r.Most)
 	value := func(code uint8) float64 { return r.Least * math.Exp(r.stepLn()*float64(code)) }
 	sun := make([]float64, r.Points)
-	for i, f := range r.frames {
+	for i, from := range frames {
+		f := r.frames[from]
 		if f.Rest == nil {
 			continue
 		}

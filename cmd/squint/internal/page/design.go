@@ -118,7 +118,7 @@ type View struct {
 	HasShots  bool    `json:"has_shots"`
 
 	Shots Shots  `json:"shots"`
-	Small Shots  `json:"small"` // the same with fewer pixels
+	Small Shots  `json:"small"` // of the hours in use, with fewer pixels
 	Seen  []Blob `json:"seen"`  // by standing: what stands in each pixel, WorstPx across; "" where not kept
 }
 
@@ -126,6 +126,7 @@ type View struct {
 // may hold the first of the steps only, and of a view the small ones alone.
 type Shots struct {
 	Pixels  int     `json:"pixels"`
+	Grain   int     `json:"grain"`
 	Least   float64 `json:"least"`
 	StepLn  float64 `json:"step"`
 	Frames  int     `json:"frames"`

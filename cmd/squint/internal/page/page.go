@@ -132,7 +132,7 @@ func Write(w io.Writer, all []*Archive, o Options) error {
 		return err
 	}
 	for _, b := range held {
-		if _, err := fmt.Fprintf(w, blobBlock, b.id, base64.StdEncoding.EncodeToString(b.packed)); err != nil {
+		if _, err := fmt.Fprintf(w, blobBlock, b.id, asText(b.packed)); err != nil {
 			return err
 		}
 	}

@@ -21,7 +21,7 @@ const noOutcome = "none"
 // evaluated.
 const (
 	dgpScale   = 1e4
-	errorScale = 1e4
+	errorScale = 2e3
 	noValue    = math.MaxUint16
 )
 
@@ -59,7 +59,7 @@ func (a *Archive) view(b *build, r *study.Result, v *study.ViewResult) View {
 		out.HasShots = true
 		out.Shots = a.shots(s.Film, &s.View, s.Inside, s.Records, s.Discs, perHour(r))
 		if s.Small != nil {
-			out.Small = a.shots(s.Small.Film, &s.Small.View, s.Small.Inside, s.Records, s.Discs, perHour(r))
+			out.Small = a.shots(s.Small.Film, &s.Small.View, s.Small.Inside, s.Small.Records, s.Small.Discs, perHour(r))
 		}
 		out.WorstPx = s.Eye.Width
 		for _, of := range r.Stood {
@@ -137,13 +137,17 @@ func (a *Archive) series(v *study.ViewResult) Blob {
 
 // shots packs a film; v, inside and discs are of a view's, nil for a plane.
 func (a *Archive) shots(f *film.Film, v *view.View, inside []int32, records []int, discs [][]annual.Disc, perHour int) Shots {
-	out := Shots{Least: f.Least, StepLn: f.StepLn, Frames: f.Frames, Points: f.Points}
+	out := Shots{Grain: int(f.Grain), Least: f.Least, StepLn: f.StepLn, Frames: f.Frames, Points: f.Points}
 	var p packer
 	if v != nil {
 		out.Pixels = v.Width
 		pack(&p, "inside", "u16", narrow(inside))
 	}
-	pack(&p, "record", "u16", narrow(records))
+	rises := make([]uint16, len(records))
+	for i, before := 0, 0; i < len(records); i++ {
+		rises[i], before = uint16(records[i]-before), records[i]
+	}
+	pack(&p, "rise", "u16", rises)
 	packSmall(&p, "mean", f.Mean)
 	sunny, changes := litChanges(f, records, 24*perHour)
 	pack(&p, "sunny", "u8", sunny)
@@ -305,5 +309,5 @@ func (a *Archive) planeShots(r *study.Result, p *study.PlaneResult) Shots {
 		}
 		roll.Keep(k, all, sun, study.SunFrom(m))
 	}
-	return a.shots(roll.Develop(planeRank), nil, nil, records, nil, perHour(r))
+	return a.shots(roll.Develop(planeRank, film.Fine), nil, nil, records, nil, perHour(r))
 }

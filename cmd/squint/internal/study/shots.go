@@ -22,8 +22,8 @@ type Shots struct {
 	Film    *film.Film
 	Discs   [][]annual.Disc // by frame
 
-	// Small are the same pictures of half as many pixels across, with fewer
-	// patterns; nil where the number of pixels is odd.
+	// Small are pictures of the hours in use, of half as many pixels across and
+	// with fewer patterns; nil where the pixels are few already.
 	Small *Small
 
 	// Stood says what stands in the pixels of Eye, by position in SeenInside: in
@@ -38,9 +38,11 @@ type Shots struct {
 
 // Small are smaller pictures.
 type Small struct {
-	View   view.View
-	Inside []int32 // by point of the film: pixel, row-major
-	Film   *film.Film
+	View    view.View
+	Inside  []int32 // by point of the film: pixel, row-major
+	Records []int   // by frame
+	Film    *film.Film
+	Discs   [][]annual.Disc // by frame
 }
 
 // leastHalved is the width from which pictures are halved, in pixels. Own choice.
@@ -91,6 +93,7 @@ type shotPlan struct {
 	pixels, rank, stood int
 	records             []int
 	frame               []int          // by record, -1 for none
+	used                []bool         // by record
 	kept                []*Shots       // by view; nil where it has no frame yet
 	of                  []*scene.Scene // by frame: of which standing the picture is
 }
@@ -98,7 +101,8 @@ type shotPlan struct {
 // newShotPlan plans for the moments in use, and where eyes are open at all for
 // all of them.
 func newShotPlan(in *Input, open bool) *shotPlan {
-	s := &shotPlan{frame: make([]int, len(in.Climate.SinAltitude))}
+	n := len(in.Climate.SinAltitude)
+	s := &shotPlan{frame: make([]int, n), used: make([]bool, n)}
 	for _, size := range shotSizes {
 		if len(in.Scene.Viewpoints) <= size.views {
 			s.pixels, s.rank, s.stood = min(size.pixels, in.Project.Simulation.FisheyePixels), size.rank, size.stood
@@ -110,6 +114,7 @@ func newShotPlan(in *Input, open bool) *shotPlan {
 		s.frame[i] = -1
 	}
 	for _, m := range in.Climate.Moments {
+		s.used[m.Hour] = m.Occupied
 		if m.Occupied || open {
 			s.frame[m.Hour] = len(s.records)
 			s.records = append(s.records, m.Hour)
@@ -202,7 +207,7 @@ func SunFrom(m *scene.Moment) float64 {
 }
 
 // half makes the smaller pictures.
-func (x *Shots) half() *Small {
+func (x *Shots) half(used []bool) *Small {
 	if x.View.Width%2 != 0 || x.View.Width < leastHalved {
 		return nil
 	}
@@ -219,7 +224,14 @@ func (x *Shots) half() *Small {
 		}
 		groups[g] = append(groups[g], uint16(p))
 	}
-	s.Film = x.roll.Merged(groups).Develop(smallRank)
+	var frames []int
+	for i, h := range x.Records {
+		if used[h] {
+			frames = append(frames, i)
+			s.Records, s.Discs = append(s.Records, h), append(s.Discs, x.Discs[i])
+		}
+	}
+	s.Film = x.roll.Merged(frames, groups).Develop(smallRank, film.Coarse)
 	return s
 }
 
@@ -261,7 +273,7 @@ func (g *glareSink) develop(ctx context.Context, opt Options) error {
 		x := opt.shots.kept[i]
 		g.views[i].Shots = x
 		if x != nil {
-			x.Film, x.Small = x.roll.Develop(opt.shots.rank), x.half()
+			x.Film, x.Small = x.roll.Develop(opt.shots.rank, film.Fine), x.half(opt.shots.used)
 			x.roll, x.shrinks = nil, nil
 		}
 		return nil

@@ -11,6 +11,7 @@ import (
 
 	"gonum.org/v1/gonum/spatial/r3"
 
+	"squint/cmd/squint/internal/film"
 	"squint/scene"
 	"squint/scene/view"
 	"squint/trace/annual"
@@ -99,7 +100,7 @@ func TestShotsShrink(t *testing.T) {
 	f.Mean[0] = 500
 	x.keep(0, f, &shotScratch{})
 	out := make([]float64, 36)
-	x.roll.Develop(4).At(0, out)
+	x.roll.Develop(4, film.Fine).At(0, out)
 	step := math.Log(mostShown/leastShown) / 255
 	for p, px := range x.Inside {
 		want := 100.0

@@ -22,9 +22,7 @@ export const holds = (blob) => Boolean(blob && blob.id && document.getElementByI
 async function inflate(blob) {
   const block = document.getElementById("n-" + blob.id);
   if (!block) return null;
-  const text = atob(JSON.parse(block.textContent));
-  const packed = new Uint8Array(text.length);
-  for (let i = 0; i < text.length; i++) packed[i] = text.charCodeAt(i);
+  const packed = fromText(JSON.parse(block.textContent));
   const stream = new Blob([packed]).stream().pipeThrough(new DecompressionStream("deflate-raw"));
   const bytes = new Uint8Array(await new Response(stream).arrayBuffer());
   const lists = {};
@@ -34,6 +32,24 @@ async function inflate(blob) {
     at += n * width[type];
   }
   return lists;
+}
+
+// fromText reads base 85: five characters are four bytes, a z is four zeros, and
+// v, w, x and y stand for characters that HTML or JSON would read otherwise.
+function fromText(text) {
+  const digit = new Uint8Array(128), out = new Uint8Array(4 * text.length);
+  for (let c = 33; c < 118; c++) digit[c] = c - 33;
+  [..."vwxy"].forEach((c, i) => { digit[c.charCodeAt(0)] = '"\\<&'.charCodeAt(i) - 33; });
+  let n = 0, v = 0, k = 0;
+  const put = (bytes) => { for (let b = 0; b < bytes; b++) out[n++] = Math.floor(v / 256 ** (3 - b)) % 256; };
+  for (let i = 0; i < text.length; i++) {
+    const c = text.charCodeAt(i);
+    if (c === 122 && k === 0) { n += 4; continue; }
+    v = v * 85 + digit[c];
+    if (++k === 5) { put(4); v = 0; k = 0; }
+  }
+  if (k) { for (let i = k; i < 5; i++) v = v * 85 + 84; put(k - 1); }
+  return out.subarray(0, n);
 }
 
 // unpack turns planes of bytes, the lowest first, into numbers.

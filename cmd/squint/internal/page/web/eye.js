@@ -129,7 +129,7 @@ function hourPicture(y, v, f, seen) {
     sources(g, w, lum, px, threshold(lum, px, y.design.sources));
     rings(g, w, discs(f.numbers, frame));
     looked = { lum, px, seen, v, d: y.design, exact: f.exact };
-    t += s.dgp[state.record] === noValue ? "Not an hour of use: no DGP is counted." : `DGP ${(s.dgp[state.record] / 1e4).toFixed(3)} \u00b1 ${(s.error[state.record] / 1e4).toFixed(3)}, ${whole(s.ev[state.record])} lx at the eye.`;
+    t += s.dgp[state.record] === noValue ? "Not an hour of use: no DGP is counted." : `DGP ${(s.dgp[state.record] / 1e4).toFixed(3)} \u00b1 ${(s.error[state.record] / 2e3).toFixed(3)}, ${whole(s.ev[state.record])} lx at the eye.`;
     t += ` For display: half of the points lie within ${percent(f.exact.median_error)} of the computed ones, 95 % within ${percent(f.exact.wide_error, 0)}; no verdict comes from it.`;
   } else {
     if (seen) outlines(g, w, v.worst_px, (a, b) => seen.kind[a] && seen.kind[b] && seen.part[a] !== seen.part[b], css("quiet"), 0.5);

@@ -15,12 +15,14 @@ const held = (of) => (holds(of.shots.numbers) || !of.small ? of.shots : of.small
 // best is the finest step that the page holds, of how many pixels; null for none.
 export function best(of) {
   const shots = held(of), step = holds(shots.numbers) ? (shots.steps || []).filter((s) => holds(s.numbers)).pop() : null;
-  return step ? { ...step, pixels: shots.pixels } : null;
+  return step ? { ...step, pixels: shots.pixels, small: shots === of.small } : null;
 }
 
 // masks puts together what the sun lights in each frame; the Go package page
 // says how they are packed.
 function masks(n, shots, perDay) {
+  let sum = 0;
+  n.record = n.rise.map((r) => (sum += r));
   const row = Math.ceil(shots.points / 8), out = new Uint8Array(row * shots.frames), order = [...n.record.keys()];
   order.sort((a, b) => (n.record[a] % perDay) - (n.record[b] % perDay) || n.record[a] - n.record[b]);
   const mask = new Uint8Array(row);
@@ -43,22 +45,22 @@ async function develop(shots, perDay) {
     steps.push({ ...step, ...lists });
   }
   if (!steps.length) return null;
-  const frames = new Map();
+  const lit = masks(n, shots, perDay), frames = new Map();
   n.record.forEach((r, i) => frames.set(r, i));
-  const { points, least, step } = shots, row = Math.ceil(points / 8), lit = masks(n, shots, perDay);
+  const { points, least, step } = shots, row = Math.ceil(points / 8), fine = 2 * shots.grain;
   return {
     numbers: n, pixels: shots.pixels, exact: steps[steps.length - 1], frame: (record) => frames.get(record) ?? -1,
     // values fills a list with the frame's values by point.
     values(frame) {
       const code = new Float32Array(points);
-      for (let p = 0; p < points; p++) code[p] = n.mean[p] / 8;
+      for (let p = 0; p < points; p++) code[p] = n.mean[p] / fine;
       for (const s of steps) for (let k = 0; k * points < s.basis.length; k++) {
-        const w = s.weight[k * shots.frames + frame] / 4 / 127;
+        const w = s.weight[k * shots.frames + frame] / shots.grain / 127;
         if (w) for (let p = 0, b = k * points; p < points; p++, b++) code[p] += w * s.basis[b];
       }
       for (let p = 0; p < points; p++) {
         code[p] = least * Math.exp(step * code[p]);
-        if ((lit[frame * row + (p >> 3)] >> (p & 7)) & 1) code[p] += least * Math.exp((step * (n.lit_point[p] + n.lit_frame[frame])) / 8);
+        if ((lit[frame * row + (p >> 3)] >> (p & 7)) & 1) code[p] += least * Math.exp((step * (n.lit_point[p] + n.lit_frame[frame])) / fine);
       }
       return code;
     },

@@ -70,7 +70,7 @@ function pictures(d) {
   const held = films.map(best).filter((s) => s);
   if (!held.length) return name + "none, as the page would become too large";
   const list = held.map((s) => s.median_error), [least, most] = [Math.min(...list), Math.max(...list)].map((e) => percent(e));
-  return `${name}${held[0].pixels} pixels across, ${Math.max(...held.map((s) => s.rank))} patterns a view, half of the points within ${least === most ? most : `${least} to ${most}, by view,`} of the computed ones`;
+  return `${name}${held[0].pixels} pixels across, ${Math.max(...held.map((s) => s.rank))} patterns a view${held[0].small ? ", of the hours in use alone" : ""}, half of the points within ${least === most ? most : `${least} to ${most}, by view,`} of the computed ones`;
 }
 
 // perDay is the number of records in a day of the chosen design.

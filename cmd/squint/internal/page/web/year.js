@@ -105,7 +105,7 @@ function words(r) {
   let t = `${timeOf(y, r)}: `;
   if (m < 0) return t + "dark.";
   if (s && s.dgp[r] !== noValue) {
-    t += `DGP ${(s.dgp[r] / 1e4).toFixed(3)} \u00b1 ${(s.error[r] / 1e4).toFixed(3)}, ${whole(s.ev[r])} lx at the eye`;
+    t += `DGP ${(s.dgp[r] / 1e4).toFixed(3)} \u00b1 ${(s.error[r] / 2e3).toFixed(3)}, ${whole(s.ev[r])} lx at the eye`;
     const c = d.views[state.view].causes[s.cause[r]];
     if (c) t += `, mostly by ${c}`;
     t += ". ";
