@@ -213,7 +213,7 @@ export async function drawRoom() {
     } else last.words = " No picture of this hour; surfaces by finish.";
   }
   const now = y.byRecord[state.record];
-  reading.textContent = `${timeOf(y, state.record)}: ` + (now < 0 ? "dark." : y.moments.direct[now] <= sunny ? "no sun to speak of." : last.patches + last.thrown ? `sun ${last.patches ? "falls through the openings" : ""}${last.patches && last.thrown ? " and " : ""}${last.thrown ? "is thrown by mirrors (yellow)" : ""}; drawn by straight rays, for display.` : "the sun reaches no opening.") + last.words + left(y) + (d.standings.length > 1 && now >= 0 ? ` As drawn: ${d.standings[standingAt(y, state.record)]}.` : "");
+  reading.textContent = `${timeOf(y, state.record)}: ` + (now < 0 ? "dark." : y.moments.direct[now] <= sunny ? "no sun to speak of." : last.patches + last.thrown ? `sun ${last.patches ? "falls through the openings" : ""}${last.patches && last.thrown ? " and " : ""}${last.thrown ? "is thrown by mirrors (yellow)" : ""}; drawn by straight rays, for display.` : "the sun reaches no opening.") + last.words + left(y) + (d.standings.length > 1 && now >= 0 ? ` With ${d.standings[standingAt(y, state.record)] || "all as drawn"}.` : "");
   canvas.setAttribute("aria-label", "Model of the room. " + reading.textContent);
   render();
 }
