@@ -39,7 +39,11 @@ async function bar() {
 }
 
 // views is the plan's table, and its way in for readers without a pointer.
+let listed = "";
 function views(d) {
+  const key = state.design + "/" + state.view;
+  if (listed === key) return;
+  listed = key;
   const rows = d.views.map((v, i) => {
     const row = document.createElement("tr"), name = document.createElement("th"), word = document.createElement("td"), share = document.createElement("td"), b = document.createElement("button"), w = document.createElement("span");
     b.type = "button"; b.textContent = v.subject; b.addEventListener("click", () => show({ view: i, record: worstRecord(d, i) }));

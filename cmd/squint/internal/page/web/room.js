@@ -16,20 +16,26 @@ void main(){ p=at; c=colour; id=part; gl_Position=see*vec4(at,1.); }`;
 // Surfaces are shaded a little by their slope, from no light in particular.
 const fragment = `#version 300 es
 precision highp float; in vec3 p; in vec4 c; flat in float id; out vec4 o;
-uniform float top; uniform int mode; uniform vec3 eye, front, left, up, paper; uniform sampler2D seen; uniform sampler2D parts; uniform bool whole;
+uniform float top; uniform int mode; uniform vec3 eye, front, left, up, paper; uniform sampler2D seen; uniform sampler2D parts, lux; uniform float dim, span, from, reach;
 void main(){
   if(p.z>top) discard;
   if(mode==2){ o=c; return; }
   vec3 n=normalize(cross(dFdx(p),dFdy(p)));
   float s=.84+.15*abs(n.z)+.07*abs(n.x);
   o=vec4(c.rgb*s,c.a);
-  if(mode==1){
+  if(mode==1||mode==3){
+    float rho=fract(id)*2.;
     vec3 d=normalize(p-eye); float f=dot(d,front), a=acos(clamp(f,-1.,1.))/1.5707963; vec2 q=vec2(-dot(d,left),-dot(d,up));
     vec2 uv=a*normalize(q+1e-9)*.5+.5;
     if(a<1.) for(int k=0;k<9;k++){ // a part's edge may lie in the next pixel
       vec2 w=uv+vec2(k%3-1,k/3-1)/float(textureSize(parts,0).x);
-      vec4 t=floor(texture(parts,w)*255.+.5), v=texture(seen,whole?w:uv);
-      if(v.a>.5 && (abs(t.r+256.*t.g-id-1.)<.5 || c.a<.5 && t.b>0.)){ o=vec4(v.rgb,1.); return; }
+      vec4 t=floor(texture(parts,w)*255.+.5), v=texture(seen,mode==3?w:uv);
+      if(v.a<.5 || abs(t.r+256.*t.g-floor(id)-1.)>.5 && (mode==3 || c.a>.5 || t.b==0.)) continue;
+      if(mode==1){ o=vec4(v.rgb,1.); return; }
+      if(rho>0.){ // matte
+        float e=3.14159265*dim*exp((v.r*255.*256.+v.g*255.)/65535.*span)/rho;
+        o=vec4(texture(lux,vec2(clamp(log(e/from)/reach,0.,1.)*255./256.+.5/256.,.5)).rgb,1.); return;
+      }
     }
     o=vec4(mix(paper,c.rgb*s,.35),c.a);
   }
@@ -42,11 +48,12 @@ if (gl) {
   program = gl.createProgram();
   gl.attachShader(program, make(gl.VERTEX_SHADER, vertex)); gl.attachShader(program, make(gl.FRAGMENT_SHADER, fragment));
   gl.linkProgram(program); gl.useProgram(program);
-  for (const u of ["see", "top", "mode", "eye", "front", "left", "up", "paper", "seen", "parts", "whole"]) at[u] = gl.getUniformLocation(program, u);
+  for (const u of ["see", "top", "mode", "eye", "front", "left", "up", "paper", "seen", "parts", "lux", "dim", "span", "from", "reach"]) at[u] = gl.getUniformLocation(program, u);
   for (const a of ["at", "colour", "part"]) { at[a] = gl.getAttribLocation(program, a); gl.enableVertexAttribArray(at[a]); }
 }
 
-// A batch is vertices of 5 numbers: place, colour in a byte each, part.
+// A batch is vertices of 5 numbers: place, colour in a byte each, and the part's
+// number with half the reflectance of a matte finish behind the point.
 class Batch {
   constructor() { this.list = []; }
   put(p, c, part = -9) { this.list.push([p, c, part]); }
@@ -90,7 +97,7 @@ function geometry(m) {
   const c = (i, k) => [m.corner[9 * i + 3 * k], m.corner[9 * i + 3 * k + 1], m.corner[9 * i + 3 * k + 2]];
   for (let i = 0; i < m.n; i++) {
     const colour = finishColour(m.room.finishes[m.finish[i]]), b = colour[3] < 255 ? glass : solid;
-    for (let k = 0; k < 3; k++) b.put(c(i, k), colour, m.part[i]);
+    for (let k = 0; k < 3; k++) b.put(c(i, k), colour, m.part[i] + m.room.finishes[m.finish[i]].matte / 2);
   }
   const g = m.room.ground, x0 = m.room.min[0] - 6, y0 = m.room.min[1] - 6, x1 = m.room.max[0] + 6, y1 = m.room.max[1] + 6, soft = [...rgb("soft"), 255];
   for (const p of [[x0, y0], [x1, y0], [x1, y1], [x0, y0], [x1, y1], [x0, y1]]) solid.put([...p, g - 0.02], soft, -9);
@@ -133,44 +140,39 @@ function marks(m, y) {
   lines.done("marks"); over.done("over");
 }
 
-// matte are the reflectances of parts that have one matte finish, 0 for others.
-function matte(m) {
-  const out = new Float32Array(m.room.parts.length).fill(-1);
-  for (let i = 0; i < m.n; i++) {
-    const k = m.part[i], r = m.room.finishes[m.finish[i]].matte;
-    out[k] = out[k] < 0 || out[k] === r ? r : 0;
-  }
-  return out;
-}
-
-// lit are colours of the illuminance on what a view sees of matte surfaces:
-// pi times luminance by reflectance. What is seen through glass or in a mirror is
-// left out.
-function lit(m, v, lum, px, seen) {
-  const n = v.worst_px, out = new Uint8Array(4 * n * n), rho = matte(m);
+// lit are luminances of what a view sees straight, in 16 bits by logarithm; what
+// is seen through glass or in a mirror is left out. The shader makes illuminance
+// of them: pi times luminance by the reflectance of what is drawn there.
+const dimmest = 0.05, brightest = 1e6; // cd/m2, as pictures have them
+function lit(v, lum, px, seen) {
+  const n = v.worst_px, out = new Uint8Array(4 * n * n), whole = Math.log(brightest / dimmest);
   for (let i = 0; i < n * n; i++) {
-    const r = seen.kind[i] === 1 && !seen.via[i] ? rho[seen.part[i] - 1] : 0;
-    if (!(r > 0)) continue;
+    if (seen.kind[i] !== 1 || seen.via[i]) continue;
     const l = lum[Math.floor((Math.floor(i / n) * px) / n) * px + Math.floor(((i % n) * px) / n)];
-    out.set(luxScale.rgb((Math.PI * l) / r), 4 * i); out[4 * i + 3] = 255;
+    const code = Math.round(65535 * Math.min(1, Math.max(0, Math.log(l / dimmest) / whole)));
+    out.set([code >> 8, code & 255, 0, 255], 4 * i);
   }
   return out;
 }
 
-function textures(m, v, lum, px, seen, lux) {
+function textures(v, lum, px, seen, lux) {
   let colours = new Uint8Array(4 * px * px), across = px;
   const parts = new Uint8Array(4 * v.worst_px * v.worst_px);
-  if (lux) { colours = lit(m, v, lum, px, seen); across = v.worst_px; }
+  if (lux) { colours = lit(v, lum, px, seen); across = v.worst_px; }
   else for (let i = 0; i < px * px; i++) { colours.set(luminanceScale.rgb(lum[i]), 4 * i); colours[4 * i + 3] = 255; }
   for (let i = 0; i < v.worst_px * v.worst_px; i++) { parts[4 * i] = seen.part[i] & 255; parts[4 * i + 1] = seen.part[i] >> 8; parts[4 * i + 2] = seen.via[i]; }
-  [[0, colours, across, lux ? gl.NEAREST : gl.LINEAR], [1, parts, v.worst_px, gl.NEAREST]].forEach(([slot, data, n, filter]) => {
+  const scale = new Uint8Array(4 * 256);
+  for (let i = 0; i < 256; i++) scale.set([...luxScale.table.subarray(3 * i, 3 * i + 3), 255], 4 * i);
+  [[0, colours, across, across, lux ? gl.NEAREST : gl.LINEAR], [1, parts, v.worst_px, v.worst_px, gl.NEAREST], [2, scale, 256, 1, gl.LINEAR]].forEach(([slot, data, n, rows, filter]) => {
     last["texture" + slot] ||= gl.createTexture();
     gl.activeTexture(gl.TEXTURE0 + slot); gl.bindTexture(gl.TEXTURE_2D, last["texture" + slot]);
-    gl.texImage2D(gl.TEXTURE_2D, 0, gl.RGBA, n, n, 0, gl.RGBA, gl.UNSIGNED_BYTE, data);
+    gl.texImage2D(gl.TEXTURE_2D, 0, gl.RGBA, n, rows, 0, gl.RGBA, gl.UNSIGNED_BYTE, data);
     for (const k of [gl.TEXTURE_MIN_FILTER, gl.TEXTURE_MAG_FILTER]) gl.texParameteri(gl.TEXTURE_2D, k, filter);
     for (const k of [gl.TEXTURE_WRAP_S, gl.TEXTURE_WRAP_T]) gl.texParameteri(gl.TEXTURE_2D, k, gl.CLAMP_TO_EDGE);
   });
-  gl.uniform1i(at.seen, 0); gl.uniform1i(at.parts, 1); gl.uniform1i(at.whole, lux ? 1 : 0);
+  gl.uniform1i(at.seen, 0); gl.uniform1i(at.parts, 1); gl.uniform1i(at.lux, 2);
+  gl.uniform1f(at.dim, dimmest); gl.uniform1f(at.span, Math.log(brightest / dimmest));
+  gl.uniform1f(at.from, luxScale.from); gl.uniform1f(at.reach, Math.log(luxScale.to / luxScale.from));
   gl.uniform3fv(at.eye, v.position); gl.uniform3fv(at.front, v.axes[0]); gl.uniform3fv(at.left, v.axes[1]); gl.uniform3fv(at.up, v.axes[2]);
 }
 
@@ -205,9 +207,9 @@ export async function drawRoom() {
     if (frame >= 0 && seen) {
       const px = f.pixels, lum = new Float32Array(px * px).fill(1), values = f.values(frame);
       f.numbers.inside.forEach((p, i) => { lum[p] = values[i]; });
-      textures(m, v, lum, px, seen, lux);
-      last.mode = 1;
-      last.words = lux ? ` Illuminance of the matte surfaces that ${v.name} sees, by their luminance and reflectance; about, half of the points within ${percent(f.exact.median_error)}.` : ` Luminance as ${v.name} sees it, on the surfaces that it sees.`;
+      textures(v, lum, px, seen, lux);
+      last.mode = lux ? 3 : 1;
+      last.words = lux ? ` About the illuminance of matte surfaces that ${v.name} sees, by luminance and reflectance; half of the points within ${percent(f.exact.median_error)}.` : ` Luminance as ${v.name} sees it, on the surfaces that it sees.`;
       if (lux) legend(key, luxScale, "illuminance, lx", lightTicks);
       else legend(key, luminanceScale, "luminance, cd/m\u00b2", [10, 100, 1000, 10000].map((t) => [t, whole(t)]));
     } else last.words = " No picture of this hour; surfaces by finish.";
