@@ -198,6 +198,10 @@ func (g *standingSink) take(worker int, f *annual.Frame) {
 	w := &g.work[worker]
 	e := g.eyes[f.Eye]
 	v := &g.views[f.Eye]
+	if !f.Moment.Occupied {
+		g.keepShot(w, e, f)
+		return
+	}
 	w.discs = toView(w.discs[:0], e, f.Discs)
 	dgp, ev, se, evErr := glare.Pooled(g.field, f.Mean, f.Batch, w.discs, g.opt, causeFrom, &w.scratch)
 	h := f.Moment.Step

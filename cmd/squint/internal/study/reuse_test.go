@@ -87,7 +87,7 @@ func (k kept) view(i int) string {
 	worst := *v.Worst
 	worst.Moment, worst.InsideOf = nil, nil
 	return digest(v.Viewpoint.Name, v.DGP, v.StdErr, v.Ev, v.EvErr, v.Coarse, v.Bias, v.InRange, v.Cause, v.Causes,
-		worst, v.Worst.Moment.Step, v.Worst.InsideOf.View, v.Shots.Inside, v.Shots.Records, v.Shots.Film, v.Shots.Discs, v.Shots.Seen, v.Shots.SeenInside)
+		worst, v.Worst.Moment.Step, v.Worst.InsideOf.View, v.Shots.Inside, v.Shots.Records, v.Shots.Film, v.Shots.Discs, v.Shots.Stood[0].Seen, v.Shots.SeenInside)
 }
 
 func (k kept) plane(i int) string {

@@ -174,7 +174,7 @@ func (o *operation) reshoot(ctx context.Context, chosen []control.Combination, o
 	var order []control.Combination
 	for i, m := range o.in.Climate.Moments {
 		frame := opt.shots.frame[m.Step]
-		if !m.Occupied || frame < 0 || opt.shots.of[frame] == nil {
+		if frame < 0 || opt.shots.of[frame] == nil {
 			continue
 		}
 		st, err := o.stand(chosen[i])

@@ -73,8 +73,13 @@ func (s *shelf) missingView(i int) {
 	x := s.views[i]
 	missing := false
 	for _, h := range s.used {
-		if !x.known(h, s.pixels()) {
+		if !x.known(h, s.pixels(), true) {
 			missing, s.lackHours[h], s.seenHours[h] = true, true, true
+		}
+	}
+	for _, h := range s.hours {
+		if s.opt.shots != nil && s.opt.shots.frame[h] >= 0 && !x.known(h, s.pixels(), false) {
+			missing, s.lackHours[h] = true, true
 		}
 	}
 	if !missing && !s.opt.anyWorst && len(s.used) > 0 && x.top(s.used) == nil {
@@ -129,7 +134,7 @@ func (s *shelf) compute(ctx context.Context, r *Result) error {
 	opt.Store = nil
 	if opt.shots != nil {
 		all := newShotPlan(&sub)
-		all.pixels, all.rank = opt.shots.pixels, opt.shots.rank
+		all.pixels = opt.shots.pixels
 		opt.shots = all
 	}
 	var own Result

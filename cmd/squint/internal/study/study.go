@@ -22,7 +22,7 @@ type Options struct {
 	Workers int // threads; results do not depend on it
 	// Progress, if not nil, hears of each stage's work done.
 	Progress func(stage Stage, done, total int)
-	// Shots keeps small pictures of every view's hours in use, for display.
+	// Shots keeps small pictures of every view's hours, for display.
 	Shots bool
 	// Bare leaves out what no verdict needs: what systems take of the view out,
 	// and sun that mirrors concentrate.
@@ -86,8 +86,9 @@ type Result struct {
 	// where nothing does.
 	Operation *control.Report
 	// Standings are the labels of the combinations of positions, and Standing
-	// the index among them by record; -1 without daylight.
+	// the index among them by record; -1 without daylight. Stood are their scenes.
 	Standings []string
+	Stood     []*scene.Scene
 	Standing  []int16
 
 	// Hazard is nil where nothing but panes mirrors or shines.
@@ -255,6 +256,9 @@ func Run(ctx context.Context, in *Input, opt Options) (*Result, error) {
 		r.Reused = r.traced.words(in.Scene)
 	}
 	r.Standings, r.Standing = standingByStep(in.Standings, in.Calendar.Steps())
+	for _, s := range in.Standings {
+		r.Stood = append(r.Stood, s.Scene)
+	}
 	if err := r.refine(ctx, in, opt, y); err != nil {
 		return nil, err
 	}
@@ -290,6 +294,7 @@ func (r *Result) Forget() {
 		v := &r.Views[i]
 		v.DGP, v.StdErr, v.Ev, v.InRange, v.Cause, v.Worst, v.Shots = nil, nil, nil, nil, nil, nil, nil
 	}
+	r.Stood = nil
 	for i := range r.Planes {
 		p := &r.Planes[i]
 		p.E, p.StdErr, p.Direct = nil, nil, nil

@@ -181,7 +181,7 @@ func newEngine(ctx context.Context, in *Input, st *Standing, opt Options, r *Res
 	}
 	r.Settings.Workers = opt.Workers
 	r.tell(in, t.Len(), cfg.Coarsen)
-	return &engine{t: t, rec: rec, cfg: annual.Config{Workers: opt.Workers, Seed: sim.Seed}}, nil
+	return &engine{t: t, rec: rec, cfg: annual.Config{Workers: opt.Workers, Seed: sim.Seed, Glimpses: opt.shots != nil && opt.shots.always}}, nil
 }
 
 // tell takes over how finely surfaces were cut.
