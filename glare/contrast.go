@@ -53,7 +53,7 @@ func ContrastOf(f *Field, lum []float32, o Options) Contrast {
 }
 
 // Median returns the luminance (cd/m2) that half of the field, by solid angle,
-// does not exceed. Discs do not count.
+// does not exceed; NaN where no pixel's centre lies in it. Discs do not count.
 func Median(f *Field, lum []float32) float64 {
 	var inside []int32
 	for i, in := range f.Inside {
@@ -68,5 +68,5 @@ func Median(f *Field, lum []float32) float64 {
 			return float64(lum[i])
 		}
 	}
-	return 0
+	return math.NaN()
 }

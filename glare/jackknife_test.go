@@ -32,15 +32,16 @@ func TestPooled(t *testing.T) {
 	var scratch Scratch
 	_, _, got, gotEv := Pooled(f, mean, batch, nil, Options{}, 0, &scratch)
 	// Sum of squared differences from 410 is 2000; over 4 x 3 the root is 12.91
-	// cd/m2, times pi the error of the illuminance; DGP's slope is that between
-	// two levels.
-	a, ev1 := DGPOnly(f, batch[0], nil, Options{}, &scratch)
-	b, ev2 := DGPOnly(f, batch[1], nil, Options{}, &scratch)
-	want := (b - a) / (ev2 - ev1) * math.Pi * math.Sqrt(2000.0/12)
-	if wantEv := math.Pi * math.Sqrt(2000.0/12); math.Abs(gotEv/wantEv-1) > 1e-2 { // pixels at the rim
+	// cd/m2, times pi the error of the illuminance, times 5.87e-5 that of DGP
+	// (Wienold & Christoffersen 2006, as in DGP).
+	wantEv := math.Pi * math.Sqrt(2000.0/12)
+	want := 5.87e-5 * wantEv
+	// Solid angles add up to the half space to far less; levels are exact in
+	// float32.
+	if math.Abs(gotEv/wantEv-1) > 1e-5 {
 		t.Errorf("Ev: got %g, want %g", gotEv, wantEv)
 	}
-	if math.Abs(got/want-1) > 1e-3 { // float32 images
+	if math.Abs(got/want-1) > 1e-5 {
 		t.Errorf("got %g, want %g", got, want)
 	}
 	if _, _, got, _ := Pooled(f, mean, batch[:1], nil, Options{}, 0, &scratch); !math.IsNaN(got) {

@@ -297,3 +297,53 @@ func FuzzNewGlazingTable(f *testing.F) {
 		}
 	})
 }
+
+// TestJoined: two units of equal panes are the unit of all of them, by the table
+// that glazing_angular.csv holds for two panes; units that differ, that are known
+// from a table, or that have too many panes together do not join.
+func TestJoined(t *testing.T) {
+	unit := func(panes int, kl float64) *Glazing {
+		g, err := NewGlazing(stack(1, panes, kl).t, panes)
+		if err != nil {
+			t.Fatal(err)
+		}
+		g.Extinction = kl // free of the rounding of solving for it
+		return g
+	}
+	joined := map[float64]*Glazing{}
+	got := func(cos float64, panes int, kl float64) throughAndMirror {
+		if panes == 1 {
+			return stack(cos, 1, kl)
+		}
+		if joined[kl] == nil {
+			g, ok := Joined(unit(1, kl), unit(1, kl))
+			if !ok || g.Panes != 2 {
+				t.Fatalf("equal panes: got %+v, %v, want two joined", g, ok)
+			}
+			joined[kl] = g
+		}
+		r, through := joined[kl].Delta(Front, cos)
+		return throughAndMirror{t: through, r: r}
+	}
+	if wrong, all := mismatches(t, rounded7+tableError, got); wrong > 0 || all != 200 {
+		t.Errorf("%d of %d values differ, want 0 of 200", wrong, all)
+	}
+	if g, ok := Joined(unit(2, .02), unit(2, .02)); !ok || g.Panes != MaxPanes {
+		t.Errorf("two and two panes: got %+v, %v, want %d panes", g, ok, MaxPanes)
+	}
+	measured, err := NewGlazingTable([]GlazingRow{{0, .8, .1}, {1, .7, .2}})
+	if err != nil {
+		t.Fatal(err)
+	}
+	for name, pair := range map[string][2]*Glazing{
+		"unequal extinction":  {unit(1, .02), unit(1, .03)},
+		"too many panes":      {unit(2, .02), unit(3, .02)},
+		"a table and a pane":  {measured, unit(1, .02)},
+		"a pane and a table":  {unit(1, .02), measured},
+		"two tables the same": {measured, measured},
+	} {
+		if g, ok := Joined(pair[0], pair[1]); ok || g != nil {
+			t.Errorf("%s: got %+v, want them not to join", name, g)
+		}
+	}
+}

@@ -1,6 +1,7 @@
 package scene
 
 import (
+	"cmp"
 	"errors"
 	"fmt"
 	"io/fs"
@@ -92,7 +93,7 @@ func ReadClimate(fsys fs.FS, p *project.Project, occupied []bool) (*Climate, err
 		return nil, err
 	}
 	north := p.Site.NorthDeg * math.Pi / 180
-	steps, err := c.steps(60 / p.Simulation.StepMin)
+	steps, err := c.steps(60 / cmp.Or(p.Simulation.StepMin, 60))
 	if err != nil {
 		return nil, err
 	}
@@ -151,13 +152,13 @@ func (c *Climate) sunAt(r *weather.Record, t time.Time) (sky.Sun, error) {
 }
 
 // SunAt is the sun at any moment in the model frame, whose +y points to azimuth
-// northDeg, as it is seen through air of 1013.25 hPa and 10 degrees Celsius.
+// northDeg, as it is seen through the usual air.
 func SunAt(site sky.Site, northDeg float64, t time.Time) (r3.Vec, error) {
-	s, err := sky.SunAt(site, t)
+	s, err := usualSun(site, t)
 	if err != nil {
 		return r3.Vec{}, err
 	}
-	return turn(s.Refracted(1013.25, 10).Direction, northDeg*math.Pi/180), nil
+	return turn(s.Direction, northDeg*math.Pi/180), nil
 }
 
 // steps are the parts of all records.
@@ -193,12 +194,7 @@ func (c *Climate) moment(step weather.Step, s sky.Sun) (m *Moment, clamped bool)
 		// right to the minute there is none.
 		dni = 0
 	}
-	ill := photometry.Perez1990(photometry.Irradiance{
-		DHI: step.DHI, DNI: dni, ZenithRad: s.ZenithRad,
-		E0n:       photometry.ExtraterrestrialNormal(t.YearDay()),
-		DewPointC: r.DewPointC,
-		AirMass:   photometry.AirMassKastenYoung1989(s.ZenithRad),
-	})
+	ill := illuminances(step.DHI, dni, s, t, r.DewPointC)
 	direct := ill.DirectNormal * math.Max(0, sinAlt)
 	if ill.Diffuse < minSkyLx && direct < minSkyLx {
 		return nil, false
@@ -213,6 +209,16 @@ func (c *Climate) moment(step weather.Step, s sky.Sun) (m *Moment, clamped bool)
 		DHI:       step.DHI,
 	}
 	return m, clamp.Clamped
+}
+
+// illuminances are those of irradiances, W/m2, under sun s at t.
+func illuminances(dhi, dni float64, s sky.Sun, t time.Time, dewPointC float64) photometry.Illuminance {
+	return photometry.Perez1990(photometry.Irradiance{
+		DHI: dhi, DNI: dni, ZenithRad: s.ZenithRad,
+		E0n:       photometry.ExtraterrestrialNormal(t.YearDay()),
+		DewPointC: dewPointC,
+		AirMass:   photometry.AirMassKastenYoung1989(s.ZenithRad),
+	})
 }
 
 // aboveHorizon puts a sun that is down on the horizon, for the sky's glow.

@@ -90,3 +90,16 @@ func TestFinerSteps(t *testing.T) {
 		}
 	}
 }
+
+// TestNoStep: a project put together without the length of a step has hours.
+func TestNoStep(t *testing.T) {
+	p := load(t, roomMesh)
+	p.Simulation.StepMin = 0
+	c, err := ReadClimate(file(t, invented(t), nil), p, nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if c.PerHour() != 1 || c.Moments[0].Share != 1 {
+		t.Errorf("got %d parts of an hour, the first of share %g, want one whole hour", c.PerHour(), c.Moments[0].Share)
+	}
+}

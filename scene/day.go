@@ -45,7 +45,7 @@ func (c *Climate) Day(d project.MonthDay, northDeg float64, perHour int) ([]r3.V
 // sky of the CIE Standard Clear Sky, low luminance turbidity (CIE S 011/E:2003,
 // type 12), as bright as photometry.ClearDay has it. nil where the sun is down.
 // Step is the one that the moment falls in.
-func (c *Climate) ClearMoment(d project.MonthDay, northDeg, standardH float64) (*Moment, error) {
+func (c *Climate) ClearMoment(p *project.Project, d project.MonthDay, standardH float64) (*Moment, error) {
 	t, s, err := c.at(d, standardH)
 	if err != nil {
 		return nil, err
@@ -58,8 +58,10 @@ func (c *Climate) ClearMoment(d project.MonthDay, northDeg, standardH float64) (
 	if err != nil {
 		return nil, err
 	}
-	m := &Moment{Step: int((float64(24*(t.YearDay()-1)) + standardH) * float64(c.PerHour())), Time: t, Month: d.Month - 1,
-		Sun: s.Direction, SunNormalLx: sun, Sky: dome, DiffuseLx: lx, GlobalLx: lx + sun*s.Direction.Z}
-	m.turn(northDeg * math.Pi / 180)
+	m, err := finished(p, &Moment{Time: t, Month: d.Month - 1, Sun: s.Direction, SunNormalLx: sun, Sky: dome, DiffuseLx: lx})
+	if err != nil {
+		return nil, err
+	}
+	m.Step = int((float64(24*(t.YearDay()-1)) + standardH) * float64(c.PerHour()))
 	return m, nil
 }

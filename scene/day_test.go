@@ -57,7 +57,7 @@ func TestDay(t *testing.T) {
 
 func TestClearMoment(t *testing.T) {
 	c := clearHill(t)
-	m, err := c.ClearMoment(project.MonthDay{Month: 3, Day: 21}, 0, 9)
+	m, err := c.ClearMoment(&project.Project{}, project.MonthDay{Month: 3, Day: 21}, 9)
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -70,7 +70,7 @@ func TestClearMoment(t *testing.T) {
 	if want := m.DiffuseLx + m.SunNormalLx*m.Sun.Z; math.Abs(m.GlobalLx-want) > 1e-9*want {
 		t.Errorf("global %.0f lx, want %.0f", m.GlobalLx, want)
 	}
-	if m, err := c.ClearMoment(project.MonthDay{Month: 12, Day: 21}, 0, 3); m != nil || err != nil {
+	if m, err := c.ClearMoment(&project.Project{}, project.MonthDay{Month: 12, Day: 21}, 3); m != nil || err != nil {
 		t.Errorf("at night: %v, %v", m, err)
 	}
 }

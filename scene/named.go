@@ -8,7 +8,6 @@ import (
 
 	"gonum.org/v1/gonum/spatial/r3"
 
-	"squint/scene/photometry"
 	"squint/scene/project"
 	"squint/scene/sky"
 )
@@ -35,18 +34,19 @@ func (c *Climate) Nearest(t time.Time) *Moment {
 	return best
 }
 
-// sunFor is the sun at t, at the climate's site with the usual air.
-func (c *Climate) sunFor(t time.Time) (sky.Sun, error) {
-	s, err := sky.SunAt(c.Site, t)
+// usualSun is the sun at t as it is seen through the usual air.
+func usualSun(site sky.Site, t time.Time) (sky.Sun, error) {
+	s, err := sky.SunAt(site, t)
 	if err != nil {
 		return s, err
 	}
 	return s.Refracted(usualPressureHPa, usualTemperatureC), nil
 }
 
-// finished completes a moment whose sun and sky stand in the world frame.
+// finished completes a moment of no record whose sun and sky stand in the world
+// frame.
 func finished(p *project.Project, m *Moment) (*Moment, error) {
-	m.Step = -1
+	m.Step, m.Share = -1, 1
 	m.turn(p.Site.NorthDeg * math.Pi / 180)
 	h, has, err := turnedHorizon(p)
 	if err != nil {
@@ -64,7 +64,7 @@ func finished(p *project.Project, m *Moment) (*Moment, error) {
 // normalLx on a plane that faces it. Kinds whose luminance depends on the sun
 // need one above the horizon.
 func (c *Climate) CIEMoment(p *project.Project, t time.Time, kind int, diffuseLx, normalLx float64) (*Moment, error) {
-	s, err := c.sunFor(t)
+	s, err := usualSun(c.Site, t)
 	if err != nil {
 		return nil, err
 	}
@@ -93,19 +93,14 @@ func (c *Climate) CIEMoment(p *project.Project, t time.Time, kind int, diffuseLx
 // IrradianceMoment is t under the all-weather sky of diffuse horizontal and
 // direct normal irradiance, W/m2, as an hour of a weather file is made.
 func (c *Climate) IrradianceMoment(p *project.Project, t time.Time, diffuseWM2, directWM2 float64) (*Moment, error) {
-	s, err := c.sunFor(t)
+	s, err := usualSun(c.Site, t)
 	if err != nil {
 		return nil, err
 	}
 	if s.Direction.Z <= 0 {
 		return nil, fmt.Errorf("sun: it is below the horizon at %s; want a time of day", t.Format("2 January 15:04"))
 	}
-	ill := photometry.Perez1990(photometry.Irradiance{
-		DHI: diffuseWM2, DNI: directWM2, ZenithRad: s.ZenithRad,
-		E0n:       photometry.ExtraterrestrialNormal(t.YearDay()),
-		DewPointC: usualDewPointC,
-		AirMass:   photometry.AirMassKastenYoung1989(s.ZenithRad),
-	})
+	ill := illuminances(diffuseWM2, directWM2, s, t, usualDewPointC)
 	dome, _ := sky.NewPerez(s.Direction, ill.Clearness, ill.Brightness, ill.Diffuse)
 	return finished(p, &Moment{Time: t, Month: int(t.Month()) - 1, Sun: s.Direction, SunNormalLx: ill.DirectNormal, Sky: dome, DiffuseLx: ill.Diffuse})
 }

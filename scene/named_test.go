@@ -94,6 +94,38 @@ func TestIrradianceMoment(t *testing.T) {
 	}
 }
 
+// TestNamedMomentsBehindSkyline: a sun that the horizon line hides adds nothing
+// on the level; one that stands above a lower line does. All moments stand for
+// the whole of their hour.
+func TestNamedMomentsBehindSkyline(t *testing.T) {
+	at := time.Date(2022, 3, 21, 9, 0, 0, 0, time.FixedZone("", 3600))
+	c := clearHill(t)
+	for name, make := range map[string]func(*project.Project) (*Moment, error){
+		"clear": func(p *project.Project) (*Moment, error) {
+			return c.ClearMoment(p, project.MonthDay{Month: 3, Day: 21}, 9)
+		},
+		"general sky": func(p *project.Project) (*Moment, error) { return c.CIEMoment(p, at, 12, 12000, 70000) },
+		"irradiance":  func(p *project.Project) (*Moment, error) { return c.IrradianceMoment(p, at, 100, 700) },
+	} {
+		// At 50 degrees north the sun of 9 h stands 27 degrees high, cos 50 cos 45
+		// = sin 27 (spherical trigonometry).
+		for line, hidden := range map[float64]bool{20: false, 35: true} {
+			p := &project.Project{Horizon: []project.HorizonPoint{{AzimuthDeg: 0, AltitudeDeg: line}, {AzimuthDeg: 180, AltitudeDeg: line}}}
+			m, err := make(p)
+			if err != nil {
+				t.Fatal(err)
+			}
+			want := m.DiffuseLx
+			if !hidden {
+				want += m.SunNormalLx * m.Sun.Z
+			}
+			if m.SunNormalLx == 0 || math.Abs(m.GlobalLx/want-1) > 1e-12 || m.Share != 1 {
+				t.Errorf("%s, horizon at %g degrees: got %.0f lx on the level, share %g, want %.0f lx, 1", name, line, m.GlobalLx, m.Share, want)
+			}
+		}
+	}
+}
+
 // TestNearest: within an hour, the nearer of two records.
 func TestNearest(t *testing.T) {
 	at := func(h, m int) time.Time { return time.Date(2022, 6, 1, h, m, 0, 0, time.UTC) }

@@ -1,6 +1,7 @@
 package trace
 
 import (
+	"cmp"
 	"math"
 	"slices"
 
@@ -20,8 +21,13 @@ func (w *World) findMirrors() {
 	type plane struct {
 		part    int32
 		x, y, z int32 // of the normal, in steps
+		offset  int32 // from the origin, in offsetM
 	}
-	const steps = 1 << 10 // of a normal's component: 0.06 degrees
+	// Own choices: what bends or stands off by less is one flat mirror.
+	const (
+		steps   = 1 << 10 // of a normal's component: 0.06 degrees
+		offsetM = 0.01
+	)
 	groups := map[plane][]int32{}
 	var order []plane
 	for _, f := range w.specular.facets {
@@ -29,7 +35,7 @@ func (w *World) findMirrors() {
 			continue
 		}
 		n := w.normal[f.prim]
-		k := plane{w.tris[f.prim].part, int32(math.Round(n.X * steps)), int32(math.Round(n.Y * steps)), int32(math.Round(n.Z * steps))}
+		k := plane{w.tris[f.prim].part, int32(math.Round(n.X * steps)), int32(math.Round(n.Y * steps)), int32(math.Round(n.Z * steps)), int32(math.Round(w.plane[f.prim] / offsetM))}
 		if groups[k] == nil {
 			order = append(order, k)
 		}
@@ -50,13 +56,7 @@ func (w *World) findMirrors() {
 		}
 	}
 	slices.SortStableFunc(w.mirrors, func(a, b system.Rect) int {
-		switch x, y := a.WidthM*a.HeightM, b.WidthM*b.HeightM; {
-		case x > y:
-			return -1
-		case x < y:
-			return 1
-		}
-		return 0
+		return cmp.Compare(b.WidthM*b.HeightM, a.WidthM*a.HeightM)
 	})
 	w.mirrors = w.mirrors[:min(len(w.mirrors), mostMirrors)]
 }

@@ -14,6 +14,7 @@ import (
 // mirror is a fine mesh.
 type specular struct {
 	facets []facet
+	parts  []mirrorPart // of the sharp ones, in the order of their first facets
 }
 
 type facet struct {
@@ -29,13 +30,14 @@ type facet struct {
 func (w *World) findSpecular() {
 	sp := &w.specular
 	kinds := map[int32][2]bool{}
+	at := map[int32]int{} // index into parts, by part
 	for i := range w.tris {
-		k, ok := kinds[w.tris[i].finish]
+		kind, ok := kinds[w.tris[i].finish]
 		if !ok {
-			k = mirrors(w.tris[i].bsdf)
-			kinds[w.tris[i].finish] = k
+			kind = mirrors(w.tris[i].bsdf)
+			kinds[w.tris[i].finish] = kind
 		}
-		sharp, gloss := k[0], k[1]
+		sharp, gloss := kind[0], kind[1]
 		if !sharp && !gloss {
 			continue
 		}
@@ -47,6 +49,20 @@ func (w *World) findSpecular() {
 			radius = math.Max(radius, r3.Norm(r3.Sub(c, centre)))
 		}
 		sp.facets = append(sp.facets, facet{prim: int32(i), areaM2: area, centre: centre, radius: radius, sharp: sharp, gloss: gloss, pane: passesStraight(w.tris[i].bsdf)})
+		if !sharp {
+			continue
+		}
+		k, seen := at[w.tris[i].part]
+		if !seen {
+			k = len(sp.parts)
+			at[w.tris[i].part], sp.parts = k, append(sp.parts, mirrorPart{})
+		}
+		m := &sp.parts[k]
+		m.facets = append(m.facets, int32(len(sp.facets)-1))
+		m.cum = append(m.cum, area)
+		if n := len(m.cum); n > 1 {
+			m.cum[n-1] += m.cum[n-2]
+		}
 	}
 }
 

@@ -100,6 +100,27 @@ func TestFacadeSun(t *testing.T) {
 	}
 }
 
+// TestFacadeSunDelay: the delay ends with the step that completes it, however
+// times between steps of 10 minutes are rounded.
+func TestFacadeSunDelay(t *testing.T) {
+	var steps []Step
+	for i := range 24 * 6 {
+		steps = append(steps, Step{At: i, ClockH: float64(i/6) + (float64(i%6)+0.5)/6, Share: 1. / 6})
+	}
+	for last := range 24*6 - 5 {
+		facts := Facts{FacadeWm2: func(i int) float64 {
+			if i == last {
+				return 300
+			}
+			return 0
+		}}
+		want := []int{last, last + 1, last + 2} // half an hour
+		if got, _ := chosen(t, roller, FacadeSun{CloseWm2: 200, ReopenWm2: 200, DelayH: 0.5, Closed: 1}, steps, facts); !slices.Equal(got, want) {
+			t.Errorf("sun in step %d: got %v closed, want %v", last, got, want)
+		}
+	}
+}
+
 func TestWorkPlaneSun(t *testing.T) {
 	// Of 100 sensors, as many as the hour are struck; by 999 lx before noon.
 	facts := Facts{DirectLx: func(i int) []float32 {

@@ -179,10 +179,65 @@ func TestGroupsBySight(t *testing.T) {
 	}
 }
 
+// walked is what units do that only glare closes, by the rule as the guide puts
+// it and with everything known: step by step, a unit with glare starts open or,
+// where it may not open now, as it was; then what lets the glare in, or else
+// whatever can, closes by one state until nobody has glare. What was further
+// closed in the step before opens below the limit less the hysteresis only.
+// forget is a planted defect: every step is taken for the first of its day.
+func walked(units []Unit, steps []Step, see dgpOf, forget bool) []Combination {
+	var list []Combination
+	before := make([]byte, len(units))
+	for i, s := range steps {
+		if forget || i == 0 || steps[i-1].Day != s.Day {
+			clear(before)
+		}
+		now := make([]byte, len(units))
+		for k, u := range units {
+			if u.Glare != nil && (!s.Occupied || u.Glare.Reopen == NextMorning) {
+				now[k] = before[k]
+			}
+		}
+		for again := s.Occupied; again; {
+			again = false
+			o := see(i, Combination(now))
+			next := slices.Clone(now)
+			for v, dgp := range o.DGP {
+				var any, facing []int
+				for k, u := range units {
+					if u.Glare == nil || int(now[k]) == len(u.States)-1 {
+						continue
+					}
+					limit := u.Glare.Limit
+					if now[k] < before[k] {
+						limit -= u.Glare.Hysteresis
+					}
+					if dgp > limit {
+						any = append(any, k)
+						if slices.Contains(o.Through[v], u.Group) {
+							facing = append(facing, k)
+						}
+					}
+				}
+				if facing == nil {
+					facing = any
+				}
+				for _, k := range facing {
+					next[k], again = now[k]+1, true
+				}
+			}
+			now = next
+		}
+		list, before = append(list, Combination(now)), now
+	}
+	return list
+}
+
 // TestRandomYears draws DGP for every combination and wants, from a plan that
-// asks in rounds, what a plan that walks the year step by step with everything
-// known finds, and that nobody is left with glare where more could be closed.
+// asks in rounds, what walked finds, and that nobody is left with glare where
+// more could be closed.
 func TestRandomYears(t *testing.T) {
+	forgot := 0 // years in which the planted defect shows
 	for seed := range uint64(40) {
 		rng := rand.New(rand.NewPCG(seed, 7))
 		var units []Unit
@@ -211,27 +266,12 @@ func TestRandomYears(t *testing.T) {
 		p := plan(t, units, steps)
 		rounds, _ := run(t, p, see)
 
-		// All days are walked one after the other here, each step with all known.
-		whole := plan(t, units, steps)
-		for d := range whole.days {
-			for i := whole.days[d][0]; i < whole.days[d][1]; i++ {
-				for {
-					_, needs := whole.day([2]int{whole.days[d][0], i + 1})
-					if len(needs) == 0 {
-						break
-					}
-					if len(needs) != 1 || needs[0].Step != i {
-						t.Fatalf("seed %d: step %d is settled, but %+v is needed", seed, i-1, needs)
-					}
-					if err := whole.Learn(needs[0], see(i, needs[0].States)); err != nil {
-						t.Fatal(err)
-					}
-				}
-			}
-		}
-		got, want := p.Chosen(), whole.Chosen()
+		got, want := p.Chosen(), walked(units, steps, see, false)
 		if !slices.Equal(got, want) {
 			t.Errorf("seed %d: rounds and steps differ", seed)
+		}
+		if !slices.Equal(got, walked(units, steps, see, true)) {
+			forgot++
 		}
 		most := 1 // states of the longest way within a step, for every step of a day
 		for _, u := range units {
@@ -254,6 +294,11 @@ func TestRandomYears(t *testing.T) {
 				}
 			}
 		}
+	}
+	// Half of the units hold until the next morning, half of the others by a
+	// hysteresis: hardly a year is without.
+	if forgot < 20 {
+		t.Errorf("twin: that units forget how they stood shows in %d of 40 years, want at least 20", forgot)
 	}
 }
 

@@ -6,6 +6,9 @@ import "squint/glare/daylight"
 // shading is on while the irradiance of the surface is above it, from memory.
 const DefaultFacadeWm2 = 300
 
+// roundingH is far more than the rounding of times, and far less than a step.
+const roundingH = 1e-9
+
 // FacadeSun closes the unit while the irradiance of its opening's plane is
 // above CloseWm2, and opens it again when it has not been above ReopenWm2 for
 // DelayH hours. Each day starts open.
@@ -33,7 +36,7 @@ func (l FacadeSun) Choose(u *Unit, steps []Step, f Facts) ([]int, error) {
 		switch {
 		case e > l.CloseWm2:
 			closed = true
-		case closed && e <= l.ReopenWm2 && s.ClockH-since >= l.DelayH:
+		case closed && e <= l.ReopenWm2 && s.ClockH-since >= l.DelayH-roundingH:
 			closed = false
 		}
 		list[i] = l.pick(closed)

@@ -17,8 +17,11 @@ func (im *Image) SpreadDiscs() error {
 	if im.Attr.DiscsInPixels {
 		return nil
 	}
+	if err := im.moveDiscs(1); err != nil {
+		return err
+	}
 	im.Attr.DiscsInPixels = len(im.Attr.Discs) > 0
-	return im.moveDiscs(1)
+	return nil
 }
 
 // GatherDiscs undoes SpreadDiscs, to the rounding of float32 where a pixel holds
@@ -27,8 +30,11 @@ func (im *Image) GatherDiscs() error {
 	if !im.Attr.DiscsInPixels {
 		return nil
 	}
+	if err := im.moveDiscs(-1); err != nil {
+		return err
+	}
 	im.Attr.DiscsInPixels = false
-	return im.moveDiscs(-1)
+	return nil
 }
 
 func (im *Image) moveDiscs(sign float64) error {
@@ -72,6 +78,7 @@ func (d Disc) shares(v view.View) []share {
 		flux, size = flux*(1-d.OmegaSr/(4*math.Pi))*dir.X, v.ProjectedSolidAngle
 	}
 	var out []share
+	var omega []float64 // by share
 	at := map[int]int{} // index into out, by pixel
 	total := 0.0
 	for _, p := range sunPoints(dir) {
@@ -84,17 +91,17 @@ func (d Disc) shares(v view.View) []share {
 		if !seen {
 			k = len(out)
 			at[i], out = k, append(out, share{pixel: i})
+			omega = append(omega, size(i%v.Width, i/v.Width))
+		}
+		if !(omega[k] > 0) {
+			continue // at the picture's edge: the disc's other pixels have its light
 		}
 		out[k].lum++
 		total++
 	}
 	for k := range out {
-		s := &out[k]
-		omega := size(s.pixel%v.Width, s.pixel/v.Width)
-		if omega > 0 {
-			s.lum *= flux / total / omega
-		} else {
-			s.lum = 0
+		if omega[k] > 0 {
+			out[k].lum *= flux / total / omega[k]
 		}
 	}
 	return out

@@ -4,6 +4,10 @@ import (
 	"bytes"
 	"math"
 	"testing"
+
+	"gonum.org/v1/gonum/spatial/r3"
+
+	"squint/scene/view"
 )
 
 func withDiscs() *Image {
@@ -77,5 +81,39 @@ func TestDiscsNeedAView(t *testing.T) {
 	im.Attr.Projection = ""
 	if err := im.SpreadDiscs(); err == nil {
 		t.Error("discs were spread in an unknown view")
+	}
+	if im.Attr.DiscsInPixels {
+		t.Error("what failed says that the discs stand in the pixels")
+	}
+	im.Attr.DiscsInPixels = true
+	if err := im.GatherDiscs(); err == nil || !im.Attr.DiscsInPixels {
+		t.Errorf("gathered in an unknown view: got %v, in pixels %v, want an error and true", err, im.Attr.DiscsInPixels)
+	}
+}
+
+// A disc that the edge of the picture cuts keeps its illuminance in the pixels
+// that there are, however small their parts within the circle.
+func TestDiscsAtTheEdge(t *testing.T) {
+	v := view.View{Direction: r3.Vec{Y: 1}, Up: r3.Vec{Z: 1}, Projection: view.Equidistant, FOVRad: math.Pi / 3, Width: 33, Height: 33}
+	cut := 0
+	for i := range 500 {
+		// Around the edge at 30 degrees, up to the disc's radius of 0.27 outside.
+		theta := (30 + 0.25*math.Sin(float64(i))) * math.Pi / 180
+		s, c := math.Sincos(2 * math.Pi * float64(i) / 500)
+		d := Disc{Direction: [3]float64{math.Cos(theta), math.Sin(theta) * c, math.Sin(theta) * s}, OmegaSr: 6.8e-5, Luminance: 1e9}
+		got := 0.0
+		for _, s := range d.shares(v) {
+			got += s.lum * v.ProjectedSolidAngle(s.pixel%v.Width, s.pixel/v.Width)
+		}
+		if theta > math.Pi/6 {
+			cut++
+		}
+		// Exact, see shares.
+		if want := 1e9 * 6.8e-5 * (1 - 6.8e-5/(4*math.Pi)) * math.Cos(theta); math.Abs(got/want-1) > 1e-9 {
+			t.Errorf("disc %d, %.2f degrees off the axis: got %g lx, want %g", i, theta*180/math.Pi, got, want)
+		}
+	}
+	if cut < 200 {
+		t.Errorf("got %d discs with their middle outside, want 200", cut)
 	}
 }

@@ -52,7 +52,7 @@ type Photograph struct {
 	Plateau    Plateau
 }
 
-// Plateau is how often the largest luminance occurs.
+// Plateau is how often the largest luminance that no mask hides occurs.
 type Plateau struct {
 	CdM2   float64
 	Pixels int
@@ -109,7 +109,6 @@ func Develop(im *luminance.Image, s Settings) (*Photograph, error) {
 		}
 		p.pixel(im, i, s.Vignetting.At(math.Atan2(math.Hypot(dir.Y, dir.Z), dir.X)))
 	}
-	p.findPlateau(im)
 	for _, m := range s.Masks {
 		if len(m.Hidden) != n {
 			return nil, fmt.Errorf("%w %s: got %d pixels, want %d", ErrMask, m.Name, len(m.Hidden), n)
@@ -120,6 +119,7 @@ func Develop(im *luminance.Image, s Settings) (*Photograph, error) {
 			}
 		}
 	}
+	p.findPlateau(im)
 	return p, p.scale(s.Spots)
 }
 

@@ -148,6 +148,8 @@ func TestVignettingRefused(t *testing.T) {
 		"a,b\n0,1\n":                      "lens.csv:1: vignetting: got the header \"a,b\"",
 		"angle_deg,factor\n5,1\n9,1\n":    "lens.csv:2: vignetting: got 5 degrees first",
 		"angle_deg,factor\n0,1\n0,0.9\n":  "lens.csv:3: vignetting: got 0 degrees after 0",
+		"angle_deg,factor\n0,1\n9,96\n":   "lens.csv:3: vignetting: got the factor \"96\", want 0.05 to 1.5",
+		"angle_deg,factor\n0,1\n9,0.04\n": "lens.csv:3: vignetting: got the factor \"0.04\", want 0.05 to 1.5",
 		"angle_deg,factor\n0,1\n20,-1\n":  "got the factor \"-1\"",
 		"angle_deg,factor\n0,1\n20,1,1\n": "got 3 columns",
 		"angle_deg,factor\n0,1\nx,1\n":    "got the angle \"x\"",
@@ -245,6 +247,13 @@ func TestBadPixels(t *testing.T) {
 	}
 	if p.Plateau.Pixels != 4 || p.Plateau.CdM2 != 40000 || !p.Plateau.Clipped() {
 		t.Errorf("got %+v, want 4 clipped pixels of 40000", p.Plateau)
+	}
+	mask := Mask{Name: "lamp", Hidden: make([]bool, 64*64)}
+	for i := range 4 {
+		mask.Hidden[32*64+24+i] = true
+	}
+	if p := develop(t, im, Settings{Factor: 2, Masks: []Mask{mask}}); p.Plateau.CdM2 >= 40000 {
+		t.Errorf("clipped pixels behind a mask: got %g as the largest luminance, want less", p.Plateau.CdM2)
 	}
 	for i, l := range p.Lum {
 		if !(l >= 0) {

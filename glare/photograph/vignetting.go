@@ -60,8 +60,8 @@ func ReadVignetting(r io.Reader, file string) (Vignetting, error) {
 		switch n := len(v.deg); {
 		case errA != nil || !(a >= 0 && a <= 180):
 			return fail(line, "got the angle %q, want 0 to 180 degrees", row[0])
-		case errF != nil || !(f > 0) || math.IsInf(f, 0):
-			return fail(line, "got the factor %q, want a number above 0", row[1])
+		case errF != nil || !(f >= minFactor && f <= maxFactor):
+			return fail(line, "got the factor %q, want %g to %g", row[1], minFactor, maxFactor)
 		case n == 0 && a != 0:
 			return fail(line, "got %g degrees first, want 0: the table is relative to the axis", a)
 		case n > 0 && a <= v.deg[n-1]:

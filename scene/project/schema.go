@@ -300,6 +300,6 @@ type Simulation struct {
 	// at least Batches.
 	Photons   int
 	MemoryMiB int
-	StepMin   int    // length of a step, minutes: 60, 30, 20, 15, 10 or 5
+	StepMin   int    // length of a step, minutes: 60, 30, 20, 15, 10 or 5; 0 is 60
 	Soiling   string // "clean", "average" or "neglected"; the same in every month
 }

@@ -1,6 +1,7 @@
 package outlook
 
 import (
+	"cmp"
 	"math"
 	"slices"
 
@@ -28,7 +29,7 @@ const flattest = 0.1
 // View is what is seen of outdoors from one place, all around.
 type View struct {
 	columns []column
-	// Solid angles of the three layers, sr.
+	// Solid angles of the three layers, sr, each direction counted once.
 	SkySr, LandscapeSr, GroundSr float64
 }
 
@@ -83,12 +84,7 @@ func (v *View) AngleRad(distanceM float64) (angle, bound float64) {
 			spans = append(spans, [2]float64{0, to - 2*math.Pi})
 		}
 	}
-	slices.SortFunc(spans, func(a, b [2]float64) int {
-		if a[0] < b[0] {
-			return -1
-		}
-		return 1
-	})
+	slices.SortFunc(spans, func(a, b [2]float64) int { return cmp.Compare(a[0], b[0]) })
 	reached := 0.0
 	for _, s := range spans {
 		angle += math.Max(0, s[1]-math.Max(s[0], reached))
@@ -100,10 +96,10 @@ func (v *View) AngleRad(distanceM float64) (angle, bound float64) {
 // through adds what is seen through one opening.
 func (v *View) through(w *trace.World, eye r3.Vec, opening int) {
 	r := w.Scene.Openings[opening].Rect
-	level := math.Hypot(r.Outward.X, r.Outward.Y)
-	if level < flattest || r3.Dot(r3.Sub(r.Origin, eye), r.Outward) <= 0 {
+	if !counts(&r, eye) {
 		return
 	}
+	level := math.Hypot(r.Outward.X, r.Outward.Y)
 	out := r3.Vec{X: r.Outward.X / level, Y: r.Outward.Y / level}
 	right := r3.Vec{X: out.Y, Y: -out.X}
 	facing := math.Atan2(out.X, out.Y)
@@ -121,14 +117,46 @@ func (v *View) through(w *trace.World, eye r3.Vec, opening int) {
 		sin, cos := math.Sincos(from + step/2)
 		plan := r3.Add(r3.Scale(cos, out), r3.Scale(sin, right))
 		if e0, e1, ok := altitudes(r, eye, plan); ok {
-			c.distance = v.scan(w, eye, plan, r, step, e0, e1)
+			c.distance = v.scan(w, eye, plan, opening, step, e0, e1)
 		}
 		v.columns = append(v.columns, c)
 	}
 }
 
+// counts is whether the view out of an opening is looked at from eye.
+func counts(r *system.Rect, eye r3.Vec) bool {
+	return math.Hypot(r.Outward.X, r.Outward.Y) >= flattest && r3.Dot(r3.Sub(r.Origin, eye), r.Outward) > 0
+}
+
+// behind is whether the line of sight passes another opening that counts before
+// it comes to this one, as through a glazed partition.
+func behind(w *trace.World, eye, dir r3.Vec, opening int) bool {
+	own := &w.Scene.Openings[opening].Rect
+	t := r3.Dot(r3.Sub(own.Origin, eye), own.Outward) / r3.Dot(dir, own.Outward)
+	for k := range w.Scene.Openings {
+		r := &w.Scene.Openings[k].Rect
+		if k == opening || !counts(r, eye) {
+			continue
+		}
+		cos := r3.Dot(dir, r.Outward)
+		if cos <= 0 {
+			continue
+		}
+		s := r3.Dot(r3.Sub(r.Origin, eye), r.Outward) / cos
+		if s > t || s == t && k > opening {
+			continue
+		}
+		q := r3.Sub(r3.Add(eye, r3.Scale(s, dir)), r.Origin)
+		if a, b := r3.Dot(q, r.Across), r3.Dot(q, r.Up); a >= 0 && a <= r.WidthM && b >= 0 && b <= r.HeightM {
+			return true
+		}
+	}
+	return false
+}
+
 // scan looks along one column and returns its distance.
-func (v *View) scan(w *trace.World, eye, plan r3.Vec, r system.Rect, width, e0, e1 float64) float64 {
+func (v *View) scan(w *trace.World, eye, plan r3.Vec, opening int, width, e0, e1 float64) float64 {
+	r := &w.Scene.Openings[opening].Rect
 	distance, nearest := -1.0, math.Inf(1)
 	m := int(math.Max(1, math.Ceil((e1-e0)/rowRad)))
 	height := (e1 - e0) / float64(m)
@@ -141,6 +169,9 @@ func (v *View) scan(w *trace.World, eye, plan r3.Vec, r system.Rect, width, e0, 
 			continue
 		}
 		sr := width * (math.Sin(e+height/2) - math.Sin(e-height/2))
+		if behind(w, eye, dir, opening) {
+			sr = 0
+		}
 		switch seen {
 		case sky:
 			v.SkySr += sr

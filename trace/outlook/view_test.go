@@ -120,6 +120,29 @@ func TestLayers(t *testing.T) {
 	}
 }
 
+// A window seen through a wider opening in front of it shows what it shows
+// alone: each direction counts once.
+func TestLayersThroughTwoOpenings(t *testing.T) {
+	for _, inner := range []float64{0.5, 2, 1e-3} { // half width of the opening in front
+		m := newModel(t)
+		m.s.GroundLevelM = 0
+		r := m.window(-inner, 1, inner, 2)
+		m.s.Openings[0].Rect.Origin = r3.Add(r.Origin, vec(0, -1, 0)) // at y = -1
+		m.window(-1, 0.5, 1, 2.5)
+		v := outlook.Look(m.world(), vec(0, -2, 1.5))
+		// Nothing is in the way beside the openings, so that each is seen whole.
+		// What both show is 4 corners of the smaller in either direction as seen
+		// from 1 m; all is the sum without it.
+		front, back := corner(inner, .5, 1), corner(1, 1, 2)
+		want := 4 * (front + back - corner(math.Min(inner, .5), .5, 1))
+		// Rows and columns lie in both or not: half of one at each edge.
+		near(t, "all layers", v.SkySr+v.GroundSr+v.LandscapeSr, want, 0.03)
+		if twice := 4 * (front + back); inner > .1 && math.Abs(twice-want) < 0.5 {
+			t.Errorf("twin: what is seen twice makes no difference, %g and %g", twice, want)
+		}
+	}
+}
+
 // Glass lets a view pass, dense cloth does not.
 func TestClothIsNoView(t *testing.T) {
 	for _, c := range []struct {

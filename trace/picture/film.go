@@ -80,9 +80,14 @@ func (l *Light) newFilm(ctx context.Context, c Camera, q Quantity) (*film, error
 	return f, l.leaveCuts(ctx, f)
 }
 
-// firstOpaque is the first surface that is not clear, as glass is.
+// mostClear is the number of clear surfaces that one line of sight passes: many
+// more than panes stand behind one another. Own choice.
+const mostClear = 64
+
+// firstOpaque is the first surface that is not clear, as glass is; none behind
+// mostClear clear ones.
 func (l *Light) firstOpaque(org, dir r3.Vec) (trace.Hit, bool) {
-	for {
+	for range mostClear {
 		h, ok := l.world.Closest(org, dir)
 		if !ok {
 			return h, false
@@ -93,4 +98,5 @@ func (l *Light) firstOpaque(org, dir r3.Vec) (trace.Hit, bool) {
 		}
 		org = l.world.Offset(h.Point, r3.Scale(-1, h.Facing()))
 	}
+	return trace.Hit{}, false
 }

@@ -209,12 +209,17 @@ func (w *walker) toward(f *film, x, y, round int) (u, v float64) {
 	return sampling.OwenSobol2(uint32(round*tile*tile+y%tile*tile+x%tile), s.Uint32())
 }
 
+// samePlaneM is how far off a pixel's reference surface a sample may lie and
+// still share its light: more than the bend of a curved surface within a pixel,
+// and less than the thickness of a table top. Own choice.
+const samePlaneM = 0.01
+
 // surface adds the light of one side of a surface met, times weight.
 func (w *walker) surface(r *reference, c *cell, h *trace.Hit, side materials.Side, weight, u, v float64) {
 	n := normalOn(h, side)
 	sun := w.sunOn(h.Point, n) + w.photons.illuminance(h.Point, n)
 	c.rest += float32(weight * sun)
-	shared := r.has && r.part == h.Part && r3.Dot(r.n, n) > flat
+	shared := r.has && r.part == h.Part && r3.Dot(r.n, n) > flat && math.Abs(r3.Dot(r3.Sub(h.Point, r.p), r.n)) < samePlaneM
 	a := &w.shared
 	if !shared {
 		a = &w.own

@@ -246,7 +246,7 @@ func clearMoments(p *project.Project, c *scene.Climate, k daylight.Calendar) ([]
 	day, _ := daylight.MonthDay(equinox).YearDay()
 	var out []*scene.Moment
 	for _, h := range equinoxClockH {
-		m, err := c.ClearMoment(equinox, p.Site.NorthDeg, float64(h)-k.ClockShiftH(day))
+		m, err := c.ClearMoment(p, equinox, float64(h)-k.ClockShiftH(day))
 		if err != nil {
 			return nil, err
 		}
