@@ -114,9 +114,10 @@ type glareSink struct {
 	views []ViewResult
 	mu    []sync.Mutex // by view
 	cause []map[Cause]int16
-	work  []sinkScratch    // by worker
-	shots *shotPlan        // nil: no pictures are kept
-	cells []int            // by record; nil: one for all
+	work  []sinkScratch // by worker
+	shots *shotPlan     // nil: no pictures are kept
+	cells []int         // by record; nil: one for all
+	keep  func(view, hour int) bool
 	tops  []map[int]*Worst // by view and cell
 }
 
@@ -213,7 +214,7 @@ func (g *standingSink) take(worker int, f *annual.Frame) {
 	if g.cells != nil {
 		cell = g.cells[h]
 	}
-	top := brighter(dgp, h, g.tops[f.Eye][cell])
+	top := (g.keep == nil || g.keep(f.Eye, h)) && brighter(dgp, h, g.tops[f.Eye][cell])
 	if dgp < causeFrom && !top {
 		return
 	}

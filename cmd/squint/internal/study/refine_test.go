@@ -164,8 +164,13 @@ func TestRefineReplaces(t *testing.T) {
 			v.DGP[m.Hour], v.StdErr[m.Hour] = .987, .001
 		}
 	}
+	// The worst hour so far is one of the thirty, which will fall below the six.
+	v.Worst.Moment = in.Climate.Moments[20]
 	if err := r.refine(context.Background(), in, opt, y); err != nil {
 		t.Fatal(err)
+	}
+	if w := v.Worst; w == nil || v.DGP[w.Moment.Hour] != .987 || float32(w.DGP) != .987 || len(w.Lum) == 0 {
+		t.Errorf("worst hour: got %+v, want one of DGP 0.987 with its picture", w)
 	}
 	if v.Refined != 1 {
 		t.Errorf("got %d further looks, want 1", v.Refined)

@@ -38,6 +38,8 @@ type Options struct {
 	cells   []int  // by record: the brightest frame of each cell is kept
 	// anyWorst lets the worst hour's picture be missing where the rest is known.
 	anyWorst bool
+	// keep, if not nil, says of which hours of a view a picture may be kept.
+	keep func(view, hour int) bool
 }
 
 // Stage names a part of the run.
@@ -301,11 +303,15 @@ func Run(ctx context.Context, in *Input, opt Options) (*Result, error) {
 func (r *Result) Forget() {
 	for i := range r.Views {
 		v := &r.Views[i]
-		v.DGP, v.StdErr, v.Ev, v.InRange, v.Cause, v.Worst, v.Shots = nil, nil, nil, nil, nil, nil, nil
+		v.DGP, v.StdErr, v.Ev, v.EvErr, v.Coarse, v.Bias = nil, nil, nil, nil, nil, nil
+		v.InRange, v.Cause, v.Worst, v.Shots = nil, nil, nil, nil
 	}
 	for i := range r.Planes {
 		p := &r.Planes[i]
-		p.E, p.StdErr, p.Direct = nil, nil, nil
+		p.E, p.StdErr, p.Direct, p.Clear = nil, nil, nil, daylight.Plane{}
+	}
+	for i := range r.Openings {
+		r.Openings[i].Sunlit = nil
 	}
 }
 

@@ -180,7 +180,7 @@ func (y *year) readView(s *shelf, i int, r *Result) {
 			shots.Discs[frame] = a.Discs
 		}
 	}
-	t := x.top(s.used)
+	t := x.top(s.pictured(i))
 	if t == nil || v.Worst != nil && !brighter(t.DGP, t.Hour, v.Worst) {
 		return
 	}

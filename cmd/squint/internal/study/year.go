@@ -67,7 +67,7 @@ func computeYear(ctx context.Context, in *Input, opt Options, r *Result) (*year,
 // and puts the results together.
 func traceYear(ctx context.Context, in *Input, opt Options, r *Result) (*year, error) {
 	y := newYear(in, opt)
-	y.glare.shots, y.glare.cells = opt.shots, opt.cells
+	y.glare.shots, y.glare.cells, y.glare.keep = opt.shots, opt.cells, opt.keep
 	total := 0
 	for _, st := range in.Standings {
 		total += len(st.Moments)
