@@ -200,7 +200,7 @@ func (g *standingSink) take(worker int, f *annual.Frame) {
 	w := &g.work[worker]
 	e := g.eyes[f.Eye]
 	v := &g.views[f.Eye]
-	w.discs = toView(w.discs[:0], e, f.Discs)
+	w.discs = toView(w.discs[:0], e.View, f.Discs)
 	dgp, ev := glare.DGPOnly(g.field, f.Mean, w.discs, g.opt, &w.scratch)
 	se, evErr := glare.Jackknife(g.field, f.Mean, f.Batch, w.discs, g.opt, &w.scratch)
 	h := f.Moment.Hour
@@ -256,9 +256,10 @@ func (g *glareSink) causeID(view int, c Cause) int16 {
 	return id
 }
 
-func toView(out []glare.Disc, e *coeff.Eye, discs []annual.Disc) []glare.Disc {
+// toView appends discs as a view has them.
+func toView(out []glare.Disc, v view.View, discs []annual.Disc) []glare.Disc {
 	for _, d := range discs {
-		out = append(out, glare.Disc{Dir: e.View.Local(d.Dir), OmegaSr: d.OmegaSr, Luminance: d.Luminance})
+		out = append(out, glare.Disc{Dir: v.Local(d.Dir), OmegaSr: d.OmegaSr, Luminance: d.Luminance})
 	}
 	return out
 }

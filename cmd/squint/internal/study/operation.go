@@ -206,7 +206,7 @@ func (o *operation) report(y *year) control.Report {
 	return o.plan.Report(l)
 }
 
-// mostStates is how many states of a group are told one by one.
+// mostStates is how many states of a group are told one by one; own choice.
 const mostStates = 6
 
 // positions tells the groups' states in words.

@@ -130,7 +130,8 @@ type Input struct {
 	Climate *scene.Climate
 	World   *trace.World
 	// Standings are the ways in which the movable systems stand; each has its
-	// own moments. Scene and World are those of the first.
+	// own moments, and where glare decides they change as the year is computed.
+	// Scene and World are those of the project as it is written.
 	Standings []Standing
 	fsys      fs.FS
 	operation *operation // nil where everything stands as the project says

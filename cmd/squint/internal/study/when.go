@@ -28,11 +28,11 @@ func (v *ViewResult) sortCauses() {
 	v.Causes = causes
 }
 
-// mostly is the share of the hours that "mostly" speaks for.
+// mostly is the share of the hours that "mostly" speaks for; own choice.
 const mostly = 0.7
 
 // evenMonths is the span of months that glare spread evenly over the year
-// gives.
+// gives: 0.7 of 12, rounded up.
 const evenMonths = 9
 
 // when says when the hours above a limit fall and what carries them: the
