@@ -121,28 +121,32 @@ func subset(in *Input, views []int, open map[int]bool, factor, round int) *Input
 	seed := sampling.Stream3(p.Simulation.Seed, streamRefine, uint64(round))
 	p.Simulation.Seed = seed.Uint64()
 	sub.Project = &p
-	sub.Standings = nil
-	for _, st := range in.Standings {
-		few := Standing{Label: st.Label, World: st.World, Scene: reduced(st.Scene, views)}
-		for _, m := range st.Moments {
-			if open[m.Hour] {
-				few.Moments = append(few.Moments, m)
+	sub.narrow(open, func(s *scene.Scene) *scene.Scene { return reduced(s, views) })
+	return &sub
+}
+
+// narrow leaves some hours and of the scenes some receivers.
+func (in *Input) narrow(hours map[int]bool, few func(*scene.Scene) *scene.Scene) {
+	among := func(moments []*scene.Moment) (list []*scene.Moment) {
+		for _, m := range moments {
+			if hours[m.Hour] {
+				list = append(list, m)
 			}
 		}
-		if len(few.Moments) > 0 {
-			sub.Standings = append(sub.Standings, few)
+		return list
+	}
+	all := in.Standings
+	in.Standings = nil
+	for _, st := range all {
+		if st.Moments = among(st.Moments); len(st.Moments) > 0 {
+			st.Scene = few(st.Scene)
+			in.Standings = append(in.Standings, st)
 		}
 	}
-	sub.Scene = reduced(in.Scene, views)
+	in.Scene = few(in.Scene)
 	c := *in.Climate
-	c.Moments = nil
-	for _, m := range in.Climate.Moments {
-		if open[m.Hour] {
-			c.Moments = append(c.Moments, m)
-		}
-	}
-	sub.Climate = &c
-	return &sub
+	c.Moments = among(c.Moments)
+	in.Climate = &c
 }
 
 // reduced is a scene with some of its viewpoints and no work planes.

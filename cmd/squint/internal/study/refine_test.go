@@ -216,6 +216,10 @@ func TestLooksArePaidFor(t *testing.T) {
 		if together := math.Pow(inside, float64(3*views)); math.Abs(together-confidence) > 1e-9 {
 			t.Errorf("%d views: z %.3f: three looks at each are right together with %.6f, want %.6f", views, z, together, confidence)
 		}
+		in.Scene.WorkPlanes = []scene.WorkPlane{{Sensors: make([]scene.Sensor, views)}}
+		if got := r.zSensors(); got != z {
+			t.Errorf("%d sensors: got z %.3f, want the %.3f of as many views", views, got, z)
+		}
 		if unpaid := verdict.T(confidence, views, in.Project.Simulation.Batches-1); !(z > 1.1*unpaid) {
 			t.Errorf("%d views: got z %.3f, want clearly more than the %.3f of a single look", views, z, unpaid)
 		}

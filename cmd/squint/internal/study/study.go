@@ -274,6 +274,9 @@ func Run(ctx context.Context, in *Input, opt Options) (*Result, error) {
 	if err := r.refine(ctx, in, opt, y); err != nil {
 		return nil, err
 	}
+	if err := r.lookCloser(ctx, in, opt, y); err != nil {
+		return nil, err
+	}
 	if !opt.Bare {
 		if r.Sights, err = sights(ctx, in.fsys, in, opt); err != nil {
 			return nil, err

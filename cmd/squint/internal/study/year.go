@@ -46,6 +46,7 @@ type year struct {
 	factors []float64        // daylight factor by sensor, share
 	factorE []float64        // its standard error
 	clear   *annual.Daylight // [sensor][moment under a clear sky], nil for none
+	looks   []int            // by work plane, further ones
 }
 
 // newYear holds zeros, and NaN where views are not evaluated.
