@@ -365,7 +365,11 @@ func (r *Result) judgeViews(y *year) {
 		for k, l := range verdict.ProtectionLevels {
 			hours := r.glareHours(v, l.DGP, z)
 			when := v.when(r, l.DGP)
-			out := verdict.Glare(r.subject(&v.Viewpoint), l, hours, when)
+			told := when
+			if verdict.AtMost(hours.Share, l.TimeShare) == verdict.Undecided {
+				told = v.whenOpen(r, l.DGP, z)
+			}
+			out := verdict.Glare(r.subject(&v.Viewpoint), l, hours, told)
 			v.Hours = append(v.Hours, hours)
 			v.Levels = append(v.Levels, out)
 			if l.Name == r.Project.Criteria.Glare {
