@@ -84,7 +84,8 @@ func CountGlare(dgp, se []float32, limit, z float64) GlareHours {
 
 // Glare judges one view against a level of protection; when says, if known,
 // when the hours over the limit fall ("mostly 8 to 10 h from February to
-// April, the low sun through the strip above the shelf") and may be empty.
+// April, the low sun through the strip above the shelf"), or those that leave
+// it open, and may be empty.
 func Glare(subject string, l ProtectionLevel, g GlareHours, when string) Verdict {
 	v := Verdict{
 		Criterion: fmt.Sprintf("glare protection, %s: DGP over %.2f in at most %s of the usage time", l.Name, l.DGP, percent(l.TimeShare)),
@@ -105,6 +106,9 @@ func Glare(subject string, l ProtectionLevel, g GlareHours, when string) Verdict
 		v.Text += fmt.Sprintf(", undecided: %s hours are surely and %s possibly over", hours(g.Hours.Surely), hours(g.Hours.Possibly))
 		if g.NotEvaluated > 0 {
 			v.Text += fmt.Sprintf(", %s of them not evaluated", hours(g.NotEvaluated))
+		}
+		if when != "" {
+			v.Text += "; " + when
 		}
 	case when != "" && g.Hours.Estimate > 0:
 		v.Text += ", " + when

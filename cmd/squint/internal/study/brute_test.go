@@ -21,9 +21,9 @@ import (
 )
 
 // TestAnnualAgainstBruteForce holds the annual run's DGP against pictures of
-// the same hours made by the plain path tracer, pixel by pixel at twice
-// the default resolution: no texels, no sky patches, no links. It takes minutes and runs
-// where SQUINT_LONG is set, as .ci/run does.
+// the same hours made by the plain path tracer, pixel by pixel at twice the
+// default resolution: no texels, no sky patches, no links. It takes minutes and
+// runs where SQUINT_LONG is set, as .ci/run does.
 //
 // The bounds are those asked of the method: RMSE 0.01, largest 0.03. The brute
 // force pictures' own error is measured by their batches and must be small

@@ -48,7 +48,8 @@ func (r *Result) judgeFurther(p *PlaneResult, z float64) {
 	}
 }
 
-// Of the planes of IES LM-83-12, with 1 % for the rounding of feet: 30 in above the floor, points 2 ft apart. From memory.
+// Of the planes of IES LM-83-12, with 1 % for the rounding of feet: 30 in above
+// the floor, points 2 ft apart. From memory.
 const (
 	clockPlaneM   = 0.762
 	clockSpacingM = 0.61 * 1.01
@@ -232,7 +233,8 @@ func (r *Result) hoursOf(name string) (daylight.Hours, string) {
 	return r.Occupied, "the hours in use"
 }
 
-// equinox is the day of the check under a clear sky, and its hours of the clock.
+// equinox is the day of the check under a clear sky, and its hours of the clock:
+// as in rating schemes, from memory.
 var (
 	equinox       = project.MonthDay{Month: 3, Day: 21}
 	equinoxClockH = [2]int{9, 15}

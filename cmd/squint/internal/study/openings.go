@@ -15,10 +15,10 @@ import (
 
 const (
 	// sunlitPoints stand for an opening's area; the share of it that is sunlit
-	// is known to within the reciprocal.
+	// is known to within the reciprocal; own choice.
 	sunlitPoints = 128
 	// sunlightPerHour are the looks at the sun on the day of the exposure to
-	// sunlight.
+	// sunlight; own choice: a minute.
 	sunlightPerHour = 60
 	// aboveSillM is how far above its opening's lower edge the reference point
 	// lies at least. Source: EN 17037:2018 annex D, from memory.

@@ -133,8 +133,10 @@ func TestUndecidedAtTheCap(t *testing.T) {
 			}
 		}
 		if c.outcome == verdict.Undecided {
-			if want := "undecided: 0 hours are surely and 36 possibly over"; !strings.Contains(got.Text, want) {
-				t.Errorf("got %q, want the reason %q in it", got.Text, want)
+			for _, want := range []string{"undecided: 0 hours are surely and 36 possibly over; 36 hours open: mostly 11 to 12 h all year", "of the limit."} {
+				if !strings.Contains(got.Text, want) {
+					t.Errorf("got %q, want the reason %q in it", got.Text, want)
+				}
 			}
 			if r.Outcome == verdict.Met {
 				t.Errorf("got the room met with an undecided view")
@@ -164,8 +166,13 @@ func TestRefineReplaces(t *testing.T) {
 			v.DGP[m.Step], v.StdErr[m.Step] = .987, .001
 		}
 	}
+	// The worst hour so far is one of the thirty, which will fall below the six.
+	v.Worst.Moment = in.Climate.Moments[20]
 	if err := r.refine(context.Background(), in, opt, y); err != nil {
 		t.Fatal(err)
+	}
+	if w := v.Worst; w == nil || v.DGP[w.Moment.Step] != .987 || float32(w.DGP) != .987 || len(w.Lum) == 0 {
+		t.Errorf("worst hour: got %+v, want one of DGP 0.987 with its picture", w)
 	}
 	if v.Refined != 1 {
 		t.Errorf("got %d further looks, want 1", v.Refined)
@@ -210,6 +217,10 @@ func TestLooksArePaidFor(t *testing.T) {
 		inside := 1 - 2*student.CDF(-z)
 		if together := math.Pow(inside, float64(3*views)); math.Abs(together-confidence) > 1e-9 {
 			t.Errorf("%d views: z %.3f: three looks at each are right together with %.6f, want %.6f", views, z, together, confidence)
+		}
+		in.Scene.WorkPlanes = []scene.WorkPlane{{Sensors: make([]scene.Sensor, views)}}
+		if got := r.zSensors(); got != z {
+			t.Errorf("%d sensors: got z %.3f, want the %.3f of as many views", views, got, z)
 		}
 		if unpaid := verdict.T(confidence, views, in.Project.Simulation.Batches-1); !(z > 1.1*unpaid) {
 			t.Errorf("%d views: got z %.3f, want clearly more than the %.3f of a single look", views, z, unpaid)

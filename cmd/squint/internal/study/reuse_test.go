@@ -41,10 +41,7 @@ func check(t *testing.T, store Store, opt Options, edits ...string) kept {
 	t.Helper()
 	text := fmt.Sprintf(tinyProject, 0.5) + secondView
 	for i := 0; i < len(edits); i += 2 {
-		if strings.Count(text, edits[i]) != 1 {
-			t.Fatalf("the project has %q %d times, want once", edits[i], strings.Count(text, edits[i]))
-		}
-		text = strings.Replace(text, edits[i], edits[i+1], 1)
+		text = replaceOnce(text, edits[i], edits[i+1])
 	}
 	return runKept(t, store, opt, prepared(t, fstest.MapFS{"project.toml": {Data: []byte(text)}, "room.obj": {Data: []byte(tinyRoom())}}))
 }

@@ -161,7 +161,17 @@ func (o *operation) settled(ctx context.Context, looks map[control.Combination]*
 		return nil, err
 	}
 	opt.shots = nil
-	return whole, o.worstHours(ctx, whole, looks, chosen, opt)
+	at := make(map[int]control.Combination, len(chosen))
+	for i, c := range chosen {
+		at[o.in.Climate.Moments[i].Step] = c
+	}
+	all := make([]int, len(whole.glare.views))
+	for i := range all {
+		all[i] = i
+	}
+	return whole, whole.worstHours(ctx, o.in, opt, all, func(view, hour int) []*Worst {
+		return []*Worst{looks[at[hour]].year.glare.views[view].Worst}
+	})
 }
 
 // reshoot makes the small pictures anew of hours that were looked at last in
@@ -227,64 +237,6 @@ func (y *year) adoptClear(o *operation, looks map[control.Combination]*look, cho
 	}
 }
 
-// worstHours finds the picture of each view's worst hour as it was operated.
-func (o *operation) worstHours(ctx context.Context, y *year, looks map[control.Combination]*look, chosen []control.Combination, opt Options) error {
-	type missing struct {
-		views []int
-		hours map[int]bool
-	}
-	again := map[control.Combination]*missing{}
-	var order []control.Combination
-	for i := range y.glare.views {
-		v := &y.glare.views[i]
-		worst := -1
-		for k, m := range o.in.Climate.Moments {
-			if m.Occupied && (worst < 0 || v.DGP[m.Step] > v.DGP[o.in.Climate.Moments[worst].Step]) {
-				worst = k
-			}
-		}
-		if worst < 0 {
-			continue
-		}
-		c, h := chosen[worst], o.in.Climate.Moments[worst].Step
-		if w := looks[c].year.glare.views[i].Worst; w != nil && w.Moment.Step == h {
-			v.Worst = w
-			continue
-		}
-		if again[c] == nil {
-			again[c] = &missing{hours: map[int]bool{}}
-			order = append(order, c)
-		}
-		again[c].views = append(again[c].views, i)
-		again[c].hours[h] = true
-	}
-	for _, c := range order {
-		st, err := o.stand(c)
-		if err != nil {
-			return err
-		}
-		st.Moments = o.in.Climate.Moments
-		sub := *o.in
-		sub.Standings = []Standing{st}
-		few := subset(&sub, again[c].views, again[c].hours, 1, 0)
-		few.Project = o.in.Project // the same streams: the same picture as that of the series
-		y2, err := computeYear(ctx, few, opt, &Result{})
-		if err != nil {
-			return err
-		}
-		for k, i := range again[c].views {
-			v, w := &y.glare.views[i], y2.glare.views[k].Worst
-			if w == nil {
-				continue
-			}
-			v.Worst = w
-			h := w.Moment.Step
-			w.DGP, w.StdErr, w.Ev = float64(v.DGP[h]), float64(v.StdErr[h]), float64(v.Ev[h])
-		}
-	}
-	return nil
-}
-
 // adopt takes over the values of some moments.
 func (y *year) adopt(from *year, in *Input, moments []*scene.Moment) {
 	at := make(map[*scene.Moment]int, len(in.Climate.Moments))
@@ -299,7 +251,7 @@ func (y *year) adopt(from *year, in *Input, moments []*scene.Moment) {
 	}
 	for i := range y.glare.views {
 		a, b := &y.glare.views[i], &from.glare.views[i]
-		if a.Worst == nil || b.Worst != nil && b.Worst.DGP > a.Worst.DGP {
+		if b.Worst != nil && brighter(b.Worst.DGP, b.Worst.Moment.Step, a.Worst) {
 			a.Worst = b.Worst
 		}
 		for _, m := range moments {

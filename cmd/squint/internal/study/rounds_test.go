@@ -3,6 +3,7 @@ package study
 import (
 	"fmt"
 	"math"
+	"strings"
 	"testing"
 	"testing/fstest"
 )
@@ -107,12 +108,10 @@ func testOperatedYear(t *testing.T, stepMin int) {
 	}
 }
 
+// replaceOnce edits a project's text, in which the old words stand once.
 func replaceOnce(text, from, to string) string {
-	p := len(text) - len(from)
-	for i := 0; i <= p; i++ {
-		if text[i:i+len(from)] == from {
-			return text[:i] + to + text[i+len(from):]
-		}
+	if n := strings.Count(text, from); n != 1 {
+		panic(fmt.Sprintf("the project has %q %d times, want once", from, n))
 	}
-	panic("test text lacks " + from)
+	return strings.Replace(text, from, to, 1)
 }

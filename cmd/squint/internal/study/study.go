@@ -38,6 +38,8 @@ type Options struct {
 	cells   []int  // by record: the brightest frame of each cell is kept
 	// anyWorst lets the worst hour's picture be missing where the rest is known.
 	anyWorst bool
+	// keep, if not nil, says of which hours of a view a picture may be kept.
+	keep func(view, hour int) bool
 }
 
 // Stage names a part of the run.
@@ -129,7 +131,8 @@ type Input struct {
 	Climate *scene.Climate
 	World   *trace.World
 	// Standings are the ways in which the movable systems stand; each has its
-	// own moments. Scene and World are those of the first.
+	// own moments, and where glare decides they change as the year is computed.
+	// Scene and World are those of the project as it is written.
 	Standings []Standing
 	fsys      fs.FS
 	operation *operation // nil where everything stands as the project says
@@ -262,6 +265,9 @@ func Run(ctx context.Context, in *Input, opt Options) (*Result, error) {
 	if err := r.refine(ctx, in, opt, y); err != nil {
 		return nil, err
 	}
+	if err := r.lookCloser(ctx, in, opt, y); err != nil {
+		return nil, err
+	}
 	if !opt.Bare {
 		if r.Sights, err = sights(ctx, in.fsys, in, opt); err != nil {
 			return nil, err
@@ -292,12 +298,16 @@ func Run(ctx context.Context, in *Input, opt Options) (*Result, error) {
 func (r *Result) Forget() {
 	for i := range r.Views {
 		v := &r.Views[i]
-		v.DGP, v.StdErr, v.Ev, v.InRange, v.Cause, v.Worst, v.Shots = nil, nil, nil, nil, nil, nil, nil
+		v.DGP, v.StdErr, v.Ev, v.EvErr, v.Coarse, v.Bias = nil, nil, nil, nil, nil, nil
+		v.InRange, v.Cause, v.Worst, v.Shots = nil, nil, nil, nil
 	}
 	r.Stood = nil
 	for i := range r.Planes {
 		p := &r.Planes[i]
-		p.E, p.StdErr, p.Direct = nil, nil, nil
+		p.E, p.StdErr, p.Direct, p.Clear = nil, nil, nil, daylight.Plane{}
+	}
+	for i := range r.Openings {
+		r.Openings[i].Sunlit = nil
 	}
 }
 

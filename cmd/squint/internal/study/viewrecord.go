@@ -183,7 +183,7 @@ func (y *year) readView(s *shelf, i int, r *Result) {
 			v.Cause[h] = g.causeID(i, x.Causes[a.Cause])
 		}
 	}
-	t := x.top(s.used)
+	t := x.top(s.pictured(i))
 	if t == nil || v.Worst != nil && !brighter(t.DGP, t.Hour, v.Worst) {
 		return
 	}
@@ -200,7 +200,7 @@ func (y *year) readView(s *shelf, i int, r *Result) {
 		w.DGP, w.Ev, w.StdErr = float64(v.DGP[t.Hour]), float64(v.Ev[t.Hour]), float64(v.StdErr[t.Hour])
 	}
 	g.look(x.View)
-	w.Result = glare.Evaluate(g.field, w.Lum, toView(nil, eye, w.Discs), g.opt, &glare.Scratch{})
+	w.Result = glare.Evaluate(g.field, w.Lum, toView(nil, eye.View, w.Discs), g.opt, &glare.Scratch{})
 	v.Worst = w
 }
 
