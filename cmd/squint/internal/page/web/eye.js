@@ -233,5 +233,5 @@ canvas.eye.addEventListener("keydown", (e) => {
   if (!by || !looked) return;
   e.preventDefault();
   cursor = cursor.map((c, k) => Math.max(0.01, Math.min(0.99, c + by[k] / looked.px)));
-  look(...cursor);
+  look(...cursor.map((c) => c + 1e-6)); // not on the border of two pixels
 });
