@@ -3,15 +3,19 @@ package main
 import (
 	"bytes"
 	"fmt"
+	"math"
 	"os"
 	"path/filepath"
 	"regexp"
+	"slices"
+	"strings"
 	"testing"
 	"time"
 
 	"github.com/chromedp/chromedp"
 
 	"squint/cmd/squint/internal/page"
+	"squint/cmd/squint/internal/study"
 	"squint/glare/daylight"
 	"squint/glare/verdict"
 	"squint/scene"
@@ -85,6 +89,7 @@ func TestPageOfHalfHours(t *testing.T) {
 	if len(minutes) < 2 {
 		t.Fatalf("all moments have the minutes %v: the test sees nothing", minutes)
 	}
+	readPictures(t, tab, r.Views[0].Shots)
 	// After midnight of a summer's evening it is the next day: 1 July, 23:45 by
 	// standard time is 2 July, 00:45.
 	eval[bool](t, tab, fmt.Sprintf("squint.show({record:%d}),true", (181*24+23)*n+1))
@@ -127,4 +132,56 @@ func TestPageOfHalfHours(t *testing.T) {
 		t.Fatal(err)
 	}
 	keep(t, "page-half-hours.png", shot)
+}
+
+// readPictures reads luminances off the picture of the hour by keyboard, and wants
+// those of the film, sunlit pixels among them. Readings have two digits: 5 % of
+// the least first digits.
+func readPictures(t *testing.T, tab *tab, s *study.Shots) {
+	t.Helper()
+	out := make([]float64, s.Film.Points)
+	x, y, lit, all := 12, 12, 0, 0
+	isLit := func(frame, p int) bool {
+		return s.Film.Lit[frame*((s.Film.Points+7)/8)+p>>3]>>(p&7)&1 != 0
+	}
+	// Two hours with the sun on what is looked at, and two without.
+	var frames []int
+	for _, want := range []bool{true, false} {
+		n := 0
+		for frame := 7; frame < s.Film.Frames && n < 2; frame += 5 {
+			if isLit(frame, slices.Index(s.Inside, int32(13*s.View.Width+12))) == want {
+				frames = append(frames, frame)
+				n++
+			}
+		}
+	}
+	for _, frame := range frames {
+		eval[bool](t, tab, fmt.Sprintf("squint.show({record:%d}),true", s.Records[frame]))
+		tab.settle(t)
+		s.Film.At(frame, out)
+		for _, key := range []string{"ArrowDown", "ArrowRight", "ArrowDown", "ArrowLeft"} {
+			x, y = x+map[string]int{"ArrowRight": 1, "ArrowLeft": -1}[key], y+map[string]int{"ArrowDown": 1}[key]
+			eval[bool](t, tab, fmt.Sprintf("document.getElementById('c-eye').dispatchEvent(new KeyboardEvent('keydown',{key:%q,bubbles:true,cancelable:true}))||true", key))
+			text := eval[string](t, tab, "document.getElementById('r-eye').textContent")
+			m := regexp.MustCompile(`^About ([0-9\x{202f}]+) cd/m`).FindStringSubmatch(text)
+			p := slices.Index(s.Inside, int32(y*s.View.Width+x))
+			if m == nil || p < 0 {
+				t.Fatalf("pixel %d, %d: got %q", x, y, text)
+			}
+			if got := number(t, strings.ReplaceAll(m[1], "\u202f", "")); math.Abs(got-out[p])/out[p] > 0.051 {
+				t.Errorf("frame %d, pixel %d, %d: got %g cd/m2, want %.1f", frame, x, y, got, out[p])
+			}
+			all++
+			if isLit(frame, p) {
+				lit++
+			}
+		}
+		for y > 12 {
+			eval[bool](t, tab, "document.getElementById('c-eye').dispatchEvent(new KeyboardEvent('keydown',{key:'ArrowUp',bubbles:true,cancelable:true}))||true")
+			y--
+		}
+	}
+	if lit == 0 || lit == all {
+		t.Errorf("%d of %d pixels are sunlit: the test sees half of it", lit, all)
+	}
 }

@@ -43,7 +43,7 @@ results/demo. The page holds the finest pictures of any hour for one design.`,
 		},
 	}
 	f := cmd.Flags()
-	f.StringVar(&o.Alternative, "alternative", "", "`name` of the alternative that the page opens with and has the\nfinest pictures of any hour for; else the one that does best")
+	f.StringVar(&o.Alternative, "alternative", "", "`name` of the alternative that the page opens with and\nhas the finest pictures of any hour for; else the one\nthat does best")
 	f.BoolVar(&o.Open, "open", false, "open the page when it is made")
 	return cmd
 }

@@ -167,3 +167,19 @@ func TestMergedPoints(t *testing.T) {
 		t.Error("a frame that was not kept is there")
 	}
 }
+
+// A coarse film is off by no more than its steps allow: half a code of its grain
+// for each pattern's weight, half of that for the mean, beside the fine film's own
+// quarter and half a step; and it says that it is less exact than a fine one.
+func TestCoarseGrain(t *testing.T) {
+	r := shoot(1)
+	const rank = 6
+	f := r.Develop(rank, Coarse)
+	bound := math.Exp((0.5+0.25+rank*0.5/float64(Coarse)+0.25/float64(Coarse))*r.stepLn()) - 1
+	if far := worst(f); far > bound {
+		t.Errorf("largest relative difference: got %.4f, want at most %.4f", far, bound)
+	}
+	if fine := r.Develop(rank, Fine); f.Exact().Median <= fine.Exact().Median {
+		t.Errorf("got a median of %.4f, want more than the fine film's %.4f", f.Exact().Median, fine.Exact().Median)
+	}
+}

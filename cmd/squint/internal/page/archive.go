@@ -55,8 +55,8 @@ func (a *Archive) Write(w io.Writer) error {
 	slices.Sort(ids)
 	for _, id := range ids {
 		raw := a.blobs[id].raw
-		if raw == nil {
-			if raw, err = inflate(id, a.blobs[id].packed); err != nil {
+		if packed := a.blobs[id].packed; raw == nil && packed != nil {
+			if raw, err = inflate(id, packed); err != nil {
 				return err
 			}
 		}

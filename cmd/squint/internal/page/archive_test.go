@@ -27,6 +27,9 @@ func small(name string) *Archive {
 	pack(&p, "wide", "u16", []uint16{1, 256, 65535})
 	pack(&p, "signed", "i16", []int16{-1, 2})
 	a.Design.Records = a.add(&p)
+	var none packer // such as a room without systems
+	pack(&none, "nothing", "u8", []uint8{})
+	a.Design.Days = a.add(&none)
 	return a
 }
 
@@ -265,8 +268,8 @@ func TestPageKeepsNamesAsText(t *testing.T) {
 			t.Errorf("the page holds %q as it stands", bad)
 		}
 	}
-	if n := strings.Count(text, "<script"); n != strings.Count(text, "</script>") || n != 3 {
-		t.Errorf("got %d script blocks, want the data, one list of numbers that both share, and the bundle", n)
+	if n := strings.Count(text, "<script"); n != strings.Count(text, "</script>") || n != 4 {
+		t.Errorf("got %d script blocks, want the data, two lists of numbers that both share, and the bundle", n)
 	}
 	m := regexp.MustCompile(`(?s)<script type="application/json" id="data">(.*?)</script>`).FindStringSubmatch(text)
 	var data pageData

@@ -72,7 +72,7 @@ const dateOf = (day) => `${day - monthStart[monthOf(day)] + 1} ${months[monthOf(
 
 // whole groups thousands by thin spaces.
 export const whole = (x) => Math.round(x).toString().replace(/\B(?=(\d{3})+(?!\d))/g, "\u202f");
-export const percent = (x, digits = 1) => `${(100 * x).toFixed(digits).replace(/\.0$/, "")} %`;
+export const percent = (x, digits = 1) => `${(100 * x).toFixed(digits).replace(/\.0$/, "")}\u00a0%`;
 
 // year holds what all parts of the page read of one design.
 const years = new Map();

@@ -46,24 +46,32 @@ export async function eye() {
 // where the page does not say.
 export const seenAt = (y, v) => load(v.seen[standingAt(y, state.record)]);
 
-// picture draws a square picture of luminances, between its pixels by logarithm.
+// picture draws a square picture of luminances, between its pixels by logarithm,
+// which is to say by steps of the scale.
 function picture(g, w, lum, px) {
-  const size = Math.round(w - 2 * pad), ratio = 2, n = size * ratio, image = new ImageData(n, n), log = new Float32Array(px * px);
-  for (let i = 0; i < log.length; i++) log[i] = lum[i] > 0 ? Math.log(lum[i]) : NaN;
-  for (let j = 0; j < n; j++) for (let i = 0; i < n; i++) {
-    const dx = (i + 0.5) / n - 0.5, dy = (j + 0.5) / n - 0.5;
-    if (dx * dx + dy * dy > 0.25) continue;
-    const x = ((i + 0.5) / n) * px - 0.5, y = ((j + 0.5) / n) * px - 0.5, x0 = Math.floor(x), y0 = Math.floor(y);
-    let sum = 0, weight = 0;
-    for (let b = 0; b < 2; b++) for (let a = 0; a < 2; a++) {
-      const xx = x0 + a, yy = y0 + b;
-      if (xx < 0 || yy < 0 || xx >= px || yy >= px) continue;
-      const l = log[yy * px + xx], q = (a ? x - x0 : 1 - x + x0) * (b ? y - y0 : 1 - y + y0);
-      if (l === l) { sum += q * l; weight += q; }
+  const size = Math.round(w - 2 * pad), ratio = 2, n = size * ratio, image = new ImageData(n, n), data = image.data;
+  const { table, from, to } = luminanceScale, per = 255 / Math.log(to / from), least = Math.log(from), wide = px + 2;
+  // A rim of pixels without a value spares the ends a question.
+  const code = new Float32Array(wide * wide).fill(NaN);
+  for (let j = 0; j < px; j++) for (let i = 0; i < px; i++) {
+    const l = lum[j * px + i];
+    if (l > 0) code[(j + 1) * wide + i + 1] = Math.min(255, Math.max(0, (Math.log(l) - least) * per));
+  }
+  for (let j = 0; j < n; j++) {
+    const y = ((j + 0.5) / n) * px + 0.5, y0 = Math.floor(y), b = y - y0, dy = (j + 0.5) / n - 0.5, reach = Math.sqrt(0.25 - dy * dy);
+    for (let i = Math.max(0, Math.floor((0.5 - reach) * n)), end = Math.min(n, Math.ceil((0.5 + reach) * n)); i < end; i++) {
+      const x = ((i + 0.5) / n) * px + 0.5, x0 = Math.floor(x), a = x - x0, k = y0 * wide + x0;
+      const p = code[k], q = code[k + 1], r = code[k + wide], s = code[k + wide + 1];
+      let v = (p * (1 - a) + q * a) * (1 - b) + (r * (1 - a) + s * a) * b;
+      if (v !== v) { // some have no value
+        let sum = 0, weight = 0;
+        for (const [c, m] of [[p, (1 - a) * (1 - b)], [q, a * (1 - b)], [r, (1 - a) * b], [s, a * b]]) if (c === c) { sum += c * m; weight += m; }
+        if (!weight) continue;
+        v = sum / weight;
+      }
+      const at = 4 * (j * n + i), t = 3 * Math.round(v);
+      data[at] = table[t]; data[at + 1] = table[t + 1]; data[at + 2] = table[t + 2]; data[at + 3] = 255;
     }
-    if (!weight) continue;
-    const [r, gg, bb] = luminanceScale.rgb(Math.exp(sum / weight)), at = 4 * (j * n + i);
-    image.data[at] = r; image.data[at + 1] = gg; image.data[at + 2] = bb; image.data[at + 3] = 255;
   }
   const c = new OffscreenCanvas(n, n);
   c.getContext("2d").putImageData(image, 0, 0);
@@ -225,5 +233,5 @@ canvas.eye.addEventListener("keydown", (e) => {
   if (!by || !looked) return;
   e.preventDefault();
   cursor = cursor.map((c, k) => Math.max(0.01, Math.min(0.99, c + by[k] / looked.px)));
-  look(...cursor);
+  look(...cursor.map((c) => c + 1e-6)); // not on the border of two pixels
 });

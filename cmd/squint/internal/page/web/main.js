@@ -60,10 +60,13 @@ function views(d) {
 
 function exact() {
   const p = document.createElement("p"), views = designs.flatMap((d) => d.views.filter((v) => v.has_shots)), said = designs.map(pictures).filter((t) => t);
+  const list = document.createElement("ul");
+  list.className = "notes";
+  list.append(...said.map((t) => { const e = document.createElement("li"); e.textContent = t; return e; }));
   p.textContent = "Verdicts, counts and every DGP and illuminance at the eye come from the whole computation; this page only shows them." +
-    (views.length ? ` Pictures of any hour are for display and made of a few patterns: ${said.join("; ")}. The worst hours are shown as they were computed, ${views[0].worst_px} pixels across.` : "") +
+    (views.length ? ` Pictures of any hour are for display and made of a few patterns, as listed below. The worst hours are shown as they were computed, ${views[0].worst_px} pixels across.` : "") +
     " The sun on plan and model is drawn by straight rays and sharp mirrors alone. Illuminance of surfaces in the model is their luminance as a viewpoint sees it, times pi, by their reflectance; mirrors, cloth and what stands behind glass are left out.";
-  $("exact").append(p);
+  $("exact").append(p, list);
 }
 
 // pictures says how exact a design's pictures of any hour are; "" where it has
@@ -72,9 +75,9 @@ function pictures(d) {
   const name = designs.length > 1 ? `\u201c${d.alternative}\u201d: ` : "", films = d.views.filter((v) => v.has_shots);
   if (!films.length) return "";
   const held = films.map(best).filter((s) => s);
-  if (!held.length) return name + "none, as the page would become too large";
+  if (!held.length) return name + "none, as the page would become too large.";
   const list = held.map((s) => s.median_error), [least, most] = [Math.min(...list), Math.max(...list)].map((e) => percent(e));
-  return `${name}${held[0].pixels} pixels across, ${Math.max(...held.map((s) => s.rank))} patterns a view${held[0].small ? ", of the hours in use alone" : ""}, half of the points within ${least === most ? most : `${least} to ${most}, by view,`} of the computed ones`;
+  return `${name || "Pictures of any hour: "}${held[0].pixels} pixels across, ${Math.max(...held.map((s) => s.rank))} patterns a view${held[0].small ? ", of the hours in use alone" : ""}, half of the points within ${least === most ? most : `${least} to ${most}, by view,`} of the computed ones.`;
 }
 
 // perDay is the number of records in a day of the chosen design.
