@@ -16,13 +16,12 @@ import (
 	"squint/scene/weather"
 )
 
-// Moment is one record of the year with daylight, or a part of one: the sun in
-// the model frame, its illuminance on a plane facing it, and the sky.
-// Illuminances are the means over the whole hour or part, also where the sun is
-// up for less than that.
+// Moment is one step of the year with daylight: the sun in the model frame, its
+// illuminance on a plane facing it, and the sky. Steps are the records of the
+// weather file or equal parts of them. Illuminances are the means over the whole
+// step, also where the sun is up for less than that.
 type Moment struct {
-	Hour        int     // index of the record, 0 is the first hour of 1 January
-	Step        int     // of the record's equal parts, 0 is the first
+	Step        int     // of the year, 0 is the first of 1 January; -1 for a moment of no year
 	Share       float64 // of an hour, 1 for the whole record
 	Time        time.Time
 	Month       int // 0 is January
@@ -34,7 +33,7 @@ type Moment struct {
 	// DNI and DHI are the irradiances, in W/m2, that these illuminances come
 	// from.
 	DNI, DHI float64
-	Occupied bool // viewpoints are judged at this hour
+	Occupied bool // viewpoints are judged at this step
 }
 
 // Climate is a weather file made into moments.
@@ -44,13 +43,10 @@ type Climate struct {
 	Fit     weather.Fit
 	OffsetH float64 // used: the fit's, or the project's own
 	Moments []*Moment
-	// Parts is the number of moments that a record makes, 1 unless the project
-	// asks for finer steps.
-	Parts int
-	// SinAltitude of the sun, as it is seen through the air, by record, for the
+	// SinAltitude of the sun, as it is seen through the air, by step, for the
 	// choice of daylight hours; negative at night.
 	SinAltitude []float64
-	// DiffuseLx by record, the mean of its parts, 0 at night.
+	// DiffuseLx by step, 0 at night.
 	DiffuseLx []float64
 	// Clamped counts skies that the all-weather model does not cover and that
 	// were moved into its range.
@@ -63,7 +59,7 @@ type Climate struct {
 const minSkyLx = 10
 
 // ReadClimate reads the project's weather file, finds the moment that each
-// record stands for, and makes suns and skies. occupied marks the records at
+// record stands for, and makes suns and skies. occupied marks the steps at
 // which viewpoints are judged; it may be nil.
 func ReadClimate(fsys fs.FS, p *project.Project, occupied []bool) (*Climate, error) {
 	y, err := weather.Read(fsys, p.Weather.File)
@@ -97,43 +93,31 @@ func ReadClimate(fsys fs.FS, p *project.Project, occupied []bool) (*Climate, err
 		return nil, err
 	}
 	north := p.Site.NorthDeg * math.Pi / 180
-	c.SinAltitude = make([]float64, len(y.Records))
-	c.DiffuseLx = make([]float64, len(y.Records))
-	c.Parts = 60 / cmp.Or(p.Simulation.StepMin, 60)
-	steps, err := c.steps(c.Parts)
+	steps, err := c.steps(60 / cmp.Or(p.Simulation.StepMin, 60))
 	if err != nil {
 		return nil, err
 	}
-	whole := steps // records as they are, whose sun chooses the daylight hours
-	if c.Parts > 1 {
-		if whole, err = c.steps(1); err != nil {
-			return nil, err
-		}
-	}
-	for i, s := range whole {
-		sun, err := c.sunAt(&y.Records[i], s.Time)
+	c.SinAltitude, c.DiffuseLx = make([]float64, len(steps)), make([]float64, len(steps))
+	for i, s := range steps {
+		sun, err := c.sunAt(&y.Records[s.Hour], s.Time)
 		if err != nil {
 			return nil, err
 		}
 		c.SinAltitude[i] = sun.Direction.Z
-	}
-	for _, s := range steps {
-		m, clamped, err := c.moment(s)
-		if err != nil {
-			return nil, err
-		}
+		m, clamped := c.moment(s, sun)
 		if m == nil {
 			continue
 		}
 		if clamped {
 			c.Clamped++
 		}
-		c.DiffuseLx[s.Hour] += m.DiffuseLx * m.Share
+		m.Step = i
+		c.DiffuseLx[i] = m.DiffuseLx
 		m.turn(north)
 		if hasHorizon && horizon.Hides(m.Sun) {
 			m.GlobalLx = m.DiffuseLx
 		}
-		m.Occupied = occupied != nil && occupied[s.Hour]
+		m.Occupied = occupied != nil && occupied[i]
 		c.Moments = append(c.Moments, m)
 	}
 	if len(c.Moments) == 0 {
@@ -142,6 +126,10 @@ func ReadClimate(fsys fs.FS, p *project.Project, occupied []bool) (*Climate, err
 	c.Notes = append(c.Notes, y.Notes...)
 	return c, nil
 }
+
+// PerHour is the number of steps in an hour: series of the year hold 8760 times
+// as many values. 1 unless the project asks for finer steps.
+func (c *Climate) PerHour() int { return max(1, len(c.SinAltitude)/weather.HoursPerYear) }
 
 func override(s *weather.Site, o project.Site) {
 	for _, x := range []struct {
@@ -186,23 +174,19 @@ func (c *Climate) steps(parts int) (steps []weather.Step, err error) {
 	return steps, err
 }
 
-// moment makes a record, or a part of one; nil at night. The sky is still in
-// the world frame.
+// moment makes a step under its sun; nil at night. The sky is still in the world
+// frame.
 //
 // Where the sun rises or sets within a time that its light is the mean of, it
 // stands in the middle of the sunlit part, while the illuminances stay the
 // means over the whole: an hour counts as one hour in every metric, so that
 // this keeps the light of the year. While the sun is up they are 1/share times
 // as high, which nothing downstream needs.
-func (c *Climate) moment(step weather.Step) (m *Moment, clamped bool, err error) {
+func (c *Climate) moment(step weather.Step, s sky.Sun) (m *Moment, clamped bool) {
 	r, t := &c.Year.Records[step.Hour], step.Time
-	s, err := c.sunAt(r, t)
-	if err != nil {
-		return nil, false, err
-	}
 	sinAlt := s.Direction.Z
 	if step.DHI <= 0 && step.DNI <= 0 {
-		return nil, false, nil
+		return nil, false
 	}
 	dni := step.DNI
 	if step.SunlitShare <= 0 || sinAlt <= 0 {
@@ -213,18 +197,18 @@ func (c *Climate) moment(step weather.Step) (m *Moment, clamped bool, err error)
 	ill := illuminances(step.DHI, dni, s, t, r.DewPointC)
 	direct := ill.DirectNormal * math.Max(0, sinAlt)
 	if ill.Diffuse < minSkyLx && direct < minSkyLx {
-		return nil, false, nil
+		return nil, false
 	}
 	dome, clamp := sky.NewPerez(aboveHorizon(s.Direction), ill.Clearness, ill.Brightness, ill.Diffuse)
 	m = &Moment{
-		Hour: step.Hour, Step: step.Part, Share: 1 / float64(c.Parts), Time: t, Month: r.Month - 1,
+		Share: 1 / float64(c.PerHour()), Time: t, Month: r.Month - 1,
 		Sun: s.Direction, SunNormalLx: ill.DirectNormal, Sky: dome,
 		DiffuseLx: ill.Diffuse,
 		GlobalLx:  ill.Diffuse + direct,
 		DNI:       dni,
 		DHI:       step.DHI,
 	}
-	return m, clamp.Clamped, nil
+	return m, clamp.Clamped
 }
 
 // illuminances are those of irradiances, W/m2, under sun s at t.
@@ -292,5 +276,5 @@ func Overcast(month int) (*Moment, error) {
 	if err != nil {
 		return nil, err
 	}
-	return &Moment{Hour: -1, Share: 1, Month: month, Sun: r3.Vec{Z: 1}, Sky: dome, DiffuseLx: lx, GlobalLx: lx}, nil
+	return &Moment{Step: -1, Share: 1, Month: month, Sun: r3.Vec{Z: 1}, Sky: dome, DiffuseLx: lx, GlobalLx: lx}, nil
 }

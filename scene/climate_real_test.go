@@ -117,7 +117,7 @@ func sensorErrors(t testing.TB, c *Climate) []float64 {
 	scale := c.Year.Efficacy().GlobalScale
 	var out []float64
 	for _, m := range c.Moments {
-		r := c.Year.Records[m.Hour]
+		r := c.Year.Records[m.Step]
 		if r.DHI < 20 || m.Sun.Z < lowestSin || !(r.GlobalLx > 0) {
 			continue
 		}

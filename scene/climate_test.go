@@ -80,7 +80,7 @@ func mustRead(t testing.TB, fsys fstest.MapFS, tables string, occupied []bool) *
 func (c *Climate) byHour() map[int]*Moment {
 	out := map[int]*Moment{}
 	for _, m := range c.Moments {
-		out[m.Hour] = m
+		out[m.Step] = m
 	}
 	return out
 }
@@ -91,28 +91,28 @@ func checkMoments(t *testing.T, c *Climate) {
 	t.Helper()
 	last := -1
 	for _, m := range c.Moments {
-		r := c.Year.Records[m.Hour]
+		r := c.Year.Records[m.Step]
 		switch {
-		case m.Hour <= last:
-			t.Fatalf("hour %d after %d", m.Hour, last)
+		case m.Step <= last:
+			t.Fatalf("hour %d after %d", m.Step, last)
 		case math.Abs(r3.Norm(m.Sun)-1) > near:
-			t.Fatalf("hour %d: the sun's direction has length %g", m.Hour, r3.Norm(m.Sun))
+			t.Fatalf("hour %d: the sun's direction has length %g", m.Step, r3.Norm(m.Sun))
 		case m.SunNormalLx < 0 || m.SunNormalLx > 0 && m.Sun.Z <= 0:
-			t.Fatalf("hour %d: direct light of %g lx with the sun at %v", m.Hour, m.SunNormalLx, m.Sun)
+			t.Fatalf("hour %d: direct light of %g lx with the sun at %v", m.Step, m.SunNormalLx, m.Sun)
 		case math.Abs(m.GlobalLx-m.DiffuseLx-m.SunNormalLx*math.Max(0, m.Sun.Z)) > 1e-9*m.GlobalLx:
-			t.Fatalf("hour %d: global %g lx of diffuse %g and direct %g at %g", m.Hour, m.GlobalLx, m.DiffuseLx, m.SunNormalLx, m.Sun.Z)
+			t.Fatalf("hour %d: global %g lx of diffuse %g and direct %g at %g", m.Step, m.GlobalLx, m.DiffuseLx, m.SunNormalLx, m.Sun.Z)
 		case m.Month != r.Month-1:
-			t.Fatalf("hour %d: month %d", m.Hour, m.Month)
-		case c.DiffuseLx[m.Hour] != m.DiffuseLx || c.SinAltitude[m.Hour] != m.Sun.Z:
-			t.Fatalf("hour %d: the series by record differ", m.Hour)
+			t.Fatalf("hour %d: month %d", m.Step, m.Month)
+		case c.DiffuseLx[m.Step] != m.DiffuseLx || c.SinAltitude[m.Step] != m.Sun.Z:
+			t.Fatalf("hour %d: the series by record differ", m.Step)
 		case m.DiffuseLx < minSkyLx && m.GlobalLx-m.DiffuseLx < minSkyLx:
-			t.Fatalf("hour %d: %g lx counts as day", m.Hour, m.GlobalLx)
+			t.Fatalf("hour %d: %g lx counts as day", m.Step, m.GlobalLx)
 		}
 		// Good to 1e-5 of its value, see sky.HorizontalIlluminance.
 		if e := m.Sky.HorizontalIlluminance(); math.Abs(e-m.DiffuseLx) > 2e-5*m.DiffuseLx {
-			t.Fatalf("hour %d: the sky gives %g lx, want %g", m.Hour, e, m.DiffuseLx)
+			t.Fatalf("hour %d: the sky gives %g lx, want %g", m.Step, e, m.DiffuseLx)
 		}
-		last = m.Hour
+		last = m.Step
 	}
 }
 
@@ -143,7 +143,7 @@ func testMoments(t *testing.T, _ fstest.MapFS, c *Climate) {
 		t.Errorf("sun at %v, want %v", m.Sun, s.Direction)
 	}
 	// Diffuse and direct by the model itself (Perez et al. 1990), fed by hand.
-	r := c.Year.Records[m.Hour]
+	r := c.Year.Records[m.Step]
 	want := photometry.Perez1990(photometry.Irradiance{DHI: r.DHI, DNI: r.DNI, ZenithRad: s.ZenithRad,
 		E0n: photometry.ExtraterrestrialNormal(172), DewPointC: 6})
 	if math.Abs(m.DiffuseLx/want.Diffuse-1) > 1e-3 || math.Abs(m.SunNormalLx/want.DirectNormal-1) > 1e-3 {
@@ -168,12 +168,12 @@ func testNorth(t *testing.T, fsys fstest.MapFS, straight *Climate) {
 	for i, m := range straight.Moments {
 		n := turned.Moments[i]
 		if apart(n.Sun, r3.Vec{X: -m.Sun.Y, Y: m.Sun.X, Z: m.Sun.Z}) > near {
-			t.Fatalf("hour %d: sun at %v, turned %v", m.Hour, m.Sun, n.Sun)
+			t.Fatalf("hour %d: sun at %v, turned %v", m.Step, m.Sun, n.Sun)
 		}
 		d := r3.Unit(r3.Vec{X: 0.5, Y: -0.3, Z: 0.4})
 		a, b := m.Sky.Luminance(d), n.Sky.Luminance(r3.Vec{X: 0.3 / r3.Norm(r3.Vec{X: 0.5, Y: -0.3, Z: 0.4}), Y: d.X, Z: d.Z})
 		if math.Abs(a-b) > 1e-9*a { // the same tables at the same angles
-			t.Fatalf("hour %d: luminance %g, turned %g", m.Hour, a, b)
+			t.Fatalf("hour %d: luminance %g, turned %g", m.Step, a, b)
 		}
 	}
 	// The ridge stands at azimuth 90, model +y.
@@ -192,13 +192,13 @@ func testHorizon(t *testing.T, fsys fstest.MapFS, c *Climate) {
 	open := c.byHour()
 	hidden := 0
 	for _, m := range mustRead(t, fsys, "[horizon]\nline = [[0, 30], [180, 30]]\n\n", nil).Moments {
-		want := open[m.Hour].GlobalLx
+		want := open[m.Step].GlobalLx
 		if m.Sun.Z < 0.5 { // sin 30 degrees
 			want = m.DiffuseLx
 			hidden++
 		}
 		if math.Abs(m.GlobalLx-want) > 1e-9*want {
-			t.Fatalf("hour %d, sun at %g: global %g, want %g", m.Hour, m.Sun.Z, m.GlobalLx, want)
+			t.Fatalf("hour %d, sun at %g: global %g, want %g", m.Step, m.Sun.Z, m.GlobalLx, want)
 		}
 	}
 	if hidden < 1000 {
@@ -213,8 +213,8 @@ func testOptions(t *testing.T, fsys fstest.MapFS, fitted *Climate) {
 	}
 	c := mustRead(t, fsys, "", occupied)
 	for _, m := range c.Moments {
-		if m.Occupied != (m.Hour%24 == 9) {
-			t.Fatalf("hour %d: occupied %v", m.Hour, m.Occupied)
+		if m.Occupied != (m.Step%24 == 9) {
+			t.Fatalf("hour %d: occupied %v", m.Step, m.Occupied)
 		}
 	}
 	// The project's own moment counts instead of the fitted one: at the label,
@@ -250,19 +250,19 @@ func testOptions(t *testing.T, fsys fstest.MapFS, fitted *Climate) {
 func testSunriseHour(t *testing.T, _ fstest.MapFS, c *Climate) {
 	part := 0
 	for _, m := range c.Moments {
-		mid := c.Year.Moment(m.Hour, -0.5)
+		mid := c.Year.Moment(m.Step, -0.5)
 		if d := m.Time.Sub(mid).Minutes(); math.Abs(d) < 2 {
 			continue // whole hours, to the fitted offset
 		}
 		part++
-		r := c.Year.Records[m.Hour]
+		r := c.Year.Records[m.Step]
 		if m.Sun.Z <= 0 {
-			t.Fatalf("hour %d: sun at %g", m.Hour, m.Sun.Z)
+			t.Fatalf("hour %d: sun at %g", m.Step, m.Sun.Z)
 		}
 		at := photometry.Irradiance{DHI: r.DHI, DNI: r.DNI, ZenithRad: math.Acos(m.Sun.Z),
 			E0n: photometry.ExtraterrestrialNormal(m.Time.YearDay()), DewPointC: r.DewPointC}
 		if want := photometry.Perez1990(at); math.Abs(m.DiffuseLx-want.Diffuse) > 1e-6*want.Diffuse+1e-9 {
-			t.Fatalf("hour %d: diffuse %g lx, want %g for the record's mean of %g W/m2", m.Hour, m.DiffuseLx, want.Diffuse, r.DHI)
+			t.Fatalf("hour %d: diffuse %g lx, want %g for the record's mean of %g W/m2", m.Step, m.DiffuseLx, want.Diffuse, r.DHI)
 		}
 	}
 	if part < 300 {
@@ -306,7 +306,7 @@ func TestOvercast(t *testing.T) {
 	if l := m.Sky.LuminanceExact(r3.Vec{X: 1}); math.Abs(l/zenith-1./3) > 1e-9 {
 		t.Errorf("horizon %g of the zenith, want a third", l/zenith)
 	}
-	if m.SunNormalLx != 0 || m.GlobalLx != 10000 || m.DiffuseLx != 10000 || m.Month != 3 || m.Hour != -1 {
+	if m.SunNormalLx != 0 || m.GlobalLx != 10000 || m.DiffuseLx != 10000 || m.Month != 3 || m.Step != -1 {
 		t.Errorf("got %+v", m)
 	}
 }

@@ -44,7 +44,7 @@ func (c *Climate) Day(d project.MonthDay, northDeg float64, perHour int) ([]r3.V
 // ClearMoment is the moment of a cloudless day at an hour of standard time: the
 // sky of the CIE Standard Clear Sky, low luminance turbidity (CIE S 011/E:2003,
 // type 12), as bright as photometry.ClearDay has it. nil where the sun is down.
-// Hour is the record that the moment falls in.
+// Step is the one that the moment falls in.
 func (c *Climate) ClearMoment(p *project.Project, d project.MonthDay, standardH float64) (*Moment, error) {
 	t, s, err := c.at(d, standardH)
 	if err != nil {
@@ -62,6 +62,6 @@ func (c *Climate) ClearMoment(p *project.Project, d project.MonthDay, standardH 
 	if err != nil {
 		return nil, err
 	}
-	m.Hour = (t.YearDay()-1)*24 + int(standardH)
+	m.Step = int((float64(24*(t.YearDay()-1)) + standardH) * float64(c.PerHour()))
 	return m, nil
 }

@@ -61,8 +61,8 @@ func TestClearMoment(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	if m.Hour != 79*24+9 || m.Month != 2 || m.Sun.X <= 0 {
-		t.Errorf("hour %d, month %d, sun %v; want the morning of 21 March", m.Hour, m.Month, m.Sun)
+	if m.Step != 79*24+9 || m.Month != 2 || m.Sun.X <= 0 {
+		t.Errorf("hour %d, month %d, sun %v; want the morning of 21 March", m.Step, m.Month, m.Sun)
 	}
 	if got := m.Sky.HorizontalIlluminance(); math.Abs(got-m.DiffuseLx) > 1e-4*got {
 		t.Errorf("sky of %.0f lx, want %.0f", got, m.DiffuseLx)

@@ -46,7 +46,7 @@ func usualSun(site sky.Site, t time.Time) (sky.Sun, error) {
 // finished completes a moment of no record whose sun and sky stand in the world
 // frame.
 func finished(p *project.Project, m *Moment) (*Moment, error) {
-	m.Hour, m.Share = -1, 1
+	m.Step, m.Share = -1, 1
 	m.turn(p.Site.NorthDeg * math.Pi / 180)
 	h, has, err := turnedHorizon(p)
 	if err != nil {

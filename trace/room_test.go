@@ -66,7 +66,7 @@ func moment(t testing.TB, kind int, month int) *scene.Moment {
 	if err != nil {
 		t.Fatal(err)
 	}
-	return &scene.Moment{Hour: kind, Month: month, Sun: vec(0, 0, 1), Sky: s, DiffuseLx: math.Pi, GlobalLx: math.Pi}
+	return &scene.Moment{Step: kind, Month: month, Sun: vec(0, 0, 1), Sky: s, DiffuseLx: math.Pi, GlobalLx: math.Pi}
 }
 
 // tally is a mean with its standard error.

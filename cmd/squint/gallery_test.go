@@ -223,17 +223,17 @@ func unsound(r *study.Result) (problems []string) {
 	var eye, plane float32
 	for _, m := range r.Climate.Moments {
 		if m.Occupied {
-			place := fmt.Sprintf("hour %d", m.Hour)
-			want(float64(v.DGP[m.Hour]), place, "DGP")
-			want(float64(v.StdErr[m.Hour]), place, "the error of DGP")
-			want(float64(v.Ev[m.Hour]), place, "Ev")
-			eye = max(eye, v.Ev[m.Hour])
+			place := fmt.Sprintf("hour %d", m.Step)
+			want(float64(v.DGP[m.Step]), place, "DGP")
+			want(float64(v.StdErr[m.Step]), place, "the error of DGP")
+			want(float64(v.Ev[m.Step]), place, "Ev")
+			eye = max(eye, v.Ev[m.Step])
 		}
 		for k := range p.E {
-			place := fmt.Sprintf("hour %d, sensor %d", m.Hour, k)
-			want(float64(p.E[k][m.Hour]), place, "illuminance")
-			want(float64(p.StdErr[k][m.Hour]), place, "the error of illuminance")
-			plane = max(plane, p.E[k][m.Hour])
+			place := fmt.Sprintf("hour %d, sensor %d", m.Step, k)
+			want(float64(p.E[k][m.Step]), place, "illuminance")
+			want(float64(p.StdErr[k][m.Step]), place, "the error of illuminance")
+			plane = max(plane, p.E[k][m.Step])
 		}
 	}
 	for k, f := range p.Factor {
@@ -373,7 +373,7 @@ func TestGalleryFindsFaults(t *testing.T) {
 
 	result := func() *study.Result {
 		return &study.Result{
-			Climate: &scene.Climate{Moments: []*scene.Moment{{Hour: 0, Occupied: true}, {Hour: 1}}},
+			Climate: &scene.Climate{Moments: []*scene.Moment{{Step: 0, Occupied: true}, {Step: 1}}},
 			Views:   []study.ViewResult{{DGP: []float32{0.3, 0}, StdErr: []float32{0.01, 0}, Ev: []float32{900, 0}}},
 			Planes: []study.PlaneResult{{
 				E: [][]float32{{400, 300}}, StdErr: [][]float32{{4, 3}}, Factor: []float64{0.02},

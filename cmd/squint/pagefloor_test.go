@@ -32,33 +32,9 @@ func TestPageOfAFloor(t *testing.T) {
 	}
 	const views, pixels, rank = 320, 24, 8
 	dir := t.TempDir()
-	if err := writeSmall(dir); err != nil {
-		t.Fatal(err)
-	}
-	fsys := os.DirFS(dir)
-	all, err := project.LoadAll(fsys, "project.toml")
-	if err != nil {
-		t.Fatal(err)
-	}
-	p := all[0]
-	p.Occupancy.Days, p.Occupancy.FromH, p.Occupancy.ToH = [7]bool{true, true, true, true, true}, 8, 18
-	in, err := study.Prepare(fsys, p, 2)
-	if err != nil {
-		t.Fatal(err)
-	}
-	r := &study.Result{Project: p, Scene: in.Scene, Climate: in.Climate, Calendar: in.Calendar, Occupied: in.Occupied, Standings: []string{""}, Standing: make([]int16, 8760), Outcome: verdict.NotMet}
-	w, err := view.New(r3.Vec{X: 2, Y: 2, Z: 1.2}, r3.Vec{Y: -1}, r3.Vec{Z: 1}, view.Equidistant, math.Pi, pixels, pixels)
-	if err != nil {
-		t.Fatal(err)
-	}
-	var inside []int32
-	for i := range pixels * pixels {
-		if _, ok := w.PixelRay(i%pixels, i/pixels); ok {
-			inside = append(inside, int32(i))
-		}
-	}
+	r, w, inside := madeUpYear(t, dir, pixels)
 	for i := range views {
-		r.Views = append(r.Views, floorView(r, i, w, inside, rank))
+		r.Views = append(r.Views, floorView(r, i, w, inside, rank, 1))
 	}
 	var b bytes.Buffer
 	if err := page.Write(&b, []*page.Archive{page.Build(r, page.Words{Title: "Floor", Outcome: "not met"})}, page.Options{}); err != nil {
@@ -84,9 +60,42 @@ func TestPageOfAFloor(t *testing.T) {
 	}
 }
 
-func floorView(r *study.Result, i int, w view.View, inside []int32, rank int) study.ViewResult {
+// madeUpYear is a result without views of the small project, in use on weekdays
+// from 8 to 18 h, with a view of so many pixels and the pixels inside of it.
+func madeUpYear(t *testing.T, dir string, pixels int) (*study.Result, view.View, []int32) {
+	t.Helper()
+	if err := writeSmall(dir); err != nil {
+		t.Fatal(err)
+	}
+	fsys := os.DirFS(dir)
+	all, err := project.LoadAll(fsys, "project.toml")
+	if err != nil {
+		t.Fatal(err)
+	}
+	p := all[0]
+	p.Occupancy.Days, p.Occupancy.FromH, p.Occupancy.ToH = [7]bool{true, true, true, true, true}, 8, 18
+	in, err := study.Prepare(fsys, p, 2)
+	if err != nil {
+		t.Fatal(err)
+	}
+	r := &study.Result{Project: p, Scene: in.Scene, Climate: in.Climate, Calendar: in.Calendar, Occupied: in.Occupied, Standings: []string{""}, Stood: []*scene.Scene{in.Scene}, Standing: make([]int16, 8760), Outcome: verdict.NotMet}
+	w, err := view.New(r3.Vec{X: 2, Y: 2, Z: 1.2}, r3.Vec{Y: -1}, r3.Vec{Z: 1}, view.Equidistant, math.Pi, pixels, pixels)
+	if err != nil {
+		t.Fatal(err)
+	}
+	var inside []int32
+	for i := range pixels * pixels {
+		if _, ok := w.PixelRay(i%pixels, i/pixels); ok {
+			inside = append(inside, int32(i))
+		}
+	}
+	return r, w, inside
+}
+
+// floorView makes up a view's year, with perHour records to the hour.
+func floorView(r *study.Result, i int, w view.View, inside []int32, rank, perHour int) study.ViewResult {
 	random := rand.New(rand.NewPCG(7, uint64(i)))
-	n := 8760
+	n := 8760 * perHour
 	v := study.ViewResult{Viewpoint: scene.Viewpoint{Name: "place " + string(rune('A'+i/26)) + string(rune('a'+i%26)), Position: r3.Vec{X: float64(i % 20), Y: float64(i / 20), Z: 1.2}, Direction: r3.Vec{Y: -1}},
 		DGP: make([]float32, n), StdErr: make([]float32, n), Ev: make([]float32, n), Cause: make([]int16, n), Asked: -1}
 	var records []int
@@ -97,7 +106,7 @@ func floorView(r *study.Result, i int, w view.View, inside []int32, rank int) st
 	roll := film.NewRoll(len(inside), len(records), 0.05, 1e6)
 	all, sun := make([]float32, len(inside)), make([]float32, len(inside))
 	for k, h := range records {
-		day, hour := float64(h/24)/365*2*math.Pi, float64(h%24)/24*2*math.Pi
+		day, hour := float64(h/24/perHour)/365*2*math.Pi, float64(h%(24*perHour))/24/float64(perHour)*2*math.Pi
 		for p, px := range inside {
 			x, y := float64(int(px)%w.Width)/float64(w.Width), float64(int(px)/w.Width)/float64(w.Width)
 			rest := math.Exp(5 + math.Sin(5*x+float64(i))*math.Cos(day) + math.Cos(4*y)*math.Sin(hour) + 0.3*math.Sin(9*x*y+hour) + 0.03*random.NormFloat64())
@@ -107,14 +116,15 @@ func floorView(r *study.Result, i int, w view.View, inside []int32, rank int) st
 			}
 			all[p] = float32(rest) + sun[p]
 		}
-		roll.Keep(k, all, sun)
+		roll.Keep(k, all, sun, 0)
 	}
-	s := &study.Shots{View: w, Eye: w, Inside: inside, Records: records, Film: roll.Develop(rank)}
+	s := &study.Shots{View: w, Eye: w, Inside: inside, Records: records, Film: roll.Develop(rank, film.Fine)}
 	s.Discs = make([][]annual.Disc, len(records))
+	var seen []coeff.Seen
 	for range inside {
-		s.Seen = append(s.Seen, coeff.Seen{Part: int32(random.IntN(2)), Via: -1})
+		seen = append(seen, coeff.Seen{Part: int32(random.IntN(2)), Via: -1})
 	}
-	s.SeenInside = inside
+	s.Stood, s.SeenInside = []study.Stood{{Scene: r.Scene, Seen: seen}}, inside
 	v.Shots = s
 	return v
 }

@@ -28,7 +28,7 @@ func newReport(h host, run func(context.Context, host, reportOptions) error) *co
 		Short: "Make the interactive report anew from a folder of results",
 		Long: `Report writes ` + report.SheetFile + ` into a folder of results that check has made, from
 the numbers there; nothing is computed again. Without a folder it takes
-results/demo. The page holds pictures of any hour for one design.`,
+results/demo. The page holds the finest pictures of any hour for one design.`,
 		Example: `  squint report results/office --open
   squint report results/office --alternative "deeper shelf"`,
 		Args: arguments(cobra.MaximumNArgs(1), "at most one folder of results"),
@@ -43,7 +43,7 @@ results/demo. The page holds pictures of any hour for one design.`,
 		},
 	}
 	f := cmd.Flags()
-	f.StringVar(&o.Alternative, "alternative", "", "`name` of the alternative that the page opens with and has\npictures of any hour for; else the one that does best")
+	f.StringVar(&o.Alternative, "alternative", "", "`name` of the alternative that the page opens with and\nhas the finest pictures of any hour for; else the one\nthat does best")
 	f.BoolVar(&o.Open, "open", false, "open the page when it is made")
 	return cmd
 }

@@ -14,7 +14,7 @@ func hourly(days, weekday int) []Step {
 	var list []Step
 	for d := range days {
 		for h := range 24 {
-			list = append(list, Step{Hour: d*24 + h, Day: d, Weekday: (weekday + d) % 7, ClockH: float64(h) + 0.5, Share: 1, Occupied: h >= 8 && h < 18})
+			list = append(list, Step{At: d*24 + h, Day: d, Weekday: (weekday + d) % 7, ClockH: float64(h) + 0.5, Share: 1, Occupied: h >= 8 && h < 18})
 		}
 	}
 	return list
@@ -105,7 +105,7 @@ func TestFacadeSun(t *testing.T) {
 func TestFacadeSunDelay(t *testing.T) {
 	var steps []Step
 	for i := range 24 * 6 {
-		steps = append(steps, Step{Hour: i / 6, ClockH: float64(i/6) + (float64(i%6)+0.5)/6, Share: 1. / 6})
+		steps = append(steps, Step{At: i, ClockH: float64(i/6) + (float64(i%6)+0.5)/6, Share: 1. / 6})
 	}
 	for last := range 24*6 - 5 {
 		facts := Facts{FacadeWm2: func(i int) float64 {

@@ -114,18 +114,18 @@ func TestUnitsOfRules(t *testing.T) {
 // TestSteps wants clock time and the clock's day, over summer time, parts of
 // hours, midnight and the new year.
 func TestSteps(t *testing.T) {
-	c := daylight.Calendar{FirstWeekday: 5, SavingFrom: &daylight.MonthDay{Month: 1, Day: 2}, SavingTo: &daylight.MonthDay{Month: 1, Day: 1}}
+	c := daylight.Calendar{PerHour: 4, FirstWeekday: 5, SavingFrom: &daylight.MonthDay{Month: 1, Day: 2}, SavingTo: &daylight.MonthDay{Month: 1, Day: 1}}
 	list := Steps([]*scene.Moment{
-		{Hour: 12, Share: 1, Occupied: true},
-		{Hour: 24 + 12, Step: 1, Share: 0.25},
-		{Hour: 24 + 23, Share: 1},
-		{Hour: 8759, Share: 1},
+		{Step: 4 * 12, Share: 0.25, Occupied: true},
+		{Step: 4*(24+12) + 1, Share: 0.25},
+		{Step: 4 * (24 + 23), Share: 0.25},
+		{Step: 4*8760 - 1, Share: 0.25},
 	}, c)
 	want := []Step{
-		{12, 0, 5, 12.5, 1, true},
-		{36, 1, 6, 13.375, 0.25, false}, // 12:15 to 12:30, one hour on
-		{47, 2, 0, 0.5, 1, false},
-		{8759, 0, 5, 0.5, 1, false},
+		{48, 0, 5, 12.125, 0.25, true},
+		{145, 1, 6, 13.375, 0.25, false}, // 12:15 to 12:30, one hour on
+		{188, 2, 0, 0.125, 0.25, false},
+		{35039, 0, 5, 0.875, 0.25, false},
 	}
 	if !reflect.DeepEqual(list, want) {
 		t.Errorf("\n got %+v\nwant %+v", list, want)

@@ -13,10 +13,10 @@ func TestReportByGroup(t *testing.T) {
 	strip.Name, strip.Group = "strip", "above"
 	units := []Unit{blind, roller, strip}
 	steps := []Step{
-		{Hour: 8, ClockH: 8.25, Share: 0.5, Occupied: true},
-		{Hour: 8, ClockH: 8.75, Share: 0.5, Occupied: true},
-		{Hour: 9, ClockH: 9.5, Share: 1, Occupied: true},
-		{Hour: 20, ClockH: 20.5, Share: 1},
+		{At: 8, ClockH: 8.25, Share: 0.5, Occupied: true},
+		{At: 8, ClockH: 8.75, Share: 0.5, Occupied: true},
+		{At: 9, ClockH: 9.5, Share: 1, Occupied: true},
+		{At: 20, ClockH: 20.5, Share: 1},
 	}
 	every := [7]bool{true, true, true, true, true, true, true}
 	at := func(from, to float64, state int) Law {

@@ -25,7 +25,7 @@ type synthetic struct {
 func synthYear(parts int) synthetic {
 	y := synthetic{e: make([][]float32, points), direct: make([][]float32, points)}
 	clock := daylight.Calendar{}.Clock(8, 18)
-	occupied := daylight.Hours(clock).Mask()
+	occupied := clock.Mask(daylight.HoursPerYear)
 	for h := range daylight.HoursPerYear {
 		day, t := float64(h/24), float64(h%24)+0.5
 		season := math.Cos(2 * math.Pi * (day + 10) / 365)
@@ -39,7 +39,7 @@ func synthYear(parts int) synthetic {
 		}
 		for part := range parts {
 			share := 1 / float64(parts)
-			y.steps = append(y.steps, Step{Hour: h, Day: h / 24, ClockH: float64(h%24) + (float64(part)+0.5)*share, Share: share, Occupied: occupied[h]})
+			y.steps = append(y.steps, Step{At: h, Day: h / 24, ClockH: float64(h%24) + (float64(part)+0.5)*share, Share: share, Occupied: occupied[h]})
 			for p := range points {
 				direct := float32(0)
 				if p < reach {
@@ -111,9 +111,9 @@ func TestSyntheticYearWithBlinds(t *testing.T) {
 			dimmed[q] = make([]float32, daylight.HoursPerYear)
 			for i, s := range y.steps {
 				if chosen[i].State(0) == 1 {
-					dimmed[q][s.Hour] = y.e[q][i] * closedPasses
+					dimmed[q][s.At] = y.e[q][i] * closedPasses
 				} else {
-					dimmed[q][s.Hour] = y.e[q][i]
+					dimmed[q][s.At] = y.e[q][i]
 				}
 			}
 		}
@@ -133,7 +133,7 @@ func TestSyntheticYearWithBlinds(t *testing.T) {
 		get := map[string]string{}
 		closed := r.Groups[0].States[1]
 		get["blind-closed occupied hours (more than 2% of 50 points)"] = strconv.FormatFloat(closed.InUseH, 'f', -1, 64)
-		sda := daylight.SDA(daylight.Plane{E: dimmed}, clock, daylight.Spatial{ThresholdLx: 300, TimeShare: 0.5, Blinds: true})
+		sda := daylight.SDA(daylight.Plane{E: dimmed}, clock, daylight.Spatial{ThresholdLx: 300, TimeShare: 0.5, Blinds: true}, 1)
 		get["sDA300/50 with blinds (closed => illuminance x0.2)"] = strconv.Itoa(int(math.Round(sda.Share.Estimate*points))) + "/50"
 		var das []string
 		for _, q := range []int{0, 10, 20, 30, 40, 49} {

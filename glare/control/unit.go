@@ -31,7 +31,7 @@ func (u *Unit) index(state string) (int, bool) {
 
 // Step is a part of the year.
 type Step struct {
-	Hour     int     // record of the weather file, 0 to 8759
+	At       int     // of the year, from 0, see scene.Moment.Step
 	Day      int     // of the clock, counted from 1 January, 0 to 364
 	Weekday  int     // 0 Monday to 6 Sunday
 	ClockH   float64 // clock time of its middle, 0 to 24
@@ -43,12 +43,9 @@ type Step struct {
 func Steps(moments []*scene.Moment, c daylight.Calendar) []Step {
 	list := make([]Step, len(moments))
 	for i, m := range moments {
-		day := m.Hour / 24
-		clock := float64(m.Hour%24) + (float64(m.Step)+0.5)*m.Share + c.ClockShiftH(day)
-		if clock >= 24 {
-			clock, day = clock-24, (day+1)%365
-		}
-		list[i] = Step{Hour: m.Hour, Day: day, Weekday: ((c.FirstWeekday+day)%7 + 7) % 7, ClockH: clock, Share: m.Share, Occupied: m.Occupied}
+		day, clock := c.ClockAt(m.Step)
+		weekday, _ := c.OnDay(day)
+		list[i] = Step{At: m.Step, Day: day, Weekday: weekday, ClockH: clock, Share: m.Share, Occupied: m.Occupied}
 	}
 	return list
 }

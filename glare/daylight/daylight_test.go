@@ -35,7 +35,7 @@ func TestCalendar(t *testing.T) {
 			t.Errorf("%s: %d hours from %d, want %d from %d (%s)", c.name, len(c.got), c.got[0], c.n, c.first, c.origin)
 		}
 		set := 0
-		for i, in := range c.got.Mask() {
+		for i, in := range c.got.Mask(HoursPerYear) {
 			if in {
 				if c.got[set] != i {
 					t.Fatalf("%s: hour %d in the mask only", c.name, i)
@@ -62,6 +62,36 @@ func TestCalendar(t *testing.T) {
 	// In summer 8 h on the clock is 7 h standard time.
 	if h := saving.Clock(8, 18); !slices.Contains(h, 180*24+7) || slices.Contains(h, 180*24+17) {
 		t.Error("summer clock hours are not an hour earlier")
+	}
+}
+
+// TestSteps: quarters of hours are in use by themselves.
+func TestSteps(t *testing.T) {
+	c := Calendar{PerHour: 4, FirstWeekday: 5, Days: [7]bool{6: true}, FromH: 8.5, ToH: 9.75, Holidays: []MonthDay{{1, 9}},
+		SavingFrom: &MonthDay{1, 16}, SavingTo: &MonthDay{1, 17}}
+	// 2 January is the first Sunday; the 9th is a holiday, and on the 16th the
+	// clock is an hour ahead. From 8:30 to 9:45 there are five quarters.
+	got := c.Occupied()
+	var want Hours
+	for _, first := range []int{4*(1*24+8) + 2, 4*(15*24+7) + 2} {
+		for k := range 5 {
+			want = append(want, first+k)
+		}
+	}
+	if len(got) != 51*5 || !slices.Equal(got[:10], want) || c.InHours(len(got)) != 51*1.25 {
+		t.Errorf("got %d steps, %g h, from %v; want 255 from %v", len(got), c.InHours(len(got)), got[:10], want)
+	}
+	if n := len(c.Clock(8, 18)); n != 4*3650 || len(got.Mask(c.Steps())) != 4*HoursPerYear {
+		t.Errorf("got %d quarters from 8 to 18 h, want 14600", n)
+	}
+	if day, clock := c.ClockAt(4*(15*24+23) + 3); day != 16 || clock != 0.875 {
+		t.Errorf("23:45 on 16 January: got day %d, %g h, want 16 and 0.875", day, clock)
+	}
+	for _, n := range []int{1, 4, 5} { // five steps are 5, 1.25 and 1 h
+		r := ASE([][]float32{{2, 2, 2, 2, 2}}, Hours{0, 1, 2, 3, 4}, Exposure{1, 1}, n)
+		if want := 5 / float64(n); r.SensorHours[0] != want || r.Hours != want || (r.Share.Estimate == 1) != (want > 1) {
+			t.Errorf("%d steps an hour: got %+v, want %g h of sun, too much above 1", n, r, want)
+		}
 	}
 }
 
@@ -120,7 +150,7 @@ func TestThresholdsAndGaps(t *testing.T) {
 	if b := (Plane{}).SensorShare(all, 300, 0.5); b.Surely == b.Surely {
 		t.Errorf("share of no sensors: %+v", b)
 	}
-	if r := ASE([][]float32{{1000}}, Hours{0}, Exposure{1000, 0}); r.Share.Estimate != 0 {
+	if r := ASE([][]float32{{1000}}, Hours{0}, Exposure{1000, 0}, 1); r.Share.Estimate != 0 {
 		t.Error("ASE counts hours at the threshold, want above it")
 	}
 }

@@ -2,19 +2,20 @@ package daylight
 
 import "slices"
 
-// HoursPerYear is the number of records of a year without 29 February.
+// HoursPerYear is the number of hours of a year without 29 February.
 const HoursPerYear = 8760
 
 // DaylightHoursPerYear is the number of daylight hours EN 17037 reckons with:
 // half of the year. Source: EN 17037:2018, from memory.
 const DaylightHoursPerYear = 4380
 
-// Hours lists record indices in increasing order, 0 to HoursPerYear-1.
+// Hours lists steps of the year in increasing order, from 0. A step is an hour
+// or an equal part of one; Calendar.PerHour says which.
 type Hours []int
 
-// Mask tells for each record of the year whether it is listed.
-func (h Hours) Mask() []bool {
-	mask := make([]bool, HoursPerYear)
+// Mask tells for each of the year's n steps whether it is listed.
+func (h Hours) Mask(n int) []bool {
+	mask := make([]bool, n)
 	for _, i := range h {
 		mask[i] = true
 	}
@@ -39,6 +40,7 @@ func (m MonthDay) YearDay() (int, bool) {
 
 // Calendar says when a room is in use and what its clocks show.
 type Calendar struct {
+	PerHour      int        // steps in an hour, 1 or more; 0 counts as 1
 	FirstWeekday int        // weekday of 1 January: 0 Monday to 6 Sunday
 	Days         [7]bool    // days of use, Monday first
 	FromH, ToH   float64    // clock time of use, 0 to 24; FromH < ToH
@@ -71,21 +73,49 @@ func (c Calendar) ClockShiftH(day int) float64 {
 	return 0
 }
 
-// Occupied lists the records in which the room is in use: dark ones too,
-// since the usage time of EN 17037 does not stop at dusk.
-func (c Calendar) Occupied() Hours {
-	closed := make(map[int]bool, len(c.Holidays))
+func (c Calendar) perHour() int { return max(1, c.PerHour) }
+
+// Steps is the number of steps in the year.
+func (c Calendar) Steps() int { return HoursPerYear * c.perHour() }
+
+// InHours is how many hours that many steps are.
+func (c Calendar) InHours(steps int) float64 { return float64(steps) / float64(c.perHour()) }
+
+// Day is the day, 0 to 364, of a step in the standard time of the weather file.
+func (c Calendar) Day(step int) int { return step / (24 * c.perHour()) }
+
+// ClockAt is the day, 0 to 364, and the time, 0 to 24 h, that clocks show in the
+// middle of a step.
+func (c Calendar) ClockAt(step int) (day int, clockH float64) {
+	day = c.Day(step)
+	clockH = (float64(step%(24*c.perHour()))+0.5)/float64(c.perHour()) + c.ClockShiftH(day)
+	if clockH >= 24 {
+		return (day + 1) % 365, clockH - 24
+	}
+	return day, clockH
+}
+
+// OnDay is the weekday, 0 Monday to 6 Sunday, of a day, 0 to 364, and whether it
+// is a holiday.
+func (c Calendar) OnDay(day int) (weekday int, holiday bool) {
 	for _, h := range c.Holidays {
-		if day, ok := h.YearDay(); ok {
-			closed[day] = true
+		if d, ok := h.YearDay(); ok && d == day {
+			holiday = true
 		}
 	}
+	return ((c.FirstWeekday+day)%7 + 7) % 7, holiday
+}
+
+// Occupied lists the steps in which the room is in use: dark ones too,
+// since the usage time of EN 17037 does not stop at dusk.
+func (c Calendar) Occupied() Hours {
 	return c.pick(c.FromH, c.ToH, func(day int) bool {
-		return c.Days[((c.FirstWeekday+day)%7+7)%7] && !closed[day]
+		weekday, holiday := c.OnDay(day)
+		return c.Days[weekday] && !holiday
 	})
 }
 
-// Clock lists the records between two clock times on every day of the year:
+// Clock lists the steps between two clock times on every day of the year:
 // Clock(8, 18) is the 3,650 analysis hours of IES LM-83-12.
 func (c Calendar) Clock(fromH, toH float64) Hours {
 	return c.pick(fromH, toH, func(int) bool { return true })
@@ -93,13 +123,9 @@ func (c Calendar) Clock(fromH, toH float64) Hours {
 
 func (c Calendar) pick(fromH, toH float64, use func(day int) bool) Hours {
 	var hours Hours
-	for i := range HoursPerYear {
-		day, middle := i/24, float64(i%24)+0.5
+	for i := range c.Steps() {
 		// The clock may already show the next day; the day of use is the clock's.
-		clock := middle + c.ClockShiftH(day)
-		if clock >= 24 {
-			clock, day = clock-24, (day+1)%365
-		}
+		day, clock := c.ClockAt(i)
 		if clock >= fromH && clock < toH && use(day) {
 			hours = append(hours, i)
 		}
@@ -107,10 +133,10 @@ func (c Calendar) pick(fromH, toH float64, use func(day int) bool) Hours {
 	return hours
 }
 
-// SunHighest lists the n records in which the sun stands highest, from the
+// SunHighest lists the n steps in which the sun stands highest, from the
 // sine of its altitude (or any other measure that grows with the altitude) in
-// each record; the earlier of two equal ones comes first. With n =
-// [DaylightHoursPerYear] these are the daylight hours of EN 17037: the
+// each step; the earlier of two equal ones comes first. With n = as many steps as
+// [DaylightHoursPerYear] holds these are the daylight hours of EN 17037: the
 // standard gives their number but weather files disagree by hundreds of hours
 // on which have light, while the sun's altitude is the same for all.
 func SunHighest(sinAltitude []float64, n int) Hours {

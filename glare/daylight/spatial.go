@@ -20,17 +20,17 @@ const (
 type SpatialResult struct {
 	Share Bracket
 	Label string // "sDA", or "sDA, unshaded" without operated blinds
-	Hours int
+	Hours float64
 }
 
-// SDA is spatial daylight autonomy over the hours (Calendar.Clock(8, 18)).
-// Source: IES LM-83-12.
-func SDA(p Plane, hours Hours, s Spatial) SpatialResult {
+// SDA is spatial daylight autonomy over the hours (Calendar.Clock(8, 18)), of
+// perHour steps each. Source: IES LM-83-12.
+func SDA(p Plane, hours Hours, s Spatial, perHour int) SpatialResult {
 	label := "sDA, unshaded"
 	if s.Blinds {
 		label = "sDA"
 	}
-	return SpatialResult{p.SensorShare(hours, s.ThresholdLx, s.TimeShare), label, len(hours)}
+	return SpatialResult{p.SensorShare(hours, s.ThresholdLx, s.TimeShare), label, float64(len(hours)) / float64(perHour)}
 }
 
 // Exposure holds the limits of annual sunlight exposure.
@@ -46,23 +46,25 @@ var DefaultExposure = Exposure{ThresholdLx: 1000, HoursLimit: 250}
 // the hours above the threshold at each sensor.
 type ExposureResult struct {
 	Share       Bracket // all three readings agree: direct sun carries no noise
-	SensorHours []int
-	Hours       int
+	SensorHours []float64
+	Hours       float64
 }
 
 // ASE is annual sunlight exposure: the share of sensors whose direct sun is
-// above the threshold for more than the limit of hours, blinds open.
-// Source: IES LM-83-12.
-func ASE(direct [][]float32, hours Hours, x Exposure) ExposureResult {
-	r := ExposureResult{SensorHours: make([]int, len(direct)), Hours: len(hours)}
+// above the threshold for more than the limit of hours, of perHour steps each,
+// blinds open. Source: IES LM-83-12.
+func ASE(direct [][]float32, hours Hours, x Exposure, perHour int) ExposureResult {
+	r := ExposureResult{SensorHours: make([]float64, len(direct)), Hours: float64(len(hours)) / float64(perHour)}
 	n := 0.0
 	for s, d := range direct {
+		above := 0
 		for _, h := range hours {
 			if float64(d[h]) > x.ThresholdLx {
-				r.SensorHours[s]++
+				above++
 			}
 		}
-		if r.SensorHours[s] > x.HoursLimit {
+		r.SensorHours[s] = float64(above) / float64(perHour)
+		if above > x.HoursLimit*perHour {
 			n++
 		}
 	}

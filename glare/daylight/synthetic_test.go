@@ -173,20 +173,20 @@ func TestSyntheticYear(t *testing.T) {
 	checked++
 
 	plane := Plane{E: y.e}
-	sda := SDA(plane, clock, DefaultSpatial)
+	sda := SDA(plane, clock, DefaultSpatial, 1)
 	fraction("sDA300/50 without blinds (points with DA>=0.5)/50", sda.Share)
 	if sda.Label != "sDA, unshaded" {
 		t.Errorf("label %q", sda.Label)
 	}
 
-	ase := ASE(y.direct, clock, DefaultExposure)
+	ase := ASE(y.direct, clock, DefaultExposure, 1)
 	fraction("ASE1000,250h points", ase.Share)
-	check("direct>=1000 lx hours, points 0..12", at([]int{0, 1, 2, 3, 4, 5, 6, 7, 8, 9, 10, 11, 12}, func(p int) float64 { return float64(ase.SensorHours[p]) })...)
-	slack := 8760
+	check("direct>=1000 lx hours, points 0..12", at([]int{0, 1, 2, 3, 4, 5, 6, 7, 8, 9, 10, 11, 12}, func(p int) float64 { return ase.SensorHours[p] })...)
+	slack := 8760.0
 	for _, n := range ase.SensorHours {
 		slack = min(slack, max(n-250, 250-n))
 	}
-	check("margin: min |hrs-250|", float64(slack))
+	check("margin: min |hrs-250|", slack)
 
 	closed := DefaultBlindRule.Closed(y.direct, HoursPerYear)
 	closedHours := 0
@@ -206,7 +206,7 @@ func TestSyntheticYear(t *testing.T) {
 			dimmed[p][h] = e
 		}
 	}
-	shaded := SDA(Plane{E: dimmed}, clock, Spatial{300, 0.5, true})
+	shaded := SDA(Plane{E: dimmed}, clock, Spatial{300, 0.5, true}, 1)
 	fraction("sDA300/50 with blinds (closed => illuminance x0.2)", shaded.Share)
 	if shaded.Label != "sDA" {
 		t.Errorf("label %q", shaded.Label)

@@ -34,8 +34,16 @@ func ProtectionByName(name string) (ProtectionLevel, bool) {
 type GlareHours struct {
 	Hours        Bracket // hours over the limit
 	Share        Bracket // of all hours given; NaN where there are none
-	Total        int     // hours given: the usage time, dark hours too
-	NotEvaluated int     // of these, hours whose value or error is unknown
+	Total        float64 // hours given: the usage time, dark hours too
+	NotEvaluated float64 // of these, hours whose value or error is unknown
+}
+
+// OfSteps are the hours where steps were counted, perHour of them in each.
+func (g GlareHours) OfSteps(perHour int) GlareHours {
+	n := float64(perHour)
+	g.Hours = Bracket{Surely: g.Hours.Surely / n, Estimate: g.Hours.Estimate / n, Possibly: g.Hours.Possibly / n}
+	g.Total, g.NotEvaluated = g.Total/n, g.NotEvaluated/n
+	return g
 }
 
 // CountGlare counts the hours whose DGP is above the limit; dgp and se hold one
@@ -45,7 +53,7 @@ type GlareHours struct {
 // that the estimate still counts the value. A nil se means no error; hours
 // beyond the end of a shorter se have an unknown one.
 func CountGlare(dgp, se []float32, limit, z float64) GlareHours {
-	g := GlareHours{Total: len(dgp)}
+	g := GlareHours{Total: float64(len(dgp))}
 	for i, v := range dgp {
 		value, half := float64(v), 0.0
 		switch {
@@ -69,14 +77,15 @@ func CountGlare(dgp, se []float32, limit, z float64) GlareHours {
 			g.Hours.Possibly++
 		}
 	}
-	n := float64(g.Total)
+	n := g.Total
 	g.Share = Bracket{Surely: g.Hours.Surely / n, Estimate: g.Hours.Estimate / n, Possibly: g.Hours.Possibly / n}
 	return g
 }
 
 // Glare judges one view against a level of protection; when says, if known,
 // when the hours over the limit fall ("mostly 8 to 10 h from February to
-// April, the low sun through the strip above the shelf") and may be empty.
+// April, the low sun through the strip above the shelf"), or those that leave
+// it open, and may be empty.
 func Glare(subject string, l ProtectionLevel, g GlareHours, when string) Verdict {
 	v := Verdict{
 		Criterion: fmt.Sprintf("glare protection, %s: DGP over %.2f in at most %s of the usage time", l.Name, l.DGP, percent(l.TimeShare)),
@@ -91,12 +100,15 @@ func Glare(subject string, l ProtectionLevel, g GlareHours, when string) Verdict
 		return v
 	}
 	v.Text = fmt.Sprintf("%s: glare on %s of %s hours (%s, limit %s)", subject,
-		whole(g.Hours.Estimate), whole(float64(g.Total)), spread(g.Share), percent(l.TimeShare))
+		hours(g.Hours.Estimate), hours(g.Total), spread(g.Share), percent(l.TimeShare))
 	switch {
 	case v.Outcome == Undecided:
-		v.Text += fmt.Sprintf(", undecided: %s hours are surely and %s possibly over", whole(g.Hours.Surely), whole(g.Hours.Possibly))
+		v.Text += fmt.Sprintf(", undecided: %s hours are surely and %s possibly over", hours(g.Hours.Surely), hours(g.Hours.Possibly))
 		if g.NotEvaluated > 0 {
-			v.Text += fmt.Sprintf(", %s of them not evaluated", whole(float64(g.NotEvaluated)))
+			v.Text += fmt.Sprintf(", %s of them not evaluated", hours(g.NotEvaluated))
+		}
+		if when != "" {
+			v.Text += "; " + when
 		}
 	case when != "" && g.Hours.Estimate > 0:
 		v.Text += ", " + when

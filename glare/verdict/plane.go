@@ -71,7 +71,7 @@ func rank(o Outcome) int {
 // Spatial judges spatial daylight autonomy against a share of the plane.
 func Spatial(subject string, r daylight.SpatialResult, s daylight.Spatial, limit float64) Verdict {
 	v := Verdict{
-		Criterion: fmt.Sprintf("%s: %.0f lx in %s of %s hours on at least %s of the plane", r.Label, s.ThresholdLx, percent(s.TimeShare), whole(float64(r.Hours)), percent(limit)),
+		Criterion: fmt.Sprintf("%s: %.0f lx in %s of %s hours on at least %s of the plane", r.Label, s.ThresholdLx, percent(s.TimeShare), hours(r.Hours), percent(limit)),
 		Source:    "IES LM-83-12",
 		Subject:   subject,
 		Text:      fmt.Sprintf("%s: %.0f lx in %s of the hours on %s of the plane (at least %s asked)", subject, s.ThresholdLx, percent(s.TimeShare), spreadIn(r.Share), percent(limit)),

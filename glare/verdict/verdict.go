@@ -79,6 +79,15 @@ func number(x float64) string {
 	return strings.TrimSuffix(fmt.Sprintf("%.1f", x), ".0")
 }
 
+// hours counts them, parts with up to two decimals: 2,610 or 12.25.
+func hours(x float64) string {
+	full, part := math.Modf(x)
+	if s := strings.TrimRight(fmt.Sprintf("%.2f", part), "0"); len(s) > 2 && s[0] == '0' {
+		return whole(full) + s[1:]
+	}
+	return whole(x)
+}
+
 // whole groups thousands: 2,610.
 func whole(x float64) string {
 	s := fmt.Sprintf("%.0f", x)

@@ -103,7 +103,7 @@ func TestCountGlare(t *testing.T) {
 		se           []float32
 		z            float64
 		want         Bracket // by hand
-		notEvaluated int
+		notEvaluated float64
 	}{
 		{"no errors", nil, 2, of3(2, 2, 3), 1}, // the hour not evaluated may be over
 		{"z = 0", []float32{0.1, 0.1, 0.1, 0.1, 0.1, 0.1}, 0, of3(2, 2, 3), 1},
@@ -115,7 +115,7 @@ func TestCountGlare(t *testing.T) {
 	} {
 		g := CountGlare(dgp, c.se, 0.45, c.z)
 		if g.Hours != c.want || g.Total != 6 || g.NotEvaluated != c.notEvaluated {
-			t.Errorf("%s: %+v, want %v and %d not evaluated", c.name, g, c.want, c.notEvaluated)
+			t.Errorf("%s: %+v, want %v and %g not evaluated", c.name, g, c.want, c.notEvaluated)
 		}
 		if g.Share.Estimate != g.Hours.Estimate/6 {
 			t.Errorf("%s: share %v", c.name, g.Share)

@@ -75,7 +75,7 @@ func (c *catcher) catch(w *worker, bl *surface.Block, batch int, e []surface.Row
 		if photons.Empty() {
 			continue
 		}
-		s := sampling.Stream4(w.cfg.Seed, streamChain, uint64(m.Hour), uint64(batch))
+		s := sampling.Stream4(w.cfg.Seed, streamChain, uint64(m.Step), uint64(batch))
 		photons.Beams(n, rays.Draw, &s, func(b *trace.Beam) {
 			if b.Mirrors >= 2 && b.Glossy == 0 && b.Dir.Z < 0 {
 				c.cross(b, rays.NormalLx, h, e)

@@ -68,7 +68,7 @@ func TestSameBytes(t *testing.T) {
 	if !bytes.Equal(a, b) {
 		t.Errorf("1 and 7 workers differ: got %d and %d bytes, want the same", len(a), len(b))
 	}
-	moments[1].Hour += 1000 // twin: other random numbers for one moment with sun
+	moments[1].Step += 1000 // twin: other random numbers for one moment with sun
 	_, c := wholeRun(t, w, sensors, moments, 7)
 	if bytes.Equal(a, c) {
 		t.Error("twin: one moment with other random numbers gave the same bytes")

@@ -25,6 +25,7 @@ type eyeScratch struct {
 	image  [][]tile // [batch][tile]
 	sunlit []tile   // summed over batches
 	frames [framesAtOnce]Frame
+	batch  [framesAtOnce][][]float32 // of the frames, all of them
 }
 
 // framesAtOnce is the number of moments whose images are taken out of the tiles
@@ -42,27 +43,32 @@ func (s *eyeScratch) prepare(e *coeff.Eye, batches int) {
 	}
 	size := e.View.Width * e.View.Height
 	for k := range s.frames {
-		if f := &s.frames[k]; len(f.Mean) != size || len(f.Batch) != batches {
+		if f := &s.frames[k]; len(f.Mean) != size || len(s.batch[k]) != batches {
 			*f = Frame{Mean: make([]float32, size), Sunlit: make([]float32, size)}
+			s.batch[k] = nil
 			for range batches {
-				f.Batch = append(f.Batch, make([]float32, size))
+				s.batch[k] = append(s.batch[k], make([]float32, size))
 			}
 		}
 	}
 	clear(s.sunlit)
 }
 
-// see makes the images of one eye for a block and hands them on.
-func (w *worker) see(bl *surface.Block, b block, eye int, lit []uint64) {
+// see makes the images of one eye for a block, from so many batches, and hands
+// them on.
+func (w *worker) see(bl *surface.Block, b block, eye int, lit []uint64, batches int) {
 	e := w.r.Eyes[eye]
 	s := &w.eye
 	s.prepare(e, len(w.lights))
-	for batch := range w.lights {
+	for batch := range batches {
 		w.render(bl, e, eye, batch, lit)
 	}
 	for first := 0; first < len(bl.Moments); first += framesAtOnce {
 		frames := s.frames[:min(framesAtOnce, len(bl.Moments)-first)]
-		s.develop(e, frames, first)
+		for k := range frames {
+			frames[k].Batch = s.batch[k][:batches]
+		}
+		s.develop(e, s.image[:batches], frames, first)
 		for k := range frames {
 			f, h := &frames[k], first+k
 			m := bl.Moments[h]
@@ -74,12 +80,12 @@ func (w *worker) see(bl *surface.Block, b block, eye int, lit []uint64) {
 }
 
 // develop takes the images of the moments from first on out of the tiles.
-func (s *eyeScratch) develop(e *coeff.Eye, frames []Frame, first int) {
-	inv := 1 / float32(len(s.image))
+func (s *eyeScratch) develop(e *coeff.Eye, images [][]tile, frames []Frame, first int) {
+	inv := 1 / float32(len(images))
 	for t := range s.sunlit {
 		inside := e.Inside[t*tileWidth : min((t+1)*tileWidth, len(e.Inside))]
 		var sum [framesAtOnce][tileWidth]float32
-		for batch, image := range s.image {
+		for batch, image := range images {
 			lines := image[t][first : first+len(frames)]
 			for i := range lines {
 				line, out, sum := &lines[i], frames[i].Batch[batch], &sum[i]
@@ -107,7 +113,7 @@ func (w *worker) render(bl *surface.Block, e *coeff.Eye, eye, batch int, lit []u
 	light := &w.lights[batch]
 	var random [surface.Width]sampling.Stream
 	for h, m := range bl.Moments {
-		random[h] = sampling.NewStream(w.cfg.Seed, streamEyeSun, uint64(eye), uint64(m.Hour), uint64(batch))
+		random[h] = sampling.NewStream(w.cfg.Seed, streamEyeSun, uint64(eye), uint64(m.Step), uint64(batch))
 	}
 	var rows [tileWidth]surface.Row
 	for t := range w.eye.sunlit {

@@ -59,7 +59,7 @@ func TestMirroredCurvedShelf(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	m := &scene.Moment{Hour: 1, Sun: sun, SunNormalLx: 15000, Sky: dome, DiffuseLx: 2000, GlobalLx: 2000 + 15000*sun.Z, Occupied: true}
+	m := &scene.Moment{Step: 1, Sun: sun, SunNormalLx: 15000, Sky: dome, DiffuseLx: 2000, GlobalLx: 2000 + 15000*sun.Z, Occupied: true}
 	south, north := r3.Vec{Y: -1}, r3.Vec{Y: 1}
 	sensors := []scene.Sensor{up(1.8, 1, .8), up(1.8, 2.5, .8), up(.6, 4, .8), up(1.8, 6, .8), up(1.8, 7.8, .8),
 		{Position: r3.Vec{X: 1.8, Y: 4, Z: 1.2}, Normal: south},

@@ -125,7 +125,7 @@ func (m *model) world() *trace.World { return trace.Accelerate(m.s, 1) }
 // skyMoment is a moment without sun.
 func skyMoment(hour int, s *sky.Sky) *scene.Moment {
 	e := s.HorizontalIlluminance()
-	return &scene.Moment{Hour: hour, Sun: r3.Vec{Z: 1}, Sky: s, DiffuseLx: e, GlobalLx: e}
+	return &scene.Moment{Step: hour, Sun: r3.Vec{Z: 1}, Sky: s, DiffuseLx: e, GlobalLx: e}
 }
 
 // sunMoment is a moment with a black sky. The sun stands at an altitude and at
@@ -136,7 +136,7 @@ func sunMoment(t testing.TB, hour int, altitudeRad, fromFacadeRad, normalLx floa
 		t.Fatal(err)
 	}
 	d := direction(altitudeRad, fromFacadeRad)
-	return &scene.Moment{Hour: hour, Sun: d, SunNormalLx: normalLx, Sky: s, GlobalLx: normalLx * d.Z}
+	return &scene.Moment{Step: hour, Sun: d, SunNormalLx: normalLx, Sky: s, GlobalLx: normalLx * d.Z}
 }
 
 func direction(altitudeRad, fromFacadeRad float64) r3.Vec {

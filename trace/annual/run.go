@@ -33,7 +33,8 @@ type Frame struct {
 	Eye    int
 	Index  int // of the moment
 	Moment *scene.Moment
-	// Mean is the pooled luminance, cd/m2; Batch holds each batch's own.
+	// Mean is the pooled luminance, cd/m2; Batch holds each batch's own, of the
+	// first alone at moments out of use.
 	Mean  []float32
 	Batch [][]float32
 	// Sunlit is the part of Mean that is sun on the first diffuse surface.
@@ -65,6 +66,9 @@ type Daylight struct {
 type Config struct {
 	Workers int
 	Seed    uint64
+	// Glimpses has the eyes see moments out of use too, but with the first batch
+	// alone: enough for a picture. Frames then have that one batch.
+	Glimpses bool
 }
 
 // block is a list of moment indices solved together.
@@ -178,7 +182,11 @@ func (w *worker) run(ctx context.Context, moments []*scene.Moment, b block, d *D
 		near = &w.lights[batch]
 	}
 	w.sensors(bl, b, d)
-	if w.sink == nil || !ms[0].Occupied {
+	batches := len(w.lights)
+	if !ms[0].Occupied {
+		batches = 1
+	}
+	if w.sink == nil || !ms[0].Occupied && !w.cfg.Glimpses {
 		return
 	}
 	lit := w.t.LitNear(w.lights)
@@ -186,6 +194,6 @@ func (w *worker) run(ctx context.Context, moments []*scene.Moment, b block, d *D
 		if ctx.Err() != nil {
 			return
 		}
-		w.see(bl, b, i, lit)
+		w.see(bl, b, i, lit, batches)
 	}
 }

@@ -39,7 +39,7 @@ func (w *worker) sensors(bl *surface.Block, b block, d *Daylight) {
 			bl.Gather(&w.r.Rows[batch], &w.lights[batch], i, row)
 			for h, m := range bl.Moments {
 				if bl.Sun[h].NormalLx > 0 {
-					sun := w.sunOn(s.Position, s.Normal, &bl.Sun[h], i, m.Hour, batch)
+					sun := w.sunOn(s.Position, s.Normal, &bl.Sun[h], i, m.Step, batch)
 					row[h] += sun
 					direct[h] += sun
 				}
@@ -108,7 +108,7 @@ func (w *worker) sensorShine(bl *surface.Block, i, batch int, e *surface.Row) {
 	}
 	var random [surface.Width]sampling.Stream
 	for h, m := range bl.Moments {
-		random[h] = sampling.NewStream(w.cfg.Seed, streamSensorShine, uint64(i), uint64(m.Hour), uint64(batch))
+		random[h] = sampling.NewStream(w.cfg.Seed, streamSensorShine, uint64(i), uint64(m.Step), uint64(batch))
 	}
 	for k := range shines {
 		w.shine(bl, &shines[k], &random, e)

@@ -42,13 +42,13 @@ type Light struct {
 // Light solves the exchange for a moment.
 func (s *Stage) Light(ctx context.Context, m *scene.Moment) (*Light, error) {
 	copies := make([]*scene.Moment, lanes)
-	hour := m.Hour
-	if hour < 0 {
-		hour = noHour
+	step := m.Step
+	if step < 0 {
+		step = noHour
 	}
 	for i := range copies {
 		c := *m
-		c.Hour = hour*lanes + i
+		c.Step = step*lanes + i
 		copies[i] = &c
 	}
 	t := *s.t

@@ -33,7 +33,7 @@ func thrown(t testing.TB, rho float64) (*trace.World, *scene.Moment, view.View) 
 	if err != nil {
 		t.Fatal(err)
 	}
-	return trace.Accelerate(m.s, 2), &scene.Moment{Hour: 5, Sun: sun, SunNormalLx: 1000 * math.Sqrt2, Sky: dome}, v
+	return trace.Accelerate(m.s, 2), &scene.Moment{Step: 5, Sun: sun, SunNormalLx: 1000 * math.Sqrt2, Sky: dome}, v
 }
 
 // within tells whether the mean of batches lies within a two-sided 0.995 limit

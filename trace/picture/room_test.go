@@ -68,7 +68,7 @@ func sunny(t testing.TB) *scene.Moment {
 	if err != nil {
 		t.Fatal(err)
 	}
-	return &scene.Moment{Hour: 7, Sun: sun, SunNormalLx: 70000, Sky: dome, DiffuseLx: 12000, GlobalLx: 12000 + 70000*sun.Z}
+	return &scene.Moment{Step: 7, Sun: sun, SunNormalLx: 70000, Sky: dome, DiffuseLx: 12000, GlobalLx: 12000 + 70000*sun.Z}
 }
 
 func eye(t testing.TB, pixels int) view.View {

@@ -96,7 +96,7 @@ func sunAt(t testing.TB, hour int, altDeg, azDeg, normalLx float64) *scene.Momen
 	sa, ca := math.Sincos(altDeg * math.Pi / 180)
 	sz, cz := math.Sincos(azDeg * math.Pi / 180)
 	d := r3.Vec{X: -ca * sz, Y: -ca * cz, Z: sa}
-	return &scene.Moment{Hour: hour, Sun: d, SunNormalLx: normalLx, Sky: black(t), GlobalLx: normalLx * sa}
+	return &scene.Moment{Step: hour, Sun: d, SunNormalLx: normalLx, Sky: black(t), GlobalLx: normalLx * sa}
 }
 
 // everySide asks for both sides of all texels and traces them.
@@ -119,5 +119,5 @@ func skies(t testing.TB) []*scene.Moment {
 	if err != nil {
 		t.Fatal(err)
 	}
-	return []*scene.Moment{{Hour: 1, Sun: r3.Vec{Z: 1}, Sky: s, DiffuseLx: 10000, GlobalLx: 10000}}
+	return []*scene.Moment{{Step: 1, Sun: r3.Vec{Z: 1}, Sky: s, DiffuseLx: 10000, GlobalLx: 10000}}
 }

@@ -23,7 +23,7 @@ func (t *Transport) mirrored(bl *Block, b int, e []Row) {
 		if photons.Empty() {
 			continue
 		}
-		s := sampling.Stream4(t.Config.Seed, streamPhoton, uint64(bl.Moments[h].Hour), uint64(b))
+		s := sampling.Stream4(t.Config.Seed, streamPhoton, uint64(bl.Moments[h].Step), uint64(b))
 		photons.Shoot(rays.NormalLx, n, rays.Draw, &s, func(hit *trace.Hit, flux float64) {
 			side := t.SideAt(hit)
 			if i := t.Index(side); i >= 0 {

@@ -34,7 +34,7 @@ func (t *Transport) newSunRays(m *scene.Moment) SunRays {
 	up := m.Sun
 	up.Z = math.Max(up.Z, 0)
 	s.patch = t.Patches.Index(r3.Unit(up))
-	stream := sampling.Stream3(t.Config.Seed, streamDisc, uint64(m.Hour))
+	stream := sampling.Stream3(t.Config.Seed, streamDisc, uint64(m.Step))
 	scramble := stream.Uint32()
 	all := true
 	for i := range s.dirs {
@@ -85,7 +85,7 @@ func (t *Transport) sunOn(bl *Block, b int, light *Light) {
 			if rays.NormalLx <= 0 || !t.near.maySee(i, rays.patch) {
 				continue
 			}
-			s := sampling.Stream4(t.Config.Seed, streamSun, uint64(bl.Moments[h].Hour)<<32|uint64(side), uint64(b))
+			s := sampling.Stream4(t.Config.Seed, streamSun, uint64(bl.Moments[h].Step)<<32|uint64(side), uint64(b))
 			dir, ok := rays.Draw(s.Uint64())
 			if !ok {
 				continue

@@ -10,9 +10,9 @@ func BenchmarkDevelop(b *testing.B) {
 		for p := range all {
 			all[p], sun[p] = scene(i, p%200)
 		}
-		r.Keep(i, all, sun)
+		r.Keep(i, all, sun, 0)
 	}
 	for b.Loop() {
-		r.Develop(12)
+		r.Develop(12, Fine)
 	}
 }

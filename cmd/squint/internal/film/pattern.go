@@ -38,6 +38,14 @@ const (
 	powerRounds = 1
 )
 
+// What the rounding of float32, 6e-8, leaves of nothing: empty bounds the square
+// of a pattern's size against the largest one's, nothingNew the length of a
+// column against what it was before others were taken from it. Own choice.
+const (
+	empty      = 1e-9
+	nothingNew = 1e-6
+)
+
 // patterns are the largest singular directions of a, [pattern][column], of unit
 // length, and their weights, [pattern][row]; fewer than rank where a has no more.
 func patterns(a matrix, rank int) (basis, weights [][]float32) {
@@ -79,7 +87,7 @@ func patterns(a matrix, rank int) (basis, weights [][]float32) {
 	eigen.VectorsTo(&vectors)
 	for k := range rank {
 		at := wide - 1 - k
-		if at < 0 || values[at] <= 1e-9*math.Max(values[wide-1], 1) {
+		if at < 0 || values[at] <= empty*math.Max(values[wide-1], 1) {
 			break
 		}
 		v := make([]float32, a.Cols)
@@ -127,7 +135,7 @@ func orthonormal(m matrix) {
 		}
 		size := math.Sqrt(dot(col[j], col[j]))
 		scale := 0.0
-		if size > 1e-6*before {
+		if size > nothingNew*before {
 			scale = 1 / size
 		}
 		for i := range col[j] {

@@ -22,10 +22,6 @@ type LitPoint struct {
 	Code  uint8
 }
 
-// litShare is the part of a value from which the sun on it is kept apart:
-// less is lost in the steps of the scale. Own choice.
-const litShare = 0.1
-
 // MostPoints is the largest number of points of a frame.
 const MostPoints = math.MaxUint16
 
@@ -73,17 +69,56 @@ func (r *Roll) code(v float64) uint8 {
 }
 
 // Keep stores one frame: all is the whole value by point, sun its part that
-// falls straight from the sun. It takes the place of what was kept before.
-// Different frames may be kept at the same time.
-func (r *Roll) Keep(frame int, all, sun []float32) {
+// falls straight from the sun, which is kept apart where it is more than from. It
+// takes the place of what was kept before. Different frames may be kept at the
+// same time. Where from goes with the sun's strength, points are lit by where
+// the sun stands, and masks pack well.
+func (r *Roll) Keep(frame int, all, sun []float32, from float64) {
 	f := Frame{Rest: make([]uint8, r.Points)}
 	for p := range f.Rest {
 		a, s := float64(all[p]), float64(sun[p])
-		if s > litShare*a {
+		if s > from {
 			f.Lit = append(f.Lit, LitPoint{uint16(p), r.code(s)})
 			a -= s
 		}
 		f.Rest[p] = r.code(a)
 	}
 	r.frames[frame] = f
+}
+
+// Merged is a roll of some of the frames and of fewer points, each the mean of a
+// group of this one's. A group is lit where half of it is.
+func (r *Roll) Merged(frames []int, groups [][]uint16) *Roll {
+	out := NewRoll(len(groups), len(frames), r.Least, r.Most)
+	value := func(code uint8) float64 { return r.Least * math.Exp(r.stepLn()*float64(code)) }
+	sun := make([]float64, r.Points)
+	for i, from := range frames {
+		f := r.frames[from]
+		if f.Rest == nil {
+			continue
+		}
+		clear(sun)
+		for _, l := range f.Lit {
+			sun[l.Point] = value(l.Code)
+		}
+		to := Frame{Rest: make([]uint8, len(groups))}
+		for g, group := range groups {
+			rest, lit, n := 0.0, 0.0, 0
+			for _, p := range group {
+				rest += value(f.Rest[p]) / float64(len(group))
+				lit += sun[p] / float64(len(group))
+				if sun[p] > 0 {
+					n++
+				}
+			}
+			if 2*n >= len(group) && n > 0 {
+				to.Lit = append(to.Lit, LitPoint{uint16(g), r.code(lit)})
+			} else {
+				rest += lit
+			}
+			to.Rest[g] = r.code(rest)
+		}
+		out.frames[i] = to
+	}
+	return out
 }

@@ -14,7 +14,7 @@ import (
 // Schema names the archive's layout; a reader refuses others.
 const (
 	Schema        = "squint page data"
-	SchemaVersion = 1
+	SchemaVersion = 2
 )
 
 // designFile holds the texts; blobs are in blobDir.
@@ -31,7 +31,7 @@ type Archive struct {
 
 type blobData struct {
 	raw    []byte // nil where only deflated is known
-	packed []byte // deflated
+	packed []byte // deflated; nil until it is asked for
 }
 
 // Write writes the archive as a zip file. The same design gives the same
@@ -54,7 +54,13 @@ func (a *Archive) Write(w io.Writer) error {
 	}
 	slices.Sort(ids)
 	for _, id := range ids {
-		if err := put(z, blobDir+id, a.blobs[id].raw); err != nil {
+		raw := a.blobs[id].raw
+		if packed := a.blobs[id].packed; raw == nil && packed != nil {
+			if raw, err = inflate(id, packed); err != nil {
+				return err
+			}
+		}
+		if err := put(z, blobDir+id, raw); err != nil {
 			return err
 		}
 	}
@@ -70,8 +76,12 @@ func put(z *zip.Writer, name string, data []byte) error {
 	return err
 }
 
-// mostText bounds what an archive may claim for its texts.
-const mostText = 256 << 20
+// mostText and mostNumbers bound what an archive may claim for its texts, and
+// for one list of numbers.
+const (
+	mostText    = 256 << 20
+	mostNumbers = 64 << 20
+)
 
 // Read reads an archive. name is for messages.
 func Read(name string, r io.ReaderAt, size int64) (*Archive, error) {
@@ -121,10 +131,27 @@ func (a *Archive) readBlob(id string, f *zip.File) error {
 	if err != nil {
 		return err
 	}
-	var b bytes.Buffer
-	if _, err := io.Copy(&b, in); err != nil {
+	packed, err := io.ReadAll(in)
+	if err != nil {
 		return err
 	}
-	a.blobs[id] = blobData{packed: b.Bytes()}
+	if _, err := inflate(id, packed); err != nil {
+		return err
+	}
+	a.blobs[id] = blobData{packed: packed}
 	return nil
+}
+
+// inflate unpacks a blob, whose name must be that of its bytes.
+func inflate(id string, packed []byte) ([]byte, error) {
+	raw, err := io.ReadAll(io.LimitReader(flate.NewReader(bytes.NewReader(packed)), mostNumbers+1))
+	switch {
+	case err != nil:
+		return nil, fmt.Errorf("got damaged numbers: %w", err)
+	case len(raw) > mostNumbers:
+		return nil, fmt.Errorf("got numbers of more than %d MiB", mostNumbers>>20)
+	case blobID(raw) != id:
+		return nil, fmt.Errorf("got numbers of the name %q, want %s, as their bytes give", id, blobID(raw))
+	}
+	return raw, nil
 }

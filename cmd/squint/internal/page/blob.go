@@ -15,7 +15,7 @@ type Blob struct {
 // number holds all lowest bytes first, then the next ones, which packs better.
 type Part struct {
 	Name string `json:"name"`
-	Type string `json:"type"` // u8, i8, u16, i16, u32
+	Type string `json:"type"` // u8, i8, u16, i16, u32; z16: i16 as 0, -1, 1, -2, ... in u16
 	N    int    `json:"n"`
 }
 
@@ -39,10 +39,25 @@ func pack[T whole](p *packer, name, kind string, v []T) {
 	}
 }
 
+// blobID names a blob by its bytes.
+func blobID(data []byte) string {
+	sum := sha256.Sum256(data)
+	return hex.EncodeToString(sum[:8])
+}
+
+// packSmall packs numbers that are mostly near 0: their high bytes are all 0.
+func packSmall(p *packer, name string, v []int16) {
+	folded := make([]uint16, len(v))
+	for i, x := range v {
+		folded[i] = uint16(x<<1) ^ uint16(x>>15)
+	}
+	pack(p, name, "u16", folded)
+	p.blob.Parts[len(p.blob.Parts)-1].Type = "z16"
+}
+
 // add closes the blob and stores it.
 func (a *Archive) add(p *packer) Blob {
-	sum := sha256.Sum256(p.data)
-	p.blob.ID = hex.EncodeToString(sum[:8])
+	p.blob.ID = blobID(p.data)
 	a.blobs[p.blob.ID] = blobData{raw: p.data}
 	return p.blob
 }

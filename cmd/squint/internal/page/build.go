@@ -1,6 +1,7 @@
 package page
 
 import (
+	"cmp"
 	"math"
 	"sort"
 	"time"
@@ -8,7 +9,10 @@ import (
 	"gonum.org/v1/gonum/spatial/r3"
 
 	"squint/cmd/squint/internal/study"
+	"squint/glare"
+	"squint/glare/daylight"
 	"squint/scene"
+	"squint/scene/project"
 	"squint/scene/sky"
 )
 
@@ -21,9 +25,8 @@ func Build(r *study.Result, words Words) *Archive {
 	*d = Design{
 		Schema: Schema, SchemaVersion: SchemaVersion, Words: words,
 		NorthRad: r.Project.Site.NorthDeg * math.Pi / 180,
-		FromH:    r.Calendar.FromH, ToH: r.Calendar.ToH, Use: len(r.Occupied),
-		Levels: levels(), Asked: -1,
-		SourceRule: c.SourceRule, SourceCdM2: c.SourceLuminance, SourceMultiple: c.SourceMultiple,
+		FromH:    r.Calendar.FromH, ToH: r.Calendar.ToH, PerHour: perHour(r),
+		Levels: levels(), Asked: -1, Sources: sources(c),
 		Standings: r.Standings, Views: []View{}, Planes: []Plane{},
 	}
 	for k, l := range d.Levels {
@@ -32,21 +35,33 @@ func Build(r *study.Result, words Words) *Archive {
 		}
 	}
 	a.addYear(r)
+	b := a.addRoom(r)
 	for i := range r.Views {
-		d.Views = append(d.Views, a.view(r, &r.Views[i]))
+		d.Views = append(d.Views, a.view(b, r, &r.Views[i]))
 	}
 	for i := range r.Planes {
 		d.Planes = append(d.Planes, a.plane(r, &r.Planes[i]))
 	}
-	a.addRoom(r.Scene)
 	return a
+}
+
+// perHour is the number of records in an hour.
+func perHour(r *study.Result) int {
+	return r.Climate.PerHour()
+}
+
+// sources resolves the project's rule for sources of glare.
+func sources(c project.Criteria) Sources {
+	return Sources{Of: map[string]string{"field mean": "field", "sight mean": "sight"}[c.SourceRule],
+		CdM2: cmp.Or(c.SourceLuminance, glare.DefaultThresholdCdM2), Multiple: cmp.Or(c.SourceMultiple, glare.DefaultMultiple),
+		SightRad: glare.DefaultTaskRadiusRad}
 }
 
 func vec(v r3.Vec) [3]float64 { return [3]float64{v.X, v.Y, v.Z} }
 
 // addYear packs what belongs to the year and not to a receiver.
 func (a *Archive) addYear(r *study.Result) {
-	n := len(r.Climate.SinAltitude)
+	n := daylight.HoursPerYear * perHour(r)
 	used, standing := make([]uint8, n), make([]uint8, n)
 	for _, h := range r.Occupied {
 		used[h] = 1
@@ -62,7 +77,7 @@ func (a *Archive) addYear(r *study.Result) {
 	pack(&p, "standing", "u8", standing)
 	a.Design.Records = a.add(&p)
 
-	days := n / 24
+	days := n / 24 / perHour(r)
 	shift, rise, set := make([]uint8, days), make([]uint16, days), make([]uint16, days)
 	for d := range days {
 		shift[d] = uint8(r.Calendar.ClockShiftH(d))
@@ -78,7 +93,7 @@ func (a *Archive) addYear(r *study.Result) {
 	var sun []int16
 	var direct, sky []uint32
 	for _, m := range r.Climate.Moments {
-		record = append(record, uint16(m.Hour))
+		record = append(record, uint16(m.Step))
 		minute = append(minute, uint16(m.Time.Hour()*60+m.Time.Minute()))
 		for _, x := range vec(m.Sun) {
 			sun = append(sun, int16(math.Round(x*32767)))
@@ -169,7 +184,7 @@ func (a *Archive) plane(r *study.Result, p *study.PlaneResult) Plane {
 	for k, m := range r.Climate.Moments {
 		sum := 0.0
 		for i := range n {
-			sum += float64(p.E[i][m.Hour])
+			sum += float64(p.E[i][m.Step])
 		}
 		mean[k] = uint32(math.Round(sum / float64(n)))
 	}

@@ -12,13 +12,10 @@ type Design struct {
 	NorthRad float64 `json:"north"` // azimuth of the model's +y
 	FromH    float64 `json:"from_h"`
 	ToH      float64 `json:"to_h"`
-	Use      int     `json:"hours_in_use"`
+	PerHour  int     `json:"per_hour"` // records in an hour
 	Levels   []Level `json:"levels"`
 	Asked    int     `json:"asked"` // of Levels, -1 for none
-
-	SourceRule     string  `json:"source_rule"`
-	SourceCdM2     float64 `json:"source_cd_m2"`
-	SourceMultiple float64 `json:"source_multiple"`
+	Sources  Sources `json:"sources"`
 
 	Records   Blob     `json:"records"` // by record: used, standing
 	Days      Blob     `json:"days"`    // by day: shift of the clock, sunrise, sunset
@@ -84,6 +81,15 @@ type Row struct {
 	ASE       float64 `json:"ase"`
 }
 
+// Sources says which pixels count as sources of glare: those above CdM2, or
+// where Of is not "" above so many times the mean of the field or of the sight.
+type Sources struct {
+	Of       string  `json:"of"` // "", "field" or "sight"
+	CdM2     float64 `json:"cd_m2"`
+	Multiple float64 `json:"multiple"`
+	SightRad float64 `json:"sight"` // half angle of the sight's cone
+}
+
 // Level is a level of protection from glare.
 type Level struct {
 	Name  string  `json:"name"`
@@ -105,25 +111,36 @@ type View struct {
 	Causes   []string      `json:"causes"`
 	Series   Blob          `json:"series"` // by record: DGP, its error, Ev, cause
 
-	Worst     int  `json:"worst"` // record, -1 for none
-	WorstPx   int  `json:"worst_px"`
-	WorstShot Blob `json:"worst_shot"` // luminance of the hour at full size, discs
-	HasShots  bool `json:"has_shots"`
+	Worst     int     `json:"worst"` // record, -1 for none
+	WorstPx   int     `json:"worst_px"`
+	WorstShot Blob    `json:"worst_shot"`      // luminance of the hour at full size, discs
+	Threshold float64 `json:"worst_threshold"` // that sources of it exceed, cd/m2
+	HasShots  bool    `json:"has_shots"`
 
-	Shots Shots `json:"shots"`
-	Seen  Blob  `json:"seen"` // what stands in each pixel, WorstPx across
+	Shots Shots  `json:"shots"`
+	Small Shots  `json:"small"` // of the hours in use, with fewer pixels
+	Seen  []Blob `json:"seen"`  // by standing: what stands in each pixel, WorstPx across; "" where not kept
 }
 
-// Shots are the pictures of any hour; see package film for the numbers.
+// Shots are the pictures of any hour; see package film for the numbers. A page
+// may hold the first of the steps only, and of a view the small ones alone.
 type Shots struct {
 	Pixels  int     `json:"pixels"`
-	Rank    int     `json:"rank"`
+	Grain   int     `json:"grain"`
 	Least   float64 `json:"least"`
 	StepLn  float64 `json:"step"`
-	Median  float64 `json:"median_error"`
-	Wide    float64 `json:"wide_error"`
 	Frames  int     `json:"frames"`
 	Points  int     `json:"points"`
+	Numbers Blob    `json:"numbers"` // all but the patterns
+	Steps   []Step  `json:"steps"`
+}
+
+// Step is a few patterns more, and what is then left: the median and the 95th
+// percentile of relative differences.
+type Step struct {
+	Rank    int     `json:"rank"` // of all patterns up to here
+	Median  float64 `json:"median_error"`
+	Wide    float64 `json:"wide_error"`
 	Numbers Blob    `json:"numbers"`
 }
 
@@ -150,18 +167,19 @@ type Metric struct {
 	Digit int     `json:"digits"`
 }
 
-// Room is the geometry.
+// Room is the geometry. What moves is a mesh for each opening and state; what
+// stands at a record are the meshes of its standing.
 type Room struct {
-	Min       [3]float64 `json:"min"`
-	Max       [3]float64 `json:"max"`
-	GroundM   float64    `json:"ground"`
-	Parts     []PartName `json:"parts"`
-	Finishes  []Finish   `json:"finishes"`
-	Openings  []Opening  `json:"openings"`
-	Fabric    Mesh       `json:"fabric"`
-	Systems   Mesh       `json:"systems"`
-	Triangles int        `json:"triangles"`
-	Left      int        `json:"left_out"`
+	Min      [3]float64 `json:"min"`
+	Max      [3]float64 `json:"max"`
+	GroundM  float64    `json:"ground"`
+	Parts    []PartName `json:"parts"` // of all standings
+	Finishes []Finish   `json:"finishes"`
+	Openings []Opening  `json:"openings"`
+	Fabric   Mesh       `json:"fabric"`
+	Systems  []Mesh     `json:"systems"`
+	Stands   [][]int    `json:"stands"`   // by standing: of Systems
+	Left     []int      `json:"left_out"` // by standing: triangles that are not drawn
 }
 
 // PartName names a part of the geometry.
@@ -174,6 +192,7 @@ type PartName struct {
 type Finish struct {
 	Name    string  `json:"name"`
 	Diffuse float64 `json:"diffuse"` // reflectance, larger side
+	Matte   float64 `json:"matte"`   // the same where that is all that it does, on both sides alike; else 0
 	Mirror  float64 `json:"mirror"`  // at normal incidence
 	Through float64 `json:"through"` // straight, at normal incidence
 	Veil    float64 `json:"veil"`    // scattered transmittance

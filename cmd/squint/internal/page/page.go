@@ -4,6 +4,7 @@ import (
 	_ "embed"
 
 	"bytes"
+	"cmp"
 	"crypto/sha256"
 	"encoding/base64"
 	"encoding/json"
@@ -11,9 +12,8 @@ import (
 	"fmt"
 	"html/template"
 	"io"
+	"slices"
 	"strings"
-
-	"compress/flate"
 
 	"squint/glare/falsecolour"
 )
@@ -32,8 +32,8 @@ var frame string
 
 // Options choose what a page holds.
 type Options struct {
-	// Pictures names the alternative whose views can be seen at any hour; "" for
-	// the one that [Chosen] takes.
+	// Pictures names the alternative that the page opens with, and whose pictures
+	// of any hour are the finest; "" for the one that [Chosen] takes.
 	Pictures string
 }
 
@@ -103,13 +103,38 @@ func Write(w io.Writer, all []*Archive, o Options) error {
 	}
 	script := "\n" + bundle
 	first := data.Designs[chosen]
-	err = t.Execute(w, shown{Policy: policy(script, style), Style: template.CSS(style), Chosen: chosen, Designs: data.Designs, First: first,
+	var text bytes.Buffer
+	err = t.Execute(&text, shown{Policy: policy(script, style), Style: template.CSS(style), Chosen: chosen, Designs: data.Designs, First: first,
 		Compare: len(all) > 1, Trade: tradeOff(data.Designs, chosen)})
 	if err != nil {
 		return err
 	}
-	if err := writeData(w, data, all, chosen); err != nil {
+	// JSON blocks are not run by browsers. The JSON has no "<" (encoding/json
+	// escapes it), so that no text can end a block.
+	// Texts stand in the page already.
+	lean := data
+	lean.Designs = nil
+	for _, d := range data.Designs {
+		c := *d
+		c.Words = Words{Alternative: d.Alternative, Worst: d.Worst}
+		lean.Designs = append(lean.Designs, &c)
+	}
+	block, err := json.Marshal(lean)
+	if err != nil {
 		return err
+	}
+	fmt.Fprintf(&text, "<script type=\"application/json\" id=\"data\">%s</script>\n", block)
+	held, err := hold(all, chosen, text.Len()+len(script))
+	if err != nil {
+		return err
+	}
+	if _, err := w.Write(text.Bytes()); err != nil {
+		return err
+	}
+	for _, b := range held {
+		if _, err := fmt.Fprintf(w, blobBlock, b.id, asText(b.packed)); err != nil {
+			return err
+		}
 	}
 	_, err = io.WriteString(w, "<script>"+script+"</script>\n</body>\n</html>\n")
 	return err
@@ -122,82 +147,6 @@ func policy(script, style string) string {
 		return "'sha256-" + base64.StdEncoding.EncodeToString(sum[:]) + "'"
 	}
 	return "default-src 'none'; script-src " + hash(script) + "; style-src " + hash(style) + "; img-src data:; base-uri 'none'; form-action 'none'"
-}
-
-// writeData writes the data as JSON blocks, which browsers do not run. The
-// JSON has no "<" (encoding/json escapes it), so that no text can end a block.
-func writeData(w io.Writer, data pageData, all []*Archive, chosen int) error {
-	text, err := json.Marshal(data)
-	if err != nil {
-		return err
-	}
-	if _, err := fmt.Fprintf(w, "<script type=\"application/json\" id=\"data\">%s</script>\n", text); err != nil {
-		return err
-	}
-	written := map[string]bool{}
-	for i, a := range all {
-		for _, id := range a.needed(i == chosen) {
-			if written[id] {
-				continue
-			}
-			written[id] = true
-			packed, err := a.deflated(id)
-			if err != nil {
-				return err
-			}
-			if _, err := fmt.Fprintf(w, "<script type=\"application/json\" id=\"n-%s\">%q</script>\n", id, base64.StdEncoding.EncodeToString(packed)); err != nil {
-				return err
-			}
-		}
-	}
-	return nil
-}
-
-// needed lists the blobs that the page reads, in a fixed order; the pictures
-// of any hour only of the chosen design.
-func (a *Archive) needed(pictures bool) []string {
-	d := &a.Design
-	list := []string{d.Records.ID, d.Days.ID, d.Moments.ID, d.Room.Fabric.Numbers.ID, d.Room.Systems.Numbers.ID}
-	for i := range d.Planes {
-		list = append(list, d.Planes[i].Points.ID, d.Planes[i].Mean.ID, d.Planes[i].Shots.Numbers.ID)
-	}
-	for i := range d.Views {
-		v := &d.Views[i]
-		list = append(list, v.Series.ID, v.WorstShot.ID, v.Seen.ID)
-		if pictures {
-			list = append(list, v.Shots.Numbers.ID)
-		}
-	}
-	out := list[:0]
-	for _, id := range list {
-		if id != "" {
-			out = append(out, id)
-		}
-	}
-	return out
-}
-
-// deflated is a blob as the zip file holds it.
-func (a *Archive) deflated(id string) ([]byte, error) {
-	b, ok := a.blobs[id]
-	if !ok {
-		return nil, fmt.Errorf("page data: numbers %s are missing; run squint check again", id)
-	}
-	if b.packed != nil {
-		return b.packed, nil
-	}
-	var out bytes.Buffer
-	z, err := flate.NewWriter(&out, flate.BestCompression)
-	if err != nil {
-		return nil, err
-	}
-	if _, err := z.Write(b.raw); err != nil {
-		return nil, err
-	}
-	if err := z.Close(); err != nil {
-		return nil, err
-	}
-	return out.Bytes(), nil
 }
 
 func hexMap(m falsecolour.Map) string {
@@ -236,13 +185,37 @@ func ids() func() int {
 	return func() int { n++; return n }
 }
 
-func failing(all []Verdict) (out []Verdict) {
-	for _, v := range all {
+// mostFailing is how many verdicts that are not met are shown at once. Own choice.
+const mostFailing = 12
+
+// failing are the verdicts that are not met: the worst few, and the rest. Those
+// of no viewpoint come first, then viewpoints by their hours over the limit.
+func failing(d *Design) (out [2][]Verdict) {
+	var all []Verdict
+	for _, v := range d.Verdicts {
 		if v.Outcome != "met" {
-			out = append(out, v)
+			all = append(all, v)
 		}
 	}
-	return out
+	if len(all) <= mostFailing {
+		return [2][]Verdict{all, nil}
+	}
+	over := map[string]float64{}
+	for _, v := range d.Views {
+		over[v.Subject] = v.Over
+	}
+	slices.SortStableFunc(all, func(a, b Verdict) int {
+		x, isX := over[a.Subject]
+		y, isY := over[b.Subject]
+		switch {
+		case isX != isY && isY:
+			return -1
+		case isX != isY:
+			return 1
+		}
+		return cmp.Compare(y, x)
+	})
+	return [2][]Verdict{all[:mostFailing], all[mostFailing:]}
 }
 
 func metOnly(all []Verdict) (out []Verdict) {

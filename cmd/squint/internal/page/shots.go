@@ -1,6 +1,7 @@
 package page
 
 import (
+	"cmp"
 	"math"
 	"slices"
 
@@ -8,40 +9,44 @@ import (
 
 	"squint/cmd/squint/internal/film"
 	"squint/cmd/squint/internal/study"
-	"squint/glare/verdict"
 	"squint/scene/view"
 	"squint/trace/annual"
 	"squint/trace/coeff"
 )
 
+// noOutcome is that of a viewpoint of which no level is asked.
+const noOutcome = "none"
+
 // Series are packed in these steps; noValue marks hours that were not
 // evaluated.
 const (
 	dgpScale   = 1e4
-	errorScale = 1e4
+	errorScale = 2e3
 	noValue    = math.MaxUint16
 )
+
+// mostThreshold stands for a threshold that nothing exceeds, which JSON cannot
+// hold.
+const mostThreshold = 1e12
 
 // mostSources is how many sources of a worst hour are numbered: as in the
 // other pictures of it.
 const mostSources = 6
 
 // mostDiscs is the number of discs that a picture shows: the strongest ones. A
-// blind of mirrored slats has an image in each.
+// blind of mirrored slats has an image in each. Own choice.
 const mostDiscs = 12
 
 // view packs a viewpoint's year and its pictures.
-func (a *Archive) view(r *study.Result, v *study.ViewResult) View {
+func (a *Archive) view(b *build, r *study.Result, v *study.ViewResult) View {
 	out := View{Name: v.Viewpoint.Name, Subject: v.Viewpoint.Name, Grid: v.Viewpoint.Grid != "", Position: vec(v.Viewpoint.Position),
-		Outcome: "none", When: v.When, Over: -1, Causes: []string{}, Worst: -1}
+		Outcome: noOutcome, When: v.When, Over: -1, Causes: []string{}, Worst: -1, Seen: []Blob{}}
 	if len(v.Levels) > 0 && v.Levels[0].Subject != "" {
 		out.Subject = v.Levels[0].Subject
 	}
 	if v.Asked >= 0 && v.Asked < len(v.Levels) {
 		l := v.Levels[v.Asked]
 		out.Outcome, out.Text, out.Over = l.Outcome.String(), l.Text, l.Estimate
-	} else if len(v.Levels) > 0 {
-		out.Outcome = verdict.Undecided.String()
 	}
 	for _, c := range v.Causes {
 		out.Causes = append(out.Causes, c.String())
@@ -52,9 +57,20 @@ func (a *Archive) view(r *study.Result, v *study.ViewResult) View {
 		f, l, u := s.Eye.Frame()
 		out.Axes = [3][3]float64{vec(f), vec(l), vec(u)}
 		out.HasShots = true
-		out.Shots = a.shots(s.Film, &s.View, s.Inside, s.Records, s.Discs)
+		out.Shots = a.shots(s.Film, &s.View, s.Inside, s.Records, s.Discs, perHour(r))
+		if s.Small != nil {
+			out.Small = a.shots(s.Small.Film, &s.Small.View, s.Small.Inside, s.Small.Records, s.Small.Discs, perHour(r))
+		}
 		out.WorstPx = s.Eye.Width
-		out.Seen = a.seen(r, s)
+		for _, of := range r.Stood {
+			seen := Blob{Parts: []Part{}}
+			for _, k := range s.Stood {
+				if k.Scene == of {
+					seen = a.seen(b, s, k)
+				}
+			}
+			out.Seen = append(out.Seen, seen)
+		}
 	} else {
 		up := r3.Vec{Z: 1}
 		if math.Abs(forward.Z) > 0.999 {
@@ -64,7 +80,7 @@ func (a *Archive) view(r *study.Result, v *study.ViewResult) View {
 		out.Axes = [3][3]float64{vec(forward), vec(left), vec(r3.Cross(forward, left))}
 	}
 	if w := v.Worst; w != nil && w.InsideOf != nil {
-		out.Worst, out.WorstPx = w.Moment.Hour, w.InsideOf.View.Width
+		out.Worst, out.WorstPx, out.Threshold = w.Moment.Step, w.InsideOf.View.Width, math.Min(w.Result.ThresholdCdM2, mostThreshold)
 		code := make([]uint16, len(w.Lum))
 		for i, l := range w.Lum {
 			if l > 0 {
@@ -88,9 +104,10 @@ func (a *Archive) view(r *study.Result, v *study.ViewResult) View {
 }
 
 // The full picture of a worst hour: luminance is worstLeast times
-// exp(code/worstScale), good to 0.25 %.
+// exp(code/worstScale), good to 0.8 %, half of what a step of its colours is.
+// Own choice.
 const (
-	worstScale = 200
+	worstScale = 60
 	worstLeast = 1e-3
 )
 
@@ -119,25 +136,67 @@ func (a *Archive) series(v *study.ViewResult) Blob {
 }
 
 // shots packs a film; v, inside and discs are of a view's, nil for a plane.
-func (a *Archive) shots(f *film.Film, v *view.View, inside []int32, records []int, discs [][]annual.Disc) Shots {
-	out := Shots{Rank: f.Rank, Least: f.Least, StepLn: f.StepLn, Median: f.MedianError, Wide: f.WideError, Frames: f.Frames, Points: f.Points}
+func (a *Archive) shots(f *film.Film, v *view.View, inside []int32, records []int, discs [][]annual.Disc, perHour int) Shots {
+	out := Shots{Grain: int(f.Grain), Least: f.Least, StepLn: f.StepLn, Frames: f.Frames, Points: f.Points}
 	var p packer
 	if v != nil {
 		out.Pixels = v.Width
 		pack(&p, "inside", "u16", narrow(inside))
 	}
-	pack(&p, "record", "u16", narrow(records))
-	pack(&p, "mean", "i16", f.Mean)
-	pack(&p, "basis", "i8", f.Basis)
-	pack(&p, "weight", "i16", f.Weight)
-	pack(&p, "lit", "u8", f.Lit)
-	pack(&p, "lit_point", "i16", f.LitPoint)
-	pack(&p, "lit_frame", "i16", f.LitFrame)
+	rises := make([]uint16, len(records))
+	for i, before := 0, 0; i < len(records); i++ {
+		rises[i], before = uint16(records[i]-before), records[i]
+	}
+	pack(&p, "rise", "u16", rises)
+	packSmall(&p, "mean", f.Mean)
+	sunny, changes := litChanges(f, records, 24*perHour)
+	pack(&p, "sunny", "u8", sunny)
+	pack(&p, "lit", "u8", changes)
+	packSmall(&p, "lit_point", f.LitPoint)
+	packSmall(&p, "lit_frame", f.LitFrame)
 	if v != nil {
 		packDiscs(&p, v, discs)
 	}
 	out.Numbers = a.add(&p)
+	from := 0
+	for _, s := range f.Steps {
+		p = packer{}
+		pack(&p, "basis", "i8", f.Basis[from*f.Points:s.Rank*f.Points])
+		packSmall(&p, "weight", f.Weight[from*f.Frames:s.Rank*f.Frames])
+		out.Steps = append(out.Steps, Step{s.Rank, s.Median, s.Wide, a.add(&p)})
+		from = s.Rank
+	}
 	return out
+}
+
+// litChanges are masks of what the sun lights that pack well: frames in order of
+// the time of day and then of the day, each as the bits in which it differs from
+// the sunny one before. sunny are those, in that order, of which any bit is set;
+// the others are not there.
+func litChanges(f *film.Film, records []int, perDay int) (sunny, changes []uint8) {
+	order := make([]int, len(records))
+	for i := range order {
+		order[i] = i
+	}
+	slices.SortFunc(order, func(a, b int) int {
+		x, y := records[a], records[b]
+		return cmp.Or(cmp.Compare(x%perDay, y%perDay), cmp.Compare(x, y))
+	})
+	row := (f.Points + 7) / 8
+	before := make([]uint8, row)
+	for _, i := range order {
+		mask := f.Lit[i*row : (i+1)*row]
+		if !slices.ContainsFunc(mask, func(b uint8) bool { return b != 0 }) {
+			sunny = append(sunny, 0)
+			continue
+		}
+		sunny = append(sunny, 1)
+		for k, b := range mask {
+			changes = append(changes, b^before[k])
+		}
+		before = mask
+	}
+	return sunny, changes
 }
 
 func narrow[T int | int32](v []T) []uint16 {
@@ -149,47 +208,33 @@ func narrow[T int | int32](v []T) []uint16 {
 }
 
 // packDiscs packs the sun's discs by frame: where they are seen, in parts of the
-// picture's width, and the logarithms of solid angle and luminance.
+// picture's width.
 func packDiscs(p *packer, v *view.View, discs [][]annual.Disc) {
 	count := make([]uint8, len(discs))
-	var x, y, size, lum []uint16
+	var x, y []uint8
 	for i, list := range discs {
 		list = slices.Clone(list)
-		slices.SortStableFunc(list, func(a, b annual.Disc) int {
-			if a.OmegaSr*a.Luminance > b.OmegaSr*b.Luminance {
-				return -1
-			}
-			return 1
-		})
+		slices.SortStableFunc(list, func(a, b annual.Disc) int { return cmp.Compare(b.OmegaSr*b.Luminance, a.OmegaSr*a.Luminance) })
 		for _, d := range list {
 			px, py, ok := v.Project(d.Dir)
 			if !ok || count[i] == mostDiscs || !(d.OmegaSr > 0) || !(d.Luminance > 0) {
 				continue
 			}
 			count[i]++
-			x = append(x, part16(px/float64(v.Width)))
-			y = append(y, part16(py/float64(v.Height)))
-			size = append(size, logCode(d.OmegaSr, 1e-9))
-			lum = append(lum, logCode(d.Luminance, 1))
+			x, y = append(x, part8(px/float64(v.Width))), append(y, part8(py/float64(v.Height)))
 		}
 	}
 	pack(p, "discs", "u8", count)
-	pack(p, "disc_x", "u16", x)
-	pack(p, "disc_y", "u16", y)
-	pack(p, "disc_sr", "u16", size)
-	pack(p, "disc_lum", "u16", lum)
+	pack(p, "disc_x", "u8", x)
+	pack(p, "disc_y", "u8", y)
 }
+
+// part8 is a part of a width, 0 to 1, in 8 bits: a pixel or two of the drawing.
+func part8(t float64) uint8 { return uint8(math.Round(math.Max(0, math.Min(1, t)) * math.MaxUint8)) }
 
 // part16 is a part of a width, 0 to 1, in 16 bits.
 func part16(t float64) uint16 {
 	return uint16(math.Round(math.Max(0, math.Min(1, t)) * math.MaxUint16))
-}
-
-// discScale makes discs good to 0.02 %.
-const discScale = 2500
-
-func logCode(v, least float64) uint16 {
-	return uint16(math.Max(0, math.Min(noValue, math.Round(discScale*math.Log(v/least)))))
 }
 
 // What stands in a pixel of the eye's picture.
@@ -198,14 +243,18 @@ const (
 	surfacePixel
 	skyPixel
 	groundPixel
+	mirroredPixel = 16 // added where a mirror is looked into
 )
 
-// seen packs what each pixel shows: its kind, part and the opening looked
-// through, 0 for none.
-func (a *Archive) seen(r *study.Result, s *study.Shots) Blob {
+// seen packs what each pixel shows in one standing: its kind, the page's number
+// of the part and the opening looked through, 0 for none.
+func (a *Archive) seen(b *build, s *study.Shots, k study.Stood) Blob {
 	n := s.Eye.Width * s.Eye.Height
 	kind, part, via := make([]uint8, n), make([]uint16, n), make([]uint8, n)
-	for i, x := range s.Seen {
+	opening := func(name string) int {
+		return slices.IndexFunc(a.Design.Room.Openings, func(o Opening) bool { return o.Name == name })
+	}
+	for i, x := range k.Seen {
 		px := s.SeenInside[i]
 		switch x.Part {
 		case coeff.SkySeen:
@@ -213,13 +262,16 @@ func (a *Archive) seen(r *study.Result, s *study.Shots) Blob {
 		case coeff.GroundSeen:
 			kind[px] = groundPixel
 		default:
-			kind[px], part[px] = surfacePixel, uint16(min(x.Part, math.MaxUint16-1)+1)
+			kind[px], part[px] = surfacePixel, uint16(min(b.part(&a.Design.Room, k.Scene, x.Part), math.MaxUint16-1)+1)
 		}
-		if x.Via >= 0 && int(x.Via) < len(r.Scene.Parts) {
-			via[px] = uint8(min(r.Scene.Parts[x.Via].Opening+1, math.MaxUint8))
+		if x.Via >= 0 {
+			via[px] = math.MaxUint8 // no opening's, or one of too many
+			if o := k.Scene.Parts[x.Via].Opening; o >= 0 {
+				via[px] = uint8(min(opening(k.Scene.Openings[o].Name), math.MaxUint8-2) + 1)
+			}
 		}
 		if x.Mirrored {
-			kind[px] |= 16
+			kind[px] |= mirroredPixel
 		}
 	}
 	var p packer
@@ -232,13 +284,15 @@ func (a *Archive) seen(r *study.Result, s *study.Shots) Blob {
 // planeRank is the number of patterns of a work plane. Own choice.
 const planeRank = 12
 
-// The range of illuminance that plane pictures show, lx.
+// The range of illuminance that plane pictures show, lx: from dusk to the sun.
+// Own choice.
 const (
 	leastLx = 1
 	mostLx  = 2e5
 )
 
-// planeShots makes the pictures of a plane's hours.
+// planeShots makes the pictures of a plane's hours; none of a plane with more
+// sensors than a film has points.
 func (a *Archive) planeShots(r *study.Result, p *study.PlaneResult) Shots {
 	n := len(p.E)
 	if n > film.MostPoints {
@@ -249,11 +303,11 @@ func (a *Archive) planeShots(r *study.Result, p *study.PlaneResult) Shots {
 	all, sun := make([]float32, n), make([]float32, n)
 	records := make([]int, len(moments))
 	for k, m := range moments {
-		records[k] = m.Hour
+		records[k] = m.Step
 		for i := range n {
-			all[i], sun[i] = p.E[i][m.Hour], p.Direct[i][m.Hour]
+			all[i], sun[i] = p.E[i][m.Step], p.Direct[i][m.Step]
 		}
-		roll.Keep(k, all, sun)
+		roll.Keep(k, all, sun, study.SunFrom(m))
 	}
-	return a.shots(roll.Develop(planeRank), nil, nil, records, nil)
+	return a.shots(roll.Develop(planeRank, film.Fine), nil, nil, records, nil, perHour(r))
 }

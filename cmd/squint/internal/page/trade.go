@@ -14,6 +14,8 @@ const (
 	tradeLeft, tradeBottom        = 64.0, 48.0
 	tradeRight, tradeTop          = 150.0, 24.0
 	tradeLabelDrop, tradeDotRadii = 4.0, 5.0
+	// Labels beside each other closer than this move down by a line.
+	tradeLabelWide, tradeLine = 150.0, 15.0
 )
 
 // tradeOff draws light at the rear against glare at the worst viewpoint, a
@@ -66,8 +68,9 @@ func tradeOff(all []*Design, chosen int) template.HTML {
 		for moved := true; moved; {
 			moved = false
 			for _, t := range taken {
-				if math.Abs(t[0]-px) < 150 && math.Abs(t[1]-ty) < 15 {
-					ty, moved = t[1]+15, true
+				// Half a unit less than a line, so that rounding cannot keep it moving.
+				if math.Abs(t[0]-px) < tradeLabelWide && math.Abs(t[1]-ty) < tradeLine-0.5 {
+					ty, moved = t[1]+tradeLine, true
 				}
 			}
 		}

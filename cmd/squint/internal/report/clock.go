@@ -9,16 +9,19 @@ import (
 	"squint/scene"
 )
 
-// clockHour is the hour that clocks show at the start of a record, 0 to 24; 24
-// is the hour after midnight of a day in daylight saving time, counted to the
-// record's own date.
-func clockHour(c daylight.Calendar, record int) int {
-	return record%24 + int(c.ClockShiftH(record/24))
+// clockStart is what clocks show at the start of a step, 0 to 24 h and minutes;
+// 24 h is the hour after midnight of a day in daylight saving time, counted to
+// the record's own date.
+func clockStart(c daylight.Calendar, step int) (hour, minute int) {
+	day := c.Day(step)
+	first := step - day*(c.Steps()/365)
+	minutes := first*24*60/(c.Steps()/365) + 60*int(c.ClockShiftH(day))
+	return minutes / 60, minutes % 60
 }
 
 // clockTime is a moment as the clocks show it.
 func clockTime(c daylight.Calendar, m *scene.Moment) time.Time {
-	return m.Time.Add(time.Duration(c.ClockShiftH(m.Hour/24) * float64(time.Hour)))
+	return m.Time.Add(time.Duration(c.ClockShiftH(c.Day(m.Step)) * float64(time.Hour)))
 }
 
 // dateWords is such a moment in words: 21 December, 11:30 h.

@@ -89,7 +89,7 @@ func caption(r *study.Result, v *study.ViewResult) []string {
 	w := v.Worst
 	m := w.Moment
 	result := fmt.Sprintf("DGP %s, %s lx at the eye%s", plusMinus(w.DGP, w.StdErr, 2), whole(w.Ev), rangeWords(glare.InRange(w.DGP, w.Ev)))
-	if c := v.Cause[m.Hour]; c >= 0 && int(c) < len(v.Causes) {
+	if c := v.Cause[m.Step]; c >= 0 && int(c) < len(v.Causes) {
 		result += "; mostly by " + plain(v.Causes[c].String())
 	}
 	lines := []string{

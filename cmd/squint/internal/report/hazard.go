@@ -103,7 +103,7 @@ func peakWords(c daylight.Calendar, p *study.Peak, full bool) string {
 
 // peakTime is a peak's time as the clocks show it.
 func peakTime(c daylight.Calendar, p *study.Peak) time.Time {
-	return p.Time.Add(time.Duration(c.ClockShiftH(p.Moment.Hour/24) * float64(time.Hour)))
+	return p.Time.Add(time.Duration(c.ClockShiftH(c.Day(p.Moment.Step)) * float64(time.Hour)))
 }
 
 // hazardJSON is the summary's part; a place that mirrors do not reach is null.

@@ -118,16 +118,20 @@ func checkedText(in *study.Input) string {
 	if n := len(in.Scene.WorkPlanes); n > 0 {
 		s += fmt.Sprintf(", %s on %s", count(in.Scene.Sensors(), "sensor", "sensors"), count(n, "work plane", "work planes"))
 	}
-	return s + fmt.Sprintf("; %s in use, %s with daylight", count(len(in.Occupied), "hour", "hours"), whole(float64(len(in.Climate.Moments))))
+	return s + fmt.Sprintf("; %s in use, %s with daylight", hoursText(in.Calendar.InHours(len(in.Occupied))), hours(in.Calendar.InHours(len(in.Climate.Moments))))
 }
 
 // settingsText states every value that does not belong to one of many parts.
 func settingsText(p *project.Project) string {
 	s := p.Simulation
+	step := ""
+	if s.StepMin > 0 && s.StepMin < 60 {
+		step = fmt.Sprintf("; step_min %d", s.StepMin)
+	}
 	return fmt.Sprintf("use %s, %s to %s h%s; north_deg %s; ground reflectance %s; seed %d, batches %d, fisheye_pixels %d, samples_per_pixel %d, sensor_samples %d, texel_m %s, texel_samples %d, photons %d, memory_mib %d",
 		daysText(p.Occupancy.Days), decimals(p.Occupancy.FromH, 2), decimals(p.Occupancy.ToH, 2), savingText(p.Occupancy),
 		decimals(p.Site.NorthDeg, 3), groundText(p.Ground), s.Seed, s.Batches, s.FisheyePixels, s.SamplesPerPixel, s.SensorSamples,
-		decimals(s.TexelM, 3), s.TexelSamples, s.Photons, s.MemoryMiB)
+		decimals(s.TexelM, 3), s.TexelSamples, s.Photons, s.MemoryMiB) + step
 }
 
 func daysText(days [7]bool) string {

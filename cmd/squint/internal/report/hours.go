@@ -76,13 +76,22 @@ const flushAt = 1 << 16
 
 // stamp writes the columns that both files begin with.
 func (t *table) stamp(r *study.Result, h int) {
-	rec := &r.Climate.Year.Records[h]
-	t.int(h)
+	record := h / r.Climate.PerHour()
+	rec := &r.Climate.Year.Records[record]
+	t.int(record)
 	t.int(rec.Month)
 	t.int(rec.Day)
 	t.sep()
-	c := clockHour(r.Calendar, h)
-	t.row = append(append(t.row, byte('0'+c/10), byte('0'+c%10)), ":00"...)
+	c, m := clockStart(r.Calendar, h)
+	t.row = append(t.row, byte('0'+c/10), byte('0'+c%10), ':', byte('0'+m/10), byte('0'+m%10))
+}
+
+// stepWord is what a row is: a record of the weather file or a part of one.
+func stepWord(r *study.Result) string {
+	if r.Climate.PerHour() > 1 {
+		return "step"
+	}
+	return "record"
 }
 
 var stampHeads = []string{"record", "month", "day", "clock"}
@@ -93,15 +102,20 @@ func (t *table) commonComments(r *study.Result, f paths) {
 	if invented(r.Project, r.Climate.Year) {
 		t.comment(inventedWords + ": not those of a real place or building")
 	}
+	step := "hour"
+	if n := r.Climate.PerHour(); n > 1 {
+		step = "step"
+		t.comment("a step is " + strconv.Itoa(60/n) + " minutes: each hour of the weather file is cut into " + strconv.Itoa(n))
+	}
 	t.comment("record: hours of the weather file, counted from 0; month and day: its own, in standard time; " +
-		"clock: start of the hour as clocks show it, 24:00 being the hour after midnight in daylight saving time")
+		"clock: start of the " + step + " as clocks show it, 24:00 being the hour after midnight in daylight saving time")
 }
 
-// writeViewHours writes every record of the year for every viewpoint.
+// writeViewHours writes every step of the year for every viewpoint.
 func writeViewHours(w io.Writer, r *study.Result) error {
 	var t table
 	t.commonComments(r, newPaths(r.Project, r.Scene))
-	t.comment("sun altitude: of the sun's centre, without refraction, at the moment of the record, degrees; " +
+	t.comment("sun altitude: of the sun's centre, without refraction, at the moment of the " + stepWord(r) + ", degrees; " +
 		"sun azimuth: clockwise from north, degrees, empty at night")
 	t.comment("DGP: daylight glare probability, 0 to 1; error: its standard error; Ev: illuminance at the eye, lx; " +
 		"cause: what carries most of the glare where DGP is high. Empty: room not in use; 0: in use, dark")
@@ -118,7 +132,7 @@ func writeViewHours(w io.Writer, r *study.Result) error {
 	}
 	t.end()
 	azimuth := sunAzimuths(r)
-	for h := range r.Climate.Year.Records {
+	for h := range r.Climate.SinAltitude {
 		t.stamp(r, h)
 		t.fixed(degreesOfSine(r.Climate.SinAltitude[h]), 2)
 		t.fixed(azimuth[h], 2)
@@ -141,19 +155,19 @@ func writeViewHours(w io.Writer, r *study.Result) error {
 	return t.flush(w, 0)
 }
 
-// sunAzimuths are degrees by record, NaN at night.
+// sunAzimuths are degrees by step, NaN at night.
 func sunAzimuths(r *study.Result) []float64 {
-	a := make([]float64, len(r.Climate.Year.Records))
+	a := make([]float64, len(r.Climate.SinAltitude))
 	for h := range a {
 		a[h] = math.NaN()
 	}
 	for _, m := range r.Climate.Moments {
-		a[m.Hour] = scene.AzimuthDeg(m.Sun, r.Project.Site.NorthDeg)
+		a[m.Step] = scene.AzimuthDeg(m.Sun, r.Project.Site.NorthDeg)
 	}
 	return a
 }
 
-// writeSensorHours writes every record of the year for every sensor.
+// writeSensorHours writes every step of the year for every sensor.
 func writeSensorHours(w io.Writer, r *study.Result) error {
 	var t table
 	t.commonComments(r, newPaths(r.Project, r.Scene))
@@ -179,7 +193,7 @@ func writeSensorHours(w io.Writer, r *study.Result) error {
 		}
 	}
 	t.end()
-	for h := range r.Climate.Year.Records {
+	for h := range r.Climate.SinAltitude {
 		t.stamp(r, h)
 		for i := range r.Planes {
 			for _, e := range r.Planes[i].E {
@@ -194,7 +208,7 @@ func writeSensorHours(w io.Writer, r *study.Result) error {
 	return t.flush(w, 0)
 }
 
-// writeOpeningHours writes every record of the year for every opening.
+// writeOpeningHours writes every step of the year for every opening.
 func writeOpeningHours(w io.Writer, r *study.Result) error {
 	var t table
 	t.commonComments(r, newPaths(r.Project, r.Scene))
@@ -207,7 +221,7 @@ func writeOpeningHours(w io.Writer, r *study.Result) error {
 		t.text("sunlit: " + r.Openings[i].Opening.Name)
 	}
 	t.end()
-	for h := range r.Climate.Year.Records {
+	for h := range r.Climate.SinAltitude {
 		t.stamp(r, h)
 		for i := range r.Openings {
 			t.single(r.Openings[i].Sunlit[h])

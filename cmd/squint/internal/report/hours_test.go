@@ -102,8 +102,15 @@ func TestSensorHours(t *testing.T) {
 func TestClockHour(t *testing.T) {
 	c := daylight.Calendar{SavingFrom: &daylight.MonthDay{Month: 3, Day: 29}, SavingTo: &daylight.MonthDay{Month: 10, Day: 25}}
 	for _, x := range []struct{ day, hour, want int }{{0, 9, 9}, {87, 9, 10}, {87, 23, 24}, {86, 23, 23}, {297, 0, 0}} {
-		if got := clockHour(c, x.day*24+x.hour); got != x.want {
-			t.Errorf("day %d hour %d: got %d, want %d", x.day, x.hour, got, x.want)
+		c.PerHour = 1
+		if got, m := clockStart(c, x.day*24+x.hour); got != x.want || m != 0 {
+			t.Errorf("day %d hour %d: got %d:%02d, want %d:00", x.day, x.hour, got, m, x.want)
+		}
+		c.PerHour = 4
+		for quarter := range 4 {
+			if got, m := clockStart(c, 4*(x.day*24+x.hour)+quarter); got != x.want || m != 15*quarter {
+				t.Errorf("day %d hour %d, quarter %d: got %d:%02d, want %d:%02d", x.day, x.hour, quarter, got, m, x.want, 15*quarter)
+			}
 		}
 	}
 }

@@ -33,7 +33,7 @@ func sample(names ...string) *study.Result {
 		sin[h] = 0.5 * math.Sin(float64(h%24-6)*math.Pi/12)
 		if sin[h] > 0.05 {
 			a := float64(h%24) * math.Pi / 12
-			c.Moments = append(c.Moments, &scene.Moment{Hour: h, Time: t, Month: int(t.Month()) - 1,
+			c.Moments = append(c.Moments, &scene.Moment{Step: h, Time: t, Month: int(t.Month()) - 1,
 				Sun: r3.Unit(r3.Vec{X: -math.Sin(a), Y: -math.Cos(a) * -1, Z: sin[h]}), SunNormalLx: 60000, DiffuseLx: 12000, GlobalLx: 40000, Occupied: true})
 		}
 	}
@@ -65,7 +65,7 @@ func sampleView(r *study.Result, i int, name string) study.ViewResult {
 		DGP: make([]float32, n), StdErr: make([]float32, n), Ev: make([]float32, n), InRange: make([]bool, n), Cause: make([]int16, n),
 		Causes: []study.Cause{{Kind: study.SunDisc, Via: "window 4"}, {Kind: study.SkySeen, Via: "window 5"}}}
 	over := []int{143, 132, 20, 0}[min(i, 3)]
-	used := r.Occupied.Mask()
+	used := r.Occupied.Mask(n)
 	for h := range n {
 		v.Cause[h] = -1
 		if !used[h] {
@@ -139,8 +139,8 @@ func samplePlane(r *study.Result) {
 	}
 	p.Factors = daylight.Factors(p.Factor)
 	plane := daylight.Plane{E: p.E, SE: p.StdErr, Z: r.Settings.ZSensors}
-	p.SDA = daylight.SDA(plane, r.Clock, daylight.DefaultSpatial)
-	p.ASE = daylight.ASE(p.Direct, r.Clock, daylight.DefaultExposure)
+	p.SDA = daylight.SDA(plane, r.Clock, daylight.DefaultSpatial, 1)
+	p.ASE = daylight.ASE(p.Direct, r.Clock, daylight.DefaultExposure, 1)
 	for _, l := range daylight.ProvisionLevels {
 		q := daylight.Provision(plane, r.Daylight, l)
 		p.Provision, p.Levels = append(p.Provision, q), append(p.Levels, verdict.Provision(w.Name, q))

@@ -105,7 +105,7 @@ func finishValues(x *project.Finish) string {
 func weatherTable(r *study.Result, o Options, f paths) sheet.Table {
 	text, _ := momentText(r.Climate, r.Project)
 	return sheet.Table{Title: "Weather", Rows: [][]string{
-		{"File", f.in(weatherText(r.Climate.Year))}, {"Moment", f.in(text)}, {"Hours with daylight", whole(float64(len(r.Climate.Moments)))},
+		{"File", f.in(weatherText(r.Climate.Year))}, {"Moment", f.in(text)}, {"Hours with daylight", hours(r.Calendar.InHours(len(r.Climate.Moments)))},
 		{"Skies moved into the model's range", whole(float64(r.Climate.Clamped))}}}
 }
 

@@ -64,9 +64,9 @@ type verdictJSON struct {
 }
 
 type hoursJSON struct {
-	Occupied int        `json:"occupied"`
-	Clock    int        `json:"clock_8_to_18"`
-	Daylight int        `json:"daylight"`
+	Occupied number     `json:"occupied"`
+	Clock    number     `json:"clock_8_to_18"`
+	Daylight number     `json:"daylight"`
 	Rules    []ruleJSON `json:"rules"`
 }
 
@@ -85,7 +85,7 @@ func writeSummary(w io.Writer, r *study.Result, o Options, files []string) error
 		Warnings: texts(warnings(r.Warnings, r.Climate, r.Project), f),
 		Cautions: texts(cautions(r.Project), f), Notes: texts(r.Notes, f), Positions: texts(r.Positions, f), Reused: r.Reused,
 		Sights: sightsJSON(r), Views: viewsJSON(r, files), WorkPlanes: planesJSON(r), Openings: openingsJSON(r), GlareAutonomy: toBracket(r.GlareAutonomy), Hazard: hazards(r),
-		Hours:  hoursJSON{Occupied: len(r.Occupied), Clock: len(r.Clock), Daylight: len(r.Daylight)},
+		Hours:  hoursJSON{Occupied: inHours(r, r.Occupied), Clock: inHours(r, r.Clock), Daylight: inHours(r, r.Daylight)},
 		Inputs: inputs(r, o, f), Settings: settings(r), Files: append([]string{}, files...),
 	}
 	if len(r.Verdicts) == 0 {
@@ -99,6 +99,8 @@ func writeSummary(w io.Writer, r *study.Result, o Options, files []string) error
 	e.SetIndent("", "  ")
 	return e.Encode(s)
 }
+
+func inHours(r *study.Result, h daylight.Hours) number { return number(r.Calendar.InHours(len(h))) }
 
 func toVerdicts(all []verdict.Verdict) []verdictJSON {
 	out := []verdictJSON{}

@@ -40,12 +40,13 @@ type weatherJSON struct {
 	ClaimedOffsetH number `json:"claimed_moment_offset_h"`
 	ClosureWm2     number `json:"fitted_closure_w_m2"` // root mean square
 	Text           string `json:"moment_text"`
-	Daylight       int    `json:"records_with_daylight"`
+	Daylight       number `json:"records_with_daylight"`
 	Clamped        int    `json:"skies_moved_into_range"`
 }
 
 // settingsJSON leaves the number of threads out: results do not depend on it.
 type settingsJSON struct {
+	StepMin         int    `json:"step_min,omitempty"` // 0: steps are the weather file's hours
 	Seed            uint64 `json:"seed"`
 	Batches         int    `json:"batches"`
 	FisheyePixels   int    `json:"fisheye_pixels"`
@@ -99,7 +100,7 @@ func inputs(r *study.Result, o Options, f paths) inputsJSON {
 	j.Weather = weatherJSON{fileJSON: fileJSON{f.of(y.File), sha(o.WeatherSHA256)}, Format: y.Format, Place: y.Site.Name,
 		LatitudeDeg: number(y.Site.LatitudeDeg), LongitudeDeg: number(y.Site.LongitudeDeg), UTCOffsetH: number(y.Site.UTCOffsetH), ElevationM: number(y.Site.ElevationM),
 		MomentOffsetH: number(c.OffsetH), FittedOffsetH: number(fitted), ClaimedOffsetH: number(c.Fit.ClaimedOffsetH), ClosureWm2: number(closure),
-		Text: f.in(text), Daylight: len(c.Moments), Clamped: c.Clamped}
+		Text: f.in(text), Daylight: number(r.Calendar.InHours(len(c.Moments))), Clamped: c.Clamped}
 	return j
 }
 
@@ -112,6 +113,9 @@ func settings(r *study.Result) settingsJSON {
 		Use: useJSON{daysText(p.Occupancy.Days), number(p.Occupancy.FromH), number(p.Occupancy.ToH), len(p.Occupancy.Holidays),
 			p.Occupancy.DaylightSavingFrom != nil && p.Occupancy.DaylightSavingTo != nil},
 		Glare: p.Criteria.Glare, Provision: p.Criteria.Provision}
+	if s.StepMin > 0 && s.StepMin < 60 {
+		j.StepMin = s.StepMin
+	}
 	for i, g := range p.Ground.Reflectance {
 		j.GroundReflectance[i] = number(g)
 	}

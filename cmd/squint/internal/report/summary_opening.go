@@ -17,7 +17,7 @@ type openingJSON struct {
 // seasonJSON is the sun on an opening over a quarter of the year.
 type seasonJSON struct {
 	Months string `json:"months"`
-	Hours  int    `json:"hours_with_sun_before_it"`
+	Hours  number `json:"hours_with_sun_before_it"`
 	Lit    number `json:"mean_sunlit_share"`
 	Kept   number `json:"share_of_bare_sunlight"`
 }
@@ -29,7 +29,7 @@ func openingsJSON(r *study.Result) []openingJSON {
 		j := openingJSON{Name: o.Opening.Name, Group: o.Opening.Group, AreaM2: number(o.Opening.Rect.WidthM * o.Opening.Rect.HeightM),
 			SunHours: number(o.SunH), Cloth: number(o.Class), SharesCSV: openingsFile}
 		for k, s := range o.Seasons {
-			j.Seasons = append(j.Seasons, seasonJSON{study.Seasons[k], s.Hours, number(s.Lit), number(s.Kept())})
+			j.Seasons = append(j.Seasons, seasonJSON{study.Seasons[k], number(s.Hours), number(s.Lit), number(s.Kept())})
 		}
 		out = append(out, j)
 	}

@@ -8,6 +8,7 @@ import (
 type planeJSON struct {
 	Name     string `json:"name"`
 	Sensors  int    `json:"sensors"`
+	Refined  int    `json:"further_looks"` // that sensors near a limit got
 	SpacingM number `json:"spacing_m"`
 	HeightM  number `json:"height_m"`
 
@@ -43,7 +44,7 @@ type udiJSON struct {
 type spatialJSON struct {
 	Label string  `json:"label"`
 	Share bracket `json:"share"`
-	Hours int     `json:"hours"`
+	Hours number  `json:"hours"`
 }
 
 // provisionJSON is one level of EN 17037 daylight provision.
@@ -62,25 +63,25 @@ type provisionJSON struct {
 
 // pointJSON is one sensor.
 type pointJSON struct {
-	PositionM   vector `json:"position_m"`
-	Factor      number `json:"daylight_factor"`
-	FactorError number `json:"daylight_factor_standard_error"`
-	DA          number `json:"da_300"`
-	CDA         number `json:"cda_300"`
-	UDI         number `json:"udi_100_to_3000"`
-	SunHours    *int   `json:"hours_above_1000_lx_sun"`
+	PositionM   vector  `json:"position_m"`
+	Factor      number  `json:"daylight_factor"`
+	FactorError number  `json:"daylight_factor_standard_error"`
+	DA          number  `json:"da_300"`
+	CDA         number  `json:"cda_300"`
+	UDI         number  `json:"udi_100_to_3000"`
+	SunHours    *number `json:"hours_above_1000_lx_sun"`
 }
 
 func planesJSON(r *study.Result) []planeJSON {
 	out := []planeJSON{}
 	for i := range r.Planes {
 		p := &r.Planes[i]
-		j := planeJSON{Name: p.Plane.Name, Sensors: len(p.Plane.Sensors), SpacingM: number(p.Plane.SpacingM), HeightM: number(p.Plane.HeightM),
+		j := planeJSON{Name: p.Plane.Name, Sensors: len(p.Plane.Sensors), Refined: p.Refined, SpacingM: number(p.Plane.SpacingM), HeightM: number(p.Plane.HeightM),
 			DaylightFactor: factorJSON{number(p.Factors.Mean), number(p.Factors.Median), number(p.Factors.Min), number(p.Factors.Max), number(p.Factors.Uniformity)},
 			DA:             number(p.MeanDA), CDA: number(p.MeanCDA),
 			UDI:   udiJSON{number(p.MeanUDI.FellShort), number(p.MeanUDI.Supplementary), number(p.MeanUDI.Autonomous), number(p.MeanUDI.Exceeded)},
-			SDA:   spatialJSON{p.SDA.Label, toBracket(p.SDA.Share), p.SDA.Hours},
-			ASE:   spatialJSON{"ASE", toBracket(p.ASE.Share), p.ASE.Hours},
+			SDA:   spatialJSON{p.SDA.Label, toBracket(p.SDA.Share), number(p.SDA.Hours)},
+			ASE:   spatialJSON{"ASE", toBracket(p.ASE.Share), number(p.ASE.Hours)},
 			Asked: "none", Provision: []provisionJSON{}, Points: points(p),
 			ByFactor: byFactor(p), ViewOut: viewOut(p), ClearSky: clearSky(r, p)}
 		if p.Asked >= 0 && p.Asked < len(daylight.ProvisionLevels) {
@@ -108,7 +109,8 @@ func points(p *study.PlaneResult) []pointJSON {
 			j.UDI = number(p.UDI[i].Useful())
 		}
 		if i < len(p.ASE.SensorHours) {
-			j.SunHours = &p.ASE.SensorHours[i]
+			h := number(p.ASE.SensorHours[i])
+			j.SunHours = &h
 		}
 		out = append(out, j)
 	}

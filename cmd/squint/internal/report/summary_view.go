@@ -1,6 +1,7 @@
 package report
 
 import (
+	"cmp"
 	"slices"
 	"time"
 
@@ -32,13 +33,13 @@ type levelJSON struct {
 	Outcome      string  `json:"outcome"`
 	HoursOver    bracket `json:"hours_over"`
 	Share        bracket `json:"share"`
-	Hours        int     `json:"hours"`
-	NotEvaluated int     `json:"not_evaluated"`
+	Hours        number  `json:"hours"`
+	NotEvaluated number  `json:"not_evaluated"`
 }
 
 type causeJSON struct {
 	Cause string `json:"cause"`
-	Hours int    `json:"hours"`
+	Hours number `json:"hours"`
 }
 
 type worstJSON struct {
@@ -83,7 +84,7 @@ func viewsJSON(r *study.Result, files []string) []viewJSON {
 			}
 			h := v.Hours[k]
 			j.Levels = append(j.Levels, levelJSON{l.Name, number(l.DGP), number(l.TimeShare), v.Levels[k].Outcome.String(),
-				toBracket(h.Hours), toBracket(h.Share), h.Total, h.NotEvaluated})
+				toBracket(h.Hours), toBracket(h.Share), number(h.Total), number(h.NotEvaluated)})
 		}
 		j.WorstHour = worst(r, v, names[i], files)
 		out = append(out, j)
@@ -101,9 +102,9 @@ func causes(r *study.Result, v *study.ViewResult) []causeJSON {
 	}
 	out := []causeJSON{}
 	for i, c := range v.Causes {
-		out = append(out, causeJSON{c.String(), n[i]})
+		out = append(out, causeJSON{c.String(), number(r.Calendar.InHours(n[i]))})
 	}
-	slices.SortStableFunc(out, func(a, b causeJSON) int { return b.Hours - a.Hours })
+	slices.SortStableFunc(out, func(a, b causeJSON) int { return cmp.Compare(b.Hours, a.Hours) })
 	return out
 }
 
@@ -113,7 +114,7 @@ func worst(r *study.Result, v *study.ViewResult, name string, files []string) *w
 		return nil
 	}
 	m := w.Moment
-	j := &worstJSON{Record: m.Hour, Moment: m.Time.Format(time.RFC3339), Clock: clockTime(r.Calendar, m).Format("01-02 15:04"),
+	j := &worstJSON{Record: m.Step / r.Climate.PerHour(), Moment: m.Time.Format(time.RFC3339), Clock: clockTime(r.Calendar, m).Format("01-02 15:04"),
 		DGP: number(w.DGP), StandardError: number(w.StdErr), InRange: glare.InRange(w.DGP, w.Ev), EvLx: number(w.Ev),
 		SunAzimuthDeg: number(scene.AzimuthDeg(m.Sun, r.Project.Site.NorthDeg)), SunAltitudeDeg: number(scene.AltitudeDeg(m.Sun)),
 		SunNormalLx: number(m.SunNormalLx), DiffuseLx: number(m.DiffuseLx), Sources: []sourceJSON{}, Pictures: []string{}}

@@ -136,6 +136,22 @@ func decimals(x float64, n int) string {
 	return s
 }
 
+// hours counts them: 2,610, or parts of one with up to two decimals.
+func hours(x float64) string {
+	if full, part := math.Modf(math.Round(100*x) / 100); part > 0 {
+		return whole(full) + strings.TrimPrefix(decimals(part, 2), "0")
+	}
+	return whole(x)
+}
+
+// hoursText is hours with their noun.
+func hoursText(x float64) string {
+	if x == 1 {
+		return "1 hour"
+	}
+	return hours(x) + " hours"
+}
+
 // fixed writes a number with n decimals.
 func fixed(x float64, n int) string {
 	if math.IsNaN(x) || math.IsInf(x, 0) {

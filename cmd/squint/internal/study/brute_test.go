@@ -21,9 +21,9 @@ import (
 )
 
 // TestAnnualAgainstBruteForce holds the annual run's DGP against pictures of
-// the same hours made by the plain path tracer, pixel by pixel at twice
-// the default resolution: no texels, no sky patches, no links. It takes minutes and runs
-// where SQUINT_LONG is set, as .ci/run does.
+// the same hours made by the plain path tracer, pixel by pixel at twice the
+// default resolution: no texels, no sky patches, no links. It takes minutes and
+// runs where SQUINT_LONG is set, as .ci/run does.
 //
 // The bounds are those asked of the method: RMSE 0.01, largest 0.03. The brute
 // force pictures' own error is measured by their batches and must be small
@@ -56,10 +56,10 @@ func TestAnnualAgainstBruteForce(t *testing.T) {
 	for k, v := range in.Scene.Viewpoints {
 		dgp, se := bruteForce(t, in, v, moments, 256)
 		for i, m := range moments {
-			got := float64(r.Views[k].DGP[m.Hour])
+			got := float64(r.Views[k].DGP[m.Step])
 			d := got - dgp[i]
 			t.Logf("%-8s %s sun %6.0f lx  annual %.4f +- %.4f  brute %.4f +- %.4f  difference %+.4f",
-				v.Name, m.Time.Format("01-02 15:04"), m.SunNormalLx, got, r.Views[k].StdErr[m.Hour], dgp[i], se[i], d)
+				v.Name, m.Time.Format("01-02 15:04"), m.SunNormalLx, got, r.Views[k].StdErr[m.Step], dgp[i], se[i], d)
 			sum += d * d
 			worst = math.Max(worst, math.Abs(d))
 			bruteSE = math.Max(bruteSE, se[i])
@@ -177,7 +177,7 @@ func bruteDisc(in *Input, v scene.Viewpoint, m *scene.Moment) annual.Disc {
 	if m.SunNormalLx <= 0 || r3.Dot(m.Sun, v.Direction) <= 0 {
 		return annual.Disc{}
 	}
-	s := sampling.Stream3(78, 2, uint64(m.Hour))
+	s := sampling.Stream3(78, 2, uint64(m.Step))
 	var open, tau float64
 	for range n {
 		dir := trace.ConeDirection(m.Sun, photometry.SunDiameterRad/2, s.Float64(), s.Float64())

@@ -104,7 +104,7 @@ func TestCauses(t *testing.T) {
 		}
 		sa, ca := math.Sincos(c.altitudeDeg * math.Pi / 180)
 		sf, cf := math.Sincos(c.fromDeg * math.Pi / 180)
-		moments = append(moments, &scene.Moment{Hour: h, Month: c.month, Sun: r3.Vec{X: -ca * sf, Y: -ca * cf, Z: sa},
+		moments = append(moments, &scene.Moment{Step: h, Month: c.month, Sun: r3.Vec{X: -ca * sf, Y: -ca * cf, Z: sa},
 			SunNormalLx: c.sunLx, Sky: even, DiffuseLx: math.Pi * c.sky, GlobalLx: c.globalLx, Occupied: true})
 		in.Occupied = append(in.Occupied, h)
 	}

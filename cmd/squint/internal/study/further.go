@@ -48,7 +48,8 @@ func (r *Result) judgeFurther(p *PlaneResult, z float64) {
 	}
 }
 
-// Of the planes of IES LM-83-12, with 1 % for the rounding of feet: 30 in above the floor, points 2 ft apart. From memory.
+// Of the planes of IES LM-83-12, with 1 % for the rounding of feet: 30 in above
+// the floor, points 2 ft apart. From memory.
 const (
 	clockPlaneM   = 0.762
 	clockSpacingM = 0.61 * 1.01
@@ -223,7 +224,7 @@ func (r *Result) hoursOf(name string) (daylight.Hours, string) {
 	case project.HoursDaylight:
 		return r.Daylight, "the daylight hours"
 	case project.HoursAll:
-		all := make(daylight.Hours, daylight.HoursPerYear)
+		all := make(daylight.Hours, r.Calendar.Steps())
 		for h := range all {
 			all[h] = h
 		}
@@ -232,7 +233,8 @@ func (r *Result) hoursOf(name string) (daylight.Hours, string) {
 	return r.Occupied, "the hours in use"
 }
 
-// equinox is the day of the check under a clear sky, and its hours of the clock.
+// equinox is the day of the check under a clear sky, and its hours of the clock:
+// as in rating schemes, from memory.
 var (
 	equinox       = project.MonthDay{Month: 3, Day: 21}
 	equinoxClockH = [2]int{9, 15}
@@ -265,7 +267,7 @@ func (y *year) runClear(ctx context.Context, in *Input, e *engine, k int) error 
 		return nil
 	}
 	for i, m := range in.Clear {
-		if in.standingAt(m.Hour) != k {
+		if in.standingAt(m.Step) != k {
 			continue
 		}
 		d, err := annual.Run(ctx, e.t, e.rec, []*scene.Moment{m}, e.cfg, nil, nil)
@@ -282,11 +284,11 @@ func (y *year) runClear(ctx context.Context, in *Input, e *engine, k int) error 
 	return nil
 }
 
-// standingAt is the standing that holds a record, the first where none does.
-func (in *Input) standingAt(hour int) int {
+// standingAt is the standing that holds a step, the first where none does.
+func (in *Input) standingAt(step int) int {
 	for k := range in.Standings {
 		for _, m := range in.Standings[k].Moments {
-			if m.Hour == hour {
+			if m.Step == step {
 				return k
 			}
 		}

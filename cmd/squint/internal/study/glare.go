@@ -14,7 +14,7 @@ import (
 	"squint/trace/coeff"
 )
 
-// ViewResult is one viewpoint's year. Series have one value per record; hours
+// ViewResult is one viewpoint's year. Series have one value per step; hours
 // in use without daylight hold 0, hours not in use NaN.
 type ViewResult struct {
 	Viewpoint scene.Viewpoint
@@ -113,9 +113,10 @@ type glareSink struct {
 	views []ViewResult
 	mu    []sync.Mutex // by view
 	cause []map[Cause]int16
-	work  []sinkScratch    // by worker
-	shots *shotPlan        // nil: no pictures are kept
-	cells []int            // by record; nil: one for all
+	work  []sinkScratch // by worker
+	shots *shotPlan     // nil: no pictures are kept
+	cells []int         // by record; nil: one for all
+	keep  func(view, hour int) bool
 	tops  []map[int]*Worst // by view and cell
 }
 
@@ -198,9 +199,13 @@ func (g *standingSink) take(worker int, f *annual.Frame) {
 	w := &g.work[worker]
 	e := g.eyes[f.Eye]
 	v := &g.views[f.Eye]
-	w.discs = toView(w.discs[:0], e, f.Discs)
+	if !f.Moment.Occupied {
+		g.keepShot(w, e, f)
+		return
+	}
+	w.discs = toView(w.discs[:0], e.View, f.Discs)
 	dgp, ev, se, evErr := glare.Pooled(g.field, f.Mean, f.Batch, w.discs, g.opt, causeFrom, &w.scratch)
-	h := f.Moment.Hour
+	h := f.Moment.Step
 	v.DGP[h], v.Ev[h], v.StdErr[h], v.EvErr[h] = float32(dgp), float32(ev), float32(se), float32(evErr)
 	v.InRange[h] = glare.InRange(dgp, ev)
 	v.Coarse[h] = float32(g.atHalf(w, e, f.Mean))
@@ -211,7 +216,7 @@ func (g *standingSink) take(worker int, f *annual.Frame) {
 	if g.cells != nil {
 		cell = g.cells[h]
 	}
-	top := brighter(dgp, h, g.tops[f.Eye][cell])
+	top := (g.keep == nil || g.keep(f.Eye, h)) && brighter(dgp, h, g.tops[f.Eye][cell])
 	if dgp < causeFrom && !top {
 		return
 	}
@@ -239,7 +244,7 @@ func (g *standingSink) take(worker int, f *annual.Frame) {
 
 // brighter is whether an hour takes the place of what was the worst.
 func brighter(dgp float64, hour int, w *Worst) bool {
-	return w == nil || dgp > w.DGP || dgp == w.DGP && hour < w.Moment.Hour
+	return w == nil || dgp > w.DGP || dgp == w.DGP && hour < w.Moment.Step
 }
 
 // causeID is the index of a cause among those of a view.
@@ -253,9 +258,10 @@ func (g *glareSink) causeID(view int, c Cause) int16 {
 	return id
 }
 
-func toView(out []glare.Disc, e *coeff.Eye, discs []annual.Disc) []glare.Disc {
+// toView appends discs as a view has them.
+func toView(out []glare.Disc, v view.View, discs []annual.Disc) []glare.Disc {
 	for _, d := range discs {
-		out = append(out, glare.Disc{Dir: e.View.Local(d.Dir), OmegaSr: d.OmegaSr, Luminance: d.Luminance})
+		out = append(out, glare.Disc{Dir: v.Local(d.Dir), OmegaSr: d.OmegaSr, Luminance: d.Luminance})
 	}
 	return out
 }
@@ -360,7 +366,11 @@ func (r *Result) judgeViews(y *year) {
 		for k, l := range verdict.ProtectionLevels {
 			hours := r.glareHours(v, l.DGP, z)
 			when := v.when(r, l.DGP)
-			out := verdict.Glare(r.subject(&v.Viewpoint), l, hours, when)
+			told := when
+			if verdict.AtMost(hours.Share, l.TimeShare) == verdict.Undecided {
+				told = v.whenOpen(r, l.DGP, z)
+			}
+			out := verdict.Glare(r.subject(&v.Viewpoint), l, hours, told)
 			v.Hours = append(v.Hours, hours)
 			v.Levels = append(v.Levels, out)
 			if l.Name == r.Project.Criteria.Glare {

@@ -30,7 +30,7 @@ func hazardYear(t testing.TB, every int) *scene.Climate {
 			t.Fatal(err)
 		}
 		if s.Direction.Z > 0 {
-			c.Moments = append(c.Moments, &scene.Moment{Hour: h, Time: at.Add(time.Duration(h) * time.Hour), Sun: s.Refracted(1013.25, 10).Direction, SunNormalLx: 8e4})
+			c.Moments = append(c.Moments, &scene.Moment{Step: h, Time: at.Add(time.Duration(h) * time.Hour), Sun: s.Refracted(1013.25, 10).Direction, SunNormalLx: 8e4})
 		}
 	}
 	return c

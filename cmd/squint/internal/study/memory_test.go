@@ -30,7 +30,7 @@ func bits(r *Result) string {
 		fmt.Fprintf(&b, "%v %v %d %q %v\n", v.Cause, v.Causes, v.Refined, v.When, v.Levels)
 		if v.Worst != nil {
 			series("worst", v.Worst.Lum)
-			fmt.Fprintf(&b, "%d %v %v\n", v.Worst.Moment.Hour, v.Worst.Discs, v.Worst.DGP)
+			fmt.Fprintf(&b, "%d %v %v\n", v.Worst.Moment.Step, v.Worst.Discs, v.Worst.DGP)
 		}
 	}
 	for _, p := range r.Planes {

@@ -15,10 +15,10 @@ import (
 
 const (
 	// sunlitPoints stand for an opening's area; the share of it that is sunlit
-	// is known to within the reciprocal.
+	// is known to within the reciprocal; own choice.
 	sunlitPoints = 128
 	// sunlightPerHour are the looks at the sun on the day of the exposure to
-	// sunlight.
+	// sunlight; own choice: a minute.
 	sunlightPerHour = 60
 	// aboveSillM is how far above its opening's lower edge the reference point
 	// lies at least. Source: EN 17037:2018 annex D, from memory.
@@ -33,7 +33,7 @@ func seasonOf(month int) int { return (month + 1) % 12 / 3 } // month: 0 is Janu
 // OpeningResult is where the sun gets to at one opening.
 type OpeningResult struct {
 	Opening scene.Opening
-	// Sunlit is the share of the area in the sun by record; NaN where the sun is
+	// Sunlit is the share of the area in the sun by step; NaN where the sun is
 	// down or stands behind the opening.
 	Sunlit  []float32
 	Seasons [4]SunSeason
@@ -46,7 +46,7 @@ type OpeningResult struct {
 
 // SunSeason is the sun on one opening over a season.
 type SunSeason struct {
-	Hours int     // with the sun before the opening
+	Hours float64 // with the sun before the opening
 	Lit   float64 // mean sunlit share over these hours; NaN without any
 	// Light of the sun's beam that would fall on the bare opening, and that does,
 	// lm h.
@@ -76,7 +76,7 @@ func (r *Result) findSun(ctx context.Context, in *Input, opt Options) error {
 			}
 		}
 		for i := range o.Seasons {
-			o.Seasons[i].Lit /= float64(o.Seasons[i].Hours)
+			o.Seasons[i].Lit /= o.Seasons[i].Hours
 		}
 		return nil
 	})
@@ -85,14 +85,14 @@ func (r *Result) findSun(ctx context.Context, in *Input, opt Options) error {
 // add counts the sunlit share of a moment, which may be NaN; Lit is a sum until
 // all are in.
 func (o *OpeningResult) add(m *scene.Moment, share float64) {
-	o.Sunlit[m.Hour] = float32(share)
+	o.Sunlit[m.Step] = float32(share)
 	if share != share {
 		return
 	}
 	s := &o.Seasons[seasonOf(m.Month)]
-	s.Hours++
-	s.Lit += share
-	beam := m.SunNormalLx * r3.Dot(m.Sun, o.Opening.Rect.Outward) * o.Opening.Rect.WidthM * o.Opening.Rect.HeightM
+	s.Hours += m.Share
+	s.Lit += m.Share * share
+	beam := m.Share * m.SunNormalLx * r3.Dot(m.Sun, o.Opening.Rect.Outward) * o.Opening.Rect.WidthM * o.Opening.Rect.HeightM
 	s.BareLmH += beam
 	s.LitLmH += beam * share
 }

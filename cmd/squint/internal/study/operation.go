@@ -162,7 +162,7 @@ func (o *operation) directBy(step int) map[string][]float32 {
 	}
 	m := o.in.Climate.Moments[step]
 	world := o.open
-	if m.SunNormalLx > 0 && !(o.in.Scene.HasHorizon && o.in.Scene.Horizon.Hides(m.Sun)) {
+	if m.SunNormalLx > 0 {
 		i := 0
 		for _, w := range o.in.Scene.WorkPlanes {
 			for _, s := range w.Sensors {
@@ -206,7 +206,7 @@ func (o *operation) report(y *year) control.Report {
 	return o.plan.Report(l)
 }
 
-// mostStates is how many states of a group are told one by one.
+// mostStates is how many states of a group are told one by one; own choice.
 const mostStates = 6
 
 // positions tells the groups' states in words.

@@ -2,6 +2,7 @@ package study
 
 import (
 	"cmp"
+	"fmt"
 	"slices"
 
 	"squint/scene"
@@ -27,7 +28,7 @@ type planeHour struct {
 
 // clearSky is a moment under a clear sky, by sensor.
 type clearSky struct {
-	Moment    string // its digest
+	Moment    string // its number among those asked for and its digest
 	E, StdErr []float32
 }
 
@@ -39,6 +40,12 @@ func (p *planeRecord) at(hour int) *planeHour {
 	return &p.Hours[i]
 }
 
+// clearName tells a moment under a clear sky from others, of this run and of
+// earlier ones.
+func clearName(in *Input, m *scene.Moment) string {
+	return fmt.Sprint(slices.Index(in.Clear, m), " ", digest(*m))
+}
+
 func (p *planeRecord) clear(moment string) *clearSky {
 	for i := range p.Clear {
 		if p.Clear[i].Moment == moment {
@@ -48,8 +55,9 @@ func (p *planeRecord) clear(moment string) *clearSky {
 	return nil
 }
 
-// learn adds what was computed of a plane whose n sensors begin at first.
-func (p *planeRecord) learn(y *year, first, n int, moments, clear []*scene.Moment, how *Settings) {
+// learn adds what was computed of a plane whose n sensors begin at first; clear
+// names the moments under a clear sky.
+func (p *planeRecord) learn(y *year, first, n int, moments []*scene.Moment, clear []string, how *Settings) {
 	p.Sides, p.Coarsen = max(p.Sides, how.TexelSides), max(p.Coarsen, how.Coarsen)
 	column := func(of [][]float32, k int) []float32 {
 		list := make([]float32, n)
@@ -60,8 +68,8 @@ func (p *planeRecord) learn(y *year, first, n int, moments, clear []*scene.Momen
 	}
 	var news []planeHour
 	for k, m := range moments {
-		if p.at(m.Hour) == nil {
-			news = append(news, planeHour{m.Hour, column(y.light.E, k), column(y.light.StdErr, k), column(y.light.Direct, k)})
+		if p.at(m.Step) == nil {
+			news = append(news, planeHour{m.Step, column(y.light.E, k), column(y.light.StdErr, k), column(y.light.Direct, k)})
 		}
 	}
 	p.Hours = append(p.Hours, news...)
@@ -69,8 +77,8 @@ func (p *planeRecord) learn(y *year, first, n int, moments, clear []*scene.Momen
 	if p.Factor == nil && n > 0 {
 		p.Factor, p.FactorSE = y.factors[first:first+n], y.factorE[first:first+n]
 	}
-	for k, m := range clear {
-		if at := digest(*m); p.clear(at) == nil && n > 0 {
+	for k, at := range clear {
+		if p.clear(at) == nil && n > 0 {
 			p.Clear = append(p.Clear, clearSky{at, column(y.clear.E, k), column(y.clear.StdErr, k)})
 		}
 	}
@@ -93,7 +101,7 @@ func (y *year) readPlanes(s *shelf, factors bool, place map[int]int, r *Result) 
 			y.factors, y.factorE = append(y.factors, x.Factor...), append(y.factorE, x.FactorSE...)
 		}
 		for k, m := range s.in.Clear {
-			c := x.clear(digest(*m))
+			c := x.clear(clearName(s.in, m))
 			if c == nil || !slices.Contains(s.clear, m) {
 				continue
 			}

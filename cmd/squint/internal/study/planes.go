@@ -8,12 +8,16 @@ import (
 	"squint/scene"
 )
 
-// PlaneResult is one work plane's year. Series are [sensor][record] in lx, 0
-// at night.
+// PlaneResult is one work plane's year. Series are [sensor][step] in lx, 0
+// at night. StdErr is the standard error; after a further look with more batches
+// it is less by as much as z would be.
 type PlaneResult struct {
 	Plane     scene.WorkPlane
 	E, StdErr [][]float32
 	Direct    [][]float32
+
+	// Refined is the number of further looks that sensors near a limit got.
+	Refined int
 
 	DA, CDA []float64 // by sensor, shares
 	UDI     []daylight.UsefulShares
@@ -49,13 +53,12 @@ const daThresholdLx = 300
 
 // judgePlanes spreads the sensors' series over the year and counts.
 func (r *Result) judgePlanes(y *year) {
-	looks := max(r.Scene.Sensors(), 1)
-	z := verdict.T(confidence, looks, max(r.Project.Simulation.Batches-1, 1))
+	z := r.zSensors()
 	r.Settings.ZSensors = z
 	first := 0
-	for _, w := range r.Scene.WorkPlanes {
+	for i, w := range r.Scene.WorkPlanes {
 		n := len(w.Sensors)
-		p := PlaneResult{Plane: w, Asked: -1}
+		p := PlaneResult{Plane: w, Asked: -1, Refined: y.looks[i]}
 		p.E = r.spread(y.light.E[first : first+n])
 		p.StdErr = r.spread(y.light.StdErr[first : first+n])
 		p.Direct = r.spread(y.light.Direct[first : first+n])
@@ -75,7 +78,7 @@ func (r *Result) spread(byMoment [][]float32) [][]float32 {
 	for s := range byMoment {
 		out[s] = make([]float32, len(r.Climate.SinAltitude))
 		for k, m := range r.Climate.Moments {
-			out[s][m.Hour] = byMoment[s][k]
+			out[s][m.Step] = byMoment[s][k]
 		}
 	}
 	return out
@@ -95,8 +98,8 @@ func (r *Result) judgePlane(p *PlaneResult, z float64) {
 	}
 	p.Factors = daylight.Factors(p.Factor)
 	plane := daylight.Plane{E: p.E, SE: p.StdErr, Z: z}
-	p.SDA = daylight.SDA(plane, r.Clock, daylight.DefaultSpatial)
-	p.ASE = daylight.ASE(p.Direct, r.Clock, daylight.DefaultExposure)
+	p.SDA = daylight.SDA(plane, r.Clock, daylight.DefaultSpatial, r.Climate.PerHour())
+	p.ASE = daylight.ASE(p.Direct, r.Clock, daylight.DefaultExposure, r.Climate.PerHour())
 	for k, l := range provisionLevels(r.Project) {
 		res := daylight.Provision(plane, r.Daylight, l)
 		v := verdict.Provision(p.Plane.Name, res)

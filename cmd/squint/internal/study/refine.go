@@ -3,6 +3,7 @@ package study
 import (
 	"context"
 	"fmt"
+	"slices"
 
 	"squint/glare/verdict"
 	"squint/materials/sampling"
@@ -10,10 +11,11 @@ import (
 )
 
 // refineRounds is the number of times that what is undecided is looked at
-// again, each time with refineFactor times the samples (half the error), which
-// are pixels twice as fine; the surfaces, dear to trace anew, get them once. Where their noise rules the
-// error, it stays as it is and so does the verdict: undecided.
-// After that a verdict stays undecided. The looks are paid for in z.
+// again, each time with refineFactor times the samples, which halves the error;
+// of views these are pixels twice as fine, while the surfaces, dear to trace
+// anew, get them once. Where their noise rules the error, it stays as it is
+// and so does the verdict: undecided. So it stays after the last look. The looks
+// are paid for in z. Both numbers are own choices.
 const (
 	refineRounds = 2
 	refineFactor = 4
@@ -29,62 +31,71 @@ func (r *Result) refine(ctx context.Context, in *Input, opt Options, y *year) er
 		return nil
 	}
 	z := r.zViews()
-	again := opt
-	again.shots = nil
-	again.Progress = func(s Stage, done, total int) {
-		if s == StageYear {
-			opt.Progress(StageAgain, done, total)
-		}
-	}
+	again := opt.again()
 	factor := 1
+	pictures := make([][]*Worst, len(y.glare.views)) // of the looks, the last first
 	for round := 1; round <= refineRounds; round++ {
 		factor *= refineFactor
 		var views []int
+		var hours [][]int      // by entry of views
 		open := map[int]bool{} // records
 		for i := range y.glare.views {
 			v := &y.glare.views[i]
-			hours := r.openHours(v, level.DGP, z)
 			if verdict.AtMost(r.glareHours(v, level.DGP, z).Share, level.TimeShare) != verdict.Undecided {
 				continue
 			}
-			views = append(views, i)
-			for _, h := range hours {
+			views, hours = append(views, i), append(hours, r.openHours(v, level.DGP, z))
+			for _, h := range hours[len(hours)-1] {
 				open[h] = true
 			}
 		}
 		if len(views) == 0 || len(open) == 0 {
-			return nil
+			break
 		}
-		sub := subset(in, views, open, factor, round)
-		closer, err := computeYear(ctx, sub, again, &Result{})
+		again.keep = func(k, h int) bool { return slices.Contains(hours[k], h) }
+		closer, err := computeYear(ctx, subset(in, views, open, factor, round), again, &Result{})
 		if err != nil {
 			return err
 		}
 		for k, i := range views {
 			to, from := &y.glare.views[i], &closer.glare.views[k]
-			hours := r.openHours(to, level.DGP, z)
-			for _, h := range hours {
+			for _, h := range hours[k] {
 				to.DGP[h], to.StdErr[h], to.Ev[h], to.EvErr[h], to.InRange[h] = from.DGP[h], from.StdErr[h], from.Ev[h], from.EvErr[h], from.InRange[h]
 				to.Coarse[h], to.Bias[h] = from.Coarse[h], from.Bias[h]
 			}
 			to.Refined = round
-			to.lookCloser(from)
+			pictures[i] = append([]*Worst{from.Worst}, pictures[i]...)
 		}
-		r.Notes = append(r.Notes, fmt.Sprintf("look %d: %s of %s lay too near the limit and were computed again with %d times the samples.", round+1, count(len(open), "hour"), count(len(views), "viewpoint"), factor))
+		r.Notes = append(r.Notes, fmt.Sprintf("look %d: %s of %s lay too near the limit and were computed again with %d times the samples.", round+1, count(len(open), stepWord(in.Climate)), count(len(views), "viewpoint"), factor))
 	}
-	return nil
+	var changed []int
+	for i := range pictures {
+		if pictures[i] != nil {
+			pictures[i], changed = append(pictures[i], y.glare.views[i].Worst), append(changed, i)
+		}
+	}
+	return y.worstHours(ctx, in, opt, changed, func(view, _ int) []*Worst { return pictures[view] })
 }
 
-// lookCloser keeps the worst hour true to the series after some hours were
-// computed again.
-func (v *ViewResult) lookCloser(again *ViewResult) {
-	if v.Worst != nil {
-		h := v.Worst.Moment.Hour
-		v.Worst.DGP, v.Worst.StdErr, v.Worst.Ev = float64(v.DGP[h]), float64(v.StdErr[h]), float64(v.Ev[h])
+// again is how a further look is run: without small pictures, and heard of as
+// such.
+func (opt Options) again() Options {
+	heard := opt.Progress
+	opt.shots = nil
+	opt.Progress = func(s Stage, done, total int) {
+		if s == StageYear {
+			heard(StageAgain, done, total)
+		}
 	}
-	if again.Worst != nil && (v.Worst == nil || again.Worst.DGP >= v.Worst.DGP) {
-		v.Worst = again.Worst
+	return opt
+}
+
+// stepWord is what the year is counted in.
+func stepWord(c *scene.Climate) string {
+	if c.PerHour() > 1 {
+		return "step"
 	}
+	return "hour"
 }
 
 func count(n int, what string) string {
@@ -118,28 +129,32 @@ func subset(in *Input, views []int, open map[int]bool, factor, round int) *Input
 	seed := sampling.Stream3(p.Simulation.Seed, streamRefine, uint64(round))
 	p.Simulation.Seed = seed.Uint64()
 	sub.Project = &p
-	sub.Standings = nil
-	for _, st := range in.Standings {
-		few := Standing{Label: st.Label, World: st.World, Scene: reduced(st.Scene, views)}
-		for _, m := range st.Moments {
-			if open[m.Hour] {
-				few.Moments = append(few.Moments, m)
+	sub.narrow(open, func(s *scene.Scene) *scene.Scene { return reduced(s, views) })
+	return &sub
+}
+
+// narrow leaves some hours and of the scenes some receivers.
+func (in *Input) narrow(hours map[int]bool, few func(*scene.Scene) *scene.Scene) {
+	among := func(moments []*scene.Moment) (list []*scene.Moment) {
+		for _, m := range moments {
+			if hours[m.Step] {
+				list = append(list, m)
 			}
 		}
-		if len(few.Moments) > 0 {
-			sub.Standings = append(sub.Standings, few)
+		return list
+	}
+	all := in.Standings
+	in.Standings = nil
+	for _, st := range all {
+		if st.Moments = among(st.Moments); len(st.Moments) > 0 {
+			st.Scene = few(st.Scene)
+			in.Standings = append(in.Standings, st)
 		}
 	}
-	sub.Scene = reduced(in.Scene, views)
+	in.Scene = few(in.Scene)
 	c := *in.Climate
-	c.Moments = nil
-	for _, m := range in.Climate.Moments {
-		if open[m.Hour] {
-			c.Moments = append(c.Moments, m)
-		}
-	}
-	sub.Climate = &c
-	return &sub
+	c.Moments = among(c.Moments)
+	in.Climate = &c
 }
 
 // reduced is a scene with some of its viewpoints and no work planes.
@@ -171,5 +186,5 @@ func (r *Result) glareHours(v *ViewResult, limit, z float64) verdict.GlareHours 
 			half[k] = float32(z)*v.StdErr[h] + v.Bias[h]
 		}
 	}
-	return verdict.CountGlare(dgp, half, limit, 1)
+	return verdict.CountGlare(dgp, half, limit, 1).OfSteps(r.Climate.PerHour())
 }

@@ -39,7 +39,7 @@ func evenSky(t *testing.T, in *Input, luminance float64) {
 	var moments []*scene.Moment
 	for day := 0; day < 360; day += 10 {
 		e := s.HorizontalIlluminance()
-		moments = append(moments, &scene.Moment{Hour: 24*day + 11, Sun: r3.Vec{Z: 1}, Sky: s, DiffuseLx: e, GlobalLx: e, Occupied: true})
+		moments = append(moments, &scene.Moment{Step: 24*day + 11, Sun: r3.Vec{Z: 1}, Sky: s, DiffuseLx: e, GlobalLx: e, Occupied: true})
 	}
 	in.Climate.Moments, in.Standings[0].Moments = moments, moments
 }
@@ -63,7 +63,7 @@ func luminanceFor(t *testing.T, dgp float64) float64 {
 		if err != nil {
 			t.Fatal(err)
 		}
-		return float64(y.glare.views[0].DGP[in.Climate.Moments[0].Hour]) - dgp
+		return float64(y.glare.views[0].DGP[in.Climate.Moments[0].Step]) - dgp
 	}
 	lo, hi := 1000.0, 60000.0
 	a, b := off(lo), off(hi)
@@ -133,8 +133,10 @@ func TestUndecidedAtTheCap(t *testing.T) {
 			}
 		}
 		if c.outcome == verdict.Undecided {
-			if want := "undecided: 0 hours are surely and 36 possibly over"; !strings.Contains(got.Text, want) {
-				t.Errorf("got %q, want the reason %q in it", got.Text, want)
+			for _, want := range []string{"undecided: 0 hours are surely and 36 possibly over; 36 hours open: mostly 11 to 12 h all year", "of the limit."} {
+				if !strings.Contains(got.Text, want) {
+					t.Errorf("got %q, want the reason %q in it", got.Text, want)
+				}
 			}
 			if r.Outcome == verdict.Met {
 				t.Errorf("got the room met with an undecided view")
@@ -159,19 +161,24 @@ func TestRefineReplaces(t *testing.T) {
 	// Thirty hours lie at the limit with a wide error, six far above it with a
 	// value that no computation gives.
 	for i, m := range in.Climate.Moments {
-		v.DGP[m.Hour], v.StdErr[m.Hour] = float32(level.DGP), .01
+		v.DGP[m.Step], v.StdErr[m.Step] = float32(level.DGP), .01
 		if i < 6 {
-			v.DGP[m.Hour], v.StdErr[m.Hour] = .987, .001
+			v.DGP[m.Step], v.StdErr[m.Step] = .987, .001
 		}
 	}
+	// The worst hour so far is one of the thirty, which will fall below the six.
+	v.Worst.Moment = in.Climate.Moments[20]
 	if err := r.refine(context.Background(), in, opt, y); err != nil {
 		t.Fatal(err)
+	}
+	if w := v.Worst; w == nil || v.DGP[w.Moment.Step] != .987 || float32(w.DGP) != .987 || len(w.Lum) == 0 {
+		t.Errorf("worst hour: got %+v, want one of DGP 0.987 with its picture", w)
 	}
 	if v.Refined != 1 {
 		t.Errorf("got %d further looks, want 1", v.Refined)
 	}
 	for i, m := range in.Climate.Moments {
-		got, se := v.DGP[m.Hour], v.StdErr[m.Hour]
+		got, se := v.DGP[m.Step], v.StdErr[m.Step]
 		switch {
 		case i < 6 && (got != .987 || se != .001):
 			t.Errorf("hour %d, far from the limit: got %v +- %v, want it untouched", i, got, se)
@@ -183,16 +190,16 @@ func TestRefineReplaces(t *testing.T) {
 	}
 	// A view whose verdict is settled is left alone, open hours or not.
 	for i, m := range in.Climate.Moments {
-		v.DGP[m.Hour], v.StdErr[m.Hour] = .1, .001
+		v.DGP[m.Step], v.StdErr[m.Step] = .1, .001
 		if i < 10 { // fewer than 5 % of 365
-			v.DGP[m.Hour], v.StdErr[m.Hour] = float32(level.DGP), .01
+			v.DGP[m.Step], v.StdErr[m.Step] = float32(level.DGP), .01
 		}
 	}
 	v.Refined = 0
 	if err := r.refine(context.Background(), in, opt, y); err != nil {
 		t.Fatal(err)
 	}
-	if v.Refined != 0 || v.DGP[in.Climate.Moments[0].Hour] != float32(level.DGP) {
+	if v.Refined != 0 || v.DGP[in.Climate.Moments[0].Step] != float32(level.DGP) {
 		t.Errorf("a settled view was looked at again")
 	}
 }
@@ -211,6 +218,10 @@ func TestLooksArePaidFor(t *testing.T) {
 		if together := math.Pow(inside, float64(3*views)); math.Abs(together-confidence) > 1e-9 {
 			t.Errorf("%d views: z %.3f: three looks at each are right together with %.6f, want %.6f", views, z, together, confidence)
 		}
+		in.Scene.WorkPlanes = []scene.WorkPlane{{Sensors: make([]scene.Sensor, views)}}
+		if got := r.zSensors(); got != z {
+			t.Errorf("%d sensors: got z %.3f, want the %.3f of as many views", views, got, z)
+		}
 		if unpaid := verdict.T(confidence, views, in.Project.Simulation.Batches-1); !(z > 1.1*unpaid) {
 			t.Errorf("%d views: got z %.3f, want clearly more than the %.3f of a single look", views, z, unpaid)
 		}
@@ -222,7 +233,7 @@ func TestLooksArePaidFor(t *testing.T) {
 func TestSubset(t *testing.T) {
 	in := evenRoom(t, 1000)
 	in.Scene.Viewpoints = append(in.Scene.Viewpoints, scene.Viewpoint{Name: "other", Position: r3.Vec{X: 1, Y: 1, Z: 1.2}, Direction: r3.Vec{Y: 1}})
-	h := in.Climate.Moments[4].Hour
+	h := in.Climate.Moments[4].Step
 	seeds := map[uint64]bool{in.Project.Simulation.Seed: true}
 	before := *in.Project
 	for round, factor := 1, 4; round <= 2; round, factor = round+1, factor*4 {
@@ -230,7 +241,7 @@ func TestSubset(t *testing.T) {
 		if len(s.Scene.Viewpoints) != 1 || s.Scene.Viewpoints[0].Name != "other" || len(s.Scene.WorkPlanes) != 0 {
 			t.Errorf("round %d: got viewpoints %v and %d work planes, want the second viewpoint alone", round, s.Scene.Viewpoints, len(s.Scene.WorkPlanes))
 		}
-		if len(s.Climate.Moments) != 1 || s.Climate.Moments[0].Hour != h || len(s.Standings) != 1 || len(s.Standings[0].Moments) != 1 {
+		if len(s.Climate.Moments) != 1 || s.Climate.Moments[0].Step != h || len(s.Standings) != 1 || len(s.Standings[0].Moments) != 1 {
 			t.Errorf("round %d: got %d moments, want the open one", round, len(s.Climate.Moments))
 		}
 		a, b := s.Project.Simulation, in.Project.Simulation

@@ -3,6 +3,8 @@ package study
 import (
 	"math"
 	"testing"
+
+	"squint/scene"
 )
 
 // The bias is the root mean square over the hours bright enough to count;
@@ -29,7 +31,7 @@ func TestJudgeResolution(t *testing.T) {
 
 // An hour nearer to the limit than the bias is open however small its noise.
 func TestBiasKeepsHoursOpen(t *testing.T) {
-	r := &Result{Occupied: []int{0, 1, 2}}
+	r := &Result{Occupied: []int{0, 1, 2}, Climate: &scene.Climate{}}
 	v := &ViewResult{
 		DGP:    []float32{0.46, 0.5, 0},
 		StdErr: []float32{0.001, 0.001, 0},

@@ -5,7 +5,6 @@ import (
 	"fmt"
 	"strings"
 
-	"squint/glare/daylight"
 	"squint/scene"
 )
 
@@ -53,26 +52,19 @@ func skies(moments []*scene.Moment) string {
 	return digest(all)
 }
 
-// cellsOf groups the records by day of the week, holidays apart, hour of the
-// clock, and in use or not. Whatever hours of the week an occupancy has, its
-// worst hour is the worst of a cell.
+// cellsOf groups the steps by day of the week, holidays apart, hour of the
+// clock, and in use or not. Whatever full hours of the week an occupancy has, its
+// worst step is the worst of a cell.
 func cellsOf(in *Input) []int {
-	closed := map[int]bool{}
-	for _, h := range in.Calendar.Holidays {
-		if day, ok := h.YearDay(); ok {
-			closed[day] = true
-		}
-	}
-	used := in.Occupied.Mask()
-	cells := make([]int, daylight.HoursPerYear)
+	cells := make([]int, in.Calendar.Steps())
+	used := in.Occupied.Mask(len(cells))
 	for i := range cells {
-		clock := i%24 + int(in.Calendar.ClockShiftH(i/24))
-		day := (i/24 + clock/24) % 365
-		weekday := ((in.Calendar.FirstWeekday+day)%7 + 7) % 7
-		if closed[day] {
+		day, clock := in.Calendar.ClockAt(i)
+		weekday, holiday := in.Calendar.OnDay(day)
+		if holiday {
 			weekday = 7
 		}
-		cells[i] = 2 * (24*weekday + clock%24)
+		cells[i] = 2 * (24*weekday + int(clock))
 		if used[i] {
 			cells[i]++
 		}
@@ -88,7 +80,7 @@ func reuseYear(ctx context.Context, in *Input, opt Options, r *Result) (*year, e
 	y.glare.shots = opt.shots
 	place := map[int]int{}
 	for i, m := range in.Climate.Moments {
-		place[m.Hour] = i
+		place[m.Step] = i
 	}
 	total, before := 0, 0
 	for _, st := range in.Standings {

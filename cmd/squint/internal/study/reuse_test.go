@@ -41,10 +41,7 @@ func check(t *testing.T, store Store, opt Options, edits ...string) kept {
 	t.Helper()
 	text := fmt.Sprintf(tinyProject, 0.5) + secondView
 	for i := 0; i < len(edits); i += 2 {
-		if strings.Count(text, edits[i]) != 1 {
-			t.Fatalf("the project has %q %d times, want once", edits[i], strings.Count(text, edits[i]))
-		}
-		text = strings.Replace(text, edits[i], edits[i+1], 1)
+		text = replaceOnce(text, edits[i], edits[i+1])
 	}
 	return runKept(t, store, opt, prepared(t, fstest.MapFS{"project.toml": {Data: []byte(text)}, "room.obj": {Data: []byte(tinyRoom())}}))
 }
@@ -87,7 +84,7 @@ func (k kept) view(i int) string {
 	worst := *v.Worst
 	worst.Moment, worst.InsideOf = nil, nil
 	return digest(v.Viewpoint.Name, v.DGP, v.StdErr, v.Ev, v.EvErr, v.Coarse, v.Bias, v.InRange, v.Cause, v.Causes,
-		worst, v.Worst.Moment.Hour, v.Worst.InsideOf.View, v.Shots.Inside, v.Shots.Records, v.Shots.Film, v.Shots.Discs, v.Shots.Seen, v.Shots.SeenInside)
+		worst, v.Worst.Moment.Step, v.Worst.InsideOf.View, v.Shots.Inside, v.Shots.Records, v.Shots.Film, v.Shots.Discs, v.Shots.Stood[0].Seen, v.Shots.SeenInside)
 }
 
 func (k kept) plane(i int) string {
@@ -191,10 +188,10 @@ func TestReuseOtherHours(t *testing.T) {
 			if other == 0 {
 				t.Errorf("%v: the year of the other viewpoint passes for that of viewpoint %d", edits, i)
 			}
-			if w := got.r.Views[i].Worst; !slices.Contains(got.in.Occupied, w.Moment.Hour) {
-				t.Errorf("%v: the worst hour, %d, is out of use", edits, w.Moment.Hour)
+			if w := got.r.Views[i].Worst; !slices.Contains(got.in.Occupied, w.Moment.Step) {
+				t.Errorf("%v: the worst hour, %d, is out of use", edits, w.Moment.Step)
 			}
-			used := got.in.Occupied.Mask()
+			used := got.in.Occupied.Mask(got.in.Calendar.Steps())
 			for h, d := range got.r.Views[i].DGP {
 				if (d == d) != used[h] {
 					t.Fatalf("%v: hour %d: got DGP %v, in use %v", edits, h, d, used[h])
@@ -213,7 +210,7 @@ func TestReuseAgreesWithout(t *testing.T) {
 	with, without := check(t, memory{}, Options{}), check(t, nil, Options{})
 	for i, v := range with.r.Views {
 		w := without.r.Views[i]
-		if v.Worst.Moment.Hour != w.Worst.Moment.Hour || !slices.Equal(v.InRange, w.InRange) {
+		if v.Worst.Moment.Step != w.Worst.Moment.Step || !slices.Equal(v.InRange, w.InRange) {
 			t.Errorf("viewpoint %d: the worst hour or the range differs", i)
 		}
 		for h := range v.DGP {
@@ -332,7 +329,7 @@ func TestReuseOperated(t *testing.T) {
 		t.Errorf("the second run differs from the first")
 	}
 	want, got := runKept(t, memory{}, Options{}, room("0.5")), runKept(t, store, Options{}, room("0.5"))
-	if w, g := want.r.Views[0].Worst.Moment.Hour, got.r.Views[0].Worst.Moment.Hour; w != g {
+	if w, g := want.r.Views[0].Worst.Moment.Step, got.r.Views[0].Worst.Moment.Step; w != g {
 		t.Errorf("another limit: the worst hour is %d, want %d", g, w)
 	}
 	moved := 0

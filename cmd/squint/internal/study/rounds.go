@@ -105,7 +105,7 @@ func (o *operation) look(ctx context.Context, looks map[control.Combination]*loo
 // observed is what the viewpoints saw at a step, and through which groups of
 // openings what glared most.
 func (o *operation) observed(y *year, step int) control.Observed {
-	h := o.in.Climate.Moments[step].Hour
+	h := o.in.Climate.Moments[step].Step
 	seen := control.Observed{DGP: make([]float64, len(y.glare.views)), Through: make([][]string, len(y.glare.views))}
 	for i := range y.glare.views {
 		v := &y.glare.views[i]
@@ -161,7 +161,17 @@ func (o *operation) settled(ctx context.Context, looks map[control.Combination]*
 		return nil, err
 	}
 	opt.shots = nil
-	return whole, o.worstHours(ctx, whole, looks, chosen, opt)
+	at := make(map[int]control.Combination, len(chosen))
+	for i, c := range chosen {
+		at[o.in.Climate.Moments[i].Step] = c
+	}
+	all := make([]int, len(whole.glare.views))
+	for i := range all {
+		all[i] = i
+	}
+	return whole, whole.worstHours(ctx, o.in, opt, all, func(view, hour int) []*Worst {
+		return []*Worst{looks[at[hour]].year.glare.views[view].Worst}
+	})
 }
 
 // reshoot makes the small pictures anew of hours that were looked at last in
@@ -173,8 +183,8 @@ func (o *operation) reshoot(ctx context.Context, chosen []control.Combination, o
 	wrong := map[control.Combination][]*scene.Moment{}
 	var order []control.Combination
 	for i, m := range o.in.Climate.Moments {
-		frame := opt.shots.frame[m.Hour]
-		if !m.Occupied || frame < 0 || opt.shots.of[frame] == nil {
+		frame := opt.shots.frame[m.Step]
+		if frame < 0 || opt.shots.of[frame] == nil {
 			continue
 		}
 		st, err := o.stand(chosen[i])
@@ -210,7 +220,7 @@ func (y *year) adoptClear(o *operation, looks map[control.Combination]*look, cho
 	for i, m := range o.in.Clear {
 		c := chosen[0]
 		for k, s := range o.steps {
-			if s.Hour == m.Hour {
+			if s.At == m.Step {
 				c = chosen[k]
 			}
 		}
@@ -227,64 +237,6 @@ func (y *year) adoptClear(o *operation, looks map[control.Combination]*look, cho
 	}
 }
 
-// worstHours finds the picture of each view's worst hour as it was operated.
-func (o *operation) worstHours(ctx context.Context, y *year, looks map[control.Combination]*look, chosen []control.Combination, opt Options) error {
-	type missing struct {
-		views []int
-		hours map[int]bool
-	}
-	again := map[control.Combination]*missing{}
-	var order []control.Combination
-	for i := range y.glare.views {
-		v := &y.glare.views[i]
-		worst := -1
-		for k, m := range o.in.Climate.Moments {
-			if m.Occupied && (worst < 0 || v.DGP[m.Hour] > v.DGP[o.in.Climate.Moments[worst].Hour]) {
-				worst = k
-			}
-		}
-		if worst < 0 {
-			continue
-		}
-		c, h := chosen[worst], o.in.Climate.Moments[worst].Hour
-		if w := looks[c].year.glare.views[i].Worst; w != nil && w.Moment.Hour == h {
-			v.Worst = w
-			continue
-		}
-		if again[c] == nil {
-			again[c] = &missing{hours: map[int]bool{}}
-			order = append(order, c)
-		}
-		again[c].views = append(again[c].views, i)
-		again[c].hours[h] = true
-	}
-	for _, c := range order {
-		st, err := o.stand(c)
-		if err != nil {
-			return err
-		}
-		st.Moments = o.in.Climate.Moments
-		sub := *o.in
-		sub.Standings = []Standing{st}
-		few := subset(&sub, again[c].views, again[c].hours, 1, 0)
-		few.Project = o.in.Project // the same streams: the same picture as that of the series
-		y2, err := computeYear(ctx, few, opt, &Result{})
-		if err != nil {
-			return err
-		}
-		for k, i := range again[c].views {
-			v, w := &y.glare.views[i], y2.glare.views[k].Worst
-			if w == nil {
-				continue
-			}
-			v.Worst = w
-			h := w.Moment.Hour
-			w.DGP, w.StdErr, w.Ev = float64(v.DGP[h]), float64(v.StdErr[h]), float64(v.Ev[h])
-		}
-	}
-	return nil
-}
-
 // adopt takes over the values of some moments.
 func (y *year) adopt(from *year, in *Input, moments []*scene.Moment) {
 	at := make(map[*scene.Moment]int, len(in.Climate.Moments))
@@ -299,11 +251,11 @@ func (y *year) adopt(from *year, in *Input, moments []*scene.Moment) {
 	}
 	for i := range y.glare.views {
 		a, b := &y.glare.views[i], &from.glare.views[i]
-		if a.Worst == nil || b.Worst != nil && b.Worst.DGP > a.Worst.DGP {
+		if b.Worst != nil && brighter(b.Worst.DGP, b.Worst.Moment.Step, a.Worst) {
 			a.Worst = b.Worst
 		}
 		for _, m := range moments {
-			h := m.Hour
+			h := m.Step
 			a.DGP[h], a.StdErr[h], a.Ev[h], a.EvErr[h], a.InRange[h] = b.DGP[h], b.StdErr[h], b.Ev[h], b.EvErr[h], b.InRange[h]
 			a.Coarse[h], a.Bias[h], a.Cause[h] = b.Coarse[h], b.Bias[h], -1
 			if b.Cause[h] >= 0 {

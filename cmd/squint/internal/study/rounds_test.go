@@ -3,6 +3,7 @@ package study
 import (
 	"fmt"
 	"math"
+	"strings"
 	"testing"
 	"testing/fstest"
 )
@@ -32,8 +33,18 @@ drawn = false
 // value with it drawn; light on the desks goes with it. Both are computed as
 // projects of their own.
 func TestOperatedYear(t *testing.T) {
+	for _, stepMin := range []int{60, 15} {
+		if stepMin < 60 && testing.Short() {
+			continue
+		}
+		t.Run(fmt.Sprint(stepMin), func(t *testing.T) { testOperatedYear(t, stepMin) })
+	}
+}
+
+func testOperatedYear(t *testing.T, stepMin int) {
 	run := func(more string) *Result {
 		fsys := operatedRoom(more)
+		fsys["project.toml"].Data = []byte(replaceOnce(string(fsys["project.toml"].Data), "[simulation]", fmt.Sprintf("[simulation]\nstep_min = %d", stepMin)))
 		fsys["site.epw"] = &fstest.MapFile{Data: tinyYear(t)}
 		in, err := prepareFile(fsys, "project.toml", "", 2)
 		if err != nil {
@@ -54,7 +65,7 @@ func TestOperatedYear(t *testing.T) {
 	var light, all float64
 	worst := float32(0)
 	for _, m := range open.Climate.Moments {
-		h := m.Hour
+		h := m.Step
 		want, state := open, "roller: raised"
 		if m.Occupied && open.Views[0].DGP[h] > limit {
 			want, state = drawn, "roller: drawn"
@@ -83,8 +94,8 @@ func TestOperatedYear(t *testing.T) {
 	}
 	// Hours of use in the dark count as shaded by no one.
 	g := led.Operation.Groups[0]
-	if len(led.Operation.Groups) != 1 || len(g.States) != 2 || g.States[1].InUseH != float64(closed) {
-		t.Errorf("group: got %+v, want %d hours drawn", g, closed)
+	if len(led.Operation.Groups) != 1 || len(g.States) != 2 || g.States[1].InUseH != open.Calendar.InHours(closed) {
+		t.Errorf("group: got %+v, want %g hours drawn", g, open.Calendar.InHours(closed))
 	}
 	if want := float64(closed) / float64(hours) * (1 - 0.03); math.Abs(g.ViewLost-want) > 1e-9 {
 		t.Errorf("view lost: got %g, want %g", g.ViewLost, want)
@@ -92,17 +103,15 @@ func TestOperatedYear(t *testing.T) {
 	if want := 1 - light/all; math.Abs(led.Operation.LightLost-want) > 1e-6 || want <= 0 {
 		t.Errorf("light lost: got %g, want %g", led.Operation.LightLost, want)
 	}
-	if w := led.Views[0].Worst; w == nil || float32(w.DGP) != worst || led.Views[0].DGP[w.Moment.Hour] != worst {
+	if w := led.Views[0].Worst; w == nil || float32(w.DGP) != worst || led.Views[0].DGP[w.Moment.Step] != worst {
 		t.Errorf("worst hour: got %+v, want DGP %g", w, worst)
 	}
 }
 
+// replaceOnce edits a project's text, in which the old words stand once.
 func replaceOnce(text, from, to string) string {
-	p := len(text) - len(from)
-	for i := 0; i <= p; i++ {
-		if text[i:i+len(from)] == from {
-			return text[:i] + to + text[i+len(from):]
-		}
+	if n := strings.Count(text, from); n != 1 {
+		panic(fmt.Sprintf("the project has %q %d times, want once", from, n))
 	}
-	panic("test text lacks " + from)
+	return strings.Replace(text, from, to, 1)
 }

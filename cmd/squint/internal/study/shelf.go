@@ -28,13 +28,13 @@ type shelf struct {
 func newShelf(in *Input, k int, opt Options) *shelf {
 	s := &shelf{opt: opt, in: in, st: &in.Standings[k], lackHours: map[int]bool{}, seenHours: map[int]bool{}}
 	for _, m := range s.st.Moments {
-		s.hours = append(s.hours, m.Hour)
+		s.hours = append(s.hours, m.Step)
 		if m.Occupied {
-			s.used = append(s.used, m.Hour)
+			s.used = append(s.used, m.Step)
 		}
 	}
 	for _, m := range in.Clear {
-		if in.standingAt(m.Hour) == k {
+		if in.standingAt(m.Step) == k {
 			s.clear = append(s.clear, m)
 		}
 	}
@@ -43,7 +43,7 @@ func newShelf(in *Input, k int, opt Options) *shelf {
 	bare := *s.st.Scene
 	bare.Project, bare.Viewpoints, bare.WorkPlanes, bare.Meshes, bare.Notes = nil, nil, nil, nil, nil
 	room := digest(opt.Program, bvh.Kernel(), bare, in.Project.Simulation, opt.skies)
-	if room == "" || opt.skies == "" {
+	if room == "" || opt.skies == "" || digest(in.Clear) == "" {
 		s.opt.Store = nowhere{} // something has no digest
 	}
 	for i, v := range s.st.Scene.Viewpoints {
@@ -69,15 +69,34 @@ func (s *shelf) pixels() int {
 	return s.opt.shots.pixels
 }
 
+// pictured are the hours in use of which a picture of view i may be kept.
+func (s *shelf) pictured(i int) []int {
+	if s.opt.keep == nil {
+		return s.used
+	}
+	var list []int
+	for _, h := range s.used {
+		if s.opt.keep(i, h) {
+			list = append(list, h)
+		}
+	}
+	return list
+}
+
 func (s *shelf) missingView(i int) {
 	x := s.views[i]
 	missing := false
 	for _, h := range s.used {
-		if !x.known(h, s.pixels()) {
+		if !x.known(h, s.pixels(), true) {
 			missing, s.lackHours[h], s.seenHours[h] = true, true, true
 		}
 	}
-	if !missing && !s.opt.anyWorst && len(s.used) > 0 && x.top(s.used) == nil {
+	for _, h := range s.hours {
+		if s.opt.shots != nil && s.opt.shots.frame[h] >= 0 && !x.known(h, s.pixels(), false) {
+			missing, s.lackHours[h] = true, true
+		}
+	}
+	if used := s.pictured(i); !missing && !s.opt.anyWorst && len(used) > 0 && x.top(used) == nil {
 		missing = true
 		for _, h := range s.used {
 			s.lackHours[h], s.seenHours[h] = true, true
@@ -97,7 +116,7 @@ func (s *shelf) missingPlane(i int) {
 		}
 	}
 	for _, m := range s.clear {
-		missing = missing || x.clear(digest(*m)) == nil
+		missing = missing || x.clear(clearName(s.in, m)) == nil
 	}
 	if missing {
 		s.lackPlanes = append(s.lackPlanes, i)
@@ -113,9 +132,9 @@ func (s *shelf) compute(ctx context.Context, r *Result) error {
 	c := *s.in.Climate
 	c.Moments = nil
 	for _, m := range s.st.Moments {
-		if s.lackHours[m.Hour] {
+		if s.lackHours[m.Step] {
 			open := *m
-			open.Occupied = s.seenHours[m.Hour]
+			open.Occupied = s.seenHours[m.Step]
 			c.Moments = append(c.Moments, &open)
 		}
 	}
@@ -127,9 +146,12 @@ func (s *shelf) compute(ctx context.Context, r *Result) error {
 	sub.Standings = []Standing{{Label: s.st.Label, World: s.st.World, Scene: sub.Scene, Moments: c.Moments}}
 	opt := s.opt
 	opt.Store = nil
+	if opt.keep != nil {
+		opt.keep = func(j, h int) bool { return s.opt.keep(s.lackViews[j], h) }
+	}
 	if opt.shots != nil {
 		all := newShotPlan(&sub)
-		all.pixels, all.rank = opt.shots.pixels, opt.shots.rank
+		all.pixels = opt.shots.pixels
 		opt.shots = all
 	}
 	var own Result
@@ -162,10 +184,14 @@ func (s *shelf) compute(ctx context.Context, r *Result) error {
 		r.traced.views[i] = true
 	}
 	first := 0
+	var clear []string
+	for _, m := range sub.Clear {
+		clear = append(clear, clearName(s.in, m))
+	}
 	for _, i := range s.lackPlanes {
 		r.traced.planes[i] = true
 		n := len(s.st.Scene.WorkPlanes[i].Sensors)
-		s.planes[i].learn(y, first, n, c.Moments, sub.Clear, &own.Settings)
+		s.planes[i].learn(y, first, n, c.Moments, clear, &own.Settings)
 		first += n
 		save(s, s.planes[i].Key, s.planes[i], r, &one)
 	}

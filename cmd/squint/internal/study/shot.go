@@ -57,10 +57,7 @@ func (s *Shot) judge() {
 	field := glare.NewField(s.View)
 	opt := sourceOptions(s.Project.Criteria)
 	var scratch glare.Scratch
-	var discs []glare.Disc
-	for _, d := range s.Discs {
-		discs = append(discs, glare.Disc{Dir: s.View.Local(d.Dir), OmegaSr: d.OmegaSr, Luminance: d.Luminance})
-	}
+	discs := toView(nil, s.View, s.Discs)
 	r := glare.Evaluate(field, s.Picture.Mean, discs, opt, &scratch)
 	s.Glare = &r
 	_, _, s.DGPError, _ = glare.Pooled(field, s.Picture.Mean, s.Picture.Batch, discs, opt, 0, &scratch)

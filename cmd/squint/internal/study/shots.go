@@ -3,6 +3,7 @@ package study
 import (
 	"context"
 	"math"
+	"slices"
 
 	"squint/cmd/squint/internal/film"
 	"squint/scene"
@@ -11,8 +12,9 @@ import (
 	"squint/trace/coeff"
 )
 
-// Shots are small pictures of a view's hours in use with daylight, for display
-// only: luminance, cd/m2, without the sun's discs.
+// Shots are small pictures of a view's hours with daylight, for display only:
+// luminance, cd/m2, without the sun's discs. Hours out of use are among them
+// where the views are few, from one batch of samples.
 type Shots struct {
 	View    view.View // of the pictures
 	Inside  []int32   // by point of the film: pixel, row-major
@@ -20,13 +22,40 @@ type Shots struct {
 	Film    *film.Film
 	Discs   [][]annual.Disc // by frame
 
-	// Seen says what stands in the pixels of Eye, by position in SeenInside.
+	// Small are pictures of the hours in use, of half as many pixels across and
+	// with fewer patterns; nil where the pixels are few already.
+	Small *Small
+
+	// Stood says what stands in the pixels of Eye, by position in SeenInside: in
+	// the first standings of which there are pictures.
 	Eye        view.View
-	Seen       []coeff.Seen
+	Stood      []Stood
 	SeenInside []int32
 
 	roll    *film.Roll
 	shrinks []shrink
+}
+
+// Small are smaller pictures.
+type Small struct {
+	View    view.View
+	Inside  []int32 // by point of the film: pixel, row-major
+	Records []int   // by frame
+	Film    *film.Film
+	Discs   [][]annual.Disc // by frame
+}
+
+// leastHalved is the width from which pictures are halved, in pixels. Own choice.
+const leastHalved = 32
+
+// smallRank is the number of their patterns. Own choice.
+const smallRank = 6
+
+// Stood is what a view sees in one standing. The numbers of parts are those of
+// its scene; another standing's scene has others.
+type Stood struct {
+	Scene *scene.Scene
+	Seen  []coeff.Seen
 }
 
 // shrink moves a share of a pixel of the eye to a point of the picture.
@@ -46,29 +75,38 @@ const (
 	mostShown  = 1e6
 )
 
-// Sizes of the pictures by the number of views: across, in pixels, and the
-// patterns that they are made of. What they are kept in must fit beside the
-// rest, and the page must not grow without bound. Own choice.
-var shotSizes = []struct{ views, pixels, rank int }{
-	{16, 48, 12},
-	{48, 32, 10},
-	{math.MaxInt, 24, 8},
+// Sizes of the pictures by the number of views: across, in pixels, the patterns
+// that they are made of, of how many standings it is kept what is seen, and
+// whether there are pictures of hours out of use. What they are kept in must fit
+// beside the rest, and the page must not grow without bound. Own choice.
+var shotSizes = []struct {
+	views, pixels, rank, stood int
+	always                     bool
+}{
+	{16, 48, 12, 16, true},
+	{48, 32, 10, 8, true},
+	{math.MaxInt, 24, 8, 2, false},
 }
 
 // shotPlan says which frames there are and how large they are.
 type shotPlan struct {
-	pixels, rank int
-	records      []int
-	frame        []int          // by record, -1 for none
-	kept         []*Shots       // by view; nil where it has no frame yet
-	of           []*scene.Scene // by frame: of which standing the picture is
+	pixels, rank, stood int
+	always              bool // at hours out of use too
+	records             []int
+	frame               []int          // by record, -1 for none
+	used                []bool         // by record
+	kept                []*Shots       // by view; nil where it has no frame yet
+	of                  []*scene.Scene // by frame: of which standing the picture is
 }
 
+// newShotPlan plans for the moments in use, and where the views are few for all.
 func newShotPlan(in *Input) *shotPlan {
-	s := &shotPlan{frame: make([]int, len(in.Climate.SinAltitude))}
+	n := len(in.Climate.SinAltitude)
+	s := &shotPlan{frame: make([]int, n), used: make([]bool, n)}
 	for _, size := range shotSizes {
 		if len(in.Scene.Viewpoints) <= size.views {
-			s.pixels, s.rank = min(size.pixels, in.Project.Simulation.FisheyePixels), size.rank
+			s.pixels, s.rank, s.stood = min(size.pixels, in.Project.Simulation.FisheyePixels), size.rank, size.stood
+			s.always = size.always
 			break
 		}
 	}
@@ -76,9 +114,10 @@ func newShotPlan(in *Input) *shotPlan {
 		s.frame[i] = -1
 	}
 	for _, m := range in.Climate.Moments {
-		if m.Occupied {
-			s.frame[m.Hour] = len(s.records)
-			s.records = append(s.records, m.Hour)
+		s.used[m.Step] = m.Occupied
+		if m.Occupied || s.always {
+			s.frame[m.Step] = len(s.records)
+			s.records = append(s.records, m.Step)
 		}
 	}
 	s.kept, s.of = make([]*Shots, len(in.Scene.Viewpoints)), make([]*scene.Scene, len(s.records))
@@ -87,7 +126,7 @@ func newShotPlan(in *Input) *shotPlan {
 
 // open makes room for one view's pictures.
 func (s *shotPlan) open(e *coeff.Eye) *Shots {
-	x := &Shots{Records: s.records, Discs: make([][]annual.Disc, len(s.records)), Eye: e.View, Seen: e.Seen, SeenInside: e.Inside, View: e.View}
+	x := &Shots{Records: s.records, Discs: make([][]annual.Disc, len(s.records)), Eye: e.View, SeenInside: e.Inside, View: e.View}
 	x.View.Width, x.View.Height = s.pixels, s.pixels
 	x.shrink(e)
 	x.roll = film.NewRoll(len(x.Inside), len(s.records), leastShown, mostShown)
@@ -146,8 +185,54 @@ func (x *Shots) keep(frame int, f *annual.Frame, w *shotScratch) {
 		all[s.to] += f.Mean[s.from] * s.weight
 		sun[s.to] += f.Sunlit[s.from] * s.weight
 	}
-	x.roll.Keep(frame, all, sun)
+	x.roll.Keep(frame, all, sun, SunFrom(f.Moment)/math.Pi)
 	x.Discs[frame] = append([]annual.Disc(nil), f.Discs...)
+}
+
+// What of the sun's illuminance on a plane that faces it is kept apart from the
+// rest, for suns of so many lx: less is what half a pixel's edge catches, or a
+// cloudy sky hides. Own choice.
+const (
+	sunPart = 0.02
+	sunnyLx = 1000
+)
+
+// SunFrom is the illuminance, lx, from which pictures keep the sun's part at a
+// moment apart; none of it where the sun is weak.
+func SunFrom(m *scene.Moment) float64 {
+	if m.SunNormalLx < sunnyLx {
+		return math.Inf(1)
+	}
+	return sunPart * m.SunNormalLx
+}
+
+// half makes the smaller pictures.
+func (x *Shots) half(used []bool) *Small {
+	if x.View.Width%2 != 0 || x.View.Width < leastHalved {
+		return nil
+	}
+	s := &Small{View: x.View}
+	s.View.Width, s.View.Height = x.View.Width/2, x.View.Height/2
+	place := map[int32]int{}
+	var groups [][]uint16
+	for p, px := range x.Inside {
+		at := px/int32(x.View.Width)/2*int32(s.View.Width) + px%int32(x.View.Width)/2
+		g, ok := place[at]
+		if !ok {
+			g = len(groups)
+			place[at], groups, s.Inside = g, append(groups, nil), append(s.Inside, at)
+		}
+		groups[g] = append(groups[g], uint16(p))
+	}
+	var frames []int
+	for i, h := range x.Records {
+		if used[h] {
+			frames = append(frames, i)
+			s.Records, s.Discs = append(s.Records, h), append(s.Discs, x.Discs[i])
+		}
+	}
+	s.Film = x.roll.Merged(frames, groups).Develop(smallRank, film.Coarse)
+	return s
 }
 
 // keepShot stores a frame where pictures are asked for; a later one of the same
@@ -156,20 +241,27 @@ func (g *standingSink) keepShot(w *sinkScratch, e *coeff.Eye, f *annual.Frame) {
 	if g.shots == nil {
 		return
 	}
-	frame := g.shots.frame[f.Moment.Hour]
+	frame := g.shots.frame[f.Moment.Step]
+	if frame < 0 {
+		return
+	}
 	g.mu[f.Eye].Lock()
-	x := g.shots.opened(f.Eye, e)
+	x := g.shots.opened(f.Eye, e, g.scene)
 	g.shots.of[frame] = g.scene
 	g.mu[f.Eye].Unlock()
 	x.keep(frame, f, &w.shot)
 }
 
 // opened are the pictures of a view, which begin with its first frame.
-func (s *shotPlan) opened(view int, e *coeff.Eye) *Shots {
+func (s *shotPlan) opened(view int, e *coeff.Eye, of *scene.Scene) *Shots {
 	if s.kept[view] == nil {
 		s.kept[view] = s.open(e)
 	}
-	return s.kept[view]
+	x := s.kept[view]
+	if len(x.Stood) < s.stood && !slices.ContainsFunc(x.Stood, func(k Stood) bool { return k.Scene == of }) {
+		x.Stood = append(x.Stood, Stood{of, e.Seen})
+	}
+	return x
 }
 
 // develop reduces the pictures and lets go of what they were kept in.
@@ -181,7 +273,7 @@ func (g *glareSink) develop(ctx context.Context, opt Options) error {
 		x := opt.shots.kept[i]
 		g.views[i].Shots = x
 		if x != nil {
-			x.Film = x.roll.Develop(opt.shots.rank)
+			x.Film, x.Small = x.roll.Develop(opt.shots.rank, film.Fine), x.half(opt.shots.used)
 			x.roll, x.shrinks = nil, nil
 		}
 		return nil

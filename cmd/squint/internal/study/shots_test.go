@@ -11,6 +11,8 @@ import (
 
 	"gonum.org/v1/gonum/spatial/r3"
 
+	"squint/cmd/squint/internal/film"
+	"squint/scene"
 	"squint/scene/view"
 	"squint/trace/annual"
 	"squint/trace/coeff"
@@ -39,9 +41,9 @@ func TestShotsShowTheWorstHour(t *testing.T) {
 	if s == nil || s.Film == nil {
 		t.Fatal("got no pictures, want those of one view")
 	}
-	frame := slices.Index(s.Records, v.Worst.Moment.Hour)
+	frame := slices.Index(s.Records, v.Worst.Moment.Step)
 	if frame < 0 {
-		t.Fatalf("record %d has no picture", v.Worst.Moment.Hour)
+		t.Fatalf("record %d has no picture", v.Worst.Moment.Step)
 	}
 	if s.View.Width != v.Worst.InsideOf.View.Width {
 		t.Fatalf("got pictures of %d pixels, want the view's own %d, as it has fewer than the pictures may have", s.View.Width, v.Worst.InsideOf.View.Width)
@@ -56,7 +58,7 @@ func TestShotsShowTheWorstHour(t *testing.T) {
 	}
 	slices.Sort(off)
 	// The film's own error, and half a step of the scale in which it was kept.
-	bound := s.Film.WideError + math.Expm1(s.Film.StepLn/2)
+	bound := s.Film.Exact().Wide + math.Expm1(s.Film.StepLn/2)
 	if got := off[len(off)/2]; got > bound {
 		t.Errorf("worst hour: half of the points are off by %.3f or more, want at most %.3f", got, bound)
 	}
@@ -64,7 +66,7 @@ func TestShotsShowTheWorstHour(t *testing.T) {
 		t.Errorf("got %d discs, want %d", len(s.Discs[frame]), len(v.Worst.Discs))
 	}
 	// The twin: another hour's picture is not this one.
-	other := slices.IndexFunc(s.Records, func(h int) bool { return v.Ev[h] > 0 && v.Ev[h] < v.Ev[v.Worst.Moment.Hour]/2 })
+	other := slices.IndexFunc(s.Records, func(h int) bool { return v.Ev[h] > 0 && v.Ev[h] < v.Ev[v.Worst.Moment.Step]/2 })
 	if other < 0 {
 		t.Fatal("all hours are alike in this year: the twin sees nothing")
 	}
@@ -91,14 +93,14 @@ func TestShotsShrink(t *testing.T) {
 		e.Inside = append(e.Inside, int32(i)) // a square keeps the sums plain
 	}
 	x := (&shotPlan{pixels: 6, records: []int{0}}).open(e)
-	f := &annual.Frame{Mean: make([]float32, 64), Sunlit: make([]float32, 64)}
+	f := &annual.Frame{Moment: &scene.Moment{}, Mean: make([]float32, 64), Sunlit: make([]float32, 64)}
 	for i := range f.Mean {
 		f.Mean[i] = 100
 	}
 	f.Mean[0] = 500
 	x.keep(0, f, &shotScratch{})
 	out := make([]float64, 36)
-	x.roll.Develop(4).At(0, out)
+	x.roll.Develop(4, film.Fine).At(0, out)
 	step := math.Log(mostShown/leastShown) / 255
 	for p, px := range x.Inside {
 		want := 100.0
@@ -107,6 +109,66 @@ func TestShotsShrink(t *testing.T) {
 		}
 		if math.Abs(math.Log(out[p]/want)) > 0.6*step {
 			t.Errorf("pixel %d: got %.1f, want %.1f", px, out[p], want)
+		}
+	}
+}
+
+// A roller that is drawn at some hours has parts that the raised one lacks: what
+// a view sees is told for each standing, in the numbers of that standing's own
+// scene. With a store, which opens eyes at all hours with daylight, hours out of
+// use have pictures too; without one they have none.
+func TestShotsOfWhatMoves(t *testing.T) {
+	fsys := operatedRoom(operatedRoller + "[[control]]\nname = \"by glare\"\nsystems = [\"roller\"]\nrule = \"glare\"\ndgp_limit = 0.4\nhysteresis = 0\n")
+	fsys["site.epw"] = &fstest.MapFile{Data: tinyYear(t)}
+	for _, store := range []Store{nil, memory{}} {
+		in, err := prepareFile(fsys, "project.toml", "", 2)
+		if err != nil {
+			t.Fatal(err)
+		}
+		in.Project.Criteria.Glare = "none" // no closer looks
+		r, err := Run(t.Context(), in, Options{Workers: 2, Shots: true, Store: store, Program: "test", Bare: true})
+		if err != nil {
+			t.Fatal(err)
+		}
+		s := r.Views[0].Shots
+		if len(r.Stood) != 2 || len(s.Stood) != 2 {
+			t.Fatalf("got %d standings and what is seen in %d of them, want 2", len(r.Stood), len(s.Stood))
+		}
+		drawn := 0
+		for _, k := range s.Stood {
+			i := slices.Index(r.Stood, k.Scene)
+			if i < 0 {
+				t.Fatal("got a scene that is none of the result's")
+			}
+			found := false
+			for _, x := range k.Seen {
+				// The cloth lets some of the sight through: it is looked at or looked through.
+				for _, part := range []int32{x.Part, x.Via} {
+					found = found || part >= 0 && strings.HasPrefix(k.Scene.Parts[part].Name, "roller")
+				}
+			}
+			if want := r.Standings[i] == "roller: drawn"; found != want {
+				t.Errorf("%s: the roller is seen: got %v, want %v", r.Standings[i], found, want)
+			} else if want {
+				drawn++
+			}
+		}
+		if drawn != 1 {
+			t.Errorf("got %d standings with the roller drawn, want 1", drawn)
+		}
+		want := len(r.Climate.Moments)
+		if len(s.Records) != want {
+			t.Errorf("got pictures of %d hours, want %d", len(s.Records), want)
+		}
+		for i, h := range s.Records {
+			if f := s.Film; f.Frames != want || f.Points == 0 {
+				t.Fatalf("film: got %d frames of %d points, want %d", f.Frames, f.Points, want)
+			}
+			shown := make([]float64, s.Film.Points)
+			s.Film.At(i, shown)
+			if slices.Max(shown) <= 1 && r.Climate.SinAltitude[h] > 0.2 {
+				t.Errorf("record %d: got a black picture, want one of a room in daylight", h)
+			}
 		}
 	}
 }

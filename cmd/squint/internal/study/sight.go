@@ -19,8 +19,8 @@ import (
 type Sight struct {
 	Name  string // of the systems, "light shelves" or that of one that moves
 	State string // the most closed one, of what moves
-	// TopM is the height of a shelf's top above the floor, the lowest and the
-	// highest of several; NaN for what moves.
+	// LowM and HighM are the heights of the lowest and the highest shelf's top
+	// above the floor; NaN for what moves.
 	LowM, HighM float64
 	// Taken is the share of the view out that is lost, by viewpoint: that
 	// through all openings as the viewpoint sees them. NaN where it sees none.
@@ -30,7 +30,8 @@ type Sight struct {
 	Factor float64
 }
 
-// sightCells is the number of lines of sight along each side of an opening.
+// sightCells is the number of lines of sight along each side of an opening; own
+// choice: what is taken is told in per cent, and is good to a row of them.
 const sightCells = 24
 
 // sights looks at shelves, which the open scene has and a scene without them
@@ -45,8 +46,11 @@ func sights(ctx context.Context, fsys fs.FS, in *Input, opt Options) ([]Sight, e
 	for _, m := range moving {
 		open[m.Name] = m.OpenToClosed()[0]
 	}
-	with, err := worldOf(fsys, project.WithStates(p, open), opt.Workers)
-	if err != nil {
+	var with *trace.World
+	var err error
+	if in.operation != nil {
+		with = in.operation.open
+	} else if with, err = worldOf(fsys, project.WithStates(p, open), opt.Workers); err != nil {
 		return nil, err
 	}
 	var list []Sight
@@ -118,7 +122,7 @@ func (c *closing) words() string {
 	if len(c.names) == 1 {
 		return c.names[0]
 	}
-	return fmt.Sprintf("%s and %s more", c.names[0], fmt.Sprint(len(c.names)-1))
+	return fmt.Sprintf("%s and %d more", c.names[0], len(c.names)-1)
 }
 
 func worldOf(fsys fs.FS, p *project.Project, workers int) (*trace.World, error) {

@@ -6,7 +6,6 @@ import (
 	"gonum.org/v1/gonum/spatial/r3"
 
 	"squint/glare/control"
-	"squint/glare/daylight"
 	"squint/scene"
 	"squint/scene/project"
 	"squint/scene/system"
@@ -58,16 +57,17 @@ func stateUnder(f project.Movable, rect system.Rect, m *scene.Moment) string {
 	return f.States[f.FollowFrom+f.Follow.Choose(sun, rect)]
 }
 
-// standingByHour are the labels and which of them holds at each record.
-func standingByHour(all []Standing) (labels []string, at []int16) {
-	at = make([]int16, daylight.HoursPerYear)
+// standingByStep are the labels and which of them holds at each of the year's n
+// steps.
+func standingByStep(all []Standing, n int) (labels []string, at []int16) {
+	at = make([]int16, n)
 	for h := range at {
 		at[h] = -1
 	}
 	for k, s := range all {
 		labels = append(labels, s.Label)
 		for _, m := range s.Moments {
-			at[m.Hour] = int16(k)
+			at[m.Step] = int16(k)
 		}
 	}
 	return labels, at

@@ -22,7 +22,7 @@ type Options struct {
 	Workers int // threads; results do not depend on it
 	// Progress, if not nil, hears of each stage's work done.
 	Progress func(stage Stage, done, total int)
-	// Shots keeps small pictures of every view's hours in use, for display.
+	// Shots keeps small pictures of every view's hours, for display.
 	Shots bool
 	// Bare leaves out what no verdict needs: what systems take of the view out,
 	// and sun that mirrors concentrate.
@@ -38,6 +38,8 @@ type Options struct {
 	cells   []int  // by record: the brightest frame of each cell is kept
 	// anyWorst lets the worst hour's picture be missing where the rest is known.
 	anyWorst bool
+	// keep, if not nil, says of which hours of a view a picture may be kept.
+	keep func(view, hour int) bool
 }
 
 // Stage names a part of the run.
@@ -86,8 +88,9 @@ type Result struct {
 	// where nothing does.
 	Operation *control.Report
 	// Standings are the labels of the combinations of positions, and Standing
-	// the index among them by record; -1 without daylight.
+	// the index among them by record; -1 without daylight. Stood are their scenes.
 	Standings []string
+	Stood     []*scene.Scene
 	Standing  []int16
 
 	// Hazard is nil where nothing but panes mirrors or shines.
@@ -128,7 +131,8 @@ type Input struct {
 	Climate *scene.Climate
 	World   *trace.World
 	// Standings are the ways in which the movable systems stand; each has its
-	// own moments. Scene and World are those of the first.
+	// own moments, and where glare decides they change as the year is computed.
+	// Scene and World are those of the project as it is written.
 	Standings []Standing
 	fsys      fs.FS
 	operation *operation // nil where everything stands as the project says
@@ -143,9 +147,6 @@ type Input struct {
 // Prepare reads everything that a project names and checks it. Errors are the
 // user's to mend, all of them joined.
 func Prepare(fsys fs.FS, p *project.Project, workers int) (*Input, error) {
-	if err := operated(p); err != nil {
-		return nil, err
-	}
 	s, err := scene.Build(fsys, p)
 	if err != nil {
 		return nil, err
@@ -165,16 +166,13 @@ func Prepare(fsys fs.FS, p *project.Project, workers int) (*Input, error) {
 	in.Calendar = calendar(p, c)
 	in.Occupied = in.Calendar.Occupied()
 	in.Clock = in.Calendar.Clock(8, 18)
-	in.Daylight = daylight.SunHighest(c.SinAltitude, daylight.DaylightHoursPerYear)
+	in.Daylight = daylight.SunHighest(c.SinAltitude, daylight.DaylightHoursPerYear*c.PerHour())
 	if len(in.Occupied) == 0 {
 		return nil, fmt.Errorf("%s: occupancy: got no hour of use, want at least one; check days, from, to and holidays", p.File)
 	}
-	used := make([]bool, daylight.HoursPerYear)
-	for _, h := range in.Occupied {
-		used[h] = true
-	}
+	used := in.Occupied.Mask(in.Calendar.Steps())
 	for _, m := range c.Moments {
-		m.Occupied = used[m.Hour]
+		m.Occupied = used[m.Step]
 	}
 	if in.Clear, err = clearMoments(p, c, in.Calendar); err != nil {
 		return nil, err
@@ -198,19 +196,12 @@ func Prepare(fsys fs.FS, p *project.Project, workers int) (*Input, error) {
 	return in, nil
 }
 
-// operated refuses what the file may say but a study does not do yet.
-func operated(p *project.Project) error {
-	if n := p.Simulation.StepMin; n != 60 {
-		return fmt.Errorf("%s: simulation.step_min: got %d, which a check does not take yet; want 60, or leave it out", p.File, n)
-	}
-	return nil
-}
-
 // calendar translates the project's occupancy.
 func calendar(p *project.Project, c *scene.Climate) daylight.Calendar {
 	first := c.Year.Moment(0, -0.5)
 	jan1 := time.Date(first.Year(), 1, 1, 0, 0, 0, 0, time.UTC)
 	k := daylight.Calendar{
+		PerHour:      c.PerHour(),
 		FirstWeekday: (int(jan1.Weekday()) + 6) % 7,
 		Days:         p.Occupancy.Days,
 		FromH:        p.Occupancy.FromH,
@@ -267,8 +258,14 @@ func Run(ctx context.Context, in *Input, opt Options) (*Result, error) {
 	if opt.Store != nil {
 		r.Reused = r.traced.words(in.Scene)
 	}
-	r.Standings, r.Standing = standingByHour(in.Standings)
+	r.Standings, r.Standing = standingByStep(in.Standings, in.Calendar.Steps())
+	for _, s := range in.Standings {
+		r.Stood = append(r.Stood, s.Scene)
+	}
 	if err := r.refine(ctx, in, opt, y); err != nil {
+		return nil, err
+	}
+	if err := r.lookCloser(ctx, in, opt, y); err != nil {
 		return nil, err
 	}
 	if !opt.Bare {
@@ -301,11 +298,16 @@ func Run(ctx context.Context, in *Input, opt Options) (*Result, error) {
 func (r *Result) Forget() {
 	for i := range r.Views {
 		v := &r.Views[i]
-		v.DGP, v.StdErr, v.Ev, v.InRange, v.Cause, v.Worst, v.Shots = nil, nil, nil, nil, nil, nil, nil
+		v.DGP, v.StdErr, v.Ev, v.EvErr, v.Coarse, v.Bias = nil, nil, nil, nil, nil, nil
+		v.InRange, v.Cause, v.Worst, v.Shots = nil, nil, nil, nil
 	}
+	r.Stood = nil
 	for i := range r.Planes {
 		p := &r.Planes[i]
-		p.E, p.StdErr, p.Direct = nil, nil, nil
+		p.E, p.StdErr, p.Direct, p.Clear = nil, nil, nil, daylight.Plane{}
+	}
+	for i := range r.Openings {
+		r.Openings[i].Sunlit = nil
 	}
 }
 

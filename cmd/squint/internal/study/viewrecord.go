@@ -31,6 +31,7 @@ type viewRecord struct {
 // viewHour is one record of the year.
 type viewHour struct {
 	Hour                           int
+	Judged                         bool // else the picture alone is known
 	DGP, StdErr, Ev, EvErr, Coarse float32
 	InRange                        bool
 	Cause                          int16 // of Causes, -1 for none
@@ -58,11 +59,11 @@ func (v *viewRecord) at(hour int) *viewHour {
 	return &v.Hours[i]
 }
 
-// known is whether an hour needs no computing, with its small picture where
-// those have so many pixels (0: none are asked for).
-func (v *viewRecord) known(hour, pixels int) bool {
+// known is whether an hour needs no computing: for one in use its numbers, and
+// its small picture where those have so many pixels (0: none are asked for).
+func (v *viewRecord) known(hour, pixels int, used bool) bool {
 	x := v.at(hour)
-	return x != nil && (pixels == 0 || v.Pixels == pixels && x.Shot.Rest != nil)
+	return x != nil && (x.Judged || !used) && (pixels == 0 || v.Pixels == pixels && x.Shot.Rest != nil)
 }
 
 // top is the worst of some hours, nil where its picture is not kept.
@@ -106,15 +107,18 @@ func (v *viewRecord) learn(y *year, j int, moments []*scene.Moment, shots *shotP
 	}
 	var news []viewHour
 	for _, m := range moments {
-		if !m.Occupied { // for work planes alone
+		h := m.Step
+		if !m.Occupied && (kept == nil || shots.frame[h] < 0) { // for work planes alone
 			continue
 		}
-		h := m.Hour
 		x := v.at(h)
 		if x == nil {
-			news = append(news, viewHour{Hour: h, DGP: from.DGP[h], StdErr: from.StdErr[h], Ev: from.Ev[h], EvErr: from.EvErr[h],
-				Coarse: from.Coarse[h], InRange: from.InRange[h], Cause: -1})
+			news = append(news, viewHour{Hour: h})
 			x = &news[len(news)-1]
+		}
+		if m.Occupied && !x.Judged {
+			x.Judged, x.DGP, x.StdErr, x.Ev, x.EvErr = true, from.DGP[h], from.StdErr[h], from.Ev[h], from.EvErr[h]
+			x.Coarse, x.InRange, x.Cause = from.Coarse[h], from.InRange[h], -1
 			if c := from.Cause[h]; c >= 0 {
 				id, ok := ids[from.Causes[c]]
 				if !ok {
@@ -141,7 +145,7 @@ func (v *viewRecord) learnTops(tops map[int]*Worst) {
 	for _, w := range tops {
 		e := w.InsideOf
 		v.View, v.Seen, v.Inside = e.View, e.Seen, e.Inside
-		t := topFrame{Hour: w.Moment.Hour, DGP: w.DGP, Ev: w.Ev, StdErr: w.StdErr, Discs: w.Discs}
+		t := topFrame{Hour: w.Moment.Step, DGP: w.DGP, Ev: w.Ev, StdErr: w.StdErr, Discs: w.Discs}
 		for _, px := range e.Inside {
 			t.Lum = append(t.Lum, w.Lum[px])
 		}
@@ -162,28 +166,24 @@ func (y *year) readView(s *shelf, i int, r *Result) {
 	r.tell(s.in, x.Sides, x.Coarsen)
 	var eye *coeff.Eye
 	for _, m := range s.st.Moments {
-		h := m.Hour
+		h := m.Step
 		a := x.at(h)
-		if !m.Occupied || a == nil {
+		if a == nil {
+			continue
+		}
+		if eye == nil {
+			eye = &coeff.Eye{View: x.View, Seen: x.Seen, Inside: x.Inside}
+		}
+		y.readShot(s, i, eye, a)
+		if !m.Occupied {
 			continue
 		}
 		v.DGP[h], v.StdErr[h], v.Ev[h], v.EvErr[h], v.InRange[h], v.Coarse[h] = a.DGP, a.StdErr, a.Ev, a.EvErr, a.InRange, a.Coarse
 		if a.Cause >= 0 {
 			v.Cause[h] = g.causeID(i, x.Causes[a.Cause])
 		}
-		if eye == nil {
-			eye = &coeff.Eye{View: x.View, Seen: x.Seen, Inside: x.Inside}
-		}
-		if g.shots == nil {
-			continue
-		}
-		frame := g.shots.frame[h]
-		g.shots.of[frame] = s.st.Scene
-		if shots := g.shots.opened(i, eye); shots.roll.Put(frame, a.Shot) {
-			shots.Discs[frame] = a.Discs
-		}
 	}
-	t := x.top(s.used)
+	t := x.top(s.pictured(i))
 	if t == nil || v.Worst != nil && !brighter(t.DGP, t.Hour, v.Worst) {
 		return
 	}
@@ -192,7 +192,7 @@ func (y *year) readView(s *shelf, i int, r *Result) {
 		w.Lum[px] = t.Lum[k]
 	}
 	for _, m := range s.st.Moments {
-		if m.Hour == t.Hour {
+		if m.Step == t.Hour {
 			w.Moment = m
 		}
 	}
@@ -200,6 +200,19 @@ func (y *year) readView(s *shelf, i int, r *Result) {
 		w.DGP, w.Ev, w.StdErr = float64(v.DGP[t.Hour]), float64(v.Ev[t.Hour]), float64(v.StdErr[t.Hour])
 	}
 	g.look(x.View)
-	w.Result = glare.Evaluate(g.field, w.Lum, toView(nil, eye, w.Discs), g.opt, &glare.Scratch{})
+	w.Result = glare.Evaluate(g.field, w.Lum, toView(nil, eye.View, w.Discs), g.opt, &glare.Scratch{})
 	v.Worst = w
+}
+
+// readShot takes the small picture of an hour into the year, where it is asked for.
+func (y *year) readShot(s *shelf, i int, eye *coeff.Eye, a *viewHour) {
+	plan := y.glare.shots
+	if plan == nil || plan.frame[a.Hour] < 0 {
+		return
+	}
+	frame := plan.frame[a.Hour]
+	plan.of[frame] = s.st.Scene
+	if shots := plan.opened(i, eye, s.st.Scene); shots.roll.Put(frame, a.Shot) {
+		shots.Discs[frame] = a.Discs
+	}
 }

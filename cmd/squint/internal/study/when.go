@@ -2,6 +2,7 @@ package study
 
 import (
 	"fmt"
+	"math"
 	"sort"
 	"strings"
 )
@@ -28,31 +29,52 @@ func (v *ViewResult) sortCauses() {
 	v.Causes = causes
 }
 
-// mostly is the share of the hours that "mostly" speaks for.
+// mostly is the share of the hours that "mostly" speaks for; own choice.
 const mostly = 0.7
 
 // evenMonths is the span of months that glare spread evenly over the year
-// gives.
+// gives: 0.7 of 12, rounded up.
 const evenMonths = 9
 
-// when says when the hours above a limit fall and what carries them: the
-// shortest span of clock hours and the shortest span of months that hold most
-// of them, and the commonest cause. Empty when there are none.
+// when says when the hours above a limit fall and what carries them.
 func (v *ViewResult) when(r *Result, limit float64) string {
+	var above []int
+	for _, h := range r.Occupied {
+		if float64(v.DGP[h]) > limit {
+			above = append(above, h)
+		}
+	}
+	return v.whenOf(r, above)
+}
+
+// whenOpen says which hours leave a verdict open, and how close to the limit
+// they are.
+func (v *ViewResult) whenOpen(r *Result, limit, z float64) string {
+	open := r.openHours(v, limit, z)
+	if len(open) == 0 {
+		return ""
+	}
+	far := 0.0
+	for _, h := range open {
+		far = math.Max(far, math.Abs(float64(v.DGP[h])-limit))
+	}
+	return fmt.Sprintf("%s open: %s, DGP within %.2g of the limit", count(len(open), "hour"), v.whenOf(r, open), far)
+}
+
+// whenOf says of hours the shortest span of clock hours and the shortest span
+// of months that hold most of them, and the commonest cause. Empty when there
+// are none.
+func (v *ViewResult) whenOf(r *Result, hours []int) string {
 	var byHour [24]int
 	var byMonth [12]int
 	byCause := map[int16]int{}
-	n := 0
-	for _, h := range r.Occupied {
-		if float64(v.DGP[h]) <= limit {
-			continue
-		}
-		n++
-		clock := (h%24 + int(r.Calendar.ClockShiftH(h/24))) % 24
-		byHour[clock]++
-		byMonth[r.Climate.Year.Records[h].Month-1]++
+	for _, h := range hours {
+		_, clock := r.Calendar.ClockAt(h)
+		byHour[int(clock)]++
+		byMonth[r.Climate.Year.Records[h/r.Climate.PerHour()].Month-1]++
 		byCause[v.Cause[h]]++
 	}
+	n := len(hours)
 	if n == 0 {
 		return ""
 	}

@@ -23,7 +23,8 @@ import (
 // sky where they see it.
 const patchFactor = 2
 
-// paneShare is the part of the photons that is enough where only panes mirror.
+// paneShare is the part of the photons that is enough where only panes mirror,
+// which throw back about a tenth of the sun; own choice.
 const paneShare = 5
 
 // photons is the number shot from the sun at each moment.
@@ -45,6 +46,7 @@ type year struct {
 	factors []float64        // daylight factor by sensor, share
 	factorE []float64        // its standard error
 	clear   *annual.Daylight // [sensor][moment under a clear sky], nil for none
+	looks   []int            // by work plane, further ones
 }
 
 // newYear holds zeros, and NaN where views are not evaluated.
@@ -67,7 +69,7 @@ func computeYear(ctx context.Context, in *Input, opt Options, r *Result) (*year,
 // and puts the results together.
 func traceYear(ctx context.Context, in *Input, opt Options, r *Result) (*year, error) {
 	y := newYear(in, opt)
-	y.glare.shots, y.glare.cells = opt.shots, opt.cells
+	y.glare.shots, y.glare.cells, y.glare.keep = opt.shots, opt.cells, opt.keep
 	total := 0
 	for _, st := range in.Standings {
 		total += len(st.Moments)
@@ -181,7 +183,7 @@ func newEngine(ctx context.Context, in *Input, st *Standing, opt Options, r *Res
 	}
 	r.Settings.Workers = opt.Workers
 	r.tell(in, t.Len(), cfg.Coarsen)
-	return &engine{t: t, rec: rec, cfg: annual.Config{Workers: opt.Workers, Seed: sim.Seed}}, nil
+	return &engine{t: t, rec: rec, cfg: annual.Config{Workers: opt.Workers, Seed: sim.Seed, Glimpses: opt.shots != nil && opt.shots.always}}, nil
 }
 
 // tell takes over how finely surfaces were cut.

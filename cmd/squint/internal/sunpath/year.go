@@ -76,7 +76,7 @@ func Compute(ctx context.Context, in *Input) (*Year, error) {
 		return nil, err
 	}
 	y := &Year{Input: in}
-	used := in.Calendar.Occupied().Mask()
+	used := in.Calendar.Occupied().Mask(in.Calendar.Steps())
 	for i := range days {
 		for k := range days[i] {
 			y.count(&days[i][k], i*dayStep, used)
@@ -116,19 +116,20 @@ func (y *Year) count(s *Sample, first int, used []bool) {
 	}
 	for day := first; day < first+dayStep; day++ {
 		record := day*24 + s.Time.Hour()
+		inUse := used[len(used)/yearDays*day+len(used)/yearDays*(60*s.Time.Hour()+s.Time.Minute())/(24*60)]
 		clock := (s.Time.Hour() + int(y.Input.Calendar.ClockShiftH(day))) % 24
 		month := int(time.Date(y.Input.Year, 1, 1+day, 0, 0, 0, 0, time.UTC).Month()) - 1
 		bright := y.Input.Bright != nil && y.Input.Bright(record)
 		add := func(to *Hours, from r3.Vec) {
 			to.All += h
 			to.Minutes[clock][month] += stepMin / monthDays[month]
-			if used[record] {
+			if inUse {
 				to.InUse += h
 			}
 			if bright {
 				to.Bright += h
 			}
-			if bright && used[record] {
+			if bright && inUse {
 				to.BrightInUse += h
 			}
 			if r3.Dot(from, y.Input.Point.Ahead) > 0 {

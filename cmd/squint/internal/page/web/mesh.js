@@ -1,15 +1,27 @@
 // The room's triangles: edges, sections, and where the sun falls.
-import { designs, load } from "./data.js";
+import { designs, load, standingAt } from "./data.js";
 
+// room is the geometry as it stands at a record of a year; standings of which
+// the meshes are alike share it.
 const rooms = new Map();
-export function room(design) {
-  if (!rooms.has(design)) rooms.set(design, read(designs[design].room));
-  return rooms.get(design);
+export function room(y, record) {
+  const r = y.design.room, standing = standingAt(y, record), stands = r.stands[standing] || [], key = designs.indexOf(y.design) + "/" + stands;
+  if (!rooms.has(key)) rooms.set(key, read(r, stands.map((k) => r.systems[k])));
+  return rooms.get(key);
 }
 
-async function read(r) {
-  const parts = await Promise.all([r.fabric, r.systems].map(async (m) => unfold(m, await load(m.numbers))));
-  const n = parts[0].n + parts[1].n;
+// Choices of the drawing, for display only.
+const crease = 0.87; // cosine of the fold from which an edge is drawn: 30 degrees
+const clear = 0.3; // a surface that lets more straight through does not stop the sun
+const polished = 0.3; // one that mirrors more throws it on
+const leaf = 6; // triangles in a box of the tree
+const cell = 0.15; // metres between the rays through an opening
+const low = 0.01; // sine of the sun's least height, and to an opening's plane
+const lift = 0.006; // metres of a patch above its surface
+
+async function read(r, systems) {
+  const parts = await Promise.all([r.fabric, ...systems].map(async (m) => unfold(m, await load(m.numbers))));
+  const n = parts.reduce((sum, p) => sum + p.n, 0);
   const all = { room: r, n, fabric: parts[0].n, corner: new Float32Array(9 * n), finish: new Uint16Array(n), part: new Uint16Array(n) };
   parts.reduce((at, p) => {
     all.corner.set(p.corner, 9 * at); all.finish.set(p.finish, at); all.part.set(p.part, at);
@@ -53,7 +65,7 @@ function edges(m) {
       const id = ka < kb ? ka + "|" + kb : kb + "|" + ka;
       const e = found.get(id);
       if (!e) found.set(id, { a, b, n, keep: true, i });
-      else e.keep = Math.abs(dot(e.n, n)) < 0.87;
+      else e.keep = Math.abs(dot(e.n, n)) < crease;
     }
   }
   return [...found.values()].filter((e) => e.keep);
@@ -80,7 +92,7 @@ function tree(c, n) {
     const lo = [1e9, 1e9, 1e9], hi = [-1e9, -1e9, -1e9];
     for (let j = from; j < to; j++) for (let q = 0; q < 9; q++) { const v = c[9 * index[j] + q], k = q % 3; if (v < lo[k]) lo[k] = v; if (v > hi[k]) hi[k] = v; }
     const node = { lo, hi, from, to };
-    if (to - from > 6) {
+    if (to - from > leaf) {
       const size = sub(hi, lo), k = size.indexOf(Math.max(...size)), mid = (from + to) >> 1;
       index.subarray(from, to).sort((a, b) => centre(a, k) - centre(b, k));
       node.kids = [build(from, mid), build(mid, to)];
@@ -103,7 +115,7 @@ function meets(node, o, inv, far) {
 }
 
 // hit is the nearest triangle from o along d that does not let the sun through.
-export function hit(m, o, d, near = 1e-3) {
+function hit(m, o, d, near = 1e-3) {
   const inv = d.map((x) => 1 / (x || 1e-12)), c = m.corner;
   let best = { t: 1e9, i: -1 };
   const walk = (node) => {
@@ -111,7 +123,7 @@ export function hit(m, o, d, near = 1e-3) {
     if (node.kids) { node.kids.forEach(walk); return; }
     for (let j = node.from; j < node.to; j++) {
       const i = m.tree.index[j];
-      if (m.room.finishes[m.finish[i]].through > 0.3) continue;
+      if (m.room.finishes[m.finish[i]].through > clear) continue;
       const a = corner(c, i, 0), e1 = sub(corner(c, i, 1), a), e2 = sub(corner(c, i, 2), a), p = cross(d, e2), det = dot(e1, p);
       if (Math.abs(det) < 1e-12) continue;
       const s = sub(o, a), u = dot(s, p) / det;
@@ -132,13 +144,13 @@ const bounces = 3; // mirrors in a row that are followed
 // it falls, paths the ways of a few rays. For display; the study has its own.
 export function beams(m, sun, across = 20) {
   const patches = [], paths = [];
-  if (sun[2] <= 0.01) return { patches, paths };
+  if (sun[2] <= low) return { patches, paths };
   const d = scale(sun, -1);
   for (const o of m.room.openings) {
     const facing = dot(sun, o.outward);
     const [a, b, , e] = o.corners, w = sub(b, a), h = sub(e, a);
-    const nu = Math.max(2, Math.min(40, Math.round(Math.hypot(...w) / 0.15))), nv = Math.max(2, Math.min(across, Math.round(Math.hypot(...h) / 0.15)));
-    if (facing <= 0.01) continue;
+    const nu = Math.max(2, Math.min(40, Math.round(Math.hypot(...w) / cell))), nv = Math.max(2, Math.min(across, Math.round(Math.hypot(...h) / cell)));
+    if (facing <= low) continue;
     for (let u = 0; u < nu; u++) for (let v = 0; v < nv; v++) {
       let p = add(a, add(scale(w, (u + 0.5) / nu), scale(h, (v + 0.5) / nv)));
       // What stands outdoors may hide the sun, or throw it on.
@@ -148,7 +160,7 @@ export function beams(m, sun, across = 20) {
   }
   // Mirrors outdoors see the sun without an opening.
   for (let i = m.fabric; i < m.n; i++) {
-    if (m.room.finishes[m.finish[i]].mirror < 0.3) continue;
+    if (m.room.finishes[m.finish[i]].mirror < polished) continue;
     const n = normal(m, i), c = [0, 1, 2].map((k) => corner(m.corner, i, k)), p = scale(add(c[0], add(c[1], c[2])), 1 / 3);
     if (Math.abs(dot(n, sun)) < 0.02 || hit(m, add(p, scale(sun, 0.01)), sun)) continue;
     const q = add(p, scale(sun, 0.005)), h = hit(m, q, d);
@@ -170,11 +182,11 @@ function follow(m, p, d, eu, ev, drawn, patches, paths, thrown) {
     points.push(at);
     if (Math.abs(along) < 1e-3) break;
     const drop = (e) => sub(e, scale(d, dot(e, n) / along));
-    if (m.room.finishes[m.finish[h.i]].mirror > 0.3 && k < bounces) {
+    if (m.room.finishes[m.finish[h.i]].mirror > polished && k < bounces) {
       eu = mirrored(eu, n); ev = mirrored(ev, n); d = mirrored(d, n); p = at; thrown++;
       continue;
     }
-    const off = scale(n, along < 0 ? 0.006 : -0.006), x = scale(drop(eu), 0.5), y = scale(drop(ev), 0.5);
+    const off = scale(n, along < 0 ? lift : -lift), x = scale(drop(eu), 0.5), y = scale(drop(ev), 0.5);
     patches.push({ at: add(at, off), n: along < 0 ? n : scale(n, -1), thrown: thrown > 0, quad: [add(add(at, off), add(x, y)), add(add(at, off), sub(x, y)), sub(add(at, off), add(x, y)), add(add(at, off), sub(y, x))] });
     break;
   }

@@ -4,15 +4,22 @@ import { state, show } from "./state.js";
 import { Scale, css, legend, luxScale, shareScale } from "./colour.js";
 import { sheet, text, line, place } from "./paper.js";
 import { room, section, beams } from "./mesh.js";
-import { film } from "./film.js";
+import { film, best } from "./film.js";
 
 const canvas = document.getElementById("c-plan"), reading = document.getElementById("r-plan"), pick = document.getElementById("pick-metric");
 let view = null; // how the last drawing lies, and what it shows
+let drawn = -1; // the design of that drawing
+
+// Choices of the drawing.
+const sunny = 500; // lx on a plane that faces the sun, from which its patches are drawn
+const overDesk = 0.3, overFloor = 1.1; // metres of the cut above the work plane, or the floor
+const around = 0.9; // metres drawn around receivers and openings
 
 export async function plan() {
-  const d = designs[state.design], m = await room(state.design), y = await year(state.design);
+  const d = designs[state.design], y = await year(state.design), m = await room(y, state.record);
+  if (drawn !== state.design) { drawn = state.design; at = 0; }
   metrics(d);
-  const box = extent(d, m), cut = cutHeight(d);
+  const box = extent(d), cut = cutHeight(d);
   const pad = 26, wide = box[2] - box[0], high = box[3] - box[1];
   const { g, w, h } = sheet(canvas, (w) => Math.max(200, Math.min(760, ((w - 2 * pad) * high) / wide + 2 * pad + 34)));
   const s = Math.min((w - 2 * pad) / wide, (h - 2 * pad - 34) / high), left = (w - s * wide) / 2;
@@ -25,43 +32,50 @@ export async function plan() {
     g.fillRect(x - q / 2, yy - q / 2, q + 0.4, q + 0.4);
   }
   const moment = y.byRecord[state.record];
-  if (moment >= 0 && y.moments.direct[moment] > 500) sunPatches(g, m, sunAt(y, moment), to, cut);
+  if (moment >= 0 && y.moments.direct[moment] > sunny) sunPatches(g, m, sunAt(y, moment), to, cut);
   drawing(g, m, to, cut, box);
   d.views.forEach((v, i) => { if (i !== state.view) marker(g, to(v.position), v, i); });
   if (d.views[state.view]) marker(g, to(d.views[state.view].position), d.views[state.view], state.view);
   north(g, d.north, w - 26, 30);
   bar(g, s, left, h - 12);
-  dimension(g, to, d, m, box);
+  dimension(g, to, d, box);
   canvas.setAttribute("aria-label", `Plan of the room, cut at ${cut.toFixed(2)} m, with ${d.views.length} viewpoints. The table beside it has their verdicts.`);
   if (cells) {
     legend(document.getElementById("l-plan"), cells.scale, cells.unit, cells.ticks, ["hatched: sun on floor and desks", "\u25CB met", "\u25CF not met", "\u25D0 undecided"]);
     say(null);
-  } else { document.getElementById("l-plan").replaceChildren(); reading.textContent = ""; }
+  } else { document.getElementById("l-plan").replaceChildren(); reading.textContent = d.planes.length ? "This page holds no illuminance of this work plane." : ""; }
 }
 
 function metrics(d) {
-  const list = d.planes.length ? [["hour", "illuminance at the chosen hour"], ...(d.planes[0].metrics || []).map((m) => [m.key, m.title])] : [];
-  if (pick.options.length === list.length) return;
+  const list = (d.planes.length ? d.planes[0].metrics || [] : []).map((m) => [m.key, m.title]);
+  if (hourly(d)) list.unshift(["hour", "illuminance at the chosen hour"]);
+  if (list.length && !list.some(([key]) => key === state.metric)) state.metric = list[0][0];
+  const key = list.join();
+  if (pick.dataset.list === key) return;
+  pick.dataset.list = key;
   pick.replaceChildren(...list.map(([value, name]) => new Option(name, value)));
   pick.value = state.metric;
 }
+
+// hourly is whether the page holds the illuminance of any hour, on all planes.
+const hourly = (d) => d.planes.every(best);
 pick.addEventListener("change", () => show({ metric: pick.value }));
 
-// light reads what each sensor has, for the chosen metric.
-async function light(d, y) {
-  if (!d.planes.length) return null;
-  const out = { points: [], scale: luxScale, unit: "lx", ticks: [30, 100, 300, 1000, 3000, 10000].map((v) => [v, whole(v)]), total: 0 };
+// light reads what each sensor has, for the chosen metric; null where there is none.
+async function light(d, y, metric = state.metric) {
+  if (!d.planes.length || (metric === "hour" && !hourly(d))) return null;
+  const out = { points: [], scale: luxScale, unit: "lx", ticks: [30, 100, 300, 1000, 3000, 10000].map((v) => [v, whole(v)]), median: 0 };
   for (const p of d.planes) {
     const at = await load(p.points);
     if (!at) continue;
     let value;
-    if (state.metric === "hour") {
-      const f = await film(p.shots), frame = f ? f.frame(state.record) : -1;
+    if (metric === "hour") {
+      const f = await film(p, 24 * y.n), frame = f ? f.frame(state.record) : -1;
       const v = frame < 0 ? null : f.values(frame);
       value = (i) => (v ? v[i] : 0);
-      out.median = p.shots.median_error;
+      out.median = Math.max(out.median, f ? f.exact.median_error : 0);
     } else {
-      const k = p.metrics.find((m) => m.key === state.metric) || p.metrics[0];
+      const k = p.metrics.find((m) => m.key === metric) || p.metrics[0];
       out.scale = k.unit === "%" ? shareScale(k.most) : new Scale("cividis", 0, k.most, false);
       out.unit = `${k.title}${k.unit === "%" ? "" : ", " + k.unit}`;
       out.share = k.unit === "%";
@@ -72,9 +86,9 @@ async function light(d, y) {
   }
   return out;
 }
-export const planeLight = light;
+export const planeLight = (d, y) => light(d, y, "hour");
 
-function cutHeight(d) { return d.planes.length ? d.planes[0].height + 0.3 : d.room.min[2] + 1.1; }
+function cutHeight(d) { return d.planes.length ? d.planes[0].height + overDesk : d.room.min[2] + overFloor; }
 
 // extent is what is drawn: receivers and openings with some room around them.
 export function extent(d) {
@@ -82,7 +96,7 @@ export function extent(d) {
   const put = (p) => { xs.push(p[0]); ys.push(p[1]); };
   d.planes.forEach((p) => p.polygon.forEach(put)); d.views.forEach((v) => put(v.position)); d.room.openings.forEach((o) => o.corners.forEach(put));
   if (!xs.length) { put(d.room.min); put(d.room.max); }
-  return [Math.min(...xs) - 0.9, Math.min(...ys) - 0.9, Math.max(...xs) + 0.9, Math.max(...ys) + 0.9];
+  return [Math.min(...xs) - around, Math.min(...ys) - around, Math.max(...xs) + around, Math.max(...ys) + around];
 }
 
 function drawing(g, m, to, cut, box) {
@@ -121,12 +135,16 @@ function hatch(g) {
 // only the chosen one has its name beside it.
 const gridReach = 17; // pixels
 
+// tint is the colour of an outcome; where nothing is asked it is plain.
+const tint = (v) => css({ met: "met", "not met": "not", none: "quiet" }[v.outcome] || "ink");
+const filled = (v) => v.outcome === "not met", halved = (v) => v.outcome === "undecided";
+
 function wedge(g, [x, y], v, i) {
   const dir = Math.atan2(-v.axes[0][1], v.axes[0][0]), chosen = i === state.view;
   const sector = (r) => { g.beginPath(); g.moveTo(x, y); g.arc(x, y, r, dir - 0.5, dir + 0.5); g.closePath(); };
-  const colour = v.outcome === "met" ? css("met") : v.outcome === "not met" ? css("not") : css("ink");
+  const colour = tint(v);
   sector(gridReach); g.fillStyle = css("paper"); g.fill();
-  if (v.outcome !== "met") { sector(v.outcome === "not met" ? gridReach : gridReach / 2); g.fillStyle = colour; g.fill(); }
+  if (filled(v) || halved(v)) { sector(filled(v) ? gridReach : gridReach / 2); g.fillStyle = colour; g.fill(); }
   sector(gridReach); g.strokeStyle = chosen ? css("ink") : colour; g.lineWidth = chosen ? 2.4 : 1; g.stroke();
   if (chosen) text(g, v.name, x, y - gridReach - 9, { align: "center", colour: "ink", size: 11.5, weight: 700, halo: true });
 }
@@ -140,10 +158,10 @@ function marker(g, [x, y], v, i) {
   g.beginPath(); g.moveTo(x, y); g.arc(x, y, 26, dir - 0.5, dir + 0.5); g.closePath();
   g.fillStyle = chosen ? css("sun") : css("paper"); g.globalAlpha = chosen ? 0.55 : 0.6; g.fill(); g.globalAlpha = 1;
   g.strokeStyle = css("ink"); g.lineWidth = chosen ? 1.6 : 0.8; g.stroke();
-  const colour = v.outcome === "met" ? css("met") : v.outcome === "not met" ? css("not") : css("ink");
+  const colour = tint(v);
   g.beginPath(); g.arc(x, y, 5.5, 0, 7); g.fillStyle = css("paper"); g.fill();
   g.beginPath();
-  if (v.outcome === "not met") g.arc(x, y, 5.5, 0, 7); else if (v.outcome !== "met") g.arc(x, y, 5.5, Math.PI / 2, 1.5 * Math.PI);
+  if (filled(v)) g.arc(x, y, 5.5, 0, 7); else if (halved(v)) g.arc(x, y, 5.5, Math.PI / 2, 1.5 * Math.PI);
   g.fillStyle = colour; g.fill();
   g.beginPath(); g.arc(x, y, 5.5, 0, 7); g.strokeStyle = colour; g.lineWidth = 1.8; g.stroke();
   const back = [x - 15 * Math.cos(dir), y - 15 * Math.sin(dir)];
@@ -151,7 +169,7 @@ function marker(g, [x, y], v, i) {
 }
 
 // north points its arrow to where the model's north lies.
-export function north(g, angle, x, y) {
+function north(g, angle, x, y) {
   const d = [-Math.sin(angle), -Math.cos(angle)];
   line(g, [[x - 13 * d[0], y - 13 * d[1]], [x + 13 * d[0], y + 13 * d[1]]], "ink", 1);
   g.beginPath(); g.moveTo(x + 15 * d[0], y + 15 * d[1]); g.lineTo(x + 5 * d[0] - 4 * d[1], y + 5 * d[1] + 4 * d[0]); g.lineTo(x + 5 * d[0] + 4 * d[1], y + 5 * d[1] - 4 * d[0]); g.fillStyle = css("ink"); g.fill();
@@ -164,7 +182,7 @@ function bar(g, s, x, y) {
   text(g, `${n} m`, x + n * s + 8, y - 2);
 }
 
-function dimension(g, to, d, m, box) {
+function dimension(g, to, d, box) {
   if (!d.planes.length) return;
   const xs = d.planes.flatMap((p) => p.polygon.map((q) => q[0])), ys = d.planes.flatMap((p) => p.polygon.map((q) => q[1]));
   const x0 = Math.min(...xs), x1 = Math.max(...xs), y0 = Math.min(...ys), y1 = Math.max(...ys);
@@ -178,11 +196,12 @@ function dimension(g, to, d, m, box) {
 let at = 0;
 function say(i) {
   const c = view && view.cells;
-  if (!c || !c.points.length) return;
+  if (!c || !c.points.length || (i !== null && !c.points[i])) return;
   const fmt = (v) => (c.share ? percent(v) : `${whole(v)} ${c.unit === "lx" ? "lx" : "h"}`);
   if (i === null) {
     const mean = c.points.reduce((s, p) => s + p.v, 0) / c.points.length;
-    reading.textContent = `Mean of the work plane ${fmt(mean)}, from ${fmt(Math.min(...c.points.map((p) => p.v)))} to ${fmt(Math.max(...c.points.map((p) => p.v)))}.` + (state.metric === "hour" ? ` As drawn; half of the values lie within ${percent(c.median)} of the computed ones.` : "");
+    const none = state.metric !== "hour" && !hourly(view.d) ? " The chosen hour is not shown: this page does not hold the plane's hours." : "";
+    reading.textContent = `Mean of the work plane ${fmt(mean)}, from ${fmt(Math.min(...c.points.map((p) => p.v)))} to ${fmt(Math.max(...c.points.map((p) => p.v)))}.` + (state.metric === "hour" ? ` As drawn; half of the values lie within ${percent(c.median)} of the computed ones.` : "") + none;
     return;
   }
   at = i;
@@ -202,7 +221,7 @@ canvas.addEventListener("keydown", (e) => {
   const c = view && view.cells, move = { ArrowLeft: -1, ArrowRight: 1, ArrowUp: 1, ArrowDown: -1 }[e.key];
   if (!c || !move) return;
   e.preventDefault();
-  const p = c.points[at], up = e.key === "ArrowUp" || e.key === "ArrowDown";
+  const p = c.points[at] || c.points[0], up = e.key === "ArrowUp" || e.key === "ArrowDown";
   let best = at, far = 1e9;
   c.points.forEach((q, i) => {
     const a = up ? q.y - p.y : q.x - p.x, b = up ? q.x - p.x : q.y - p.y;

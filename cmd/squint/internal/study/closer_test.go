@@ -1,0 +1,169 @@
+package study
+
+import (
+	"context"
+	"math"
+	"slices"
+	"strings"
+	"testing"
+
+	"squint/scene"
+	"squint/scene/project"
+)
+
+// asking is a limit of the project's own on illuminance in use: reached in a
+// twentieth of the hours, which the 36 lit ones of evenRoom are more than.
+func asking(lx, placeShare float64) project.Limit {
+	return project.Limit{Metric: project.LimitIlluminance, Hours: project.HoursInUse, AtLeast: &lx, TimeShare: 0.05, PlaceShare: placeShare}
+}
+
+// TestCloserReplaces: of the sensors and hours that leave a limit undecided the
+// further look replaces the values; all others stay bit by bit. A limit that is
+// decided is left alone, however uncertain a sensor.
+func TestCloserReplaces(t *testing.T) {
+	in := evenRoom(t, 5000)
+	in.Scene.Viewpoints = nil
+	r := &Result{Project: in.Project, Scene: in.Scene, Climate: in.Climate, Occupied: in.Occupied}
+	opt := Options{Workers: 1, Progress: func(Stage, int, int) {}}
+	y, err := computeYear(context.Background(), in, opt, r)
+	if err != nil {
+		t.Fatal(err)
+	}
+	truth := y.light.E[1][0]
+	limit := 3 * truth
+	for s := range y.light.E {
+		for k := range y.light.E[s] {
+			y.light.E[s][k], y.light.StdErr[s][k] = 10*limit, 1
+		}
+	}
+	for k := range 30 { // but six hours far above, too few to matter
+		y.light.E[1][k], y.light.StdErr[1][k] = limit, 0.1*limit
+	}
+	for _, c := range []struct {
+		placeShare float64
+		looks      int
+	}{{0.75, 0}, {1, 1}} { // three of the four sensors reach it surely
+		in.Project.Limits = []project.Limit{asking(float64(limit), c.placeShare)}
+		r.Notes = nil
+		if err := r.lookCloser(context.Background(), in, opt, y); err != nil {
+			t.Fatal(err)
+		}
+		if !slices.Equal(y.looks, []int{c.looks}) {
+			t.Fatalf("%g of the sensors asked: got %v further looks, want %d", c.placeShare, y.looks, c.looks)
+		}
+		if c.looks == 0 && y.light.E[1][0] != limit {
+			t.Error("a decided limit was looked at again")
+		}
+	}
+	for s := range y.light.E {
+		for k, got := range y.light.E[s] {
+			se := y.light.StdErr[s][k]
+			if open := s == 1 && k < 30; !open && (got != 10*limit || se != 1) {
+				t.Errorf("sensor %d, hour %d: got %g +- %g lx, want it untouched", s, k, got, se)
+			} else if open && !(math.Abs(float64(got/truth-1)) < 0.1 && se < 0.05*truth && se > 0) {
+				t.Errorf("sensor %d, hour %d: got %g +- %g lx, want the computed %g within a tenth", s, k, got, se, truth)
+			} else if open && got == truth {
+				t.Errorf("sensor %d, hour %d: got the first look's own bits, want random numbers of its own", s, k)
+			}
+		}
+	}
+	if n := strings.Join(r.Notes, "\n"); !strings.Contains(n, "look 2: 30 hours of 1 sensor lay too near a limit and were computed again with 4 times the rays and ") {
+		t.Errorf("notes: got %q", n)
+	}
+}
+
+// TestCloserFactors: daylight factors and moments under a clear sky that leave a
+// criterion undecided are looked at again too, with less error.
+func TestCloserFactors(t *testing.T) {
+	first := furtherInput(t)
+	first.Project.Limits = nil
+	first.Project.Criteria = project.Criteria{Glare: "none", EquinoxAtLeast: first.Project.Criteria.EquinoxAtLeast, EquinoxHighLx: 1e6}
+	r := study(t, first, 2)
+	p := &r.Planes[0]
+	if p.Refined != 0 {
+		t.Fatalf("got %d further looks with nothing near a limit", p.Refined)
+	}
+	// The darkest sensor of each decides.
+	dark, s, k := 0, 0, 0
+	for i := range p.Factor {
+		if p.Factor[i] < p.Factor[dark] {
+			dark = i
+		}
+		for n := range p.Clear.E[i] {
+			if p.Clear.E[i][n] < p.Clear.E[s][k] {
+				s, k = i, n
+			}
+		}
+	}
+	again := furtherInput(t)
+	again.Project.Criteria = first.Project.Criteria
+	again.Project.Criteria.EquinoxLowLx = float64(p.Clear.E[s][k])
+	again.Project.Criteria.EquinoxAtLeast = new(float64)
+	*again.Project.Criteria.EquinoxAtLeast = 1
+	again.Project.Limits = []project.Limit{{Metric: project.LimitDaylightFactor, AtLeast: &p.Factor[dark], TimeShare: 1, PlaceShare: 1}}
+	q := study(t, again, 2).Planes[0]
+	if q.Refined == 0 {
+		t.Fatal("got no further look with sensors on their limits")
+	}
+	if !(q.FactorError[dark] < 0.75*p.FactorError[dark]) || q.Factor[dark] == p.Factor[dark] {
+		t.Errorf("daylight factor: got %g +- %g, before %g +- %g", q.Factor[dark], q.FactorError[dark], p.Factor[dark], p.FactorError[dark])
+	}
+	if !(q.Clear.SE[s][k] < 0.75*p.Clear.SE[s][k]) || q.Clear.E[s][k] == p.Clear.E[s][k] {
+		t.Errorf("clear sky: got %g +- %g lx, before %g +- %g", q.Clear.E[s][k], q.Clear.SE[s][k], p.Clear.E[s][k], p.Clear.SE[s][k])
+	}
+	for i := range p.E {
+		if !slices.Equal(p.E[i], q.E[i]) {
+			t.Errorf("sensor %d: the year changed, which nothing asks about", i)
+		}
+	}
+}
+
+// TestVariances: with few rays from the sensors and many from the surfaces the
+// error is mostly the sensors' own, and the other way round.
+func TestVariances(t *testing.T) {
+	of := func(sensor, texel int) (rays, shared float64) {
+		in := evenRoom(t, 5000)
+		in.Scene.Viewpoints = nil
+		in.Project.Simulation.SensorSamples, in.Project.Simulation.TexelSamples = sensor, texel
+		rays, shared, err := variances(context.Background(), in, Options{Workers: 2, Progress: func(Stage, int, int) {}})
+		if err != nil {
+			t.Fatal(err)
+		}
+		t.Logf("%d rays, %d samples: %.2g and %.2g", sensor, texel, rays, shared)
+		return rays, shared
+	}
+	if rays, shared := of(16, 1024); !(rays > 4*shared) {
+		t.Errorf("few rays: got %g of the variance from them and %g shared", rays, shared)
+	}
+	if rays, shared := of(16384, 16); !(shared > 4*rays) {
+		t.Errorf("few samples of surfaces: got %g of the variance from rays and %g shared", rays, shared)
+	}
+}
+
+// TestSensorsIn: sensors are picked by their number among all planes, and
+// planes without any are left out.
+func TestSensorsIn(t *testing.T) {
+	s := &scene.Scene{Viewpoints: make([]scene.Viewpoint, 2)}
+	for p, n := range []int{3, 2, 4} {
+		w := scene.WorkPlane{Name: string(rune('a' + p)), Sensors: make([]scene.Sensor, n)}
+		for k := range w.Sensors {
+			w.Sensors[k].Position.X = float64(10*p + k)
+		}
+		s.WorkPlanes = append(s.WorkPlanes, w)
+	}
+	few := sensorsIn(s, []int{0, 2, 5, 8})
+	var got []float64
+	var names string
+	for _, w := range few.WorkPlanes {
+		names += w.Name
+		for _, x := range w.Sensors {
+			got = append(got, x.Position.X)
+		}
+	}
+	if want := []float64{0, 2, 20, 23}; !slices.Equal(got, want) || names != "ac" || len(few.Viewpoints) != 0 {
+		t.Errorf("got sensors %v of planes %q with %d viewpoints, want %v of \"ac\" with none", got, names, len(few.Viewpoints), want)
+	}
+	if len(s.WorkPlanes[0].Sensors) != 3 {
+		t.Error("the scene was changed")
+	}
+}
