@@ -17,7 +17,7 @@ type Mask struct {
 }
 
 // MaskOf hides what is dark (less than half of white) or transparent in a
-// picture of the photograph's own size, w x h pixels.
+// picture of the photograph's own size, w x h pixels. Half is our own choice.
 func MaskOf(name string, im image.Image, w, h int) (Mask, error) {
 	b := im.Bounds()
 	if b.Dx() != w || b.Dy() != h {

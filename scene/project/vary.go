@@ -28,7 +28,8 @@ type Variation struct {
 }
 
 // shifted is x moved by a tolerance, at most by half of itself, so that nothing
-// vanishes and nothing appears, and not beyond the most that is physical.
+// vanishes and nothing appears, and not beyond the most that is physical. Half is
+// our own choice.
 func shifted(x, by, most float64) float64 {
 	return max(0, min(x+math.Copysign(min(math.Abs(by), x/2), by), max(most, x)))
 }
@@ -74,7 +75,7 @@ func Variations(p *Project) []Variation {
 
 // changes is whether any value comes out other than it was.
 func (v Variation) changes(p *Project) bool {
-	return fmt.Sprint(varied(p)) != fmt.Sprint(varied(v.Of(p)))
+	return !slices.Equal(varied(p), varied(v.Of(p)))
 }
 
 // varied are the values that variations touch.
