@@ -82,10 +82,11 @@ func (r *Result) spread(byMoment [][]float32) [][]float32 {
 }
 
 func (r *Result) judgePlane(p *PlaneResult, z float64) {
+	used := r.UseOf(p.Plane.Room).Hours
 	for s := range p.E {
-		p.DA = append(p.DA, daylight.DA(p.E[s], r.Occupied, daThresholdLx))
-		p.CDA = append(p.CDA, daylight.CDA(p.E[s], r.Occupied, daThresholdLx))
-		p.UDI = append(p.UDI, daylight.UDI(p.E[s], r.Occupied, daylight.DefaultBins))
+		p.DA = append(p.DA, daylight.DA(p.E[s], used, daThresholdLx))
+		p.CDA = append(p.CDA, daylight.CDA(p.E[s], used, daThresholdLx))
+		p.UDI = append(p.UDI, daylight.UDI(p.E[s], used, daylight.DefaultBins))
 	}
 	p.MeanDA, p.MeanCDA = mean(p.DA), mean(p.CDA)
 	p.MeanUDI = meanUDI(p.UDI)

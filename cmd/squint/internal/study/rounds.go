@@ -109,6 +109,9 @@ func (o *operation) observed(y *year, step int) control.Observed {
 	seen := control.Observed{DGP: make([]float64, len(y.glare.views)), Through: make([][]string, len(y.glare.views))}
 	for i := range y.glare.views {
 		v := &y.glare.views[i]
+		if v.DGP[h] != v.DGP[h] {
+			continue // nobody is there: its room is not in use
+		}
 		seen.DGP[i] = float64(v.DGP[h])
 		if v.Cause[h] < 0 {
 			continue
@@ -237,9 +240,9 @@ func (o *operation) worstHours(ctx context.Context, y *year, looks map[control.C
 	var order []control.Combination
 	for i := range y.glare.views {
 		v := &y.glare.views[i]
-		worst := -1
+		worst, use := -1, o.in.UseOf(v.Viewpoint.Room)
 		for k, m := range o.in.Climate.Moments {
-			if m.Occupied && (worst < 0 || v.DGP[m.Step] > v.DGP[o.in.Climate.Moments[worst].Step]) {
+			if use.mask[m.Step] && (worst < 0 || v.DGP[m.Step] > v.DGP[o.in.Climate.Moments[worst].Step]) {
 				worst = k
 			}
 		}

@@ -13,7 +13,6 @@ type shelf struct {
 	in     *Input
 	st     *Standing
 	hours  []int // of the standing's moments
-	used   []int // those in use
 	clear  []*scene.Moment
 	views  []*viewRecord
 	planes []*planeRecord
@@ -27,9 +26,6 @@ func newShelf(in *Input, k int, opt Options) *shelf {
 	s := &shelf{opt: opt, in: in, st: &in.Standings[k], lackHours: map[int]bool{}}
 	for _, m := range s.st.Moments {
 		s.hours = append(s.hours, m.Step)
-		if m.Occupied {
-			s.used = append(s.used, m.Step)
-		}
 	}
 	for _, m := range in.Clear {
 		if in.standingAt(m.Step) == k {
@@ -67,6 +63,18 @@ func (s *shelf) pixels() int {
 	return s.opt.shots.pixels
 }
 
+// used are the hours in which the room of a view is in use.
+func (s *shelf) used(view int) []int {
+	use := s.in.UseOf(s.st.Scene.Viewpoints[view].Room)
+	var list []int
+	for _, h := range s.hours {
+		if use.mask[h] {
+			list = append(list, h)
+		}
+	}
+	return list
+}
+
 func (s *shelf) missingView(i int) {
 	x := s.views[i]
 	missing := false
@@ -75,7 +83,8 @@ func (s *shelf) missingView(i int) {
 			missing, s.lackHours[h] = true, true
 		}
 	}
-	if !missing && !s.opt.anyWorst && len(s.used) > 0 && x.top(s.used) == nil {
+	used := s.used(i)
+	if !missing && !s.opt.anyWorst && len(used) > 0 && x.top(used) == nil {
 		missing = true
 		for _, h := range s.hours {
 			s.lackHours[h] = true
@@ -117,7 +126,7 @@ func (s *shelf) compute(ctx context.Context, r *Result) error {
 			c.Moments = append(c.Moments, &open)
 		}
 	}
-	sub.Climate, sub.Clear = &c, nil
+	sub.Climate, sub.Clear, sub.always = &c, nil, true
 	if len(s.lackPlanes) > 0 {
 		sub.Clear = s.clear
 	}

@@ -157,6 +157,7 @@ func (v *viewRecord) learnTops(tops map[int]*Worst) {
 func (y *year) readView(s *shelf, i int, r *Result) {
 	x, v, g := s.views[i], &y.glare.views[i], y.glare
 	r.tell(s.in, x.Sides, x.Coarsen)
+	use := s.in.UseOf(v.Viewpoint.Room)
 	var eye *coeff.Eye
 	for _, m := range s.st.Moments {
 		h := m.Step
@@ -164,9 +165,11 @@ func (y *year) readView(s *shelf, i int, r *Result) {
 		if !m.Occupied || a == nil {
 			continue
 		}
-		v.DGP[h], v.StdErr[h], v.Ev[h], v.EvErr[h], v.InRange[h], v.Coarse[h] = a.DGP, a.StdErr, a.Ev, a.EvErr, a.InRange, a.Coarse
-		if a.Cause >= 0 {
-			v.Cause[h] = g.causeID(i, x.Causes[a.Cause])
+		if use.mask[h] {
+			v.DGP[h], v.StdErr[h], v.Ev[h], v.EvErr[h], v.InRange[h], v.Coarse[h] = a.DGP, a.StdErr, a.Ev, a.EvErr, a.InRange, a.Coarse
+			if a.Cause >= 0 {
+				v.Cause[h] = g.causeID(i, x.Causes[a.Cause])
+			}
 		}
 		if eye == nil {
 			eye = &coeff.Eye{View: x.View, Seen: x.Seen, Inside: x.Inside}
@@ -180,7 +183,7 @@ func (y *year) readView(s *shelf, i int, r *Result) {
 			shots.Discs[frame] = a.Discs
 		}
 	}
-	t := x.top(s.used)
+	t := x.top(s.used(i))
 	if t == nil || v.Worst != nil && !brighter(t.DGP, t.Hour, v.Worst) {
 		return
 	}

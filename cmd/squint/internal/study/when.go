@@ -43,7 +43,7 @@ func (v *ViewResult) when(r *Result, limit float64) string {
 	var byMonth [12]int
 	byCause := map[int16]int{}
 	n := 0
-	for _, h := range r.Occupied {
+	for _, h := range r.UseOf(v.Viewpoint.Room).Hours {
 		if float64(v.DGP[h]) <= limit {
 			continue
 		}
