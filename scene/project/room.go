@@ -23,8 +23,12 @@ func checkRoom(r *reader, n *node, o *Room) {
 }
 
 // completeRooms fills in what rooms leave out, and looks for rooms without
-// anything in them.
+// anything in them, which may be called by a name that is none.
 func (r *reader) completeRooms(p *Project) {
+	known := func(name string) bool {
+		return slices.ContainsFunc(p.Rooms, func(o Room) bool { return o.Name == name })
+	}
+	misnamed := slices.ContainsFunc(r.refs, func(ref reference) bool { return ref.noun == roomTable && !known(ref.name) })
 	for i := range p.Rooms {
 		o, n, all := &p.Rooms[i], r.rooms[i], &p.Occupancy
 		own := o.Occupancy
@@ -47,7 +51,7 @@ func (r *reader) completeRooms(p *Project) {
 		used := slices.ContainsFunc(p.Viewpoints, func(v Viewpoint) bool { return v.Room == o.Name }) ||
 			slices.ContainsFunc(p.ViewGrids, func(g ViewGrid) bool { return g.Room == o.Name }) ||
 			slices.ContainsFunc(p.WorkPlanes, func(w WorkPlane) bool { return w.Room == o.Name })
-		if !used && n.good("name") && o.Name != "" {
+		if !used && !misnamed && n.good("name") && o.Name != "" {
 			r.reject(n, roomTable, "name", "got %s, in which no viewpoint, view_grid or work_plane is; give one room = %[1]s, or leave the room out", quote(o.Name))
 		}
 	}

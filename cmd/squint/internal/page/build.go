@@ -18,10 +18,17 @@ func Build(r *study.Result, words Words) *Archive {
 	a := &Archive{blobs: map[string]blobData{}}
 	c := r.Project.Criteria
 	d := &a.Design
+	fromH, toH := r.Calendar.FromH, r.Calendar.ToH
+	for i, u := range r.Uses {
+		if i == 0 {
+			fromH, toH = u.Calendar.FromH, u.Calendar.ToH
+		}
+		fromH, toH = min(fromH, u.Calendar.FromH), max(toH, u.Calendar.ToH)
+	}
 	*d = Design{
 		Schema: Schema, SchemaVersion: SchemaVersion, Words: words,
 		NorthRad: r.Project.Site.NorthDeg * math.Pi / 180,
-		FromH:    r.Calendar.FromH, ToH: r.Calendar.ToH, Use: int(r.Calendar.InHours(len(r.Occupied))),
+		FromH:    fromH, ToH: toH, Use: int(r.Calendar.InHours(len(r.Occupied))),
 		Levels: levels(), Asked: -1,
 		SourceRule: c.SourceRule, SourceCdM2: c.SourceLuminance, SourceMultiple: c.SourceMultiple,
 		Standings: r.Standings, Views: []View{}, Planes: []Plane{},

@@ -14,7 +14,7 @@ import (
 
 // sheetTables are the tables of method and inputs.
 func sheetTables(r *study.Result, o Options, f paths) []sheet.Table {
-	return slices.DeleteFunc([]sheet.Table{glareTable(r), planeTable(r), hazardTable(r), finishTable(r.Project), weatherTable(r, o, f), fileTable(r, o, f), settingsTable(r), hoursTable(r)},
+	return slices.DeleteFunc([]sheet.Table{glareTable(r), planeTable(r), useTable(r), hazardTable(r), finishTable(r.Project), weatherTable(r, o, f), fileTable(r, o, f), settingsTable(r), hoursTable(r)},
 		func(t sheet.Table) bool { return len(t.Rows) == 0 })
 }
 

@@ -7,6 +7,7 @@ import (
 
 type planeJSON struct {
 	Name     string `json:"name"`
+	Room     string `json:"room,omitempty"` // whose hours of use count
 	Sensors  int    `json:"sensors"`
 	SpacingM number `json:"spacing_m"`
 	HeightM  number `json:"height_m"`
@@ -75,7 +76,7 @@ func planesJSON(r *study.Result) []planeJSON {
 	out := []planeJSON{}
 	for i := range r.Planes {
 		p := &r.Planes[i]
-		j := planeJSON{Name: p.Plane.Name, Sensors: len(p.Plane.Sensors), SpacingM: number(p.Plane.SpacingM), HeightM: number(p.Plane.HeightM),
+		j := planeJSON{Name: p.Plane.Name, Room: p.Plane.Room, Sensors: len(p.Plane.Sensors), SpacingM: number(p.Plane.SpacingM), HeightM: number(p.Plane.HeightM),
 			DaylightFactor: factorJSON{number(p.Factors.Mean), number(p.Factors.Median), number(p.Factors.Min), number(p.Factors.Max), number(p.Factors.Uniformity)},
 			DA:             number(p.MeanDA), CDA: number(p.MeanCDA),
 			UDI:   udiJSON{number(p.MeanUDI.FellShort), number(p.MeanUDI.Supplementary), number(p.MeanUDI.Autonomous), number(p.MeanUDI.Exceeded)},
