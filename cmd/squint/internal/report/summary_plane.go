@@ -81,7 +81,7 @@ func planesJSON(r *study.Result) []planeJSON {
 			DA:             number(p.MeanDA), CDA: number(p.MeanCDA),
 			UDI:   udiJSON{number(p.MeanUDI.FellShort), number(p.MeanUDI.Supplementary), number(p.MeanUDI.Autonomous), number(p.MeanUDI.Exceeded)},
 			SDA:   spatialJSON{p.SDA.Label, toBracket(p.SDA.Share), number(p.SDA.Hours)},
-			ASE:   spatialJSON{"ASE", toBracket(p.ASE.Share), number(p.ASE.Hours)},
+			ASE:   spatialJSON{p.ASE.Label, toBracket(p.ASE.Share), number(p.ASE.Hours)},
 			Asked: "none", Provision: []provisionJSON{}, Points: points(p),
 			ByFactor: byFactor(p), ViewOut: viewOut(p), ClearSky: clearSky(r, p)}
 		if p.Asked >= 0 && p.Asked < len(daylight.ProvisionLevels) {

@@ -96,8 +96,11 @@ func (r *Result) judgePlane(p *PlaneResult, z float64) {
 	}
 	p.Factors = daylight.Factors(p.Factor)
 	plane := daylight.Plane{E: p.E, SE: p.StdErr, Z: z}
-	p.SDA = daylight.SDA(plane, r.Clock, daylight.DefaultSpatial, r.Climate.PerHour())
-	p.ASE = daylight.ASE(p.Direct, r.Clock, daylight.DefaultExposure, r.Climate.PerHour())
+	spatial, exposure := daylight.DefaultSpatial, daylight.DefaultExposure
+	spatial.Shading = shading(r.Project)
+	exposure.Shading = spatial.Shading
+	p.SDA = daylight.SDA(plane, r.Clock, spatial, r.Climate.PerHour())
+	p.ASE = daylight.ASE(p.Direct, r.Clock, exposure, r.Climate.PerHour())
 	for k, l := range provisionLevels(r.Project) {
 		res := daylight.Provision(plane, r.Daylight, l)
 		v := verdict.Provision(p.Plane.Name, res)
