@@ -70,6 +70,8 @@ func (r *Result) judgePlanes(y *year) {
 	}
 }
 
+// spread makes series of the year of those of the moments, which it lets go of:
+// in fine steps both together take much room.
 func (r *Result) spread(byMoment [][]float32) [][]float32 {
 	out := make([][]float32, len(byMoment))
 	for s := range byMoment {
@@ -77,6 +79,7 @@ func (r *Result) spread(byMoment [][]float32) [][]float32 {
 		for k, m := range r.Climate.Moments {
 			out[s][m.Step] = byMoment[s][k]
 		}
+		byMoment[s] = nil
 	}
 	return out
 }

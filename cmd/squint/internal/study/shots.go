@@ -46,8 +46,8 @@ const (
 	mostShown  = 1e6
 )
 
-// Sizes of the pictures by the number of views: across, in pixels, and the
-// patterns that they are made of. What they are kept in must fit beside the
+// Sizes of the pictures by the number of views, times the steps in an hour:
+// across, in pixels, and the patterns that they are made of. What they are kept in must fit beside the
 // rest, and the page must not grow without bound. Own choice.
 var shotSizes = []struct{ views, pixels, rank int }{
 	{16, 48, 12},
@@ -67,7 +67,7 @@ type shotPlan struct {
 func newShotPlan(in *Input) *shotPlan {
 	s := &shotPlan{frame: make([]int, len(in.Climate.SinAltitude))}
 	for _, size := range shotSizes {
-		if len(in.Scene.Viewpoints) <= size.views {
+		if len(in.Scene.Viewpoints)*in.Climate.PerHour() <= size.views {
 			s.pixels, s.rank = min(size.pixels, in.Project.Simulation.FisheyePixels), size.rank
 			break
 		}
