@@ -39,15 +39,12 @@ func (o *openSensors) records() map[int]bool {
 // findOpen finds what is open within z standard errors.
 func (r *Result) findOpen(y *year, z float64) *openSensors {
 	o := &openSensors{hours: map[int]map[int]bool{}, clear: map[int]map[int]bool{}, factor: map[int]bool{}}
-	asked := r.asked()
-	if len(asked) == 0 {
-		return o
-	}
 	first := 0
 	for i, w := range r.Scene.WorkPlanes {
+		asked := r.asked(w.Room)
 		n := len(w.Sensors)
 		planes := map[series]daylight.Plane{
-			ofYear:   {E: r.spread(y.light.E[first : first+n]), SE: r.spread(y.light.StdErr[first : first+n]), Z: z},
+			ofYear:   {E: r.spread(slices.Clone(y.light.E[first : first+n])), SE: r.spread(slices.Clone(y.light.StdErr[first : first+n])), Z: z},
 			ofFactor: daylight.FactorPlane(y.factors[first:first+n], y.factorE[first:first+n], z),
 		}
 		if y.clear != nil {
@@ -195,6 +192,11 @@ func sensorsOf(in *Input, o *openSensors, size project.Simulation, round int) *I
 		records[m.Step] = true
 	}
 	sub.narrow(records, func(s *scene.Scene) *scene.Scene { return sensorsIn(s, o.sensors) })
+	if len(sub.Standings) == 0 && len(sub.Clear) > 0 { // at hours that the weather has dark
+		st := in.Standings[in.standingAt(sub.Clear[0].Step)]
+		st.Scene, st.Moments = sensorsIn(st.Scene, o.sensors), nil
+		sub.Standings = []Standing{st}
+	}
 	if len(o.factor) > 0 {
 		st := in.factorStanding()
 		st.Scene, st.Moments = sensorsIn(st.Scene, o.sensors), nil

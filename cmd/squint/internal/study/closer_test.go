@@ -23,7 +23,7 @@ func asking(lx, placeShare float64) project.Limit {
 func TestCloserReplaces(t *testing.T) {
 	in := evenRoom(t, 5000)
 	in.Scene.Viewpoints = nil
-	r := &Result{Project: in.Project, Scene: in.Scene, Climate: in.Climate, Occupied: in.Occupied}
+	r := &Result{Project: in.Project, Scene: in.Scene, Climate: in.Climate, Calendar: in.Calendar, Occupied: in.Occupied}
 	opt := Options{Workers: 1, Progress: func(Stage, int, int) {}}
 	y, err := computeYear(context.Background(), in, opt, r)
 	if err != nil {
