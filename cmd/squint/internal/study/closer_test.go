@@ -118,28 +118,6 @@ func TestCloserFactors(t *testing.T) {
 	}
 }
 
-// TestVariances: with few rays from the sensors and many from the surfaces the
-// error is mostly the sensors' own, and the other way round.
-func TestVariances(t *testing.T) {
-	of := func(sensor, texel int) (rays, shared float64) {
-		in := evenRoom(t, 5000)
-		in.Scene.Viewpoints = nil
-		in.Project.Simulation.SensorSamples, in.Project.Simulation.TexelSamples = sensor, texel
-		rays, shared, err := variances(context.Background(), in, Options{Workers: 2, Progress: func(Stage, int, int) {}})
-		if err != nil {
-			t.Fatal(err)
-		}
-		t.Logf("%d rays, %d samples: %.2g and %.2g", sensor, texel, rays, shared)
-		return rays, shared
-	}
-	if rays, shared := of(16, 1024); !(rays > 4*shared) {
-		t.Errorf("few rays: got %g of the variance from them and %g shared", rays, shared)
-	}
-	if rays, shared := of(16384, 16); !(shared > 4*rays) {
-		t.Errorf("few samples of surfaces: got %g of the variance from rays and %g shared", rays, shared)
-	}
-}
-
 // TestSensorsIn: sensors are picked by their number among all planes, and
 // planes without any are left out.
 func TestSensorsIn(t *testing.T) {
