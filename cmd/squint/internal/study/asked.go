@@ -88,6 +88,9 @@ func openOf(all []condition, planes map[series]daylight.Plane) []condition {
 	var open []condition
 	var outcomes []verdict.Outcome
 	for _, c := range all {
+		if len(planes[c.of].E) == 0 {
+			continue // not computed
+		}
 		o := verdict.AtLeast(planes[c.of].SensorsWithin(c.hours, c.low, c.high, c.timeShare), c.placeShare)
 		outcomes = append(outcomes, o)
 		if o == verdict.Undecided {

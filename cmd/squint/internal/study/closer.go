@@ -3,16 +3,12 @@ package study
 import (
 	"context"
 	"fmt"
-	"math"
-	"slices"
 
 	"squint/glare/daylight"
 	"squint/glare/verdict"
 	"squint/materials/sampling"
 	"squint/scene"
 	"squint/scene/project"
-	"squint/trace/annual"
-	"squint/trace/surface"
 )
 
 // openSensors is what leaves criteria on work planes undecided.
@@ -100,7 +96,7 @@ func (r *Result) lookCloser(ctx context.Context, in *Input, opt Options, y *year
 	z := r.zSensors()
 	again := opt.again()
 	size := in.Project.Simulation
-	var rays, shared float64 // of the variance
+	var from noise
 	for round := 1; round <= refineRounds; round++ {
 		o := r.findOpen(y, z)
 		if len(o.sensors) == 0 {
@@ -108,17 +104,17 @@ func (r *Result) lookCloser(ctx context.Context, in *Input, opt Options, y *year
 		}
 		if round == 1 {
 			var err error
-			if rays, shared, err = variances(ctx, sensorsOf(in, o, size, 0), again); err != nil {
+			if from, err = variances(ctx, sensorsOf(in, o, size, 0), again); err != nil {
 				return err
 			}
 		}
 		size.SensorSamples *= refineFactor
-		rays /= refineFactor
-		if shared > rays {
+		from.rays /= refineFactor
+		if from.shared > from.rays {
 			size.TexelSamples *= refineFactor
 			size.Photons *= refineFactor
-			size.Batches = min(size.Batches*refineFactor, max(mostBatches, size.Batches))
-			shared /= refineFactor
+			size.Batches = from.batches(size)
+			from.shared /= refineFactor
 		}
 		var own Result
 		sub := sensorsOf(in, o, size, round)
@@ -140,10 +136,6 @@ func (r *Result) lookCloser(ctx context.Context, in *Input, opt Options, y *year
 	}
 	return nil
 }
-
-// mostBatches is the most that a closer look takes, the schema's own bound:
-// each batch has rows of its own in memory.
-const mostBatches = 64
 
 // replace takes over what was open. Errors are given a scale: more batches tell
 // them better, so that fewer of them make the same interval; times z they are
@@ -234,51 +226,6 @@ func sensorsIn(s *scene.Scene, sensors []int) *scene.Scene {
 		}
 	}
 	return &few
-}
-
-// variances are the mean squares of the relative error of sensors away from the
-// sun that come from their own rays, and from what they share: the light of the
-// surfaces. With one batch's rays for all batches only the latter is left.
-func variances(ctx context.Context, in *Input, opt Options) (rays, shared float64, err error) {
-	st := slices.MaxFunc(in.Standings, func(a, b Standing) int { return len(a.Moments) - len(b.Moments) })
-	moments := []*scene.Moment{}
-	for k := range min(len(st.Moments), surface.Width) {
-		moments = append(moments, st.Moments[k*len(st.Moments)/min(len(st.Moments), surface.Width)])
-	}
-	if len(moments) == 0 {
-		m, err := scene.Overcast(0)
-		if err != nil {
-			return 0, 0, err
-		}
-		moments = append(moments, m)
-	}
-	e, err := newEngine(ctx, in, &st, opt, &Result{})
-	if err != nil {
-		return 0, 0, err
-	}
-	var mean [2]float64
-	for i := range mean {
-		d, err := annual.Run(ctx, e.t, e.rec, moments, e.cfg, nil, nil)
-		if err != nil {
-			return 0, 0, err
-		}
-		n := 0.0
-		for s := range d.E {
-			for k, lx := range d.E[s] {
-				if lx > 0 && d.Direct[s][k] == 0 {
-					x := float64(d.StdErr[s][k] / lx)
-					mean[i] += x * x
-					n++
-				}
-			}
-		}
-		mean[i] /= math.Max(n, 1)
-		e.rec.Rows = slices.Repeat(e.rec.Rows[:1], len(e.rec.Rows))
-		for s := range e.rec.Shines {
-			e.rec.Shines[s] = slices.Repeat(e.rec.Shines[s][:1], len(e.rec.Shines[s]))
-		}
-	}
-	return math.Max(0, mean[0]-mean[1]), mean[1], nil
 }
 
 // streamCloser keeps the seeds of closer looks at sensors apart from others.
