@@ -12,12 +12,23 @@ func clearHill(t *testing.T) *Climate {
 	return &Climate{Year: invented(t), Site: hill}
 }
 
+// almanac is the declination at solar noon at hill of a day of 2022, 1 to 365,
+// rad, good to 0.01 degrees. Source: The Astronomical Almanac, section C, low
+// precision formulas for the Sun (from memory). 1 January 2022, 12 h UT, is
+// 8036 days after the epoch J2000.
+func almanac(day float64) float64 {
+	const degree = math.Pi / 180
+	n := 8036 + day - 1 - 1.0/24
+	g := (357.528 + 0.9856003*n) * degree
+	ecliptic := (280.460 + 0.9856474*n + 1.915*math.Sin(g) + 0.020*math.Sin(2*g)) * degree
+	return math.Asin(math.Sin((23.439-4e-7*n)*degree) * math.Sin(ecliptic))
+}
+
 // The hours of sun of a day against the closed form 24/pi acos(-tan phi tan
-// delta), spherical trigonometry, with the declination that the day's own noon
-// altitude gives.
+// delta), spherical trigonometry, with delta by almanac.
 func TestDay(t *testing.T) {
 	const perHour = 30
-	for _, d := range []project.MonthDay{{Month: 2, Day: 1}, {Month: 3, Day: 21}, {Month: 6, Day: 21}} {
+	for d, day := range map[project.MonthDay]float64{{Month: 2, Day: 1}: 32, {Month: 3, Day: 21}: 80, {Month: 6, Day: 21}: 172} {
 		suns, err := clearHill(t).Day(d, 0, perHour)
 		if err != nil {
 			t.Fatal(err)
@@ -32,13 +43,18 @@ func TestDay(t *testing.T) {
 			}
 		}
 		phi := hill.LatitudeDeg * math.Pi / 180
-		delta := math.Asin(most) + phi - math.Pi/2
-		want := 24 / math.Pi * math.Acos(-math.Tan(phi)*math.Tan(delta))
-		// Half a step at rise and set; the declination moves by 0.4 degrees a day
-		// at the equinox, 0.1 between noon and set, at 0.17 h a degree in sum of both
-		// ends of opposite sign.
-		if got := up / perHour; math.Abs(got-want) > 1.0/perHour+0.02 {
-			t.Errorf("%v: %.3f h of sun, want %.3f", d, got, want)
+		hours := func(delta float64) float64 { return 24 / math.Pi * math.Acos(-math.Tan(phi)*math.Tan(delta)) }
+		delta, want := almanac(day), hours(almanac(day))
+		// What the almanac errs, and half a step at rise and at set. Between noon,
+		// rise and set the declination moves as much up as down.
+		const off = 0.01 * math.Pi / 180
+		bound := 1.0/perHour + math.Abs(hours(delta+off)-want)
+		if got := up / perHour; math.Abs(got-want) > bound {
+			t.Errorf("%v: %.3f h of sun, want %.3f +- %.3f", d, got, want, bound)
+		}
+		// Noon falls within half a step, 0.25 degrees: 1 - cos 0.25 degrees = 1e-5.
+		if got, want := most, math.Sin(math.Pi/2-phi+delta); math.Abs(got-want) > off+1e-5 {
+			t.Errorf("%v: sine of the noon altitude %.5f, want %.5f", d, got, want)
 		}
 		// In the middle of its zone the sun is south within 16 min of noon.
 		if s := suns[noon]; s.Y > 0 || math.Abs(float64(noon)/perHour-12) > 0.35 {

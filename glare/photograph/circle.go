@@ -51,13 +51,20 @@ func FindCircle(im *luminance.Image) (Fit, error) {
 	// First within 6 % of the radius, then close by, where the scene inside
 	// hardly changes.
 	for _, reach := range []float64{math.Max(4, 0.06*c.RadiusPx), 4, 4} {
-		if f, ok = s.refine(c, reach); !ok {
+		if f, ok = s.refine(c, 0, reach); !ok {
 			return Fit{}, fmt.Errorf("%w: its edge is too faint", ErrNoCircle)
 		}
 		c = f.Circle
 		if math.Abs(f.Stretch)*c.RadiusPx > 4 {
 			blur = math.Max(1, 0.01*c.RadiusPx)
 			break // close by there would be only part of it
+		}
+	}
+	if math.Abs(f.Stretch)*c.RadiusPx > 4 { // and what was near shows less than all of it
+		for range 3 {
+			if f, ok = s.refine(f.Circle, f.Stretch, 4); !ok {
+				return Fit{}, fmt.Errorf("%w: its edge is too faint", ErrNoCircle)
+			}
 		}
 	}
 	if f.RMSPx > blur {
@@ -181,19 +188,22 @@ func consensus(points []point, side float64) (best Circle, ok bool) {
 
 // refine looks for the edge along rays from the circle's centre, as far as
 // reach (pixels) inside and outside of it, where the luminance is halfway
-// between both sides, and fits a circle to what is found.
-func (s sampler) refine(c Circle, reach float64) (f Fit, ok bool) {
+// between both sides, and fits a circle to what is found, in the picture as it
+// was before a stretch.
+func (s sampler) refine(c Circle, stretch, reach float64) (f Fit, ok bool) {
 	const rays, step = 720, 0.25
+	wide := math.Sqrt(1 + stretch)
+	high := 1 / wide
 	var found []point
 	looked := 0
 	for k := range rays {
 		sin, cos := math.Sincos(2 * math.Pi * float64(k) / rays)
-		x, y := c.X+c.RadiusPx*cos, c.Y+c.RadiusPx*sin
+		x, y := c.X+c.RadiusPx*cos*wide, c.Y+c.RadiusPx*sin*high
 		if x < 0 || y < 0 || x > float64(s.Width) || y > float64(s.Height) {
 			continue // cut off
 		}
 		looked++
-		at := func(r float64) float64 { return s.at(c.X+r*cos, c.Y+r*sin) }
+		at := func(r float64) float64 { return s.at(c.X+r*cos*wide, c.Y+r*sin*high) }
 		inside, outside, n := 0.0, 0.0, 0.0
 		for d := 1.5; d <= reach; d += step {
 			inside += at(c.RadiusPx - d)
@@ -232,7 +242,7 @@ func (s sampler) refine(c Circle, reach float64) (f Fit, ok bool) {
 		along += r * cos2
 		weight += cos2 * cos2
 	}
-	f.Stretch = 2 * along / (weight * c.RadiusPx)
+	f.Stretch = (1+stretch)*(1+2*along/(weight*c.RadiusPx)) - 1
 	f.RMSPx = math.Sqrt(math.Max(0, square-along*along/weight) / float64(len(kept)))
 	return f, true
 }

@@ -3,6 +3,7 @@ package study
 import (
 	"context"
 	"fmt"
+	"slices"
 
 	"squint/glare/daylight"
 	"squint/glare/verdict"
