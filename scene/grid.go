@@ -15,7 +15,7 @@ const maxCells = 1_000_000
 // sensorGrid puts a sensor in the middle of each of the plane's cells. It fails
 // where no sensor fits, and where cells are more than maxCells.
 func sensorGrid(def *project.WorkPlane) (WorkPlane, error) {
-	w := WorkPlane{Name: def.Name, HeightM: def.HeightM, PolygonM: def.PolygonM, SpacingM: def.Cell(), Line: def.Line}
+	w := WorkPlane{Name: def.Name, HeightM: def.HeightM, PolygonM: def.PolygonM, SpacingM: def.Cell(), Room: def.Room, Line: def.Line}
 	middles, area, across := project.Cells(def.PolygonM, w.SpacingM, def.PerimeterM, maxCells)
 	if float64(across[0])*float64(across[1]) > maxCells {
 		return w, fmt.Errorf("spacing_m: got %g, which makes %d by %d cells, want at most %d in all; give a larger spacing_m or split the plane", w.SpacingM, across[0], across[1], maxCells)

@@ -70,6 +70,7 @@ type Viewpoint struct {
 	Name                string
 	Position, Direction r3.Vec
 	Grid                string // name of the project's view grid that it is of; "" for none
+	Room                string // whose hours of use count; "" for the project's own
 	Line                int
 }
 
@@ -87,6 +88,7 @@ type WorkPlane struct {
 	SpacingM float64
 	HeightM  float64
 	PolygonM [][2]float64
+	Room     string // whose hours of use count; "" for the project's own
 	Line     int
 }
 

@@ -107,7 +107,7 @@ func (b *builder) addReceivers() {
 		} else if v.AzimuthDeg != nil {
 			dir = project.Direction(*v.AzimuthDeg, v.PitchDeg, b.p.Site.NorthDeg)
 		}
-		b.s.Viewpoints = append(b.s.Viewpoints, Viewpoint{Name: v.Name, Position: pos, Direction: dir, Grid: v.Grid, Line: v.Line})
+		b.s.Viewpoints = append(b.s.Viewpoints, Viewpoint{Name: v.Name, Position: pos, Direction: dir, Grid: v.Grid, Room: v.Room, Line: v.Line})
 	}
 	for i := range b.p.WorkPlanes {
 		w, err := sensorGrid(&b.p.WorkPlanes[i])

@@ -57,7 +57,7 @@ func runSunPath(ctx context.Context, h host, o sunPathOptions) error {
 	if err != nil {
 		return inputError{d.explain(err)}
 	}
-	point, err := sunPathPoint(in.Scene, o)
+	point, room, err := sunPathPoint(in.Scene, o)
 	if err != nil {
 		return err
 	}
@@ -72,7 +72,7 @@ func runSunPath(ctx context.Context, h host, o sunPathOptions) error {
 	if err := canHold(out); err != nil {
 		return inputError{err}
 	}
-	input := sunPathInput(in, point, o.Workers)
+	input := sunPathInput(in, point, room, o.Workers)
 	y, err := sunpath.Compute(ctx, input)
 	if err != nil {
 		return err
@@ -97,42 +97,42 @@ func runSunPath(ctx context.Context, h host, o sunPathOptions) error {
 	return report.SunPath(h.out, in, y, sheet.Notes, about, out)
 }
 
-// sunPathPoint finds the viewpoint or opening that was asked for.
-func sunPathPoint(s *scene.Scene, o sunPathOptions) (sunpath.Point, error) {
+// sunPathPoint finds the viewpoint or opening that was asked for, and its room.
+func sunPathPoint(s *scene.Scene, o sunPathOptions) (p sunpath.Point, room string, err error) {
 	var none sunpath.Point
 	if o.View != "" && o.Opening != "" {
-		return none, usageError{fmt.Errorf("--opening: got %q beside --view %q, want one of them", o.Opening, o.View)}
+		return none, "", usageError{fmt.Errorf("--opening: got %q beside --view %q, want one of them", o.Opening, o.View)}
 	}
 	var names []string
 	if o.Opening != "" {
 		for _, p := range s.Openings {
 			if p.Name == o.Opening {
-				return sunpath.AtOpening(p), nil
+				return sunpath.AtOpening(p), "", nil
 			}
 			names = append(names, p.Name)
 		}
-		return none, usageError{fmt.Errorf("--opening: got %q, want an opening of the project; %s", o.Opening, project.DidYouMean(o.Opening, names))}
+		return none, "", usageError{fmt.Errorf("--opening: got %q, want an opening of the project; %s", o.Opening, project.DidYouMean(o.Opening, names))}
 	}
 	for _, v := range s.Viewpoints {
 		if v.Name == o.View || o.View == "" {
-			return sunpath.AtViewpoint(v), nil
+			return sunpath.AtViewpoint(v), v.Room, nil
 		}
 		names = append(names, v.Name)
 	}
 	if o.View == "" {
-		return none, inputError{fmt.Errorf("%s: got no viewpoint, want one; add one or name an opening with --opening", s.Project.File)}
+		return none, "", inputError{fmt.Errorf("%s: got no viewpoint, want one; add one or name an opening with --opening", s.Project.File)}
 	}
-	return none, usageError{fmt.Errorf("--view: got %q, want a viewpoint of the project; %s", o.View, project.DidYouMean(o.View, names))}
+	return none, "", usageError{fmt.Errorf("--view: got %q, want a viewpoint of the project; %s", o.View, project.DidYouMean(o.View, names))}
 }
 
 // sunPathInput is what the year of suns needs of a study.
-func sunPathInput(in *study.Input, p sunpath.Point, workers int) *sunpath.Input {
+func sunPathInput(in *study.Input, p sunpath.Point, room string, workers int) *sunpath.Input {
 	c := in.Climate
 	first := c.Year.Moment(0, -0.5)
 	return &sunpath.Input{
 		Point: p, World: in.WorldUnder, Year: first.Year(), Zone: first.Location(),
 		Sun:      func(t time.Time) (r3.Vec, error) { return scene.SunAt(c.Site, in.Project.Site.NorthDeg, t) },
-		Calendar: in.Calendar, Workers: workers,
+		Calendar: in.UseOf(room).Calendar, Workers: workers,
 		Bright: func(record int) bool { return sunpath.Bright(c.Year.Records[record].DNI) },
 	}
 }
@@ -141,7 +141,7 @@ func sunPathInput(in *study.Input, p sunpath.Point, workers int) *sunpath.Input 
 // where systems follow the sun.
 func sunPathSheet(in *study.Input, input *sunpath.Input, form sunpath.Form, widthPx int) (sunpath.Sheet, error) {
 	sheet := sunpath.Sheet{Form: form, WidthPx: widthPx, NorthRad: in.Project.Site.NorthDeg * math.Pi / 180, World: in.World, Place: report.SunPathPlace(in),
-		FromH: in.Calendar.FromH, ToH: in.Calendar.ToH}
+		FromH: input.Calendar.FromH, ToH: input.Calendar.ToH}
 	if len(in.Standings) > 1 {
 		noon := time.Date(input.Year, time.March, 21, 12, 0, 0, 0, input.Zone)
 		sun, err := input.Sun(noon)

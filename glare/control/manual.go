@@ -17,8 +17,9 @@ func (l Active) Choose(u *Unit, steps []Step, f Facts) ([]int, error) {
 	}
 	list := make([]int, len(steps))
 	state, arrived := l.Open, -1
+	used := f.inUse(steps)
 	for i, s := range steps {
-		if s.Occupied {
+		if used[i] {
 			if s.Day != arrived {
 				state, arrived = l.Open, s.Day
 			}

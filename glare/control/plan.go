@@ -9,7 +9,8 @@ import (
 type Plan struct {
 	units []Unit
 	steps []Step
-	base  [][]int // of the laws, [unit][step]
+	base  [][]int  // of the laws, [unit][step]
+	used  [][]bool // somebody is there whom the unit serves, [unit][step]
 	days  [][2]int
 	known map[Need]Observed
 }
@@ -35,7 +36,8 @@ func New(units []Unit, steps []Step, facts func(unit int) Facts) (*Plan, error) 
 		if g := u.Glare; g != nil && !(g.Limit > 0 && g.Hysteresis >= 0 && g.Hysteresis < g.Limit) {
 			return nil, fmt.Errorf("control: %q: got a DGP limit of %g with a hysteresis of %g, want a limit above 0 and a hysteresis from 0 to below it", u.Name, g.Limit, g.Hysteresis)
 		}
-		list, err := u.Law.Choose(u, steps, facts(i))
+		f := facts(i)
+		list, err := u.Law.Choose(u, steps, f)
 		if err != nil {
 			return nil, err
 		}
@@ -44,7 +46,7 @@ func New(units []Unit, steps []Step, facts func(unit int) Facts) (*Plan, error) 
 				return nil, fmt.Errorf("control: %q: its law chose state %d, want 0 to %d", u.Name, s, len(u.States)-1)
 			}
 		}
-		p.base = append(p.base, list)
+		p.base, p.used = append(p.base, list), append(p.used, f.inUse(steps))
 	}
 	for i, s := range steps {
 		if !(s.Share > 0 && s.Share <= 1) {
@@ -126,45 +128,45 @@ func (p *Plan) step(i int, held []int) (states []int, need bool) {
 	states = make([]int, len(p.units))
 	for k := range p.units {
 		states[k] = p.base[k][i]
-		if g := p.units[k].Glare; g != nil && (g.Reopen == NextMorning || !p.steps[i].Occupied) {
+		if g := p.units[k].Glare; g != nil && (g.Reopen == NextMorning || !p.used[k][i]) {
 			states[k] = max(states[k], held[k]) // nobody opens it now
 		}
 	}
-	for p.steps[i].Occupied && p.canClose(states) {
+	for p.canClose(i, states) {
 		o, ok := p.known[Need{i, combination(states)}]
 		if !ok {
 			return states, true
 		}
-		if !p.close(states, held, o) {
+		if !p.close(i, states, held, o) {
 			break
 		}
 	}
 	return states, false
 }
 
-func (p *Plan) canClose(states []int) bool {
+func (p *Plan) canClose(step int, states []int) bool {
 	for k := range states {
-		if p.closes(k, states) {
+		if p.closes(k, step, states) {
 			return true
 		}
 	}
 	return false
 }
 
-// closes is whether glare can close unit k further.
-func (p *Plan) closes(k int, states []int) bool {
-	return p.units[k].Glare != nil && states[k] < len(p.units[k].States)-1
+// closes is whether glare can close unit k further at a step.
+func (p *Plan) closes(k, step int, states []int) bool {
+	return p.units[k].Glare != nil && p.used[k][step] && states[k] < len(p.units[k].States)-1
 }
 
 // close closes by one state each unit that a viewpoint with glare asks; false
 // where none does.
-func (p *Plan) close(states, held []int, o Observed) bool {
+func (p *Plan) close(step int, states, held []int, o Observed) bool {
 	asked := make([]bool, len(states))
 	for v, dgp := range o.DGP {
 		var able, seen []int // units that react to this viewpoint
 		for k := range states {
 			g := p.units[k].Glare
-			if !p.closes(k, states) || !g.watches(v) || !g.above(dgp, states[k] < held[k]) {
+			if !p.closes(k, step, states) || !g.watches(v) || !g.above(dgp, states[k] < held[k]) {
 				continue
 			}
 			able = append(able, k)

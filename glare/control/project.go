@@ -58,6 +58,7 @@ func operate(u *Unit, c *project.Control, m project.Movable, views []project.Vie
 	case project.RuleFollow:
 		u.Law = Follow{}
 	case project.RuleManual:
+		u.Room = c.Room
 		u.Law = Active{CloseWm2: c.DeskWm2, Open: open, Closed: closed}
 		if c.User == project.PassiveUser {
 			u.Law = Always{closed}

@@ -10,7 +10,7 @@ import (
 type Lasting struct {
 	State     string  // Combination.Label of the group's units
 	DaylightH float64 // hours of all steps
-	InUseH    float64 // hours of those in use
+	InUseH    float64 // hours of those in which the group's units serve somebody
 }
 
 // GroupReport is the year of one group of openings. Shares are of the hours in
@@ -96,7 +96,7 @@ func (p *Plan) group(name string, chosen []Combination, view func(unit, state in
 			order = append(order, key)
 		}
 		lasting[key].DaylightH += s.Share
-		if !s.Occupied {
+		if !slices.ContainsFunc(members, func(k int) bool { return p.used[k][i] }) {
 			continue
 		}
 		lasting[key].InUseH += s.Share

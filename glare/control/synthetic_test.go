@@ -133,7 +133,7 @@ func TestSyntheticYearWithBlinds(t *testing.T) {
 		get := map[string]string{}
 		closed := r.Groups[0].States[1]
 		get["blind-closed occupied hours (more than 2% of 50 points)"] = strconv.FormatFloat(closed.InUseH, 'f', -1, 64)
-		sda := daylight.SDA(daylight.Plane{E: dimmed}, clock, daylight.Spatial{ThresholdLx: 300, TimeShare: 0.5, Blinds: true}, 1)
+		sda := daylight.SDA(daylight.Plane{E: dimmed}, clock, daylight.Spatial{ThresholdLx: 300, TimeShare: 0.5, Shading: daylight.ByBlindRule}, 1)
 		get["sDA300/50 with blinds (closed => illuminance x0.2)"] = strconv.Itoa(int(math.Round(sda.Share.Estimate*points))) + "/50"
 		var das []string
 		for _, q := range []int{0, 10, 20, 30, 40, 49} {

@@ -13,6 +13,7 @@ type Unit struct {
 	Name    string
 	Opening string   // at which it hangs
 	Group   string   // of openings: units of one group are reported together
+	Room    string   // whose users operate it; "": those of all
 	States  []string // from the most open to the most closed, at least one
 	Law     Law
 	// Glare closes the unit further than its law does; nil for never.
@@ -36,7 +37,7 @@ type Step struct {
 	Weekday  int     // 0 Monday to 6 Sunday
 	ClockH   float64 // clock time of its middle, 0 to 24
 	Share    float64 // of an hour, above 0 to 1
-	Occupied bool
+	Occupied bool    // any room is in use
 }
 
 // Steps are those of the moments, in their order, which must be that of time.
@@ -62,9 +63,21 @@ type Facts struct {
 	// DeskWm2 is the sun, in W/m2, on the level plane at each place of work, as
 	// DirectLx is.
 	DeskWm2 func(step int) []float64
+	// InUse is whether somebody is there whom the unit serves; nil:
+	// Step.Occupied.
+	InUse func(step int) bool
 	// Following is the name of the state that suits the sun, of systems that
 	// follow it.
 	Following func(step int) string
+}
+
+// inUse is InUse for all steps.
+func (f Facts) inUse(steps []Step) []bool {
+	list := make([]bool, len(steps))
+	for i, s := range steps {
+		list[i] = s.Occupied && (f.InUse == nil || f.InUse(i))
+	}
+	return list
 }
 
 // Law chooses a state of the unit for every step of the year, in order of time,

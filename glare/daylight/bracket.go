@@ -115,6 +115,15 @@ func (p Plane) SensorsWithin(hours Hours, low, high, timeShare float64) Bracket 
 	return p.sharing(hours, timeShare, func(s int) Bracket { return p.TimeWithin(s, hours, low, high) })
 }
 
+// EachWithin is SensorsWithin with hours of its own for each sensor.
+func (p Plane) EachWithin(hours []Hours, low, high, timeShare float64) Bracket {
+	var all Hours
+	for _, h := range hours {
+		all = append(all, h...)
+	}
+	return p.sharing(all, timeShare, func(s int) Bracket { return p.TimeWithin(s, hours[s], low, high) })
+}
+
 // Reached is the illuminance (lx) that the sensor reaches in at least
 // timeShare of the hours, with its bounds Z standard errors apart. Here
 // Surely and Possibly are illuminances: the lower and the upper bound.

@@ -88,7 +88,7 @@ func TestSteps(t *testing.T) {
 		t.Errorf("23:45 on 16 January: got day %d, %g h, want 16 and 0.875", day, clock)
 	}
 	for _, n := range []int{1, 4, 5} { // five steps are 5, 1.25 and 1 h
-		r := ASE([][]float32{{2, 2, 2, 2, 2}}, Hours{0, 1, 2, 3, 4}, Exposure{1, 1}, n)
+		r := ASE([][]float32{{2, 2, 2, 2, 2}}, Hours{0, 1, 2, 3, 4}, Exposure{ThresholdLx: 1, HoursLimit: 1}, n)
 		if want := 5 / float64(n); r.SensorHours[0] != want || r.Hours != want || (r.Share.Estimate == 1) != (want > 1) {
 			t.Errorf("%d steps an hour: got %+v, want %g h of sun, too much above 1", n, r, want)
 		}
@@ -150,7 +150,7 @@ func TestThresholdsAndGaps(t *testing.T) {
 	if b := (Plane{}).SensorShare(all, 300, 0.5); b.Surely == b.Surely {
 		t.Errorf("share of no sensors: %+v", b)
 	}
-	if r := ASE([][]float32{{1000}}, Hours{0}, Exposure{1000, 0}, 1); r.Share.Estimate != 0 {
+	if r := ASE([][]float32{{1000}}, Hours{0}, Exposure{ThresholdLx: 1000}, 1); r.Share.Estimate != 0 {
 		t.Error("ASE counts hours at the threshold, want above it")
 	}
 }

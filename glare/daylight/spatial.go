@@ -4,7 +4,31 @@ package daylight
 type Spatial struct {
 	ThresholdLx float64 // 300 lx
 	TimeShare   float64 // 0.5 of the hours
-	Blinds      bool    // the series has the blinds operated; otherwise the result is labelled unshaded
+	Shading     Shading // in the series
+}
+
+// Shading is how the sun protection stands in a series.
+type Shading int
+
+// What a series may have; IES LM-83-12 wants ByBlindRule for sDA and Unshaded
+// for ASE.
+const (
+	Unshaded    Shading = iota // nothing that moves is closed
+	ByBlindRule                // operated by DefaultBlindRule
+	AsOperated                 // operated, by other rules or not all by that one
+	AsStanding                 // closed, some of it, all the year
+)
+
+// String is what a metric is labelled with, "" for its own rule.
+func (s Shading) String() string {
+	return [...]string{Unshaded: "unshaded", ByBlindRule: "", AsOperated: "as operated", AsStanding: "shading as it stands"}[s]
+}
+
+func labelled(metric, words string) string {
+	if words == "" {
+		return metric
+	}
+	return metric + ", " + words
 }
 
 // DefaultSpatial is sDA(300 lx, 50 %). Source: IES LM-83-12.
@@ -18,25 +42,23 @@ const (
 
 // SpatialResult is the share of sensors that reach the threshold often enough.
 type SpatialResult struct {
-	Share Bracket
-	Label string // "sDA", or "sDA, unshaded" without operated blinds
-	Hours float64
+	Share   Bracket
+	Label   string // "sDA" where blinds are operated by its rule, else such as "sDA, unshaded"
+	Shading Shading
+	Hours   float64
 }
 
 // SDA is spatial daylight autonomy over the hours (Calendar.Clock(8, 18)), of
 // perHour steps each. Source: IES LM-83-12.
 func SDA(p Plane, hours Hours, s Spatial, perHour int) SpatialResult {
-	label := "sDA, unshaded"
-	if s.Blinds {
-		label = "sDA"
-	}
-	return SpatialResult{p.SensorShare(hours, s.ThresholdLx, s.TimeShare), label, float64(len(hours)) / float64(perHour)}
+	return SpatialResult{p.SensorShare(hours, s.ThresholdLx, s.TimeShare), labelled("sDA", s.Shading.String()), s.Shading, float64(len(hours)) / float64(perHour)}
 }
 
 // Exposure holds the limits of annual sunlight exposure.
 type Exposure struct {
 	ThresholdLx float64 // 1000 lx of direct sun
 	HoursLimit  int     // 250 h
+	Shading     Shading // in the series; Unshaded is what the standard wants
 }
 
 // DefaultExposure is ASE(1000 lx, 250 h). Source: IES LM-83-12.
@@ -46,6 +68,7 @@ var DefaultExposure = Exposure{ThresholdLx: 1000, HoursLimit: 250}
 // the hours above the threshold at each sensor.
 type ExposureResult struct {
 	Share       Bracket // all three readings agree: direct sun carries no noise
+	Label       string  // "ASE" with blinds open, else such as "ASE, as operated"
 	SensorHours []float64
 	Hours       float64
 }
@@ -54,7 +77,14 @@ type ExposureResult struct {
 // above the threshold for more than the limit of hours, of perHour steps each,
 // blinds open. Source: IES LM-83-12.
 func ASE(direct [][]float32, hours Hours, x Exposure, perHour int) ExposureResult {
-	r := ExposureResult{SensorHours: make([]float64, len(direct)), Hours: float64(len(hours)) / float64(perHour)}
+	words := x.Shading.String()
+	switch x.Shading {
+	case Unshaded:
+		words = ""
+	case ByBlindRule:
+		words = AsOperated.String()
+	}
+	r := ExposureResult{Label: labelled("ASE", words), SensorHours: make([]float64, len(direct)), Hours: float64(len(hours)) / float64(perHour)}
 	n := 0.0
 	for s, d := range direct {
 		above := 0

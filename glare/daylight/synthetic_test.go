@@ -206,7 +206,7 @@ func TestSyntheticYear(t *testing.T) {
 			dimmed[p][h] = e
 		}
 	}
-	shaded := SDA(Plane{E: dimmed}, clock, Spatial{300, 0.5, true}, 1)
+	shaded := SDA(Plane{E: dimmed}, clock, Spatial{300, 0.5, ByBlindRule}, 1)
 	fraction("sDA300/50 with blinds (closed => illuminance x0.2)", shaded.Share)
 	if shaded.Label != "sDA" {
 		t.Errorf("label %q", shaded.Label)

@@ -20,7 +20,15 @@ type Limit struct {
 
 // Judge holds the series of several places against the limit.
 func (l Limit) Judge(subject string, p daylight.Plane, hours daylight.Hours) Verdict {
-	share := p.SensorsWithin(hours, l.Low, l.High, l.TimeShare)
+	return l.judge(subject, p.SensorsWithin(hours, l.Low, l.High, l.TimeShare))
+}
+
+// JudgeEach is Judge with hours of its own for each place.
+func (l Limit) JudgeEach(subject string, p daylight.Plane, hours []daylight.Hours) Verdict {
+	return l.judge(subject, p.EachWithin(hours, l.Low, l.High, l.TimeShare))
+}
+
+func (l Limit) judge(subject string, share daylight.Bracket) Verdict {
 	value := func(x float64) string {
 		if x >= 1000 {
 			return whole(x)

@@ -82,7 +82,7 @@ func Spatial(subject string, r daylight.SpatialResult, s daylight.Spatial, limit
 // SunExposure judges annual sunlight exposure against a share of the plane.
 func SunExposure(subject string, r daylight.ExposureResult, x daylight.Exposure, limit float64) Verdict {
 	return Verdict{
-		Criterion: fmt.Sprintf("ASE: direct sun above %s lx for more than %d h on at most %s of the plane", whole(x.ThresholdLx), x.HoursLimit, percent(limit)),
+		Criterion: fmt.Sprintf("%s: direct sun above %s lx for more than %d h on at most %s of the plane", r.Label, whole(x.ThresholdLx), x.HoursLimit, percent(limit)),
 		Source:    "IES LM-83-12",
 		Subject:   subject,
 		Outcome:   AtMost(r.Share, limit),

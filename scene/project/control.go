@@ -24,6 +24,7 @@ type Control struct {
 	SensorShare         float64
 	User                string // ActiveUser or PassiveUser
 	DeskWm2             float64
+	Room                string // with rule manual: of its users; "" for all
 	// GlareLed is whether glare closes the systems further; the next four are
 	// of no effect otherwise.
 	GlareLed   bool

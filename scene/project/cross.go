@@ -29,6 +29,9 @@ func (r *reader) resolveReferences(p *Project) {
 	for _, v := range p.Viewpoints {
 		note("viewpoint", v.Name)
 	}
+	for _, o := range p.Rooms {
+		note(roomTable, o.Name)
+	}
 	for _, m := range Movables(p) {
 		note(moving, m.Name)
 	}

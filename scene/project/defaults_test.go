@@ -71,7 +71,7 @@ func TestKeys(t *testing.T) {
 			tables = append(tables, k.Table)
 		}
 	}
-	want := []string{"", "alternative", "site", "weather", "ground", "horizon", "occupancy", "mesh", "finish", "opening", "light_shelf", "sill", "roller", "blind", "louvres", "anidolic_ceiling", "control", "viewpoint", "view_grid", "work_plane", "criteria", "limit", "simulation"}
+	want := []string{"", "alternative", "site", "weather", "ground", "horizon", "occupancy", "room", "mesh", "finish", "opening", "light_shelf", "sill", "roller", "blind", "louvres", "anidolic_ceiling", "control", "viewpoint", "view_grid", "work_plane", "criteria", "limit", "simulation"}
 	if !slices.Equal(tables, want) {
 		t.Errorf("tables: got %q, want %q", tables, want)
 	}

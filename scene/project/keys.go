@@ -94,6 +94,8 @@ func sections() []section {
 		one("ground", "the ground around the building", groundKeys, func(p *Project) *Ground { return &p.Ground }, checkGround),
 		one("horizon", "the skyline", horizonKeys, func(p *Project) *[]HorizonPoint { return &p.Horizon }, checkHorizon),
 		one("occupancy", "when the rooms are used, in clock time", occupancyKeys, func(p *Project) *Occupancy { return &p.Occupancy }, checkOccupancy),
+		many(roomTable, "a room with hours of use of its own", roomKeys, func(p *Project) *[]Room { return &p.Rooms },
+			func(o *Room) string { return o.Name }, checkRoom),
 		many("mesh", "a geometry file", meshKeys, func(p *Project) *[]Mesh { return &p.Meshes }, nil, checkMesh),
 		finishSection(),
 		many("opening", "a rectangular window", openingKeys, func(p *Project) *[]Opening { return &p.Openings },

@@ -60,6 +60,7 @@ var controlKeys = []key[Control]{
 	{spec{name: "sensor_share", about: "with rule work plane sun: closed when more than this share of the sensors has it", in: share, def: "0.02", source: lm83}, func(c *Control) any { return &c.SensorShare }},
 	{spec{name: "user", about: "with rule manual: one who opens every morning and closes when the sun falls on a desk, or one who keeps it closed", choices: []string{ActiveUser, PassiveUser}, def: `"active"`, source: own}, func(c *Control) any { return &c.User }},
 	{spec{name: "desk_wm2", about: "with rule manual: direct sun on the level plane at a viewpoint's desk that the active user does not bear, W/m2", in: irradiances, def: "50", source: reinhart}, func(c *Control) any { return &c.DeskWm2 }},
+	{spec{name: roomTable, about: "with rule manual: whose users operate it; else those of all rooms", refers: roomTable}, func(c *Control) any { return &c.Room }},
 	{spec{name: "dgp_limit", about: "with rule glare, or with another rule where it is written: closes further while a viewpoint in use is above it", in: within{lo: 0.1, hi: 1}, def: "0.4", source: "where glare begins to disturb, Wienold 2009, Proc. Building Simulation, from memory"}, func(c *Control) any { return &c.DGPLimit }},
 	{spec{name: "viewpoints", about: "with a dgp_limit: those that count; else all", refers: "viewpoint"}, func(c *Control) any { return &c.Viewpoints }},
 	{spec{name: "reopen", about: "with a dgp_limit: open again in the first hour in which the open state is below the limit less the hysteresis, or not before the next morning", choices: []string{ReopenByHysteresis, ReopenNextMorning}, def: `"hysteresis"`, source: own}, func(c *Control) any { return &c.Reopen }},
@@ -75,7 +76,7 @@ var ruleKeys = map[string][]string{
 	"timetable":  {RuleTimetable},
 	"facade_wm2": {RuleFacadeSun}, "reopen_wm2": {RuleFacadeSun}, "reopen_delay_min": {RuleFacadeSun},
 	"direct_lx": {RuleWorkPlaneSun}, "sensor_share": {RuleWorkPlaneSun},
-	"user": {RuleManual}, "desk_wm2": {RuleManual},
+	"user": {RuleManual}, "desk_wm2": {RuleManual}, roomTable: {RuleManual},
 }
 
 var periodKeys = []key[ControlPeriod]{

@@ -8,6 +8,7 @@ var viewpointKeys = []key[Viewpoint]{
 	{spec{name: "azimuth_deg", about: "direction of view, clockwise from north", in: anyAngle}, func(v *Viewpoint) any { return &v.AzimuthDeg }},
 	{spec{name: "toward_m", about: "instead of azimuth_deg: the point of the model that is looked at", in: coordinate}, func(v *Viewpoint) any { return &v.TowardM }},
 	{spec{name: "pitch_deg", about: "with azimuth_deg: above the horizon", in: within{lo: -90, hi: 90}, def: "0", source: own}, func(v *Viewpoint) any { return &v.PitchDeg }},
+	inRoom(func(v *Viewpoint) *string { return &v.Room }),
 }
 
 func checkViewpoint(r *reader, n *node, v *Viewpoint) {
@@ -32,6 +33,7 @@ var workPlaneKeys = []key[WorkPlane]{
 	{spec{name: "height_m", about: "z of the plane in the model, above the floor at z = 0", in: coordinate, def: "0.85", source: en17037}, func(w *WorkPlane) any { return &w.HeightM }},
 	{spec{name: "spacing_m", about: "between sensors; 0 for the cell rule of EN 17037", in: within{hi: 10}, def: "0", source: en17037}, func(w *WorkPlane) any { return &w.SpacingM }},
 	{spec{name: "perimeter_m", about: "band along the outline without sensors", in: within{hi: 5}, def: "0.5", source: en17037}, func(w *WorkPlane) any { return &w.PerimeterM }},
+	inRoom(func(w *WorkPlane) *string { return &w.Room }),
 }
 
 // minSpacingM keeps a slip from asking for millions of sensors.

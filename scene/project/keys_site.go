@@ -59,13 +59,7 @@ var occupancyKeys = []key[Occupancy]{
 }
 
 func checkOccupancy(r *reader, n *node, o *Occupancy) {
-	if n.good("from", "to") && o.FromH >= o.ToH {
-		key := "to"
-		if !n.has(key) {
-			key = "from"
-		}
-		r.reject(n, "occupancy", key, "got use from %s to %s, want an end after the start, on the same day", hourMinute(o.FromH), hourMinute(o.ToH))
-	}
+	r.checkHours(n, "occupancy", o)
 	for _, pair := range [][2]string{{"daylight_saving_from", "daylight_saving_to"}, {"daylight_saving_to", "daylight_saving_from"}} {
 		if n.has(pair[0]) && !n.has(pair[1]) {
 			r.reject(n, "occupancy", pair[0], "got no %s; want both or neither", pair[1])
@@ -73,6 +67,16 @@ func checkOccupancy(r *reader, n *node, o *Occupancy) {
 	}
 	if from, to := o.DaylightSavingFrom, o.DaylightSavingTo; from != nil && to != nil && *from == *to {
 		r.reject(n, "occupancy", "daylight_saving_to", "got the day of daylight_saving_from; want another one")
+	}
+}
+
+func (r *reader) checkHours(n *node, table string, o *Occupancy) {
+	if n.good("from", "to") && o.FromH >= o.ToH {
+		key := "to"
+		if !n.has(key) {
+			key = "from"
+		}
+		r.reject(n, table, key, "got use from %s to %s, want an end after the start, on the same day", hourMinute(o.FromH), hourMinute(o.ToH))
 	}
 }
 

@@ -97,6 +97,7 @@ func (r *reader) document(root *node, p *Project) {
 		r.add(0, "viewpoint", "missing; want at least one [[viewpoint]], [[view_grid]] or [[work_plane]]")
 	}
 	r.expandViewGrids(p)
+	r.completeRooms(p)
 	r.resolveReferences(p)
 	r.checkSides(p)
 	r.checkSystems(p)

@@ -21,6 +21,7 @@ type reader struct {
 	anidolic  []*node // of Project.AnidolicCeilings, in step
 	controls  []*node
 	limits    []*node
+	rooms     []*node // of Project.Rooms, in step
 	viewGrids []*node // of Project.ViewGrids, in step
 }
 

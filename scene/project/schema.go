@@ -15,6 +15,7 @@ type Project struct {
 	Ground    Ground
 	Horizon   []HorizonPoint // by rising azimuth; none: a flat horizon
 	Occupancy Occupancy
+	Rooms     []Room // that have hours of use of their own
 
 	Meshes           []Mesh
 	Finishes         []Finish
@@ -80,6 +81,14 @@ type Occupancy struct {
 	// shows one hour more than standard time; both are nil without daylight
 	// saving. The first may be the later one of the year (southern summers).
 	DaylightSavingFrom, DaylightSavingTo *MonthDay
+}
+
+// Room is a room with hours of use of its own. What its table leaves out, and
+// daylight saving, are those of the project's Occupancy.
+type Room struct {
+	Name      string
+	Occupancy Occupancy
+	Line      int
 }
 
 // Mesh is one geometry file and how it is put into the model: scaled to
@@ -236,6 +245,7 @@ type Viewpoint struct {
 	TowardM    *[3]float64 // a point of the model that is looked at
 	PitchDeg   float64     // with AzimuthDeg; up positive
 	Grid       string      // name of the ViewGrid that it is of; "" for none
+	Room       string      // whose hours of use count; "": the project's own
 	Line       int
 }
 
@@ -246,6 +256,7 @@ type WorkPlane struct {
 	HeightM    float64      // z of the plane in the model
 	SpacingM   float64      // between sensors; 0: the rule of Cell
 	PerimeterM float64      // band along the outline without sensors
+	Room       string       // whose hours of use count; "": the project's own
 	Line       int
 }
 

@@ -16,6 +16,7 @@ type ViewGrid struct {
 	PerimeterM    float64      // band along the outline without eyes
 	Directions    int          // that many, evenly around from north; of no effect with DirectionsDeg
 	DirectionsDeg []float64    // azimuths, clockwise from north
+	Room          string       // whose hours of use count; "": the project's own
 	Line          int
 }
 
@@ -30,6 +31,7 @@ var viewGridKeys = []key[ViewGrid]{
 	{spec{name: "perimeter_m", about: "band along the outline without eyes", in: within{hi: 5}, def: "0.5", source: own}, func(g *ViewGrid) any { return &g.PerimeterM }},
 	{spec{name: "directions", about: "how many directions each eye looks in, evenly around from north", in: within{lo: 1, hi: 16}, def: "4", source: own}, func(g *ViewGrid) any { return &g.Directions }},
 	{spec{name: "directions_deg", about: "instead of directions: their azimuths, clockwise from north", in: anyAngle}, func(g *ViewGrid) any { return &g.DirectionsDeg }},
+	inRoom(func(g *ViewGrid) *string { return &g.Room }),
 }
 
 func checkViewGrid(r *reader, n *node, g *ViewGrid) {
@@ -95,7 +97,7 @@ func (r *reader) expandViewGrids(p *Project) {
 			for _, az := range azimuths {
 				v := Viewpoint{
 					Name:      fmt.Sprintf("%s (%.*f, %.*f) %s", g.Name, decimals, at[0], decimals, at[1], directionWords(az)),
-					PositionM: [3]float64{at[0], at[1], g.HeightM}, AzimuthDeg: &az, Grid: g.Name, Line: g.Line,
+					PositionM: [3]float64{at[0], at[1], g.HeightM}, AzimuthDeg: &az, Grid: g.Name, Room: g.Room, Line: g.Line,
 				}
 				if taken[v.Name] && !n.bad { // told once
 					r.reject(n, name, "name", "makes a viewpoint %s, which there is already; want another name", quote(v.Name))

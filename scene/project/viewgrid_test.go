@@ -98,7 +98,7 @@ func TestViewGridProblems(t *testing.T) {
 		{"no direction", "spacing_m = 1.5", "spacing_m = 1.5\ndirections_deg = []", ":28: view_grid.directions_deg: got no numbers, want at least one"},
 		{"not a list", "spacing_m = 1.5", "spacing_m = 1.5\ndirections_deg = 90", ":28: view_grid.directions_deg: got 90, want a list of numbers, each -360 to 360"},
 		{"no directions", "spacing_m = 1.5", "spacing_m = 1.5\ndirections = 0", ":28: view_grid.directions: got 0, want a whole number, 1 to 16"},
-		{"toward", "spacing_m = 1.5", "spacing_m = 1.5\ntoward_m = [1, 1, 1]", ":28: view_grid.toward_m: unknown key; known: \"name\", \"polygon_m\", \"height_m\", \"spacing_m\", \"perimeter_m\", \"directions\", \"directions_deg\""},
+		{"toward", "spacing_m = 1.5", "spacing_m = 1.5\ntoward_m = [1, 1, 1]", ":28: view_grid.toward_m: unknown key; known: \"name\", \"polygon_m\", \"height_m\", \"spacing_m\", \"perimeter_m\", \"directions\", \"directions_deg\", \"room\""},
 		{"same name", "spacing_m = 1.5", "spacing_m = 1.5\n" + gridTable, ":29: view_grid.name: got \"hall\" again, want a name that no other view_grid has"},
 		{"name of a viewpoint", "spacing_m = 1.5", "spacing_m = 1.5\n[[viewpoint]]\nname = \"hall (1.25, 1.00) north\"\nposition_m = [1, 1, 1]\nazimuth_deg = 0", ":25: view_grid.name: makes a viewpoint \"hall (1.25, 1.00) north\", which there is already; want another name"},
 	} {

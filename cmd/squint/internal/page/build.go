@@ -22,10 +22,17 @@ func Build(r *study.Result, words Words) *Archive {
 	a := &Archive{blobs: map[string]blobData{}}
 	c := r.Project.Criteria
 	d := &a.Design
+	fromH, toH := r.Calendar.FromH, r.Calendar.ToH
+	for i, u := range r.Uses {
+		if i == 0 {
+			fromH, toH = u.Calendar.FromH, u.Calendar.ToH
+		}
+		fromH, toH = min(fromH, u.Calendar.FromH), max(toH, u.Calendar.ToH)
+	}
 	*d = Design{
 		Schema: Schema, SchemaVersion: SchemaVersion, Words: words,
 		NorthRad: r.Project.Site.NorthDeg * math.Pi / 180,
-		FromH:    r.Calendar.FromH, ToH: r.Calendar.ToH, PerHour: perHour(r),
+		FromH:    fromH, ToH: toH, PerHour: perHour(r),
 		Levels: levels(), Asked: -1, Sources: sources(c),
 		Standings: r.Standings, Views: []View{}, Planes: []Plane{},
 	}

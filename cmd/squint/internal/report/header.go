@@ -128,8 +128,12 @@ func settingsText(p *project.Project) string {
 	if s.StepMin > 0 && s.StepMin < 60 {
 		step = fmt.Sprintf("; step_min %d", s.StepMin)
 	}
-	return fmt.Sprintf("use %s, %s to %s h%s; north_deg %s; ground reflectance %s; seed %d, batches %d, fisheye_pixels %d, samples_per_pixel %d, sensor_samples %d, texel_m %s, texel_samples %d, photons %d, memory_mib %d",
-		daysText(p.Occupancy.Days), decimals(p.Occupancy.FromH, 2), decimals(p.Occupancy.ToH, 2), savingText(p.Occupancy),
+	rooms := ""
+	for _, o := range p.Rooms {
+		rooms += "; room " + o.Name + ": " + occupancyText(o.Occupancy)
+	}
+	return fmt.Sprintf("use %s, %s to %s h%s%s; north_deg %s; ground reflectance %s; seed %d, batches %d, fisheye_pixels %d, samples_per_pixel %d, sensor_samples %d, texel_m %s, texel_samples %d, photons %d, memory_mib %d",
+		daysText(p.Occupancy.Days), decimals(p.Occupancy.FromH, 2), decimals(p.Occupancy.ToH, 2), savingText(p.Occupancy), rooms,
 		decimals(p.Site.NorthDeg, 3), groundText(p.Ground), s.Seed, s.Batches, s.FisheyePixels, s.SamplesPerPixel, s.SensorSamples,
 		decimals(s.TexelM, 3), s.TexelSamples, s.Photons, s.MemoryMiB) + step
 }

@@ -61,8 +61,8 @@ func planeSection(p *page, r *study.Result) {
 		p.line(line)
 	}
 	p.para(2, "Means over the sensors. unif.: least to mean daylight factor. DA, cDA: 300 lx in the hours of use. "+
-		"UDI: 100 to 3,000 lx. sDA (300 lx in half of the hours from 8 to 18) is "+unshadedWords(r)+"; "+
-		"ASE: more than 250 of those hours above 1,000 lx of direct sun.")
+		"UDI: 100 to 3,000 lx. sDA (300 lx in half of the hours from 8 to 18) is "+shadingWords(r)+"; "+
+		exposureWords(r)+": more than 250 of those hours above 1,000 lx of direct sun.")
 	for i := range r.Planes {
 		if i == mostInFull && len(r.Planes) > mostInFull+1 {
 			p.para(2, "The levels that the other work planes reach stand in summary.json.")
@@ -74,15 +74,29 @@ func planeSection(p *page, r *study.Result) {
 	}
 }
 
-// unshadedWords names the kind of sDA, which needs operated blinds to be what
-// IES LM-83-12 means.
-func unshadedWords(r *study.Result) string {
-	for i := range r.Planes {
-		if _, kind, ok := strings.Cut(r.Planes[i].SDA.Label, ", "); ok {
-			return kind + ": blinds are not operated"
-		}
+// shadingWords tell how the sun protection stands in sDA, which is the same for
+// all planes.
+func shadingWords(r *study.Result) string {
+	switch s := r.Planes[0].SDA.Shading; s {
+	case daylight.ByBlindRule:
+		return "with blinds operated by the rule of IES LM-83: closed while more than 2 % of the sensors have 1,000 lx of direct sun"
+	case daylight.AsOperated:
+		return "with sun protection as operated here, which is not the rule of IES LM-83"
+	case daylight.AsStanding:
+		return "with sun protection as it stands all the year"
 	}
-	return "with operated blinds"
+	return "unshaded: blinds are not operated"
+}
+
+// exposureWords name ASE, which the standard wants with blinds open.
+func exposureWords(r *study.Result) string {
+	switch r.Planes[0].SDA.Shading {
+	case daylight.ByBlindRule, daylight.AsOperated:
+		return "ASE, as operated and not with blinds open"
+	case daylight.AsStanding:
+		return "ASE, so shaded and not with blinds open"
+	}
+	return "ASE"
 }
 
 func levelsText(levels []verdict.Verdict) string {

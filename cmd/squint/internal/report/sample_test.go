@@ -1,6 +1,7 @@
 package report
 
 import (
+	"fmt"
 	"math"
 	"time"
 
@@ -89,7 +90,11 @@ func sampleView(r *study.Result, i int, name string) study.ViewResult {
 	for _, l := range verdict.ProtectionLevels {
 		g := verdict.CountGlare(dgp, se, l.DGP, r.Settings.ZViews)
 		v.Hours = append(v.Hours, g)
-		v.Levels = append(v.Levels, verdict.Glare(name+", looking east", l, g, v.When))
+		told := v.When
+		if g.Hours.Surely == 0 && g.Hours.Possibly > 0 {
+			told = fmt.Sprintf("%d hours open: %s, DGP within 0.02 of the limit", int(g.Hours.Possibly), v.When)
+		}
+		v.Levels = append(v.Levels, verdict.Glare(name+", looking east", l, g, told))
 	}
 	v.Worst = sampleWorst(r)
 	return v

@@ -14,7 +14,7 @@ import (
 
 // sheetTables are the tables of method and inputs.
 func sheetTables(r *study.Result, o Options, f paths) []sheet.Table {
-	return slices.DeleteFunc([]sheet.Table{glareTable(r), planeTable(r), hazardTable(r), finishTable(r.Project), weatherTable(r, o, f), fileTable(r, o, f), settingsTable(r), hoursTable(r)},
+	return slices.DeleteFunc([]sheet.Table{glareTable(r), planeTable(r), useTable(r), hazardTable(r), finishTable(r.Project), weatherTable(r, o, f), fileTable(r, o, f), settingsTable(r), hoursTable(r)},
 		func(t sheet.Table) bool { return len(t.Rows) == 0 })
 }
 
@@ -36,10 +36,11 @@ func glareTable(r *study.Result) sheet.Table {
 }
 
 func planeTable(r *study.Result) sheet.Table {
-	t := sheet.Table{Title: "Daylight on the work planes", Head: []string{"Work plane", "Daylight factor, median", "DA 300 lx", "DA at the rear", "UDI 100 to 3,000 lx", "sDA, unshaded", "ASE"},
+	t := sheet.Table{Title: "Daylight on the work planes", Head: []string{"Work plane", "Daylight factor, median", "DA 300 lx", "DA at the rear", "UDI 100 to 3,000 lx", "sDA", "ASE"},
 		Numbers: []bool{false, true, true, true, true, true, true}}
 	for i := range r.Planes {
 		p := &r.Planes[i]
+		t.Head[5], t.Head[6] = p.SDA.Label, p.ASE.Label // the same for all
 		t.Rows = append(t.Rows, []string{plain(p.Plane.Name), percent(p.Factors.Median), percent(p.MeanDA), percent(p.RearDA), percent(p.MeanUDI.Useful()), percent(p.SDA.Share.Estimate), percent(p.ASE.Share.Estimate)})
 	}
 	return t

@@ -64,9 +64,11 @@ type verdictJSON struct {
 }
 
 type hoursJSON struct {
+	// Occupied are those in which any room is in use.
 	Occupied number     `json:"occupied"`
 	Clock    number     `json:"clock_8_to_18"`
 	Daylight number     `json:"daylight"`
+	Rooms    []roomJSON `json:"rooms,omitempty"` // whose hours of use are not those of the settings
 	Rules    []ruleJSON `json:"rules"`
 }
 
@@ -85,7 +87,7 @@ func writeSummary(w io.Writer, r *study.Result, o Options, files []string) error
 		Warnings: texts(warnings(r.Warnings, r.Climate, r.Project), f),
 		Cautions: texts(cautions(r.Project), f), Notes: texts(r.Notes, f), Positions: texts(r.Positions, f), Reused: r.Reused,
 		Sights: sightsJSON(r), Views: viewsJSON(r, files), WorkPlanes: planesJSON(r), Openings: openingsJSON(r), GlareAutonomy: toBracket(r.GlareAutonomy), Hazard: hazards(r),
-		Hours:  hoursJSON{Occupied: inHours(r, r.Occupied), Clock: inHours(r, r.Clock), Daylight: inHours(r, r.Daylight)},
+		Hours:  hoursJSON{Occupied: inHours(r, r.Occupied), Clock: inHours(r, r.Clock), Daylight: inHours(r, r.Daylight), Rooms: rooms(r)},
 		Inputs: inputs(r, o, f), Settings: settings(r), Files: append([]string{}, files...),
 	}
 	if len(r.Verdicts) == 0 {

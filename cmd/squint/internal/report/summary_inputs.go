@@ -110,8 +110,7 @@ func settings(r *study.Result) settingsJSON {
 		SensorSamples: s.SensorSamples, TexelM: number(s.TexelM), TexelSamples: s.TexelSamples, Photons: s.Photons, MemoryMiB: s.MemoryMiB,
 		TexelSides: r.Settings.TexelSides, Coarsened: number(r.Settings.Coarsen), Confidence: number(r.Settings.Confidence),
 		ErrorsViews: number(r.Settings.ZViews), ErrorsSensors: number(r.Settings.ZSensors), Kernel: r.Settings.Kernel, NorthDeg: number(p.Site.NorthDeg),
-		Use: useJSON{daysText(p.Occupancy.Days), number(p.Occupancy.FromH), number(p.Occupancy.ToH), len(p.Occupancy.Holidays),
-			p.Occupancy.DaylightSavingFrom != nil && p.Occupancy.DaylightSavingTo != nil},
+		Use:   use(p.Occupancy),
 		Glare: p.Criteria.Glare, Provision: p.Criteria.Provision}
 	if s.StepMin > 0 && s.StepMin < 60 {
 		j.StepMin = s.StepMin

@@ -7,6 +7,7 @@ import (
 
 type planeJSON struct {
 	Name     string `json:"name"`
+	Room     string `json:"room,omitempty"` // whose hours of use count
 	Sensors  int    `json:"sensors"`
 	Refined  int    `json:"further_looks"` // that sensors near a limit got
 	SpacingM number `json:"spacing_m"`
@@ -76,12 +77,12 @@ func planesJSON(r *study.Result) []planeJSON {
 	out := []planeJSON{}
 	for i := range r.Planes {
 		p := &r.Planes[i]
-		j := planeJSON{Name: p.Plane.Name, Sensors: len(p.Plane.Sensors), Refined: p.Refined, SpacingM: number(p.Plane.SpacingM), HeightM: number(p.Plane.HeightM),
+		j := planeJSON{Name: p.Plane.Name, Room: p.Plane.Room, Sensors: len(p.Plane.Sensors), Refined: p.Refined, SpacingM: number(p.Plane.SpacingM), HeightM: number(p.Plane.HeightM),
 			DaylightFactor: factorJSON{number(p.Factors.Mean), number(p.Factors.Median), number(p.Factors.Min), number(p.Factors.Max), number(p.Factors.Uniformity)},
 			DA:             number(p.MeanDA), CDA: number(p.MeanCDA),
 			UDI:   udiJSON{number(p.MeanUDI.FellShort), number(p.MeanUDI.Supplementary), number(p.MeanUDI.Autonomous), number(p.MeanUDI.Exceeded)},
 			SDA:   spatialJSON{p.SDA.Label, toBracket(p.SDA.Share), number(p.SDA.Hours)},
-			ASE:   spatialJSON{"ASE", toBracket(p.ASE.Share), number(p.ASE.Hours)},
+			ASE:   spatialJSON{p.ASE.Label, toBracket(p.ASE.Share), number(p.ASE.Hours)},
 			Asked: "none", Provision: []provisionJSON{}, Points: points(p),
 			ByFactor: byFactor(p), ViewOut: viewOut(p), ClearSky: clearSky(r, p)}
 		if p.Asked >= 0 && p.Asked < len(daylight.ProvisionLevels) {

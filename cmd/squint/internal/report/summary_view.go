@@ -13,6 +13,7 @@ import (
 
 type viewJSON struct {
 	Name       string      `json:"name"`
+	Room       string      `json:"room,omitempty"` // whose hours of use count
 	PositionM  vector      `json:"position_m"`
 	Direction  vector      `json:"direction"` // unit, in the model's axes
 	AzimuthDeg number      `json:"azimuth_deg"`
@@ -72,7 +73,7 @@ func viewsJSON(r *study.Result, files []string) []viewJSON {
 	for i := range r.Views {
 		v := &r.Views[i]
 		d := v.Viewpoint.Direction
-		j := viewJSON{Name: v.Viewpoint.Name, PositionM: toVector(v.Viewpoint.Position), Direction: toVector(d),
+		j := viewJSON{Name: v.Viewpoint.Name, Room: v.Viewpoint.Room, PositionM: toVector(v.Viewpoint.Position), Direction: toVector(d),
 			AzimuthDeg: number(scene.AzimuthDeg(d, r.Project.Site.NorthDeg)), PitchDeg: number(scene.AltitudeDeg(d)),
 			Asked: "none", Refined: v.Refined, Levels: []levelJSON{}, When: v.When, Causes: causes(r, v)}
 		if v.Asked >= 0 && v.Asked < len(verdict.ProtectionLevels) {
@@ -95,7 +96,7 @@ func viewsJSON(r *study.Result, files []string) []viewJSON {
 // causes counts hours by cause.
 func causes(r *study.Result, v *study.ViewResult) []causeJSON {
 	n := make([]int, len(v.Causes))
-	for _, h := range r.Occupied {
+	for _, h := range r.UseOf(v.Viewpoint.Room).Hours {
 		if c := v.Cause[h]; c >= 0 && int(c) < len(n) {
 			n[c]++
 		}

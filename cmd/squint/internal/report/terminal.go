@@ -34,6 +34,7 @@ func Terminal(w io.Writer, r *study.Result, resultsDir string, elapsed time.Dura
 	provisionSection(&p, r)
 	furtherSection(&p, r)
 	planeSection(&p, r)
+	useSection(&p, r)
 	sunSection(&p, r)
 	hazardSection(&p, r)
 	positionSection(&p, r)

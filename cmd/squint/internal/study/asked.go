@@ -26,9 +26,9 @@ const (
 	ofFactor               // daylight factor, of the one hour 0
 )
 
-// asked are the criteria on the light of a work plane that random samples can
-// leave undecided, each as conditions that must all hold.
-func (r *Result) asked() [][]condition {
+// asked are the criteria on the light of a work plane in a room that random
+// samples can leave undecided, each as conditions that must all hold.
+func (r *Result) asked(room string) [][]condition {
 	c := &r.Project.Criteria
 	var list [][]condition
 	above := func(of series, hours daylight.Hours, low, timeShare, placeShare float64) condition {
@@ -71,7 +71,7 @@ func (r *Result) asked() [][]condition {
 		}
 		switch l.Metric {
 		case project.LimitIlluminance:
-			a.hours, _ = r.hoursOf(l.Hours)
+			a.hours, _ = r.hoursOf(l.Hours, r.UseOf(room).Hours)
 		case project.LimitDaylightFactor:
 			a.of, a.hours = ofFactor, daylight.Hours{0}
 		default:
@@ -88,6 +88,9 @@ func openOf(all []condition, planes map[series]daylight.Plane) []condition {
 	var open []condition
 	var outcomes []verdict.Outcome
 	for _, c := range all {
+		if len(planes[c.of].E) == 0 {
+			continue // not computed
+		}
 		o := verdict.AtLeast(planes[c.of].SensorsWithin(c.hours, c.low, c.high, c.timeShare), c.placeShare)
 		outcomes = append(outcomes, o)
 		if o == verdict.Undecided {

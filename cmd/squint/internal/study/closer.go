@@ -3,7 +3,6 @@ package study
 import (
 	"context"
 	"fmt"
-	"math"
 	"slices"
 
 	"squint/glare/daylight"
@@ -11,8 +10,6 @@ import (
 	"squint/materials/sampling"
 	"squint/scene"
 	"squint/scene/project"
-	"squint/trace/annual"
-	"squint/trace/surface"
 )
 
 // openSensors is what leaves criteria on work planes undecided.
@@ -39,15 +36,12 @@ func (o *openSensors) records() map[int]bool {
 // findOpen finds what is open within z standard errors.
 func (r *Result) findOpen(y *year, z float64) *openSensors {
 	o := &openSensors{hours: map[int]map[int]bool{}, clear: map[int]map[int]bool{}, factor: map[int]bool{}}
-	asked := r.asked()
-	if len(asked) == 0 {
-		return o
-	}
 	first := 0
 	for i, w := range r.Scene.WorkPlanes {
+		asked := r.asked(w.Room)
 		n := len(w.Sensors)
 		planes := map[series]daylight.Plane{
-			ofYear:   {E: r.spread(y.light.E[first : first+n]), SE: r.spread(y.light.StdErr[first : first+n]), Z: z},
+			ofYear:   {E: r.spread(slices.Clone(y.light.E[first : first+n])), SE: r.spread(slices.Clone(y.light.StdErr[first : first+n])), Z: z},
 			ofFactor: daylight.FactorPlane(y.factors[first:first+n], y.factorE[first:first+n], z),
 		}
 		if y.clear != nil {
@@ -103,7 +97,7 @@ func (r *Result) lookCloser(ctx context.Context, in *Input, opt Options, y *year
 	z := r.zSensors()
 	again := opt.again()
 	size := in.Project.Simulation
-	var rays, shared float64 // of the variance
+	var from noise
 	for round := 1; round <= refineRounds; round++ {
 		o := r.findOpen(y, z)
 		if len(o.sensors) == 0 {
@@ -111,17 +105,17 @@ func (r *Result) lookCloser(ctx context.Context, in *Input, opt Options, y *year
 		}
 		if round == 1 {
 			var err error
-			if rays, shared, err = variances(ctx, sensorsOf(in, o, size, 0), again); err != nil {
+			if from, err = variances(ctx, sensorsOf(in, o, size, 0), again); err != nil {
 				return err
 			}
 		}
 		size.SensorSamples *= refineFactor
-		rays /= refineFactor
-		if shared > rays {
+		from.rays /= refineFactor
+		if from.shared > from.rays {
 			size.TexelSamples *= refineFactor
 			size.Photons *= refineFactor
-			size.Batches = min(size.Batches*refineFactor, max(mostBatches, size.Batches))
-			shared /= refineFactor
+			size.Batches = from.batches(size)
+			from.shared /= refineFactor
 		}
 		var own Result
 		sub := sensorsOf(in, o, size, round)
@@ -143,10 +137,6 @@ func (r *Result) lookCloser(ctx context.Context, in *Input, opt Options, y *year
 	}
 	return nil
 }
-
-// mostBatches is the most that a closer look takes, the schema's own bound:
-// each batch has rows of its own in memory.
-const mostBatches = 64
 
 // replace takes over what was open. Errors are given a scale: more batches tell
 // them better, so that fewer of them make the same interval; times z they are
@@ -195,6 +185,11 @@ func sensorsOf(in *Input, o *openSensors, size project.Simulation, round int) *I
 		records[m.Step] = true
 	}
 	sub.narrow(records, func(s *scene.Scene) *scene.Scene { return sensorsIn(s, o.sensors) })
+	if len(sub.Standings) == 0 && len(sub.Clear) > 0 { // at hours that the weather has dark
+		st := in.Standings[in.standingAt(sub.Clear[0].Step)]
+		st.Scene, st.Moments = sensorsIn(st.Scene, o.sensors), nil
+		sub.Standings = []Standing{st}
+	}
 	if len(o.factor) > 0 {
 		st := in.factorStanding()
 		st.Scene, st.Moments = sensorsIn(st.Scene, o.sensors), nil
@@ -232,51 +227,6 @@ func sensorsIn(s *scene.Scene, sensors []int) *scene.Scene {
 		}
 	}
 	return &few
-}
-
-// variances are the mean squares of the relative error of sensors away from the
-// sun that come from their own rays, and from what they share: the light of the
-// surfaces. With one batch's rays for all batches only the latter is left.
-func variances(ctx context.Context, in *Input, opt Options) (rays, shared float64, err error) {
-	st := slices.MaxFunc(in.Standings, func(a, b Standing) int { return len(a.Moments) - len(b.Moments) })
-	moments := []*scene.Moment{}
-	for k := range min(len(st.Moments), surface.Width) {
-		moments = append(moments, st.Moments[k*len(st.Moments)/min(len(st.Moments), surface.Width)])
-	}
-	if len(moments) == 0 {
-		m, err := scene.Overcast(0)
-		if err != nil {
-			return 0, 0, err
-		}
-		moments = append(moments, m)
-	}
-	e, err := newEngine(ctx, in, &st, opt, &Result{})
-	if err != nil {
-		return 0, 0, err
-	}
-	var mean [2]float64
-	for i := range mean {
-		d, err := annual.Run(ctx, e.t, e.rec, moments, e.cfg, nil, nil)
-		if err != nil {
-			return 0, 0, err
-		}
-		n := 0.0
-		for s := range d.E {
-			for k, lx := range d.E[s] {
-				if lx > 0 && d.Direct[s][k] == 0 {
-					x := float64(d.StdErr[s][k] / lx)
-					mean[i] += x * x
-					n++
-				}
-			}
-		}
-		mean[i] /= math.Max(n, 1)
-		e.rec.Rows = slices.Repeat(e.rec.Rows[:1], len(e.rec.Rows))
-		for s := range e.rec.Shines {
-			e.rec.Shines[s] = slices.Repeat(e.rec.Shines[s][:1], len(e.rec.Shines[s]))
-		}
-	}
-	return math.Max(0, mean[0]-mean[1]), mean[1], nil
 }
 
 // streamCloser keeps the seeds of closer looks at sensors apart from others.

@@ -7,6 +7,7 @@ import (
 	"strings"
 	"testing"
 
+	"squint/glare/daylight"
 	"squint/scene"
 	"squint/scene/project"
 )
@@ -23,7 +24,7 @@ func asking(lx, placeShare float64) project.Limit {
 func TestCloserReplaces(t *testing.T) {
 	in := evenRoom(t, 5000)
 	in.Scene.Viewpoints = nil
-	r := &Result{Project: in.Project, Scene: in.Scene, Climate: in.Climate, Occupied: in.Occupied}
+	r := &Result{Project: in.Project, Scene: in.Scene, Climate: in.Climate, Calendar: in.Calendar, Occupied: in.Occupied}
 	opt := Options{Workers: 1, Progress: func(Stage, int, int) {}}
 	y, err := computeYear(context.Background(), in, opt, r)
 	if err != nil {
@@ -118,28 +119,6 @@ func TestCloserFactors(t *testing.T) {
 	}
 }
 
-// TestVariances: with few rays from the sensors and many from the surfaces the
-// error is mostly the sensors' own, and the other way round.
-func TestVariances(t *testing.T) {
-	of := func(sensor, texel int) (rays, shared float64) {
-		in := evenRoom(t, 5000)
-		in.Scene.Viewpoints = nil
-		in.Project.Simulation.SensorSamples, in.Project.Simulation.TexelSamples = sensor, texel
-		rays, shared, err := variances(context.Background(), in, Options{Workers: 2, Progress: func(Stage, int, int) {}})
-		if err != nil {
-			t.Fatal(err)
-		}
-		t.Logf("%d rays, %d samples: %.2g and %.2g", sensor, texel, rays, shared)
-		return rays, shared
-	}
-	if rays, shared := of(16, 1024); !(rays > 4*shared) {
-		t.Errorf("few rays: got %g of the variance from them and %g shared", rays, shared)
-	}
-	if rays, shared := of(16384, 16); !(shared > 4*rays) {
-		t.Errorf("few samples of surfaces: got %g of the variance from rays and %g shared", rays, shared)
-	}
-}
-
 // TestSensorsIn: sensors are picked by their number among all planes, and
 // planes without any are left out.
 func TestSensorsIn(t *testing.T) {
@@ -165,5 +144,62 @@ func TestSensorsIn(t *testing.T) {
 	}
 	if len(s.WorkPlanes[0].Sensors) != 3 {
 		t.Error("the scene was changed")
+	}
+}
+
+// TestCloserOperated: where a roller moves, hours are looked at again in the
+// combination in which it stood, daylight factors in the open one: nothing moves
+// by more than the noise, and drawn cloth takes nine tenths of the light. One
+// thread and two say the same.
+func TestCloserOperated(t *testing.T) {
+	if testing.Short() {
+		t.Skip("three years of a room")
+	}
+	run := func(workers int, limits ...project.Limit) *Result {
+		fsys := operatedRoom(operatedRoller + "[[control]]\nname = \"by glare\"\nsystems = [\"roller\"]\nrule = \"glare\"\ndgp_limit = 0.4\nhysteresis = 0\n")
+		in := prepared(t, fsys)
+		in.Project.Criteria = project.Criteria{Glare: "none"}
+		in.Project.Limits = limits
+		return study(t, in, workers)
+	}
+	first := run(2)
+	p := &first.Planes[0]
+	plane := daylight.Plane{E: p.E, SE: p.StdErr}
+	lx := plane.Reached(0, first.Occupied, 0.02).Estimate // of 3 % with light
+	limits := []project.Limit{
+		{Metric: project.LimitIlluminance, Hours: project.HoursInUse, AtLeast: &lx, TimeShare: 0.02, PlaceShare: 0.25},
+		{Metric: project.LimitIlluminance, Hours: project.HoursInUse, AtLeast: &lx, TimeShare: 0.02, PlaceShare: 1},
+		{Metric: project.LimitDaylightFactor, AtLeast: &p.Factor[0], TimeShare: 1, PlaceShare: 0.25},
+		{Metric: project.LimitDaylightFactor, AtLeast: &p.Factor[0], TimeShare: 1, PlaceShare: 1},
+	}
+	again := run(2, limits...)
+	q := &again.Planes[0]
+	if q.Refined == 0 || q.Factor[0] == p.Factor[0] {
+		t.Fatalf("got %d further looks and a daylight factor of %g as before: the test sees nothing", q.Refined, q.Factor[0])
+	}
+	if math.Abs(q.Factor[0]/p.Factor[0]-1) > 0.4 {
+		t.Errorf("daylight factor: got %g, before %g", q.Factor[0], p.Factor[0])
+	}
+	changed := map[string]int{}
+	for s := range p.E {
+		for h := range p.E[s] {
+			a, b := float64(p.E[s][h]), float64(q.E[s][h])
+			if a != b {
+				changed[first.Standings[first.Standing[h]]]++
+			}
+			if a > 50 && math.Abs(b/a-1) > 0.6 {
+				t.Errorf("sensor %d, hour %d: got %g lx, before %g", s, h, b, a)
+			}
+		}
+	}
+	if len(changed) == 0 {
+		t.Error("no hour was looked at again")
+	}
+	t.Logf("%d further looks, hours changed by position: %v", q.Refined, changed)
+	one := run(1, limits...)
+	for s := range q.E {
+		if !slices.Equal(one.Planes[0].E[s], q.E[s]) || !slices.Equal(one.Planes[0].StdErr[s], q.StdErr[s]) {
+			t.Errorf("sensor %d differs with one thread", s)
+		}
 	}
 }

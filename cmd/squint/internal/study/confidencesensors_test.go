@@ -50,7 +50,7 @@ func reach(p *PlaneResult, hours daylight.Hours, lx, z float64) verdict.Bracket 
 // from them. The truth, of 8 runs of 32 batches, is not sure for some of the
 // nearest: those may be undecided like the others, but not wrong.
 func TestConfidenceOfSensors(t *testing.T) {
-	n := confidenceCount(t, 10)
+	n := confidenceCount(t, 4)
 	var all reliability
 	unsure, looks := 0, [1 + refineRounds]int{}
 	for _, c := range confidenceScenes {

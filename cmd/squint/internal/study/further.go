@@ -161,12 +161,13 @@ func (r *Result) judgeLimits() {
 		if l.AtMost != nil {
 			v.High = *l.AtMost
 		}
-		hours, words := r.hoursOf(l.Hours)
+		hours, words := r.hoursOf(l.Hours, r.Occupied)
 		v.Hours = words
 		switch l.Metric {
 		case project.LimitDGP, project.LimitEye:
 			v.Places = "viewpoints"
 			s := daylight.Plane{Z: r.Settings.ZViews}
+			var each []daylight.Hours
 			for k := range r.Views {
 				w := &r.Views[k]
 				e, se := w.DGP, w.StdErr
@@ -174,8 +175,10 @@ func (r *Result) judgeLimits() {
 					e, se, v.Unit = w.Ev, w.EvErr, " lx"
 				}
 				s.E, s.SE = append(s.E, e), append(s.SE, se)
+				hours, _ := r.hoursOf(l.Hours, r.UseOf(w.Viewpoint.Room).Hours)
+				each = append(each, hours)
 			}
-			r.further(v.Judge(r.allViews(), s, hours))
+			r.further(v.JudgeEach(r.allViews(), s, each))
 		case project.LimitSunlit:
 			v.Places = "openings"
 			r.further(v.Judge(count(len(r.Openings), "opening"), r.sunlitSeries(), hours))
@@ -184,6 +187,7 @@ func (r *Result) judgeLimits() {
 			for k := range r.Planes {
 				p := &r.Planes[k]
 				s := daylight.Plane{E: p.E, SE: p.StdErr, Z: r.Settings.ZSensors}
+				hours, _ := r.hoursOf(l.Hours, r.UseOf(p.Plane.Room).Hours)
 				switch l.Metric {
 				case project.LimitIlluminance:
 					v.Unit = " lx"
@@ -216,8 +220,9 @@ func (r *Result) sunlitSeries() daylight.Plane {
 	return s
 }
 
-// hoursOf are the hours that a limit names, and what they are called.
-func (r *Result) hoursOf(name string) (daylight.Hours, string) {
+// hoursOf are the hours that a limit names, and what they are called; used are
+// those in use.
+func (r *Result) hoursOf(name string, used daylight.Hours) (daylight.Hours, string) {
 	switch name {
 	case project.HoursClock:
 		return r.Clock, "the hours from 8 to 18"
@@ -230,7 +235,7 @@ func (r *Result) hoursOf(name string) (daylight.Hours, string) {
 		}
 		return all, "all hours of the year"
 	}
-	return r.Occupied, "the hours in use"
+	return used, "the hours in use"
 }
 
 // equinox is the day of the check under a clear sky, and its hours of the clock:

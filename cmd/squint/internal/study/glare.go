@@ -15,7 +15,7 @@ import (
 )
 
 // ViewResult is one viewpoint's year. Series have one value per step; hours
-// in use without daylight hold 0, hours not in use NaN.
+// in use without daylight hold 0, hours in which its room is not in use NaN.
 type ViewResult struct {
 	Viewpoint scene.Viewpoint
 	DGP       []float32
@@ -113,9 +113,10 @@ type glareSink struct {
 	views []ViewResult
 	mu    []sync.Mutex // by view
 	cause []map[Cause]int16
-	work  []sinkScratch // by worker
-	shots *shotPlan     // nil: no pictures are kept
-	cells []int         // by record; nil: one for all
+	work  []sinkScratch    // by worker
+	shots *shotPlan        // nil: no pictures are kept
+	cells map[string][]int // by room and step; nil: one for all
+	used  [][]bool         // by view and step; nil: eyes are open at every moment
 	keep  func(view, hour int) bool
 	tops  []map[int]*Worst // by view and cell
 }
@@ -173,7 +174,11 @@ func newGlareSink(in *Input, workers int) *glareSink {
 		for h := range v.DGP {
 			v.DGP[h], v.StdErr[h], v.Ev[h], v.EvErr[h], v.Coarse[h], v.Cause[h] = nan32(), nan32(), nan32(), nan32(), nan32(), -1
 		}
-		for _, h := range in.Occupied {
+		use := in.UseOf(v.Viewpoint.Room)
+		if !in.always {
+			g.used = append(g.used, use.mask)
+		}
+		for _, h := range use.Hours {
 			v.DGP[h], v.StdErr[h], v.Ev[h], v.EvErr[h] = 0, 0, 0, 0
 		}
 		g.cause[i], g.tops[i] = map[Cause]int16{}, map[int]*Worst{}
@@ -199,13 +204,13 @@ func (g *standingSink) take(worker int, f *annual.Frame) {
 	w := &g.work[worker]
 	e := g.eyes[f.Eye]
 	v := &g.views[f.Eye]
-	if !f.Moment.Occupied {
+	h := f.Moment.Step
+	if !f.Moment.Occupied || g.used != nil && !g.used[f.Eye][h] { // or another room is in use
 		g.keepShot(w, e, f)
 		return
 	}
 	w.discs = toView(w.discs[:0], e.View, f.Discs)
 	dgp, ev, se, evErr := glare.Pooled(g.field, f.Mean, f.Batch, w.discs, g.opt, causeFrom, &w.scratch)
-	h := f.Moment.Step
 	v.DGP[h], v.Ev[h], v.StdErr[h], v.EvErr[h] = float32(dgp), float32(ev), float32(se), float32(evErr)
 	v.InRange[h] = glare.InRange(dgp, ev)
 	v.Coarse[h] = float32(g.atHalf(w, e, f.Mean))
@@ -214,7 +219,7 @@ func (g *standingSink) take(worker int, f *annual.Frame) {
 	defer g.mu[f.Eye].Unlock()
 	cell := 0
 	if g.cells != nil {
-		cell = g.cells[h]
+		cell = g.cells[v.Viewpoint.Room][h]
 	}
 	top := (g.keep == nil || g.keep(f.Eye, h)) && brighter(dgp, h, g.tops[f.Eye][cell])
 	if dgp < causeFrom && !top {

@@ -125,7 +125,19 @@ func (o *operation) facts(unit int) control.Facts {
 		return control.Facts{} // scene.Build has said so
 	}
 	rect := o.in.Scene.Openings[k].Rect
+	served, masks := o.served(u), map[string][]bool{}
+	for room := range served {
+		masks[room] = o.in.UseOf(room).mask
+	}
 	f := control.Facts{
+		InUse: func(step int) bool {
+			for _, mask := range masks {
+				if mask[moments[step].Step] {
+					return true
+				}
+			}
+			return false
+		},
 		FacadeWm2: func(step int) float64 { return o.facade(u.Opening, rect).irradiance(moments[step]) },
 		DirectLx:  func(step int) []float32 { return o.directBy(step)[u.Group] },
 		DeskWm2: func(step int) []float64 {
@@ -133,6 +145,9 @@ func (o *operation) facts(unit int) control.Facts {
 			desks := make([]float64, len(o.in.Scene.Viewpoints))
 			if m.DNI > 0 && m.Sun.Z > 0 {
 				for i, v := range o.in.Scene.Viewpoints {
+					if !served[v.Room] || !masks[v.Room][m.Step] {
+						continue
+					}
 					desks[i] = m.DNI * m.Sun.Z * sunThrough(o.open, v.Position, m.Sun)
 				}
 			}
@@ -145,6 +160,25 @@ func (o *operation) facts(unit int) control.Facts {
 		}
 	}
 	return f
+}
+
+// served are the rooms whose people a unit reacts to: that of its users, those of
+// the viewpoints that it watches, else all.
+func (o *operation) served(u *control.Unit) map[string]bool {
+	served := map[string]bool{}
+	switch {
+	case u.Room != "":
+		served[u.Room] = true
+	case u.Glare != nil && len(u.Glare.Viewpoints) > 0:
+		for _, i := range u.Glare.Viewpoints {
+			served[o.in.Scene.Viewpoints[i].Room] = true
+		}
+	default:
+		for _, use := range o.in.allUses() {
+			served[use.Room] = true
+		}
+	}
+	return served
 }
 
 // directBy is the sun on each sensor by the group of openings through which it
@@ -189,10 +223,19 @@ func (o *operation) directBy(step int) map[string][]float32 {
 func (o *operation) report(y *year) control.Report {
 	l := control.Losses{View: control.ViewLeft(o.in.Scene, o.units)}
 	if n := len(y.light.E); n > 0 && o.openYear != nil && o.openYear.inUse(o.steps) {
+		var masks [][]bool // by sensor
+		for _, w := range o.in.Scene.WorkPlanes {
+			mask := o.in.UseOf(w.Room).mask
+			for range w.Sensors {
+				masks = append(masks, mask)
+			}
+		}
 		mean := func(of *year, step int) float64 {
 			sum := 0.0
 			for s := range of.light.E {
-				sum += float64(of.light.E[s][step])
+				if masks[s][o.steps[step].At] {
+					sum += float64(of.light.E[s][step])
+				}
 			}
 			return sum / float64(n)
 		}

@@ -73,6 +73,8 @@ func (r *Result) judgePlanes(y *year) {
 	}
 }
 
+// spread makes series of the year of those of the moments, which it lets go of:
+// in fine steps both together take much room.
 func (r *Result) spread(byMoment [][]float32) [][]float32 {
 	out := make([][]float32, len(byMoment))
 	for s := range byMoment {
@@ -80,15 +82,17 @@ func (r *Result) spread(byMoment [][]float32) [][]float32 {
 		for k, m := range r.Climate.Moments {
 			out[s][m.Step] = byMoment[s][k]
 		}
+		byMoment[s] = nil
 	}
 	return out
 }
 
 func (r *Result) judgePlane(p *PlaneResult, z float64) {
+	used := r.UseOf(p.Plane.Room).Hours
 	for s := range p.E {
-		p.DA = append(p.DA, daylight.DA(p.E[s], r.Occupied, daThresholdLx))
-		p.CDA = append(p.CDA, daylight.CDA(p.E[s], r.Occupied, daThresholdLx))
-		p.UDI = append(p.UDI, daylight.UDI(p.E[s], r.Occupied, daylight.DefaultBins))
+		p.DA = append(p.DA, daylight.DA(p.E[s], used, daThresholdLx))
+		p.CDA = append(p.CDA, daylight.CDA(p.E[s], used, daThresholdLx))
+		p.UDI = append(p.UDI, daylight.UDI(p.E[s], used, daylight.DefaultBins))
 	}
 	p.MeanDA, p.MeanCDA = mean(p.DA), mean(p.CDA)
 	p.MeanUDI = meanUDI(p.UDI)
@@ -98,8 +102,11 @@ func (r *Result) judgePlane(p *PlaneResult, z float64) {
 	}
 	p.Factors = daylight.Factors(p.Factor)
 	plane := daylight.Plane{E: p.E, SE: p.StdErr, Z: z}
-	p.SDA = daylight.SDA(plane, r.Clock, daylight.DefaultSpatial, r.Climate.PerHour())
-	p.ASE = daylight.ASE(p.Direct, r.Clock, daylight.DefaultExposure, r.Climate.PerHour())
+	spatial, exposure := daylight.DefaultSpatial, daylight.DefaultExposure
+	spatial.Shading = shading(r.Project)
+	exposure.Shading = spatial.Shading
+	p.SDA = daylight.SDA(plane, r.Clock, spatial, r.Climate.PerHour())
+	p.ASE = daylight.ASE(p.Direct, r.Clock, exposure, r.Climate.PerHour())
 	for k, l := range provisionLevels(r.Project) {
 		res := daylight.Provision(plane, r.Daylight, l)
 		v := verdict.Provision(p.Plane.Name, res)

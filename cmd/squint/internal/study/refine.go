@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"slices"
 
+	"squint/glare/daylight"
 	"squint/glare/verdict"
 	"squint/materials/sampling"
 	"squint/scene"
@@ -108,7 +109,7 @@ func count(n int, what string) string {
 // openHours are the hours in use whose DGP may lie on either side of limit.
 func (r *Result) openHours(v *ViewResult, limit, z float64) []int {
 	var out []int
-	for _, h := range r.Occupied {
+	for _, h := range r.UseOf(v.Viewpoint.Room).Hours {
 		d, e := float64(v.DGP[h]), z*float64(v.StdErr[h])+float64(v.Bias[h])
 		if d-e <= limit && d+e > limit {
 			out = append(out, h)
@@ -179,12 +180,13 @@ func (r *Result) zViews() float64 {
 
 // glareHours counts a view's hours in use over a limit.
 func (r *Result) glareHours(v *ViewResult, limit, z float64) verdict.GlareHours {
-	dgp, half := make([]float32, len(r.Occupied)), make([]float32, len(r.Occupied))
-	for k, h := range r.Occupied {
+	used := r.UseOf(v.Viewpoint.Room).Hours
+	dgp, half := make([]float32, len(used)), make([]float32, len(used))
+	for k, h := range used {
 		dgp[k] = v.DGP[h]
 		if dgp[k] != 0 || v.StdErr[h] != 0 { // 0: in the dark
 			half[k] = float32(z)*v.StdErr[h] + v.Bias[h]
 		}
 	}
-	return verdict.CountGlare(dgp, half, limit, 1).OfSteps(r.Climate.PerHour())
+	return verdict.CountGlare(dgp, half, limit, 1).OfSteps(r.Calendar.Steps() / daylight.HoursPerYear)
 }

@@ -54,18 +54,25 @@ func skies(moments []*scene.Moment) string {
 
 // cellsOf groups the steps by day of the week, holidays apart, hour of the
 // clock, and in use or not. Whatever full hours of the week an occupancy has, its
-// worst step is the worst of a cell.
-func cellsOf(in *Input) []int {
-	cells := make([]int, in.Calendar.Steps())
-	used := in.Occupied.Mask(len(cells))
+// worst step is the worst of a cell. They are listed by room.
+func cellsOf(in *Input) map[string][]int {
+	all := map[string][]int{}
+	for _, u := range in.allUses() {
+		all[u.Room] = u.cells()
+	}
+	return all
+}
+
+func (u *Use) cells() []int {
+	cells := make([]int, u.Calendar.Steps())
 	for i := range cells {
-		day, clock := in.Calendar.ClockAt(i)
-		weekday, holiday := in.Calendar.OnDay(day)
+		day, clock := u.Calendar.ClockAt(i)
+		weekday, holiday := u.Calendar.OnDay(day)
 		if holiday {
 			weekday = 7
 		}
 		cells[i] = 2 * (24*weekday + int(clock))
-		if used[i] {
+		if u.mask[i] {
 			cells[i]++
 		}
 	}

@@ -109,6 +109,9 @@ func (o *operation) observed(y *year, step int) control.Observed {
 	seen := control.Observed{DGP: make([]float64, len(y.glare.views)), Through: make([][]string, len(y.glare.views))}
 	for i := range y.glare.views {
 		v := &y.glare.views[i]
+		if v.DGP[h] != v.DGP[h] {
+			continue // nobody is there: its room is not in use
+		}
 		seen.DGP[i] = float64(v.DGP[h])
 		if v.Cause[h] < 0 {
 			continue

@@ -14,7 +14,6 @@ type shelf struct {
 	in     *Input
 	st     *Standing
 	hours  []int // of the standing's moments
-	used   []int // those in use
 	clear  []*scene.Moment
 	views  []*viewRecord
 	planes []*planeRecord
@@ -29,9 +28,6 @@ func newShelf(in *Input, k int, opt Options) *shelf {
 	s := &shelf{opt: opt, in: in, st: &in.Standings[k], lackHours: map[int]bool{}, seenHours: map[int]bool{}}
 	for _, m := range s.st.Moments {
 		s.hours = append(s.hours, m.Step)
-		if m.Occupied {
-			s.used = append(s.used, m.Step)
-		}
 	}
 	for _, m := range in.Clear {
 		if in.standingAt(m.Step) == k {
@@ -69,14 +65,27 @@ func (s *shelf) pixels() int {
 	return s.opt.shots.pixels
 }
 
-// pictured are the hours in use of which a picture of view i may be kept.
-func (s *shelf) pictured(i int) []int {
+// used are the hours in which the room of a view is in use.
+func (s *shelf) used(view int) []int {
+	use := s.in.UseOf(s.st.Scene.Viewpoints[view].Room)
+	var list []int
+	for _, h := range s.hours {
+		if use.mask[h] {
+			list = append(list, h)
+		}
+	}
+	return list
+}
+
+// pictured are the hours in use of which a picture of a view may be kept.
+func (s *shelf) pictured(view int) []int {
+	used := s.used(view)
 	if s.opt.keep == nil {
-		return s.used
+		return used
 	}
 	var list []int
-	for _, h := range s.used {
-		if s.opt.keep(i, h) {
+	for _, h := range used {
+		if s.opt.keep(view, h) {
 			list = append(list, h)
 		}
 	}
@@ -85,8 +94,8 @@ func (s *shelf) pictured(i int) []int {
 
 func (s *shelf) missingView(i int) {
 	x := s.views[i]
-	missing := false
-	for _, h := range s.used {
+	missing, used := false, s.used(i)
+	for _, h := range used {
 		if !x.known(h, s.pixels(), true) {
 			missing, s.lackHours[h], s.seenHours[h] = true, true, true
 		}
@@ -96,9 +105,9 @@ func (s *shelf) missingView(i int) {
 			missing, s.lackHours[h] = true, true
 		}
 	}
-	if used := s.pictured(i); !missing && !s.opt.anyWorst && len(used) > 0 && x.top(used) == nil {
+	if pictured := s.pictured(i); !missing && !s.opt.anyWorst && len(pictured) > 0 && x.top(pictured) == nil {
 		missing = true
-		for _, h := range s.used {
+		for _, h := range used {
 			s.lackHours[h], s.seenHours[h] = true, true
 		}
 	}
@@ -138,7 +147,7 @@ func (s *shelf) compute(ctx context.Context, r *Result) error {
 			c.Moments = append(c.Moments, &open)
 		}
 	}
-	sub.Climate, sub.Clear = &c, nil
+	sub.Climate, sub.Clear, sub.always = &c, nil, true
 	if len(s.lackPlanes) > 0 {
 		sub.Clear = s.clear
 	}

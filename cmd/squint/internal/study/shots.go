@@ -75,10 +75,11 @@ const (
 	mostShown  = 1e6
 )
 
-// Sizes of the pictures by the number of views: across, in pixels, the patterns
-// that they are made of, of how many standings it is kept what is seen, and
-// whether there are pictures of hours out of use. What they are kept in must fit
-// beside the rest, and the page must not grow without bound. Own choice.
+// Sizes of the pictures by the number of views, times the steps in an hour:
+// across, in pixels, the patterns that they are made of, of how many standings it
+// is kept what is seen, and whether there are pictures of hours out of use. What
+// they are kept in must fit beside the rest, and the page must not grow without
+// bound. Own choice.
 var shotSizes = []struct {
 	views, pixels, rank, stood int
 	always                     bool
@@ -104,7 +105,7 @@ func newShotPlan(in *Input) *shotPlan {
 	n := len(in.Climate.SinAltitude)
 	s := &shotPlan{frame: make([]int, n), used: make([]bool, n)}
 	for _, size := range shotSizes {
-		if len(in.Scene.Viewpoints) <= size.views {
+		if len(in.Scene.Viewpoints)*in.Climate.PerHour() <= size.views {
 			s.pixels, s.rank, s.stood = min(size.pixels, in.Project.Simulation.FisheyePixels), size.rank, size.stood
 			s.always = size.always
 			break

@@ -34,8 +34,8 @@ type Options struct {
 	// down to its last byte, is part of that.
 	Store   Store
 	Program string
-	skies   string // digest of all moments
-	cells   []int  // by record: the brightest frame of each cell is kept
+	skies   string           // digest of all moments
+	cells   map[string][]int // by room and step: the brightest frame of each cell is kept
 	// anyWorst lets the worst hour's picture be missing where the rest is known.
 	anyWorst bool
 	// keep, if not nil, says of which hours of a view a picture may be kept.
@@ -64,7 +64,9 @@ type Result struct {
 	Climate *scene.Climate
 
 	Calendar                  daylight.Calendar
-	Occupied, Clock, Daylight daylight.Hours
+	Occupied, Clock, Daylight daylight.Hours // Occupied: any room is in use
+	// Uses are those of the rooms; none of a project without [[room]].
+	Uses []Use
 
 	Views    []ViewResult
 	Planes   []PlaneResult
@@ -135,13 +137,15 @@ type Input struct {
 	// Scene and World are those of the project as it is written.
 	Standings []Standing
 	fsys      fs.FS
+	always    bool       // eyes are open at every moment, in use or not
 	operation *operation // nil where everything stands as the project says
 	// Clear are moments under a clear sky, on work planes alone.
 	Clear []*scene.Moment
 	Notes []string
 
 	Calendar                  daylight.Calendar
-	Occupied, Clock, Daylight daylight.Hours
+	Occupied, Clock, Daylight daylight.Hours // Occupied: any room is in use
+	Uses                      []Use          // none of a project without [[room]]
 }
 
 // Prepare reads everything that a project names and checks it. Errors are the
@@ -164,12 +168,18 @@ func Prepare(fsys fs.FS, p *project.Project, workers int) (*Input, error) {
 	}
 	in.Climate = c
 	in.Calendar = calendar(p, c)
+	if in.Uses, err = uses(p, c, s); err != nil {
+		return nil, err
+	}
 	in.Occupied = in.Calendar.Occupied()
+	if len(in.Uses) > 0 {
+		in.Occupied = anyOf(in.Uses)
+	}
+	if len(in.Occupied) == 0 {
+		return nil, noUse(p)
+	}
 	in.Clock = in.Calendar.Clock(8, 18)
 	in.Daylight = daylight.SunHighest(c.SinAltitude, daylight.DaylightHoursPerYear*c.PerHour())
-	if len(in.Occupied) == 0 {
-		return nil, fmt.Errorf("%s: occupancy: got no hour of use, want at least one; check days, from, to and holidays", p.File)
-	}
 	used := in.Occupied.Mask(in.Calendar.Steps())
 	for _, m := range c.Moments {
 		m.Occupied = used[m.Step]
@@ -196,25 +206,30 @@ func Prepare(fsys fs.FS, p *project.Project, workers int) (*Input, error) {
 	return in, nil
 }
 
-// calendar translates the project's occupancy.
+// calendar is that of the project's own hours of use.
 func calendar(p *project.Project, c *scene.Climate) daylight.Calendar {
+	return calendarOf(&p.Occupancy, c)
+}
+
+// calendarOf translates an occupancy.
+func calendarOf(o *project.Occupancy, c *scene.Climate) daylight.Calendar {
 	first := c.Year.Moment(0, -0.5)
 	jan1 := time.Date(first.Year(), 1, 1, 0, 0, 0, 0, time.UTC)
 	k := daylight.Calendar{
 		PerHour:      c.PerHour(),
 		FirstWeekday: (int(jan1.Weekday()) + 6) % 7,
-		Days:         p.Occupancy.Days,
-		FromH:        p.Occupancy.FromH,
-		ToH:          p.Occupancy.ToH,
+		Days:         o.Days,
+		FromH:        o.FromH,
+		ToH:          o.ToH,
 	}
-	for _, h := range p.Occupancy.Holidays {
+	for _, h := range o.Holidays {
 		k.Holidays = append(k.Holidays, daylight.MonthDay(h))
 	}
-	if f := p.Occupancy.DaylightSavingFrom; f != nil {
+	if f := o.DaylightSavingFrom; f != nil {
 		d := daylight.MonthDay(*f)
 		k.SavingFrom = &d
 	}
-	if f := p.Occupancy.DaylightSavingTo; f != nil {
+	if f := o.DaylightSavingTo; f != nil {
 		d := daylight.MonthDay(*f)
 		k.SavingTo = &d
 	}
@@ -231,7 +246,7 @@ func Run(ctx context.Context, in *Input, opt Options) (*Result, error) {
 	}
 	r := &Result{
 		Project: in.Project, Scene: in.Scene, Climate: in.Climate,
-		Calendar: in.Calendar, Occupied: in.Occupied, Clock: in.Clock, Daylight: in.Daylight,
+		Calendar: in.Calendar, Occupied: in.Occupied, Clock: in.Clock, Daylight: in.Daylight, Uses: in.Uses,
 		Notes: in.Notes,
 	}
 	for i := range in.Clear {

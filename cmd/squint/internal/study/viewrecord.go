@@ -164,6 +164,7 @@ func (v *viewRecord) learnTops(tops map[int]*Worst) {
 func (y *year) readView(s *shelf, i int, r *Result) {
 	x, v, g := s.views[i], &y.glare.views[i], y.glare
 	r.tell(s.in, x.Sides, x.Coarsen)
+	use := s.in.UseOf(v.Viewpoint.Room)
 	var eye *coeff.Eye
 	for _, m := range s.st.Moments {
 		h := m.Step
@@ -175,12 +176,11 @@ func (y *year) readView(s *shelf, i int, r *Result) {
 			eye = &coeff.Eye{View: x.View, Seen: x.Seen, Inside: x.Inside}
 		}
 		y.readShot(s, i, eye, a)
-		if !m.Occupied {
-			continue
-		}
-		v.DGP[h], v.StdErr[h], v.Ev[h], v.EvErr[h], v.InRange[h], v.Coarse[h] = a.DGP, a.StdErr, a.Ev, a.EvErr, a.InRange, a.Coarse
-		if a.Cause >= 0 {
-			v.Cause[h] = g.causeID(i, x.Causes[a.Cause])
+		if use.mask[h] && a.Judged {
+			v.DGP[h], v.StdErr[h], v.Ev[h], v.EvErr[h], v.InRange[h], v.Coarse[h] = a.DGP, a.StdErr, a.Ev, a.EvErr, a.InRange, a.Coarse
+			if a.Cause >= 0 {
+				v.Cause[h] = g.causeID(i, x.Causes[a.Cause])
+			}
 		}
 	}
 	t := x.top(s.pictured(i))

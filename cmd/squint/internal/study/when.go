@@ -39,7 +39,7 @@ const evenMonths = 9
 // when says when the hours above a limit fall and what carries them.
 func (v *ViewResult) when(r *Result, limit float64) string {
 	var above []int
-	for _, h := range r.Occupied {
+	for _, h := range r.UseOf(v.Viewpoint.Room).Hours {
 		if float64(v.DGP[h]) > limit {
 			above = append(above, h)
 		}
@@ -58,7 +58,7 @@ func (v *ViewResult) whenOpen(r *Result, limit, z float64) string {
 	for _, h := range open {
 		far = math.Max(far, math.Abs(float64(v.DGP[h])-limit))
 	}
-	return fmt.Sprintf("%s open: %s, DGP within %.2g of the limit", count(len(open), "hour"), v.whenOf(r, open), far)
+	return fmt.Sprintf("%s open: %s, DGP within %.2g of the limit", count(len(open), stepWord(r.Climate)), v.whenOf(r, open), far)
 }
 
 // whenOf says of hours the shortest span of clock hours and the shortest span

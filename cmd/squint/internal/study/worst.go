@@ -46,9 +46,9 @@ func (y *year) worstHours(ctx context.Context, in *Input, opt Options, views []i
 
 // worstHour is the hour in use of highest DGP, -1 for none.
 func (v *ViewResult) worstHour(in *Input) int {
-	worst := -1
+	worst, use := -1, in.UseOf(v.Viewpoint.Room)
 	for _, m := range in.Climate.Moments {
-		if m.Occupied && (worst < 0 || v.DGP[m.Step] > v.DGP[worst]) {
+		if use.mask[m.Step] && (worst < 0 || v.DGP[m.Step] > v.DGP[worst]) {
 			worst = m.Step
 		}
 	}
