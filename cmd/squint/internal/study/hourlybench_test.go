@@ -1,0 +1,365 @@
+package study
+
+import (
+	"fmt"
+	"math"
+	"os"
+	"strings"
+	"testing"
+
+	"squint/glare"
+	"squint/scene"
+	"squint/scene/view"
+	"squint/trace"
+	"squint/trace/picture"
+)
+
+// hourlySeed picks projects, views and hours, and seeds the pictures.
+const hourlySeed = 1
+
+// The sizes of pictures that hour-by-hour rendering may choose from: pixels
+// across, and samples a pixel, of the plain tracer and of pictures with gathering.
+var (
+	hourlyPixels   = []int{64, 96}
+	plainSamples   = []int{16, 32, 64, 128, 256}
+	pictureSamples = []int{8, 16, 32}
+)
+
+// truthSamples are those of the references, at twice the year's resolution.
+const (
+	plainTruth   = 256
+	pictureTruth = 32
+)
+
+// way is one way of rendering hour by hour, and its pictures by samples.
+type way struct {
+	name   string
+	pixels int
+	levels []*level
+}
+
+// level is what pictures of so many samples a pixel cost and were worth.
+type level struct {
+	samples int
+	seconds float64
+	dgp     map[*hourlyPicture]float64
+}
+
+func (w *way) at(samples int) *level {
+	for _, l := range w.levels {
+		if l.samples == samples {
+			return l
+		}
+	}
+	l := &level{samples: samples, dgp: map[*hourlyPicture]float64{}}
+	w.levels = append(w.levels, l)
+	return l
+}
+
+// equal is the CPU time a picture at which the way has the error wanted,
+// between two levels by the straight line between their logarithms. reached is
+// false where even most samples have a larger error: then the time is theirs.
+func (w *way) equal(list []*hourlyPicture, rmse float64) (seconds, samples float64, reached bool) {
+	var before, beforeError, beforeSamples float64
+	for i, l := range w.levels {
+		n := 0
+		for _, p := range list {
+			if _, ok := l.dgp[p]; ok {
+				n++
+			}
+		}
+		if n < len(list) {
+			break
+		}
+		now, s := l.seconds/float64(len(l.dgp)), float64(l.samples)
+		e, _ := spread(list, func(p *hourlyPicture) float64 { return l.dgp[p] })
+		if e <= rmse {
+			if i == 0 || e == beforeError {
+				return now, s, true
+			}
+			x := math.Log(rmse/beforeError) / math.Log(e/beforeError)
+			return before * math.Pow(now/before, x), beforeSamples * math.Pow(s/beforeSamples, x), true
+		}
+		before, beforeError, beforeSamples = now, e, s
+	}
+	return before, beforeSamples, false
+}
+
+// field is a fisheye with its solid angles.
+type field struct {
+	view view.View
+	of   *glare.Field
+}
+
+func newHourlyField(b testing.TB, v scene.Viewpoint, pixels int) field {
+	vw, _ := fisheye(b, v, pixels)
+	return field{vw, glare.NewField(vw)}
+}
+
+func pooled(images [bruteBatches][]float32) []float32 {
+	mean := make([]float32, len(images[0]))
+	for _, im := range images {
+		for i, l := range im {
+			mean[i] += l / bruteBatches
+		}
+	}
+	return mean
+}
+
+// plainLadder renders one hour with more and more samples by the plain tracer.
+func (p *hourlyPicture) plainLadder(b testing.TB, w *way) {
+	v := p.sub.Scene.Viewpoints[p.view]
+	f := newHourlyField(b, v, w.pixels)
+	var scratch glare.Scratch
+	sum := make([]float32, w.pixels*w.pixels)
+	done, seconds := 0, 0.0
+	for i, n := range plainSamples {
+		start := cpuSeconds(b)
+		part := pooled(bruteImages(b, p.sub.World, v, []*scene.Moment{p.moment}, w.pixels, (n-done)/bruteBatches, hourlySeed<<8+uint64(i), 1)[0])
+		for k, l := range part {
+			sum[k] += l * float32(n-done)
+		}
+		done = n
+		mean := make([]float32, len(sum))
+		for k := range sum {
+			mean[k] = sum[k] / float32(n)
+		}
+		dgp, _ := glare.DGPOnly(f.of, mean, p.discs, sourceOptions(p.sub.Project.Criteria), &scratch)
+		seconds += cpuSeconds(b) - start
+		l := w.at(n)
+		l.dgp[p] = dgp
+		l.seconds += seconds
+	}
+}
+
+// stages are the exchanges of surfaces, traced once for each way in which the
+// systems stand. Their time does not count against rendering hour by hour.
+type stages map[stageOf]*picture.Stage
+
+type stageOf struct {
+	world *trace.World
+	seed  uint64
+}
+
+func (s stages) of(b testing.TB, sub *Input, cameras []picture.Camera, seed uint64) *picture.Stage {
+	k := stageOf{sub.World, seed}
+	if s[k] == nil {
+		var err error
+		s[k], err = picture.Prepare(b.Context(), sub.World, cameras, picture.Config{TexelSamples: sub.Project.Simulation.TexelSamples, Seed: seed, Workers: 1}, nil)
+		if err != nil {
+			b.Fatal(err)
+		}
+	}
+	return s[k]
+}
+
+// cameras are those of all views of a sample.
+func cameras(b testing.TB, in *Input) []picture.Camera {
+	var list []picture.Camera
+	for _, v := range in.Scene.Viewpoints {
+		vw, _ := fisheye(b, v, 96)
+		list = append(list, vw)
+	}
+	return list
+}
+
+// pictureLadder renders one hour with more and more samples, gathering from
+// solved surfaces; the solution for the hour counts.
+func (p *hourlyPicture) pictureLadder(b testing.TB, w *way, light *picture.Light, solved float64) {
+	v := p.sub.Scene.Viewpoints[p.view]
+	f := newHourlyField(b, v, w.pixels)
+	var scratch glare.Scratch
+	start := cpuSeconds(b)
+	take := func(im *picture.Picture) {
+		dgp, _ := glare.DGPOnly(f.of, im.Mean, p.discs, sourceOptions(p.sub.Project.Criteria), &scratch)
+		l := w.at(im.Samples)
+		l.dgp[p] = dgp
+		l.seconds += solved + cpuSeconds(b) - start
+	}
+	if _, err := light.Render(b.Context(), f.view, picture.Options{Samples: pictureSamples[len(pictureSamples)-1], Progress: take}); err != nil {
+		b.Fatal(err)
+	}
+}
+
+// reference finds what the DGP of pictures of one view is, by pictures at twice
+// the year's resolution: the plain tracer's where it finds all light.
+func reference(b testing.TB, list []*hourlyPicture, s stages) {
+	for len(list) > 0 {
+		var together, rest []*hourlyPicture
+		for _, p := range list {
+			if p.sub == list[0].sub && p.view == list[0].view {
+				together = append(together, p)
+			} else {
+				rest = append(rest, p)
+			}
+		}
+		list = rest
+		sub, v := together[0].sub, together[0].sub.Scene.Viewpoints[together[0].view]
+		f := newHourlyField(b, v, brutePixels)
+		var moments []*scene.Moment
+		for _, p := range together {
+			moments = append(moments, p.moment)
+		}
+		judge := func(p *hourlyPicture, mean []float32, batch [][]float32) {
+			var scratch glare.Scratch
+			p.want, _, p.wantErr, _ = glare.Pooled(f.of, mean, batch, p.discs, sourceOptions(sub.Project.Criteria), 0, &scratch)
+		}
+		if plain(sub.World) {
+			images := bruteImages(b, sub.World, v, moments, brutePixels, plainTruth/bruteBatches, hourlySeed+76, 2)
+			for i, p := range together {
+				judge(p, pooled(images[i]), images[i][:])
+			}
+			continue
+		}
+		stage := s.of(b, sub, cameras(b, sub), hourlySeed+76)
+		for _, p := range together {
+			light, err := stage.Light(b.Context(), p.moment)
+			if err != nil {
+				b.Fatal(err)
+			}
+			im, err := light.Render(b.Context(), f.view, picture.Options{Samples: pictureTruth})
+			if err != nil {
+				b.Fatal(err)
+			}
+			judge(p, im.Mean, im.Batch)
+		}
+	}
+}
+
+// hourlyProject is one project's comparison.
+type hourlyProject struct {
+	name        string
+	list        []*hourlyPicture
+	yearSeconds float64 // a view and hour in use
+	ways        []*way
+}
+
+func runHourly(b testing.TB, name string, views, hours int) *hourlyProject {
+	in := hourlyOffice(b, name)
+	h := &hourlyProject{name: name}
+	h.list = hourlySample(b, in, views, hours, hourlySeed)
+	start := cpuSeconds(b)
+	r, err := Run(b.Context(), in, Options{Workers: 1, Bare: true})
+	if err != nil {
+		b.Fatal(err)
+	}
+	seconds, frames := cpuSeconds(b)-start, 0
+	for _, m := range in.Climate.Moments {
+		if m.Occupied {
+			frames += len(r.Views)
+		}
+	}
+	h.yearSeconds = seconds / float64(frames)
+	b.Logf("%s: the year of %d views in %d positions of what moves: %.1f CPU s, %d views x hours", name, len(r.Views), len(in.Standings), seconds, frames)
+	for _, p := range h.list {
+		p.year = float64(r.Views[p.view].DGP[p.moment.Hour])
+	}
+	s := stages{}
+	reference(b, h.list, s)
+	for _, pixels := range hourlyPixels {
+		if plain(in.World) {
+			w := &way{name: "plain paths", pixels: pixels}
+			for _, p := range h.list {
+				p.plainLadder(b, w)
+			}
+			h.ways = append(h.ways, w)
+		}
+		h.ways = append(h.ways, &way{name: "gathering", pixels: pixels})
+	}
+	for _, p := range h.list {
+		stage := s.of(b, p.sub, cameras(b, in), hourlySeed)
+		start := cpuSeconds(b)
+		light, err := stage.Light(b.Context(), p.moment)
+		if err != nil {
+			b.Fatal(err)
+		}
+		solved := cpuSeconds(b) - start
+		for _, w := range h.ways {
+			if w.name == "gathering" {
+				p.pictureLadder(b, w, light, solved)
+			}
+		}
+	}
+	return h
+}
+
+// best is the cheapest way at the year's error.
+func (h *hourlyProject) best(rmse float64) (w *way, seconds, samples float64, reached bool) {
+	for _, x := range h.ways {
+		s, n, ok := x.equal(h.list, rmse)
+		if w == nil || ok && !reached || ok == reached && s < seconds {
+			w, seconds, samples, reached = x, s, n, ok
+		}
+	}
+	return w, seconds, samples, reached
+}
+
+// BenchmarkHourByHour holds the yearly engine against rendering every hour by
+// itself, at equal error of DGP: the CPU time of a view and hour in use, that of
+// tracing included, against that of a picture by the cheapest way at hand. In
+// favour of the pictures, tracing their surfaces is not counted, nor is looking
+// for the sun's disc.
+//
+// The error is the root mean square over sampled hours against pictures at twice
+// the year's resolution: by the plain tracer, or, where mirrors or glossy surfaces
+// throw light that it does not find, by gathering with photons, which shares its
+// method with one of the two sides. Sampled hours are harder than the year's:
+// see hourlySample.
+//
+// SQUINT_HOURLY=PROJECTSxVIEWSxHOURS sets the sample, or NAME,NAME:VIEWSxHOURS;
+// 2x2x4 takes some minutes. Needs -benchtime 1x -timeout 0.
+func BenchmarkHourByHour(b *testing.B) {
+	projects, views, hours := galleryProjects(b, hourlySeed), 2, 4
+	n := 2
+	if env := os.Getenv("SQUINT_HOURLY"); env != "" {
+		names, rest, named := strings.Cut(env, ":")
+		var err error
+		if named {
+			projects = strings.Split(names, ",")
+			n = len(projects)
+			_, err = fmt.Sscanf(rest, "%dx%d", &views, &hours)
+		} else {
+			_, err = fmt.Sscanf(env, "%dx%dx%d", &n, &views, &hours)
+		}
+		if err != nil || n < 1 || n > len(projects) || views < 1 || views > 6 || hours < 1 || hours > 100 {
+			b.Fatalf("SQUINT_HOURLY: got %q, want PROJECTSxVIEWSxHOURS or NAME,NAME:VIEWSxHOURS, up to 6 views and 100 hours", env)
+		}
+	}
+	for b.Loop() {
+		var all []*hourlyPicture
+		var year, hourly float64
+		short := 0
+		for _, name := range projects[:n] {
+			h := runHourly(b, name, views, hours)
+			for _, p := range h.list {
+				b.Logf("  %-44s reference %.4f +- %.4f  year %+.4f", p, p.want, p.wantErr, p.year-p.want)
+			}
+			rmse, worst := spread(h.list, func(p *hourlyPicture) float64 { return p.year })
+			for _, w := range h.ways {
+				for _, l := range w.levels {
+					e, m := spread(h.list, func(p *hourlyPicture) float64 { return l.dgp[p] })
+					b.Logf("  %-11s %3d px %4d samples: %7.3f CPU s, RMSE %.4f, largest %.4f", w.name, w.pixels, l.samples, l.seconds/float64(len(l.dgp)), e, m)
+				}
+			}
+			w, seconds, samples, reached := h.best(rmse)
+			more := ""
+			if !reached {
+				more = " or more"
+				short++
+			}
+			b.Logf("%s: RMSE %.4f, largest %.4f, %.5f CPU s a view and hour; %s with %d px, %.0f samples %.3f CPU s%s: %.0f times%s",
+				name, rmse, worst, h.yearSeconds, w.name, w.pixels, samples, seconds, more, seconds/h.yearSeconds, more)
+			all = append(all, h.list...)
+			year += h.yearSeconds * float64(len(h.list))
+			hourly += seconds * float64(len(h.list))
+		}
+		rmse, worst := spread(all, func(p *hourlyPicture) float64 { return p.year })
+		b.Logf("all %d pictures of %d projects, %d views, %d hours each: RMSE %.4f, largest %.4f; %.5f CPU s against %.3f: %.0f times; %d projects where no way reached the error",
+			len(all), n, views, hours, rmse, worst, year/float64(len(all)), hourly/float64(len(all)), hourly/year, short)
+		b.ReportMetric(rmse, "rmse")
+		b.ReportMetric(worst, "largest")
+		b.ReportMetric(year/float64(len(all)), "year-cpu-s")
+		b.ReportMetric(hourly/float64(len(all)), "hourly-cpu-s")
+		b.ReportMetric(hourly/year, "ratio")
+	}
+}
