@@ -168,6 +168,10 @@ func (w *worker) run(ctx context.Context, moments []*scene.Moment, b block, d *D
 	for i, k := range b {
 		ms[i] = moments[k]
 	}
+	seen := w.sink != nil && ms[0].Occupied
+	if !seen && len(w.r.Sensors) == 0 {
+		return // nobody reads these moments
+	}
 	bl := w.t.NewBlock(ms, w.r.Fine)
 	for batch := range w.lights {
 		if ctx.Err() != nil {
@@ -176,7 +180,7 @@ func (w *worker) run(ctx context.Context, moments []*scene.Moment, b block, d *D
 		w.t.Solve(bl, batch, &w.lights[batch])
 	}
 	w.sensors(bl, b, d)
-	if w.sink == nil || !ms[0].Occupied {
+	if !seen {
 		return
 	}
 	lit := w.t.LitNear(w.lights)

@@ -21,6 +21,7 @@ type floor struct {
 	sensorM    float64 // between sensors, 0.6 for 2,970
 	blinds     bool    // behind all windows: raised, level and closed by a timetable
 	days       int     // every so many days of the year are kept
+	looks      bool    // hours near the limit are looked at again, as in a check
 	simulation string  // keys, "" for the defaults
 }
 

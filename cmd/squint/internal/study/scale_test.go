@@ -43,6 +43,9 @@ func (f floor) measure(t testing.TB, opt Options) (floorCost, *Result) {
 	}
 	c.prepare = cpuSeconds(t) - start
 	c.standings = len(in.Standings)
+	if !f.looks {
+		in.Project.Criteria.Glare = ""
+	}
 	runtime.ReadMemStats(&before)
 	start = cpuSeconds(t)
 	r, err := Run(t.Context(), in, opt)
@@ -122,7 +125,7 @@ func BenchmarkFloorWhole(b *testing.B) {
 	if err != nil || days < 1 {
 		b.Skip("takes from half an hour to hours; set SQUINT_FLOOR_DAYS=n for one in n days of the year")
 	}
-	f := floor{triangles: 200000, viewM: 3, sensorM: .6, blinds: true, days: days}
+	f := floor{triangles: 200000, viewM: 3, sensorM: .6, blinds: true, days: days, looks: true}
 	// As a check does for the 1,024 MiB that it takes by default.
 	defer debug.SetMemoryLimit(debug.SetMemoryLimit(960 << 20))
 	for b.Loop() {
