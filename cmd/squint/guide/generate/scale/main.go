@@ -59,6 +59,7 @@ const (
 	panelHigh = 150.0
 	panelGap  = 56.0
 	leftRoom  = 44.0 // for the numbers of the vertical axis
+	rightRoom = 14.0 // for half of the last number below
 	dotRadius = 3.2
 )
 
@@ -70,8 +71,8 @@ func draw(t *table) (*falsecolour.Canvas, error) {
 	if err != nil {
 		return nil, err
 	}
-	const wide = (640 - 2*margin - panelGap) / 2
-	foot := c.Wrap(falsecolour.SmallFace, "Dots are measured, lines are the laws that fit them best: a fixed part and one that grows in proportion. "+strings.Join(t.about, " ")+" "+t.cpu+".", 640-2*margin)
+	const wide = (640 - 2*margin - panelGap) / 2 // of a column
+	foot := c.Wrap(falsecolour.SmallFace, "Dots are measured, lines are the laws that fit them best: a fixed part and one that grows in proportion. "+t.prepared()+" "+strings.Join(t.about, " ")+" Processor: "+t.cpu+".", 640-2*margin)
 	c.Open(headHigh + float64(len(sizes))*(panelHigh+panelGap) + float64(len(foot))*c.LineHeight(falsecolour.SmallFace) + margin/2)
 	at := func(x, y float64) falsecolour.Place { return falsecolour.Place{X: x, Y: y} }
 	c.Text(falsecolour.TitleFace, at(margin, 34), "What size costs", falsecolour.Ink, false)
@@ -81,7 +82,7 @@ func draw(t *table) (*falsecolour.Canvas, error) {
 	for i, s := range sizes {
 		y := headHigh + float64(i)*(panelHigh+panelGap)
 		for k, value := range [2]func(r row) float64{func(r row) float64 { return r.seconds }, func(r row) float64 { return r.mib }} {
-			p := panel{c: c, left: margin + leftRoom + float64(k)*(wide+panelGap), top: y, wide: wide - leftRoom, log: s == "triangles"}
+			p := panel{c: c, left: margin + leftRoom + float64(k)*(wide+panelGap), top: y, wide: wide - leftRoom - rightRoom, log: s == "triangles"}
 			p.draw(t.rows[s], value, words[s])
 		}
 	}
@@ -120,13 +121,12 @@ func (p *panel) draw(rows []row, value func(r row) float64, name string) {
 		x, y = append(x, size), append(y, value(r))
 	}
 	p.hi, p.most = top(p.hi), top(p.most)
-	ticks := []float64{0, p.hi / 4, p.hi / 2, 3 * p.hi / 4, p.hi}
+	across := steps(p.hi)
 	if p.log {
 		p.lo, p.hi = 20000, math.Max(p.hi, 500000)
-		ticks = []float64{20000, 50000, 100000, 200000, 500000}
+		across = []float64{20000, 100000, 500000}
 	}
-	for i := range 5 {
-		v := p.most * float64(i) / 4
+	for _, v := range steps(p.most) {
 		a, b := p.place(p.lo, v), p.place(p.hi, v)
 		p.c.Lines(0.6, falsecolour.Hairline, []falsecolour.Place{a, b})
 		text := falsecolour.Number(v)
@@ -134,7 +134,7 @@ func (p *panel) draw(rows []row, value func(r row) float64, name string) {
 		a.Y += p.c.Capital(falsecolour.SmallFace) / 2
 		p.c.Text(falsecolour.SmallFace, a, text, falsecolour.Quiet, false)
 	}
-	for _, v := range ticks {
+	for _, v := range across {
 		a := p.place(v, 0)
 		text := falsecolour.Number(v)
 		a.X -= p.c.TextWidth(falsecolour.SmallFace, text) / 2

@@ -7,6 +7,8 @@ import (
 	"math"
 	"strconv"
 	"strings"
+
+	"squint/glare/falsecolour"
 )
 
 // table is what BenchmarkFloor printed, and the lines that say where and when.
@@ -17,7 +19,7 @@ type table struct {
 }
 
 type row struct {
-	size, seconds, mib float64
+	size, prepare, seconds, mib float64 // CPU seconds of preparing and of computing
 }
 
 // sizes are what BenchmarkFloor varies, in the order of the sheet.
@@ -48,7 +50,7 @@ func read(from io.Reader) (*table, error) {
 			}
 			values[f[i+1]] = v
 		}
-		r := row{values[name], values["prepare-cpu-s"] + values["run-cpu-s"], values["peak-MiB"]}
+		r := row{values[name], values["prepare-cpu-s"], values["run-cpu-s"], values["peak-MiB"]}
 		if !(r.size > 0 && r.seconds > 0 && r.mib > 0) {
 			return nil, fmt.Errorf("line %d: got no %s, prepare-cpu-s, run-cpu-s or peak-MiB, want all of them", n, name)
 		}
@@ -73,13 +75,33 @@ func law(x, y []float64) (a, b float64) {
 	return (sy - b*sx) / n, b
 }
 
-// top is the least of 1, 2, 2.5, 4, 5 or 8 times a power of ten that is no less.
+// prepared tells what reading and building took, which is not in the plots.
+func (t *table) prepared() string {
+	rows := t.rows["triangles"]
+	few, many := rows[0], rows[len(rows)-1]
+	return fmt.Sprintf("Not in them: reading the model and building its search trees, %.1f s of %s triangles and %.1f s of %s.",
+		few.prepare, falsecolour.Number(few.size), many.prepare, falsecolour.Number(many.size))
+}
+
+// top is the least of 1, 2, 4, 5 or 8 times a power of ten that is no less.
 func top(v float64) float64 {
 	p := math.Pow(10, math.Floor(math.Log10(v)))
-	for _, k := range []float64{1, 2, 2.5, 4, 5, 8} {
-		if k*p >= v {
+	for _, k := range []float64{1, 2, 4, 5, 8} {
+		if k*p >= v*(1-1e-9) {
 			return k * p
 		}
 	}
 	return 10 * p
+}
+
+// steps are round numbers from 0 to a top.
+func steps(most float64) (list []float64) {
+	n := 4
+	if lead := most / math.Pow(10, math.Floor(math.Log10(most)+1e-9)); math.Round(lead) == 1 || math.Round(lead) == 5 {
+		n = 5
+	}
+	for i := range n + 1 {
+		list = append(list, most*float64(i)/float64(n))
+	}
+	return list
 }
