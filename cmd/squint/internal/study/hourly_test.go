@@ -2,6 +2,7 @@ package study
 
 import (
 	"fmt"
+	"hash/fnv"
 	"io/fs"
 	"math"
 	"math/rand/v2"
@@ -113,10 +114,12 @@ func (p *hourlyPicture) String() string {
 // hourlySample picks views and hours in use: at random, but of each view's
 // hours up to a quarter have a partly hidden disc and a quarter the sun's image
 // in a mirror, where such are found among 200 looked at.
-func hourlySample(t testing.TB, in *Input, views, hours int, seed uint64) []*hourlyPicture {
+func hourlySample(t testing.TB, in *Input, name string, views, hours int, seed uint64) []*hourlyPicture {
 	t.Helper()
 	const looked = 200
-	rng := rand.New(rand.NewPCG(seed, 50))
+	own := fnv.New64a()
+	own.Write([]byte(name))
+	rng := rand.New(rand.NewPCG(seed, own.Sum64()))
 	worlds := map[*scene.Moment]*Input{}
 	var used []*scene.Moment
 	for i := range in.Standings {
@@ -199,7 +202,9 @@ func spread(list []*hourlyPicture, got func(p *hourlyPicture) float64) (rmse, wo
 	return math.Sqrt(sum / float64(len(list))), worst
 }
 
-// galleryProjects are the names of the gallery's projects, shuffled by a seed.
+// galleryProjects are the names of the gallery's projects, shuffled by a seed,
+// then one of each kind before the second of any: the kind is the name's first
+// word.
 func galleryProjects(t testing.TB, seed uint64) []string {
 	t.Helper()
 	names, err := fs.Glob(os.DirFS("../../../../testdata/gallery"), "*.toml")
@@ -208,8 +213,13 @@ func galleryProjects(t testing.TB, seed uint64) []string {
 	}
 	slices.Sort(names)
 	rand.New(rand.NewPCG(seed, 51)).Shuffle(len(names), func(i, j int) { names[i], names[j] = names[j], names[i] })
+	turn, seen := map[string]int{}, map[string]int{}
 	for i := range names {
 		names[i] = strings.TrimSuffix(names[i], ".toml")
+		kind, _, _ := strings.Cut(names[i], "-")
+		turn[names[i]] = seen[kind]
+		seen[kind]++
 	}
+	slices.SortStableFunc(names, func(a, b string) int { return turn[a] - turn[b] })
 	return names
 }

@@ -22,7 +22,7 @@ const hourlySeed = 1
 // across, and samples a pixel, of the plain tracer and of pictures with gathering.
 var (
 	hourlyPixels   = []int{64, 96}
-	plainSamples   = []int{16, 32, 64, 128, 256}
+	plainSamples   = []int{8, 16, 32, 64, 128}
 	pictureSamples = []int{8, 16, 32}
 )
 
@@ -249,7 +249,7 @@ type hourlyProject struct {
 func runHourly(b testing.TB, name string, views, hours int) *hourlyProject {
 	in := hourlyOffice(b, name)
 	h := &hourlyProject{name: name}
-	h.list = hourlySample(b, in, views, hours, hourlySeed)
+	h.list = hourlySample(b, in, name, views, hours, hourlySeed)
 	start := cpuSeconds(b)
 	r, err := Run(b.Context(), in, Options{Workers: 1, Bare: true})
 	if err != nil {

@@ -15,7 +15,7 @@ func smallFloor() floor {
 	return floor{triangles: 25000, viewM: 30, sensorM: 4, days: 60, simulation: `fisheye_pixels = 48
 samples_per_pixel = 8
 sensor_samples = 1024
-texel_m = 0.8
+texel_m = 1.2
 texel_samples = 64
 `}
 }
@@ -98,12 +98,12 @@ func BenchmarkFloor(b *testing.B) {
 		f.viewM = c.m
 		vary(fmt.Sprintf("views=%d", c.views), f)
 	}
-	for _, m := range []float64{4, 2, 1.4, 1, .7, .5} {
+	for _, m := range []float64{4, 1.4, 1, .7, .6} {
 		f := smallFloor()
 		f.sensorM = m
 		vary(fmt.Sprintf("sensors=every_%g_m", m), f)
 	}
-	for _, days := range []int{60, 30, 15, 8, 4, 2} {
+	for _, days := range []int{60, 30, 15, 8, 4} {
 		f := smallFloor()
 		f.days = days
 		vary(fmt.Sprintf("hours=every_%d_days", days), f)
