@@ -379,3 +379,39 @@ func BenchmarkHourByHour(b *testing.B) {
 		b.ReportMetric(hourly[1]/year, "ratio-kept")
 	}
 }
+
+// TestHourlyEqual: the samples for an error are found between two levels, one
+// over their root where that is the law; an error met by luck at few samples is
+// had there, but kept only from where all have it; one that no level has is said
+// not to be reached.
+func TestHourlyEqual(t *testing.T) {
+	p := &hourlyPicture{want: .3}
+	made := func(errors ...float64) *way {
+		w := &way{}
+		for i, e := range errors {
+			l := w.at(16 << i)
+			l.dgp[p], l.seconds = p.want+e, float64(int(1)<<i)
+		}
+		return w
+	}
+	half := math.Sqrt2 / 2
+	for _, c := range []struct {
+		name             string
+		w                *way
+		keeps            bool
+		seconds, samples float64
+		reached          bool
+	}{
+		{"between", made(.008, .008*half, .004, .004*half), true, 2.56, 40.96, true},
+		{"at once", made(.001, .001), true, 1, 16, true},
+		{"by luck", made(.001, .009, .004), false, 1, 16, true},
+		{"luck not kept", made(.001, .01, .0025), true, 2 * math.Sqrt2, 32 * math.Sqrt2, true},
+		{"never", made(.02, .01), false, 2, 32, false},
+		{"not kept", made(.001, .01), true, 2, 32, false},
+	} {
+		s, n, ok := c.w.equal([]*hourlyPicture{p}, .005, c.keeps)
+		if math.Abs(s-c.seconds) > 1e-9*c.seconds || math.Abs(n-c.samples) > 1e-9*c.samples || ok != c.reached {
+			t.Errorf("%s: got %g s, %g samples, %t; want %g, %g, %t", c.name, s, n, ok, c.seconds, c.samples, c.reached)
+		}
+	}
+}

@@ -67,7 +67,7 @@ photons = 64
 	}
 	linear("views", []float64{30, 12, 6}, func(f *floor, m float64) { f.viewM = m }, func(c floorCost) int { return c.views })
 	linear("sensors", []float64{4, 2, 1.4}, func(f *floor, m float64) { f.sensorM = m }, func(c floorCost) int { return c.sensors })
-	linear("hours", []float64{30, 8, 4}, func(f *floor, n float64) { f.days = int(n) }, func(c floorCost) int { return c.hours })
+	linear("hours", []float64{60, 30, 15}, func(f *floor, n float64) { f.days = int(n) }, func(c floorCost) int { return c.hours })
 	t.Run("triangles", func(t *testing.T) {
 		few, _ := tiny.measure(t, Options{Workers: 1, Bare: true})
 		f := tiny
