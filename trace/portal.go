@@ -21,35 +21,29 @@ type Portals struct {
 }
 
 // portalMinDistance is the distance from an opening below which its solid
-// angle is so large that cosine sampling does better (design study, measured).
+// angle is so large that cosine sampling does better. Own choice, by trial.
 const portalMinDistance = 0.4
 
 // PortalsSeen selects the openings that a surface element at p with unit
 // normal n looks out of, weighted by their estimated form factor.
 func (w *World) PortalsSeen(p, n r3.Vec) Portals {
 	var ps Portals
-	w.SeePortals(p, n, &ps)
+	w.seePortals(p, n, nil, &ps)
 	return ps
 }
 
-// SeePortals is PortalsSeen into a value that is used again.
-func (w *World) SeePortals(p, n r3.Vec, ps *Portals) {
-	ps.clear()
-	for i := range w.Scene.Openings {
-		ps.add(&w.Scene.Openings[i].Rect, p, n)
-	}
-	ps.finish()
-}
+// SeeMirrors is PortalsSeen with the mirrors seen from p beside the openings, into
+// a value that is used again: a small mirror that shows the sky is as hard to
+// find as a window.
+func (w *World) SeeMirrors(p, n r3.Vec, ps *Portals) { w.seePortals(p, n, w.mirrors, ps) }
 
-// SeeMirrors is SeePortals with the mirrors seen from p beside the openings: a
-// small mirror that shows the sky is as hard to find as a window.
-func (w *World) SeeMirrors(p, n r3.Vec, ps *Portals) {
+func (w *World) seePortals(p, n r3.Vec, mirrors []system.Rect, ps *Portals) {
 	ps.clear()
 	for i := range w.Scene.Openings {
 		ps.add(&w.Scene.Openings[i].Rect, p, n)
 	}
-	for i := range w.mirrors {
-		ps.add(&w.mirrors[i], p, n)
+	for i := range mirrors {
+		ps.add(&mirrors[i], p, n)
 	}
 	ps.finish()
 }

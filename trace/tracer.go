@@ -120,7 +120,7 @@ func (t *Tracer) land(l Landing, scale, throughput float64, depth int, s *sampli
 // over the density drawn from.
 func (t *Tracer) scatter(p, n r3.Vec, s *sampling.Stream) (dir r3.Vec, over float64) {
 	if t.Portals {
-		t.world.SeePortals(p, n, &t.portals)
+		t.world.seePortals(p, n, nil, &t.portals)
 	}
 	if !t.Portals || t.portals.Empty() {
 		return CosineDirection(n, s.Float64(), s.Float64()), 1

@@ -6,15 +6,6 @@ import (
 	"slices"
 )
 
-// Defaults of Glare. The limit is where glare begins to disturb, Wienold 2009,
-// Dynamic daylight glare evaluation, Proc. Building Simulation 2009, from
-// memory. The hysteresis is one class of EN 17037:2018, from memory; that a
-// controller has it is our own choice.
-const (
-	DefaultDGPLimit   = 0.40
-	DefaultHysteresis = 0.05
-)
-
 // Reopening says when a unit that glare has closed opens again.
 type Reopening int
 

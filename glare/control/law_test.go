@@ -165,7 +165,7 @@ func TestActive(t *testing.T) {
 			want = append(want, i)
 		}
 	}
-	if got, _ := chosen(t, roller, Active{CloseWm2: DefaultDeskWm2, Closed: 1}, steps, facts); !slices.Equal(got, want) {
+	if got, _ := chosen(t, roller, Active{CloseWm2: 50, Closed: 1}, steps, facts); !slices.Equal(got, want) {
 		t.Errorf("got %v, want %v", got, want)
 	}
 }

@@ -1,11 +1,5 @@
 package control
 
-// DefaultDeskWm2 is the sun on a place of work at which somebody closes the
-// blind. Source: Reinhart 2004, Lightswitch-2002: a model for manual and
-// automated control of electric lighting and blinds, Solar Energy 77(1)
-// 15-28, from memory.
-const DefaultDeskWm2 = 50
-
 // Active is somebody who opens the unit on arrival, once a day, closes it when
 // the sun on any place of work is above CloseWm2, and then leaves it closed
 // until the next day of use. While the room is not in use nothing moves.

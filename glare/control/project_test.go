@@ -88,12 +88,12 @@ func TestUnitsOfRules(t *testing.T) {
 		{"rule = \"timetable\"\nopen = \"open\"\ntimetable = [{ from = \"20:00\", to = \"06:30\", state = \"shut\", days = [\"sun\"], first_day = \"02-29\", last_day = \"03-01\" }, { state = \"raised\" }]",
 			Timetable{State: 1, Periods: []Period{{Days: [7]bool{6: true}, FromH: 20, ToH: 6.5, FirstDay: 58, LastDay: 59, State: 2}, {Days: every, ToH: 24, LastDay: 364}}}, nil},
 		{"rule = \"facade sun\"\nfacade_wm2 = 200\nreopen_delay_min = 30", FacadeSun{200, 200, 0.5, 0, 2}, nil},
-		{"rule = \"facade sun\"\nreopen_wm2 = 100\nopen = \"open\"", FacadeSun{DefaultFacadeWm2, 100, 0, 1, 2}, nil},
+		{"rule = \"facade sun\"\nreopen_wm2 = 100\nopen = \"open\"", FacadeSun{300, 100, 0, 1, 2}, nil},
 		{"rule = \"work plane sun\"", WorkPlaneSun{daylight.DefaultBlindRule, 0, 2}, nil},
-		{"rule = \"work plane sun\"\ndgp_limit = 0.35\nviewpoints = [\"desk 2\"]", WorkPlaneSun{daylight.DefaultBlindRule, 0, 2}, &Glare{0.35, DefaultHysteresis, ByHysteresis, []int{1}}},
-		{"rule = \"glare\"", Always{0}, &Glare{DefaultDGPLimit, DefaultHysteresis, ByHysteresis, nil}},
-		{"rule = \"glare\"\nopen = \"open\"\nreopen = \"next morning\"", Always{1}, &Glare{DefaultDGPLimit, 0, NextMorning, nil}},
-		{"rule = \"manual\"", Active{DefaultDeskWm2, 0, 2}, nil},
+		{"rule = \"work plane sun\"\ndgp_limit = 0.35\nviewpoints = [\"desk 2\"]", WorkPlaneSun{daylight.DefaultBlindRule, 0, 2}, &Glare{0.35, 0.05, ByHysteresis, []int{1}}},
+		{"rule = \"glare\"", Always{0}, &Glare{0.4, 0.05, ByHysteresis, nil}},
+		{"rule = \"glare\"\nopen = \"open\"\nreopen = \"next morning\"", Always{1}, &Glare{0.4, 0, NextMorning, nil}},
+		{"rule = \"manual\"", Active{50, 0, 2}, nil},
 		{"rule = \"manual\"\nuser = \"passive\"\nclosed = \"open\"", Always{1}, nil},
 	} {
 		list := units(t, "[[control]]\nname = \"c\"\nsystems = [\"slats\"]\n"+c.rule+"\n")
@@ -102,7 +102,7 @@ func TestUnitsOfRules(t *testing.T) {
 		}
 	}
 	list := units(t, "[[control]]\nname = \"c\"\nopenings = [\"left\", \"right\"]\nrule = \"manual\"\n[[control]]\nname = \"d\"\nsystems = [\"sun\"]\nrule = \"follow\"\ndgp_limit = 0.4\n")
-	if list[0].Law != (Active{DefaultDeskWm2, 0, 1}) || list[1].Law != (Active{DefaultDeskWm2, 0, 2}) || list[2].Law != (Follow{}) || list[2].Glare == nil {
+	if list[0].Law != (Active{50, 0, 1}) || list[1].Law != (Active{50, 0, 2}) || list[2].Law != (Follow{}) || list[2].Glare == nil {
 		t.Errorf("by openings: got %+v", list)
 	}
 	ordered := units(t, "[[control]]\nname = \"c\"\nsystems = [\"slats\"]\nrule = \"glare\"\norder = [\"open\", \"shut\"]\n")[1]

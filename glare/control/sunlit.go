@@ -2,10 +2,6 @@ package control
 
 import "squint/glare/daylight"
 
-// DefaultFacadeWm2 is the threshold of FacadeSun, in W/m2. Source: ISO 13790:2008, clause 11.4.3,
-// shading is on while the irradiance of the surface is above it, from memory.
-const DefaultFacadeWm2 = 300
-
 // roundingH is far more than the rounding of times, and far less than a step.
 const roundingH = 1e-9
 

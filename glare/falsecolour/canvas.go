@@ -10,8 +10,8 @@ import (
 const (
 	Paper    = paper
 	Ink      = ink
-	Hairline = hairline
 	Quiet    = quiet
+	Hairline = hairline
 	LowSun   = 0xC8761B
 )
 

@@ -21,7 +21,7 @@ func TestCanvas(t *testing.T) {
 		c.Lines(4, Ink, []Place{{100, 50}, {200, 50}})
 		c.Dots(5, LowSun, Place{300, 50})
 		c.Rings(10, 4, Quiet, Place{400, 50})
-		c.Box(Place{500, 40}, Place{520, 60}, Hairline)
+		c.Box(Place{500, 40}, Place{520, 60}, hairline)
 		for _, e := range []struct {
 			what string
 			x, y float64
@@ -30,7 +30,7 @@ func TestCanvas(t *testing.T) {
 			{"line", 150, 50, Ink}, {"beside the line", 150, 54, Paper}, {"beyond its end", 205, 50, Paper},
 			{"dot", 303, 50, LowSun}, {"beside the dot", 307, 50, Paper},
 			{"ring", 410, 50, Quiet}, {"within the ring", 400, 50, Paper}, {"without it", 414, 50, Paper},
-			{"box", 510, 50, Hairline}, {"beside the box", 522, 50, Paper},
+			{"box", 510, 50, hairline}, {"beside the box", 522, 50, Paper},
 		} {
 			if got := c.Image.RGBAAt(int(e.x*k), int(e.y*k)); got != rgb(e.want) {
 				t.Errorf("%d wide, %s: got %v, want %v", width, e.what, got, rgb(e.want))

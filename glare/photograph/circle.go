@@ -31,7 +31,8 @@ type Fit struct {
 
 // FindCircle finds the edge between the picture and its dark surround. It needs
 // corners at least 5 times darker than the middle and a third of the edge; of a
-// circle with sharp edges it is good to 0.1 pixels (TestFindCircle).
+// circle with sharp edges it is good to 0.1 pixels (TestFindCircle). These
+// thresholds and those below are own choices.
 func FindCircle(im *luminance.Image) (Fit, error) {
 	s := sampler{im}
 	dark, bright := s.levels()

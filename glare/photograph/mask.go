@@ -4,6 +4,8 @@ import (
 	"errors"
 	"fmt"
 	"image"
+
+	"squint/scene/view"
 )
 
 // ErrMask is wrapped by the errors about masks.
@@ -17,7 +19,7 @@ type Mask struct {
 }
 
 // MaskOf hides what is dark (less than half of white) or transparent in a
-// picture of the photograph's own size, w x h pixels.
+// picture of the photograph's own size, w x h pixels. Half is our own choice.
 func MaskOf(name string, im image.Image, w, h int) (Mask, error) {
 	b := im.Bounds()
 	if b.Dx() != w || b.Dy() != h {
@@ -42,15 +44,8 @@ func MaskPolygon(name string, corners [][2]float64, w, h int) (Mask, error) {
 	hidden := false
 	for i := range m.Hidden {
 		x, y := float64(i%w)+0.5, float64(i/w)+0.5
-		in := false
-		for k, a := range corners {
-			b := corners[(k+1)%len(corners)]
-			if (a[1] > y) != (b[1] > y) && x < a[0]+(y-a[1])/(b[1]-a[1])*(b[0]-a[0]) {
-				in = !in
-			}
-		}
-		m.Hidden[i] = in
-		hidden = hidden || in
+		m.Hidden[i] = view.InPolygon(corners, x, y)
+		hidden = hidden || m.Hidden[i]
 	}
 	if !hidden {
 		return Mask{}, fmt.Errorf("%w %s: covers no pixel of the image, %d x %d; corners are in pixels from the top left", ErrMask, name, w, h)

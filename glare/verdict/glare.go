@@ -22,12 +22,7 @@ var ProtectionLevels = []ProtectionLevel{
 
 // ProtectionByName finds a level in ProtectionLevels.
 func ProtectionByName(name string) (ProtectionLevel, bool) {
-	for _, l := range ProtectionLevels {
-		if l.Name == name {
-			return l, true
-		}
-	}
-	return ProtectionLevel{}, false
+	return byName(ProtectionLevels, name, func(l ProtectionLevel) string { return l.Name })
 }
 
 // GlareHours is how often a view exceeds a daylight glare probability.

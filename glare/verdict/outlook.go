@@ -25,12 +25,7 @@ var ViewLevels = []ViewLevel{
 
 // ViewByName finds a level in ViewLevels.
 func ViewByName(name string) (ViewLevel, bool) {
-	for _, l := range ViewLevels {
-		if l.Name == name {
-			return l, true
-		}
-	}
-	return ViewLevel{}, false
+	return byName(ViewLevels, name, func(l ViewLevel) string { return l.Name })
 }
 
 // Holds says whether a point has the view: its sight angle (degrees) beyond the
@@ -66,12 +61,7 @@ var SunLevels = []SunLevel{{"minimum", 1.5}, {"medium", 3}, {"high", 4}}
 
 // SunByName finds a level in SunLevels.
 func SunByName(name string) (SunLevel, bool) {
-	for _, l := range SunLevels {
-		if l.Name == name {
-			return l, true
-		}
-	}
-	return SunLevel{}, false
+	return byName(SunLevels, name, func(l SunLevel) string { return l.Name })
 }
 
 // Sunlight judges the hours for which the sun, where it stands high enough,

@@ -1,6 +1,10 @@
 package project
 
-import "math"
+import (
+	"math"
+
+	"squint/scene/view"
+)
 
 // Cells divides the bounding box of an outline, less the band along it, into
 // equal cells of at most the spacing and returns the middles, by rising y and
@@ -30,24 +34,12 @@ func Cells(outline [][2]float64, spacingM, bandM float64, most int) (middles [][
 	for j := range across[1] {
 		for i := range across[0] {
 			x, y := lo[0]+(float64(i)+0.5)*step[0], lo[1]+(float64(j)+0.5)*step[1]
-			if inside(outline, x, y) && distance(outline, x, y) >= bandM-1e-9 {
+			if view.InPolygon(outline, x, y) && distance(outline, x, y) >= bandM-1e-9 {
 				middles = append(middles, [2]float64{x, y})
 			}
 		}
 	}
 	return middles, step[0] * step[1], across
-}
-
-// inside is the even-odd rule.
-func inside(poly [][2]float64, x, y float64) bool {
-	in := false
-	for i, a := range poly {
-		b := poly[(i+1)%len(poly)]
-		if (a[1] > y) != (b[1] > y) && x < (b[0]-a[0])*(y-a[1])/(b[1]-a[1])+a[0] {
-			in = !in
-		}
-	}
-	return in
 }
 
 // distance from a point to the outline.

@@ -11,11 +11,11 @@ import (
 // What a stated finish is usually off by, absolute: samples, dirt and batches
 // differ, and catalogues round. Common practice, no published source.
 const (
-	DiffuseTolerance  = 0.05 // diffuse reflectances, the ground's too
-	MirrorTolerance   = 0.03 // what mirrors and glossy surfaces throw on
-	GlazingTolerance  = 0.03 // transmittances of panes and diffusers
-	ClothTolerance    = 0.02 // what cloths scatter through
-	OpennessTolerance = 0.01 // what cloths pass straight
+	diffuseTolerance  = 0.05 // diffuse reflectances, the ground's too
+	mirrorTolerance   = 0.03 // what mirrors and glossy surfaces throw on
+	glazingTolerance  = 0.03 // transmittances of panes and diffusers
+	clothTolerance    = 0.02 // what cloths scatter through
+	opennessTolerance = 0.01 // what cloths pass straight
 )
 
 // Variation changes one group of a project's finishes within the tolerances,
@@ -28,7 +28,8 @@ type Variation struct {
 }
 
 // shifted is x moved by a tolerance, at most by half of itself, so that nothing
-// vanishes and nothing appears, and not beyond the most that is physical.
+// vanishes and nothing appears, and not beyond the most that is physical. Half is
+// our own choice.
 func shifted(x, by, most float64) float64 {
 	return max(0, min(x+math.Copysign(min(math.Abs(by), x/2), by), max(most, x)))
 }
@@ -42,10 +43,10 @@ func Variations(p *Project) []Variation {
 		by    string // %s stands for the sign
 		vary  func(p *Project, sign float64)
 	}{
-		{"diffuse reflectances", "%s" + decimal(DiffuseTolerance), varyDiffuse},
-		{"mirrors", "%s" + decimal(MirrorTolerance), varyMirrors},
-		{"glazing", "%s" + decimal(GlazingTolerance), varyGlazing},
-		{"cloths", "%s" + decimal(ClothTolerance) + ", openness %[1]s" + decimal(OpennessTolerance), varyCloths},
+		{"diffuse reflectances", "%s" + decimal(diffuseTolerance), varyDiffuse},
+		{"mirrors", "%s" + decimal(mirrorTolerance), varyMirrors},
+		{"glazing", "%s" + decimal(glazingTolerance), varyGlazing},
+		{"cloths", "%s" + decimal(clothTolerance) + ", openness %[1]s" + decimal(opennessTolerance), varyCloths},
 	} {
 		for _, c := range []struct {
 			change, mark string
@@ -74,7 +75,7 @@ func Variations(p *Project) []Variation {
 
 // changes is whether any value comes out other than it was.
 func (v Variation) changes(p *Project) bool {
-	return fmt.Sprint(varied(p)) != fmt.Sprint(varied(v.Of(p)))
+	return !slices.Equal(varied(p), varied(v.Of(p)))
 }
 
 // varied are the values that variations touch.
@@ -120,7 +121,7 @@ func (v Variation) Of(p *Project) *Project {
 }
 
 func varyDiffuse(p *Project, sign float64) {
-	by := sign * DiffuseTolerance
+	by := sign * diffuseTolerance
 	for i := range p.Ground.Reflectance {
 		p.Ground.Reflectance[i] = shifted(p.Ground.Reflectance[i], by, 1)
 	}
@@ -145,7 +146,7 @@ func varyDiffuse(p *Project, sign float64) {
 }
 
 func varyMirrors(p *Project, sign float64) {
-	by := sign * MirrorTolerance
+	by := sign * mirrorTolerance
 	for i := range p.Finishes {
 		switch f := &p.Finishes[i]; f.Type {
 		case "mirror":
@@ -169,7 +170,7 @@ func (f *Finish) parts(diffuse, lobe float64) {
 // too little, reflectance gives way. So two sides of one pane go on letting the
 // same through.
 func varyGlazing(p *Project, sign float64) {
-	by := sign * GlazingTolerance
+	by := sign * glazingTolerance
 	for i := range p.Finishes {
 		f := &p.Finishes[i]
 		switch {
@@ -202,8 +203,8 @@ func varyCloths(p *Project, sign float64) {
 		if c.back != nil {
 			most = max(most, *c.back)
 		}
-		*c.openness = shifted(*c.openness, sign*OpennessTolerance, 1-*c.scattered-most)
-		*c.scattered = shifted(*c.scattered, sign*ClothTolerance, 1-*c.openness-most)
+		*c.openness = shifted(*c.openness, sign*opennessTolerance, 1-*c.scattered-most)
+		*c.scattered = shifted(*c.scattered, sign*clothTolerance, 1-*c.openness-most)
 	}
 }
 

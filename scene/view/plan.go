@@ -43,8 +43,8 @@ func NewPlan(minX, maxX, minY, maxY, cutM float64, pixels int) (Plan, error) {
 // wholePixels covers a length; a millionth of a pixel is rounding.
 func wholePixels(length, edge float64) int { return max(1, int(math.Ceil(length/edge-1e-6))) }
 
-// PixelM is the edge of a pixel, m.
-func (p Plan) PixelM() float64 { return (p.MaxX - p.MinX) / float64(p.Width) }
+// pixelM is the edge of a pixel, m.
+func (p Plan) pixelM() float64 { return (p.MaxX - p.MinX) / float64(p.Width) }
 
 // Size is the image's size in pixels.
 func (p Plan) Size() (width, height int) { return p.Width, p.Height }
@@ -55,30 +55,11 @@ func (p Plan) Through(px, py float64) (org, dir r3.Vec, ok bool) {
 	if !(px >= 0 && py >= 0 && px <= float64(p.Width) && py <= float64(p.Height)) {
 		return r3.Vec{}, r3.Vec{}, false
 	}
-	e := p.PixelM()
+	e := p.pixelM()
 	return r3.Vec{X: p.MinX + px*e, Y: p.MaxY - py*e, Z: p.CutM}, r3.Vec{Z: -1}, true
 }
 
 // Pixel is Through the middle of pixel (ix, iy).
 func (p Plan) Pixel(ix, iy int) (org, dir r3.Vec, ok bool) {
 	return p.Through(float64(ix)+0.5, float64(iy)+0.5)
-}
-
-// Size is the image's size in pixels.
-func (v View) Size() (width, height int) { return v.Width, v.Height }
-
-// Through is Ray with the place where it begins: the eye.
-func (v View) Through(px, py float64) (org, dir r3.Vec, ok bool) {
-	dir, ok = v.Ray(px, py)
-	return v.Position, dir, ok
-}
-
-// Pixel is PixelRay with the eye; ok is false for pixels that have no solid
-// angle within the image.
-func (v View) Pixel(ix, iy int) (org, dir r3.Vec, ok bool) {
-	if v.SolidAngle(ix, iy) <= 0 {
-		return v.Position, r3.Vec{}, false
-	}
-	dir, ok = v.PixelRay(ix, iy)
-	return v.Position, dir, ok
 }

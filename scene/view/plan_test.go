@@ -11,8 +11,8 @@ func TestPlan(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	if p.Width != 120 || p.Height != 60 || math.Abs(p.PixelM()-0.1) > 1e-12 {
-		t.Errorf("got %d x %d pixels of %g m, want 120 x 60 of 0.1", p.Width, p.Height, p.PixelM())
+	if p.Width != 120 || p.Height != 60 || math.Abs(p.pixelM()-0.1) > 1e-12 {
+		t.Errorf("got %d x %d pixels of %g m, want 120 x 60 of 0.1", p.Width, p.Height, p.pixelM())
 	}
 	org, dir, ok := p.Through(0, 0)
 	if !ok || org.X != 0 || org.Y != 5 || org.Z != 1.7 || dir.Z != -1 {

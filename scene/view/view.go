@@ -210,6 +210,25 @@ func (v View) Project(dir r3.Vec) (px, py float64, ok bool) {
 	return v.LocalProject(v.Local(dir))
 }
 
+// Size is the image's size in pixels.
+func (v View) Size() (width, height int) { return v.Width, v.Height }
+
+// Through is Ray with the place where it begins: the eye.
+func (v View) Through(px, py float64) (org, dir r3.Vec, ok bool) {
+	dir, ok = v.Ray(px, py)
+	return v.Position, dir, ok
+}
+
+// Pixel is PixelRay with the eye; ok is false for pixels that have no solid
+// angle within the image.
+func (v View) Pixel(ix, iy int) (org, dir r3.Vec, ok bool) {
+	if v.SolidAngle(ix, iy) <= 0 {
+		return v.Position, r3.Vec{}, false
+	}
+	dir, ok = v.PixelRay(ix, iy)
+	return v.Position, dir, ok
+}
+
 func finite(a r3.Vec) bool {
 	s := a.X + a.Y + a.Z
 	return !math.IsNaN(s) && !math.IsInf(a.X, 0) && !math.IsInf(a.Y, 0) && !math.IsInf(a.Z, 0)

@@ -23,7 +23,7 @@ const (
 const minLayerSr = 10 * math.Pi / 180 * math.Pi / 180
 
 // flattest is the least level part of the outward normal of an opening that
-// counts for the view out: a roof light shows the sky only.
+// counts for the view out: a roof light shows the sky only. Own choice.
 const flattest = 0.1
 
 // View is what is seen of outdoors from one place, all around.

@@ -13,11 +13,11 @@ import (
 )
 
 // deepest is the number of gathered rays in a row that end nearer than a texel's
-// edge before the solution is read all the same.
+// edge before the solution is read all the same. Own choice.
 const deepest = 3
 
 // nearest bounds the distance that a gathered ray counts with in the mean that
-// the filter uses, m.
+// the filter uses, m. Own choice.
 const nearest = 0.02
 
 // walker holds one goroutine's scratch.

@@ -12,11 +12,11 @@ import (
 
 // lanes is the number of copies of a moment that are solved together, each with
 // random numbers of its own for sun and photons: a block has room for
-// surface.Width moments anyway.
+// surface.Width moments anyway. Own choice.
 const lanes = 16
 
 // texelPhotons is the number of photons over all batches that each of the
-// copies shoots at mirrors, for the light beyond the first surface.
+// copies shoots at mirrors, for the light beyond the first surface. Own choice.
 const texelPhotons = 1 << 14
 
 // noHour numbers the streams of moments that are no record of a year.

@@ -11,7 +11,7 @@ import (
 )
 
 // Photons of one pass where mirrors or glossy surfaces are, and where only panes
-// mirror the sun.
+// mirror the sun. Own choices.
 const (
 	passPhotons = 1 << 17
 	panePhotons = 1 << 15
@@ -127,7 +127,7 @@ func (m *photonMap) bucket(x, y, z int) int {
 func floor(x float64) int { return int(math.Floor(x)) }
 
 // Photons count on a surface within flatness radii of its plane and sameSide as
-// the cosine between the normals.
+// the cosine between the normals. Own choices.
 const (
 	flatness = 0.2
 	sameSide = 0.9

@@ -36,7 +36,8 @@ type Config struct {
 	Coarsen      float64 // of every texel edge; 0 means 1
 }
 
-// patchFactor divides the sky for the texels: 577 patches, as in a year.
+// patchFactor divides the sky for the texels: 577 patches, as in a year. Own
+// choice.
 const patchFactor = 2
 
 // Stage is a world with the exchange between the surfaces that cameras need.
@@ -53,14 +54,14 @@ const (
 	streamScout     = 41
 	streamPixel     = 42
 	streamSample    = 43
-	streamSunOn     = 44
 	streamPhotons   = 45
 	streamReference = 46
 	streamTile      = 47
 )
 
 // Scouts look about before the exchange is traced: scoutPixels lines of sight
-// at most a camera, scoutRays gathered from each surface that they meet.
+// at most a camera, scoutRays gathered from each surface that they meet. Own
+// choices.
 const (
 	scoutPixels = 1 << 14
 	scoutRays   = 6
