@@ -34,6 +34,7 @@ var order = []string{
 	"scene",
 	"scene/scenetest",
 	"scene/export",
+	"trace/parallel",
 	"trace/bvh",
 	"trace",
 	"trace/outlook",

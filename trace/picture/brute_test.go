@@ -11,6 +11,7 @@ import (
 	"squint/scene"
 	"squint/scene/view"
 	"squint/trace"
+	"squint/trace/parallel"
 )
 
 // plain renders with the path tracer, which knows no texels and averages over no
@@ -18,7 +19,7 @@ import (
 func plain(w *trace.World, m *scene.Moment, v view.View, samples int) (mean, se []float64) {
 	const batches = 32
 	mean, se = make([]float64, v.Width*v.Height), make([]float64, v.Width*v.Height)
-	_ = each(context.Background(), 2, len(mean), func(px int) {
+	_ = parallel.Each(context.Background(), 2, len(mean), func(px int) {
 		if v.SolidAngle(px%v.Width, px/v.Width) <= 0 {
 			return
 		}

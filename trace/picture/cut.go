@@ -7,6 +7,7 @@ import (
 
 	"squint/materials"
 	"squint/scene/view"
+	"squint/trace/parallel"
 )
 
 // leaveCuts takes pixels of a plan out of the picture where the cut goes through
@@ -19,7 +20,7 @@ func (l *Light) leaveCuts(ctx context.Context, f *film) error {
 		return nil
 	}
 	solid := make([]bool, len(f.pixel))
-	err := each(ctx, l.stage.cfg.Workers, f.height, func(y int) {
+	err := parallel.Each(ctx, l.stage.cfg.Workers, f.height, func(y int) {
 		for x := range f.width {
 			org, _, _ := plan.Pixel(x, y)
 			solid[y*f.width+x] = l.inSolid(org)

@@ -7,6 +7,7 @@ import (
 
 	"squint/materials/sampling"
 	"squint/trace"
+	"squint/trace/parallel"
 )
 
 // film collects samples by pixel.
@@ -44,7 +45,7 @@ func (l *Light) newFilm(ctx context.Context, c Camera, q Quantity) (*film, error
 	for b := range f.batch {
 		f.batch[b] = make([]cell, len(f.pixel))
 	}
-	err := each(ctx, l.stage.cfg.Workers, f.height, func(y int) {
+	err := parallel.Each(ctx, l.stage.cfg.Workers, f.height, func(y int) {
 		var found trace.Found
 		for x := range f.width {
 			r := &f.pixel[y*f.width+x]

@@ -6,6 +6,8 @@ import (
 	"slices"
 
 	"gonum.org/v1/gonum/spatial/r3"
+
+	"squint/trace/parallel"
 )
 
 // How gathered light is shared between pixels that see one flat surface: within
@@ -35,7 +37,7 @@ func (f *film) develop(workers int) *Picture {
 	}
 	share := reach * math.Min(1, math.Pow(settled/float64(p.Samples), 0.25))
 	// The work is short: a stop is heard of between rounds.
-	_ = each(context.Background(), workers, f.height, func(y int) {
+	_ = parallel.Each(context.Background(), workers, f.height, func(y int) {
 		for x := range f.width {
 			f.pixelOf(p, x, y, share)
 		}

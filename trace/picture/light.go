@@ -2,11 +2,10 @@ package picture
 
 import (
 	"context"
-	"sync"
-	"sync/atomic"
 
 	"squint/scene"
 	"squint/trace"
+	"squint/trace/parallel"
 	"squint/trace/surface"
 )
 
@@ -63,7 +62,7 @@ func (s *Stage) Light(ctx context.Context, m *scene.Moment) (*Light, error) {
 		}
 	}
 	near, whole := make([][]uint64, Batches), make([][]float32, Batches)
-	err := each(ctx, s.cfg.Workers, Batches, func(b int) {
+	err := parallel.Each(ctx, s.cfg.Workers, Batches, func(b int) {
 		lights := make([]surface.Light, 1)
 		t.Solve(bl, b, &lights[0], nil)
 		near[b] = t.LitNear(lights)
@@ -97,26 +96,4 @@ func overLanes(rows []surface.Row) []float32 {
 		out[i] = sum / lanes
 	}
 	return out
-}
-
-// each calls work for 0..n-1 from several goroutines, and stops when the
-// context ends.
-func each(ctx context.Context, workers, n int, work func(i int)) error {
-	var next atomic.Int64
-	var wg sync.WaitGroup
-	for range max(1, min(workers, n)) {
-		wg.Add(1)
-		go func() {
-			defer wg.Done()
-			for ctx.Err() == nil {
-				i := int(next.Add(1)) - 1
-				if i >= n {
-					return
-				}
-				work(i)
-			}
-		}()
-	}
-	wg.Wait()
-	return ctx.Err()
 }

@@ -8,6 +8,7 @@ import (
 
 	"squint/materials/sampling"
 	"squint/trace"
+	"squint/trace/parallel"
 )
 
 // Photons of one pass where mirrors or glossy surfaces are, and where only panes
@@ -67,7 +68,7 @@ func (l *Light) photons(ctx context.Context, pass, round int, all bool) (*photon
 	}
 	parts := make([][]photon, shots)
 	rays := &l.sun[pass%lanes]
-	err := each(ctx, l.stage.cfg.Workers, shots, func(k int) {
+	err := parallel.Each(ctx, l.stage.cfg.Workers, shots, func(k int) {
 		s := sampling.Stream4(l.stage.cfg.Seed, streamPhotons, uint64(pass), uint64(k)<<32|uint64(uint32(l.moment.Step)))
 		l.aim.Beams(n/shots, rays.Draw, &s, func(b *trace.Beam) {
 			if b.Hit == nil {

@@ -10,6 +10,7 @@ import (
 	"squint/materials"
 	"squint/materials/sampling"
 	"squint/trace"
+	"squint/trace/parallel"
 )
 
 // Quantity is what a picture shows.
@@ -122,7 +123,7 @@ func (l *Light) round(ctx context.Context, f *film) error {
 			return err
 		}
 	}
-	err := each(ctx, l.stage.cfg.Workers, f.height, func(y int) {
+	err := parallel.Each(ctx, l.stage.cfg.Workers, f.height, func(y int) {
 		w := &walker{Light: l}
 		w.shared.bright.brights = &l.bright
 		for x := range f.width {

@@ -3,8 +3,6 @@ package surface
 import (
 	"context"
 	"slices"
-	"sync"
-	"sync/atomic"
 
 	"gonum.org/v1/gonum/spatial/r3"
 
@@ -13,6 +11,7 @@ import (
 	"squint/scene"
 	"squint/scene/sky"
 	"squint/trace"
+	"squint/trace/parallel"
 )
 
 // Link says that light leaving diffusely from a texel side arrives: the
@@ -154,9 +153,11 @@ func (t *Transport) Trace(ctx context.Context, progress func(done, known int)) e
 		// In portions, so that what is found and not yet compressed stays small.
 		wave := t.sides[t.done:min(len(t.sides), t.done+wavePortion)]
 		out := make([][]Gathered, len(wave))
-		if err := parallel(ctx, t.Config.Workers, len(wave), func(found *trace.Found, i int) {
-			out[i] = t.traceSide(wave[i], found)
-		}); err != nil {
+		err := parallel.EachWith(ctx, t.Config.Workers, len(wave), func() func(int) {
+			var found trace.Found
+			return func(i int) { out[i] = t.traceSide(wave[i], &found) }
+		})
+		if err != nil {
 			return err
 		}
 		t.done += len(wave)
@@ -175,35 +176,6 @@ func (t *Transport) Trace(ctx context.Context, progress func(done, known int)) e
 	t.dropDark(direct)
 	t.near = t.findNeighbours()
 	return nil
-}
-
-// parallel runs work for 0..n-1 on several goroutines, each with its own
-// scratch, and stops when the context ends.
-func parallel(ctx context.Context, workers, n int, work func(found *trace.Found, i int)) error {
-	if workers < 1 {
-		workers = 1
-	}
-	const chunk = 16
-	var next atomic.Int64
-	var wg sync.WaitGroup
-	for range workers {
-		wg.Add(1)
-		go func() {
-			defer wg.Done()
-			var found trace.Found
-			for {
-				lo := int(next.Add(chunk)) - chunk
-				if lo >= n || ctx.Err() != nil {
-					return
-				}
-				for i := lo; i < min(lo+chunk, n); i++ {
-					work(&found, i)
-				}
-			}
-		}()
-	}
-	wg.Wait()
-	return ctx.Err()
 }
 
 func (t *Transport) traceSide(side int32, found *trace.Found) []Gathered {

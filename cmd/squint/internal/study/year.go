@@ -5,7 +5,6 @@ import (
 	"fmt"
 	"math"
 	"slices"
-	"sync"
 	"sync/atomic"
 
 	"squint/materials"
@@ -15,6 +14,7 @@ import (
 	"squint/trace/annual"
 	"squint/trace/bvh"
 	"squint/trace/coeff"
+	"squint/trace/parallel"
 	"squint/trace/surface"
 )
 
@@ -258,33 +258,12 @@ func traceSensors(ctx context.Context, t *surface.Transport, rec *annual.Receive
 
 // each runs work for 0..n-1 on the workers and reports progress.
 func each(ctx context.Context, opt Options, stage Stage, n int, work func(i int) error) error {
-	errs := make([]error, n)
-	var next, done atomic.Int64
-	var wg sync.WaitGroup
-	for range opt.Workers {
-		wg.Add(1)
-		go func() {
-			defer wg.Done()
-			for ctx.Err() == nil {
-				i := int(next.Add(1)) - 1
-				if i >= n {
-					return
-				}
-				errs[i] = work(i)
-				opt.Progress(stage, int(done.Add(1)), n)
-			}
-		}()
-	}
-	wg.Wait()
-	if err := ctx.Err(); err != nil {
+	var done atomic.Int64
+	return parallel.Try(ctx, opt.Workers, n, func(i int) error {
+		err := work(i)
+		opt.Progress(stage, int(done.Add(1)), n)
 		return err
-	}
-	for _, err := range errs {
-		if err != nil {
-			return err
-		}
-	}
-	return nil
+	})
 }
 
 // once adds a sentence that is not there yet.

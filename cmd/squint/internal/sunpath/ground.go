@@ -8,6 +8,7 @@ import (
 	"gonum.org/v1/gonum/spatial/r3"
 
 	"squint/trace"
+	"squint/trace/parallel"
 )
 
 // tones are the greys of the kinds as 0xRRGGBB: light where the sun may come
@@ -42,7 +43,7 @@ const fine = 2
 func newOutlook(ctx context.Context, w *trace.World, p Point, f fisheye, cx, cy, radius float64, workers int) (*outlook, error) {
 	n := int(math.Ceil(radius))*2 + 2
 	o := &outlook{x0: int(cx) - n/2, y0: int(cy) - n/2, n: n, seen: make([]sight, n*n*fine*fine), ok: make([]bool, n*n*fine*fine)}
-	if err := each(ctx, workers, n*fine, func(row int) error {
+	if err := parallel.Try(ctx, workers, n*fine, func(row int) error {
 		y := (float64(o.y0) + (float64(row)+.5)/fine - cy) / radius
 		for col := range n * fine {
 			x := (float64(o.x0) + (float64(col)+.5)/fine - cx) / radius

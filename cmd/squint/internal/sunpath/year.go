@@ -10,6 +10,7 @@ import (
 	"squint/glare/daylight"
 	"squint/scene/photometry"
 	"squint/trace"
+	"squint/trace/parallel"
 )
 
 // Input is what a year of suns needs.
@@ -69,7 +70,7 @@ type Year struct {
 // Compute looks for the sun at every step of the year.
 func Compute(ctx context.Context, in *Input) (*Year, error) {
 	days := make([][]Sample, yearDays/dayStep)
-	if err := each(ctx, in.Workers, len(days), func(i int) (err error) {
+	if err := parallel.Try(ctx, in.Workers, len(days), func(i int) (err error) {
 		days[i], err = in.day(i*dayStep+dayStep/2, stepMin)
 		return err
 	}); err != nil {
