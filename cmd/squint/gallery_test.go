@@ -325,8 +325,8 @@ func TestGuideShowsTheGallery(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	if n := strings.Count(string(page), "<img src=\"data:image/png;base64,"); n != len(want)+1 {
-		t.Errorf("the page has %d pictures, want %d", n, len(want)+1)
+	if n := strings.Count(string(page), "<img src=\"data:image/png;base64,"); n != len(want)+2 {
+		t.Errorf("the page has %d pictures, want those of the gallery, the demo's sheet and the plots of scale: %d", n, len(want)+2)
 	}
 	for _, topic := range guide.Names() {
 		if !strings.Contains(string(page), "<section id=\""+topic+"\"") {

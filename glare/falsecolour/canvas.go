@@ -8,10 +8,11 @@ import (
 
 // The sheet's colours as 0xRRGGBB, for other drawings in its manner.
 const (
-	Paper  = paper
-	Ink    = ink
-	Quiet  = quiet
-	LowSun = 0xC8761B
+	Paper    = paper
+	Ink      = ink
+	Quiet    = quiet
+	Hairline = hairline
+	LowSun   = 0xC8761B
 )
 
 // Canvas draws lines, dots and text as the figures have them, on a sheet of

@@ -63,7 +63,7 @@ var controlKeys = []key[Control]{
 	{spec{name: roomTable, about: "with rule manual: whose users operate it; else those of all rooms", refers: roomTable}, func(c *Control) any { return &c.Room }},
 	{spec{name: "dgp_limit", about: "with rule glare, or with another rule where it is written: closes further while a viewpoint in use is above it", in: within{lo: 0.1, hi: 1}, def: "0.4", source: "where glare begins to disturb, Wienold 2009, Proc. Building Simulation, from memory"}, func(c *Control) any { return &c.DGPLimit }},
 	{spec{name: "viewpoints", about: "with a dgp_limit: those that count; else all", refers: "viewpoint"}, func(c *Control) any { return &c.Viewpoints }},
-	{spec{name: "reopen", about: "with a dgp_limit: open again in the first hour in which the open state is below the limit less the hysteresis, or not before the next morning", choices: []string{ReopenByHysteresis, ReopenNextMorning}, def: `"hysteresis"`, source: own}, func(c *Control) any { return &c.Reopen }},
+	{spec{name: "reopen", about: "with a dgp_limit: open again in the first step in which the open state is below the limit less the hysteresis, or not before the next morning", choices: []string{ReopenByHysteresis, ReopenNextMorning}, def: `"hysteresis"`, source: own}, func(c *Control) any { return &c.Reopen }},
 	{spec{name: "hysteresis", about: "with reopen hysteresis, in DGP", in: within{hi: 0.09}, def: "0.05", source: "own choice, one class of EN 17037:2018, from memory"}, func(c *Control) any { return &c.Hysteresis }},
 }
 

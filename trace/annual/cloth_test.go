@@ -121,12 +121,38 @@ func discLeft(part float64) float64 {
 	return 1 - (math.Acos(part)-part*math.Sqrt(1-part*part))/math.Pi
 }
 
-// discShareAllow is what 32 scrambled Sobol points may be off in the share of
-// the disc on one side of a straight line. A (0,5,2) net in base 2 has 32 cells
-// of one point each in 8 columns and 4 rows; a line through the disc's square
-// crosses at most 8+4-1 of them, each holding its share of 1/32 to within its
-// whole, as a random part: 4 standard deviations of 11 even parts, sqrt(11/12)/32.
-var discShareAllow = 4 * math.Sqrt(11./12) / 32
+// discShareAllow is what 1,024 scrambled Sobol points may be off in the share of
+// the disc on one side of a straight line. A (0,10,2) net in base 2 has cells of
+// one point each in 32 columns and 32 rows; a line through the disc's square
+// crosses at most 32+32-1 of them, each holding its share of 1/1024 to within its
+// whole, as a random part: 4 standard deviations of 63 even parts,
+// sqrt(63/12)/1024.
+var discShareAllow = 4 * math.Sqrt(63./12) / 1024
+
+// TestSunHiddenAtTheRim: a sliver of the disc that is seen, or hidden, is found
+// though none of the few points that stand for the disc elsewhere need lie in it.
+// Its twin is the disc without its sliver.
+func TestSunHiddenAtTheRim(t *testing.T) {
+	for _, part := range []float64{-.93, .93} {
+		want := discLeft(part)
+		for hour := range 12 {
+			sun := sunMoment(t, 200+hour, deg(25), 0, veilNormalLx)
+			sun.Occupied = true
+			m := newModel(t, 4)
+			post(m, sun.Sun, 2, part)
+			share := 0.
+			for _, d := range sunSeen(t, m, sun, 81) {
+				share += d.OmegaSr / veilOmega
+			}
+			if math.Abs(share-want) > discShareAllow {
+				t.Errorf("edge at %+g of the radius, moment %d: got %.4f of the disc, want %.4f within %.4f", part, hour, share, want, discShareAllow)
+			}
+		}
+		if math.Abs(math.Round(want)-want) <= discShareAllow {
+			t.Errorf("twin: %.4f of the disc passes for %g", want, math.Round(want))
+		}
+	}
+}
 
 // TestSunHiddenInPart: in the mean over moments the share of the solid angle that
 // an edge leaves is the circle's, also behind cloth. The twin of judge enlarges

@@ -6,6 +6,7 @@ import (
 
 	"gonum.org/v1/gonum/spatial/r3"
 
+	"squint/materials"
 	"squint/materials/sampling"
 	"squint/scene/photometry"
 	"squint/trace"
@@ -226,19 +227,8 @@ func Discs(t *surface.Transport, eye r3.Vec, sees func(dir r3.Vec) bool, facets 
 	full := photometry.DiscSolidAngle(photometry.SunDiameterRad)
 	lum := photometry.DiscLuminance(rays.NormalLx, photometry.SunDiameterRad)
 	if sees(sun) {
-		var open int
-		var tau float64
-		var seen r3.Vec
-		for i, dir := range rays.Dirs() {
-			if rays.Visible(i) && !t.World.Blocked(eye, dir, math.Inf(1)) {
-				open++
-				seen = dir
-				tau += t.World.Straight(eye, dir, math.Inf(1))
-			}
-		}
-		if open > 0 && tau > 0 {
-			share := float64(open) / float64(len(rays.Dirs()))
-			out = append(out, Disc{Dir: sun, OmegaSr: full * share, Luminance: lum * tau / float64(open), Mirror: -1, Via: t.World.FirstPane(eye, seen)})
+		if share, tau, seen := discSeen(t, eye, sun, rays); share > 0 && tau > 0 {
+			out = append(out, Disc{Dir: sun, OmegaSr: full * share, Luminance: lum * tau, Mirror: -1, Via: t.World.FirstPane(eye, seen)})
 		}
 	}
 	first := len(out)
@@ -249,6 +239,54 @@ func Discs(t *surface.Transport, eye r3.Vec, sees func(dir r3.Vec) bool, facets 
 		}
 	}
 	return merge(out, first), images
+}
+
+// A disc that an edge crosses is looked at by finePoints lines of sight: by the
+// 32 that stand for it elsewhere a fiftieth of it was missed, which is 0.05 of
+// DGP where the rest is bright. rimPoints around its edge find those of which
+// the 32 see all or nothing. Own choices, measured against 4,096 lines.
+const (
+	rimPoints  = 12
+	finePoints = 1024
+)
+
+// discSeen is the share of the disc that nothing opaque hides, what is left of
+// its light there, and a direction in which it is seen.
+func discSeen(t *surface.Transport, eye, sun r3.Vec, rays *surface.SunRays) (share, tau float64, seen r3.Vec) {
+	open, looked := 0, 0
+	look := func(dir r3.Vec, hidden bool) {
+		looked++
+		if !hidden && !t.World.Blocked(eye, dir, math.Inf(1)) {
+			open++
+			seen = dir
+			tau += t.World.Straight(eye, dir, math.Inf(1))
+		}
+	}
+	for i, dir := range rays.Dirs() {
+		look(dir, !rays.Visible(i))
+	}
+	cut := open > 0 && open < looked
+	frame := materials.NewFrame(sun)
+	r, z := math.Sincos(photometry.SunDiameterRad / 2)
+	for i := 0; i < rimPoints && !cut; i++ {
+		y, x := math.Sincos(2 * math.Pi * float64(i) / rimPoints)
+		dir := frame.ToWorld(r3.Vec{X: r * x, Y: r * y, Z: z})
+		cut = (open > 0) == (t.Hidden(dir) || t.World.Blocked(eye, dir, math.Inf(1)))
+	}
+	if cut {
+		open, looked, tau = 0, 0, 0
+		// The last digits of the first point, which is random, scramble the rest.
+		scramble := uint32(math.Float64bits(rays.Dirs()[0].X))
+		for i := range uint32(finePoints) {
+			u, v := sampling.OwenSobol2(i, scramble)
+			dir := trace.ConeDirection(sun, photometry.SunDiameterRad/2, u, v)
+			look(dir, t.Hidden(dir))
+		}
+	}
+	if open == 0 {
+		return 0, 0, seen
+	}
+	return float64(open) / float64(looked), tau / float64(open), seen
 }
 
 // mergeWithin is the angle within which images in the same mirror are one

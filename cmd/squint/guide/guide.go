@@ -35,6 +35,7 @@ var topics = []Topic{
 	{"look", "luminance pictures of a moment, and plans"},
 	{"export", "the built scene as files for CAD and viewers"},
 	{"method", "how it is computed, in plain words"},
+	{"scale", "what large floors cost in time and memory"},
 	{"limits", "what this version does not do"},
 	{"cautions", "what can go wrong in the building itself"},
 	{"glossary", "the words of the trade that squint uses"},

@@ -17,9 +17,12 @@ import (
 // The gallery's pictures are drawn by go generate, a quarter of an hour on two
 // cores; pictures/demo/sheet.png is made by the command in text/look.md.
 //
+// pictures/scale holds what BenchmarkFloor of internal/study printed, and its plots.
+//
 //go:generate go run ./generate ../../../testdata/gallery pictures
+//go:generate go run ./generate/scale pictures/scale/measured.txt pictures/scale/scale.png
 
-//go:embed pictures/*.png pictures/demo/*.png
+//go:embed pictures/*.png pictures/demo/*.png pictures/scale/*.png
 var pictures embed.FS
 
 // Pictures are the names of the gallery's pictures, without ending, in order.
@@ -67,6 +70,8 @@ func figures(topic string) (list []figure, err error) {
 		}
 	case "look":
 		add("demo/sheet.png", "The demo's morning and noon with each of its designs, by the command above.", "Ten fisheye pictures of one desk, in false colours with one scale")
+	case "scale":
+		add("scale/scale.png", "One size varied at a time, the others small.", "Eight plots: CPU time and memory against viewpoints, sensors, hours and triangles; the page above has the numbers")
 	}
 	return list, err
 }

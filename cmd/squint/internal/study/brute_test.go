@@ -17,7 +17,6 @@ import (
 	"squint/scene/photometry"
 	"squint/trace"
 	"squint/trace/annual"
-	"squint/trace/coeff"
 )
 
 // TestAnnualAgainstBruteForce holds the annual run's DGP against pictures of
@@ -94,41 +93,46 @@ func spreadMoments(all []*scene.Moment, n int) []*scene.Moment {
 	return out
 }
 
-// bruteForce renders every moment with spp samples a pixel and returns DGP
-// with its jackknife error over 8 batches.
-func bruteForce(t *testing.T, in *Input, v scene.Viewpoint, moments []*scene.Moment, spp int) (dgp, se []float64) {
+// bruteBatches is the number of independent repetitions of a plain picture, and
+// brutePixels its width where it is to be the truth: twice the default.
+const (
+	bruteBatches = 8
+	brutePixels  = 192
+)
+
+// bruteImages are the means of some samples for every moment, batch and pixel.
+// Moments share paths.
+func bruteImages(t testing.TB, w *trace.World, v scene.Viewpoint, moments []*scene.Moment, pixels, samples int, seed uint64, workers int) [][bruteBatches][]float32 {
 	t.Helper()
-	cfg := coeff.EyeConfig{Pixels: 192, SamplesPerPixel: 8, Batches: 8, Seed: 1}
-	view, inside := fisheye(t, v, cfg.Pixels)
-	const batches = 8
-	images := make([][batches][]float32, len(moments))
+	view, inside := fisheye(t, v, pixels)
+	images := make([][bruteBatches][]float32, len(moments))
 	for i := range images {
 		for b := range images[i] {
-			images[i][b] = make([]float32, cfg.Pixels*cfg.Pixels)
+			images[i][b] = make([]float32, pixels*pixels)
 		}
 	}
 	var wg sync.WaitGroup
 	jobs := make(chan int)
-	for range runtime.NumCPU() {
+	for range workers {
 		wg.Add(1)
 		go func() {
 			defer wg.Done()
-			tr := trace.NewTracer(in.World, moments)
+			tr := trace.NewTracer(w, moments)
 			tr.Portals = true
 			out := make([]float64, len(moments))
 			for px := range jobs {
-				for b := range batches {
+				for b := range bruteBatches {
 					clear(out)
-					s := sampling.Stream4(77, 1, uint64(px), uint64(b))
-					for range spp / batches {
-						dir, ok := view.Ray(float64(px%cfg.Pixels)+s.Float64(), float64(px/cfg.Pixels)+s.Float64())
+					s := sampling.Stream4(seed, 1, uint64(px), uint64(b))
+					for range samples {
+						dir, ok := view.Ray(float64(px%pixels)+s.Float64(), float64(px/pixels)+s.Float64())
 						for !ok {
-							dir, ok = view.Ray(float64(px%cfg.Pixels)+s.Float64(), float64(px/cfg.Pixels)+s.Float64())
+							dir, ok = view.Ray(float64(px%pixels)+s.Float64(), float64(px/pixels)+s.Float64())
 						}
 						tr.Luminance(v.Position, dir, 1, &s, out)
 					}
 					for i := range out {
-						images[i][b][px] = float32(out[i] / float64(spp/batches))
+						images[i][b][px] = float32(out[i] / float64(samples))
 					}
 				}
 			}
@@ -139,6 +143,15 @@ func bruteForce(t *testing.T, in *Input, v scene.Viewpoint, moments []*scene.Mom
 	}
 	close(jobs)
 	wg.Wait()
+	return images
+}
+
+// bruteForce renders every moment with spp samples a pixel and returns DGP
+// with its jackknife error over 8 batches.
+func bruteForce(t *testing.T, in *Input, v scene.Viewpoint, moments []*scene.Moment, spp int) (dgp, se []float64) {
+	t.Helper()
+	view, _ := fisheye(t, v, brutePixels)
+	images := bruteImages(t, in.World, v, moments, brutePixels, spp/bruteBatches, 77, runtime.NumCPU())
 	field := glare.NewField(view)
 	var scratch glare.Scratch
 	for i, m := range moments {
@@ -148,25 +161,25 @@ func bruteForce(t *testing.T, in *Input, v scene.Viewpoint, moments []*scene.Mom
 			discs = append(discs, glare.Disc{Dir: view.Local(disc.Dir), OmegaSr: disc.OmegaSr, Luminance: disc.Luminance})
 		}
 		pooled := make([]float32, len(images[i][0]))
-		for b := range batches {
+		for b := range bruteBatches {
 			for px, l := range images[i][b] {
-				pooled[px] += l / batches
+				pooled[px] += l / bruteBatches
 			}
 		}
 		d, _ := glare.DGPOnly(field, pooled, discs, glare.Options{}, &scratch)
 		var s1, s2 float64
 		rest := make([]float32, len(pooled))
-		for b := range batches {
+		for b := range bruteBatches {
 			for px := range rest {
-				rest[px] = max(0, (pooled[px]*batches-images[i][b][px])/(batches-1))
+				rest[px] = max(0, (pooled[px]*bruteBatches-images[i][b][px])/(bruteBatches-1))
 			}
 			x, _ := glare.DGPOnly(field, rest, discs, glare.Options{}, &scratch)
 			s1 += x
 			s2 += x * x
 		}
-		mean := s1 / batches
+		mean := s1 / bruteBatches
 		dgp = append(dgp, d)
-		se = append(se, math.Sqrt(math.Max(0, s2/batches-mean*mean)*(batches-1)))
+		se = append(se, math.Sqrt(math.Max(0, s2/bruteBatches-mean*mean)*(bruteBatches-1)))
 	}
 	return dgp, se
 }

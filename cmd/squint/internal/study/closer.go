@@ -34,7 +34,7 @@ func (o *openSensors) records() map[int]bool {
 }
 
 // findOpen finds what is open within z standard errors.
-func (r *Result) findOpen(y *year, z float64) *openSensors {
+func (r *Result) findOpen(in *Input, y *year, z float64) *openSensors {
 	o := &openSensors{hours: map[int]map[int]bool{}, clear: map[int]map[int]bool{}, factor: map[int]bool{}}
 	first := 0
 	for i, w := range r.Scene.WorkPlanes {
@@ -44,7 +44,9 @@ func (r *Result) findOpen(y *year, z float64) *openSensors {
 			ofYear:   {E: r.spread(slices.Clone(y.light.E[first : first+n])), SE: r.spread(slices.Clone(y.light.StdErr[first : first+n])), Z: z},
 			ofFactor: daylight.FactorPlane(y.factors[first:first+n], y.factorE[first:first+n], z),
 		}
-		if y.clear != nil {
+		// Without a record of its hour a clear moment is of the first standing, which
+		// where glare decides need not be that of the daylight factors.
+		if y.clear != nil && (in.recorded(in.Clear) || in.operation == nil || !in.operation.glare) {
 			planes[ofClear] = daylight.Plane{E: y.clear.E[first : first+n], SE: y.clear.StdErr[first : first+n], Z: z}
 		}
 		open := map[int]bool{}
@@ -99,7 +101,7 @@ func (r *Result) lookCloser(ctx context.Context, in *Input, opt Options, y *year
 	size := in.Project.Simulation
 	var from noise
 	for round := 1; round <= refineRounds; round++ {
-		o := r.findOpen(y, z)
+		o := r.findOpen(in, y, z)
 		if len(o.sensors) == 0 {
 			return nil
 		}
@@ -185,17 +187,22 @@ func sensorsOf(in *Input, o *openSensors, size project.Simulation, round int) *I
 		records[m.Step] = true
 	}
 	sub.narrow(records, func(s *scene.Scene) *scene.Scene { return sensorsIn(s, o.sensors) })
-	if len(sub.Standings) == 0 && len(sub.Clear) > 0 { // at hours that the weather has dark
-		st := in.Standings[in.standingAt(sub.Clear[0].Step)]
-		st.Scene, st.Moments = sensorsIn(st.Scene, o.sensors), nil
-		sub.Standings = []Standing{st}
-	}
-	if len(o.factor) > 0 {
+	if len(o.factor) > 0 || !in.recorded(sub.Clear) {
 		st := in.factorStanding()
 		st.Scene, st.Moments = sensorsIn(st.Scene, o.sensors), nil
 		sub.Standings = append([]Standing{st}, sub.Standings...)
 	}
 	return &sub
+}
+
+// recorded is whether the year has a record of each moment's hour.
+func (in *Input) recorded(moments []*scene.Moment) bool {
+	for _, m := range moments {
+		if !slices.ContainsFunc(in.Climate.Moments, func(x *scene.Moment) bool { return x.Step == m.Step }) {
+			return false
+		}
+	}
+	return true
 }
 
 // factorStanding is the one whose daylight factors the year has.

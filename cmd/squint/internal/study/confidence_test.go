@@ -239,8 +239,8 @@ func (c *reliability) check(t *testing.T, far *reliability) {
 	}
 }
 
-// plain is the input with no closer looks.
-func plain(in *Input) *Input {
+// oneLook is the input with no closer looks.
+func oneLook(in *Input) *Input {
 	once := seeded(in, 0)
 	once.Project.Criteria.Glare = "none"
 	return once

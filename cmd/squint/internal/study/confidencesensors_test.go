@@ -58,7 +58,7 @@ func TestConfidenceOfSensors(t *testing.T) {
 		in.Scene.Viewpoints = nil
 		s := &in.Project.Simulation
 		s.TexelSamples, s.SensorSamples = 64, 1024
-		fine := plain(in)
+		fine := oneLook(in)
 		s = &fine.Project.Simulation
 		s.Batches, s.TexelSamples, s.SensorSamples = 32, 512, 16384
 		fines := seeds(t, fine, 1<<40, confidenceTruths)
@@ -67,7 +67,7 @@ func TestConfidenceOfSensors(t *testing.T) {
 			e, se := meanOf(fines, func(r *Result) []float32 { return r.Planes[k].E[0] })
 			truth[k].E, truth[k].StdErr = [][]float32{e}, [][]float32{se}
 		}
-		first := seeds(t, plain(in), 1, max(n/4, 4))
+		first := seeds(t, oneLook(in), 1, max(n/4, 4))
 		limits := nearLimits(truth, in.Clock)
 		for i := range limits {
 			in.Project.Limits = append(in.Project.Limits, limitAt(limits[i].lx))

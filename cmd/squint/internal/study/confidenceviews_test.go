@@ -20,7 +20,7 @@ func TestConfidenceOfViews(t *testing.T) {
 		in.Scene.WorkPlanes = nil
 		in.Climate.Moments = slices.DeleteFunc(in.Climate.Moments, func(m *scene.Moment) bool { return !m.Occupied })
 		in.Standings[0].Moments = in.Climate.Moments
-		fine := plain(in)
+		fine := oneLook(in)
 		s := &fine.Project.Simulation
 		s.FisheyePixels, s.TexelSamples, s.Photons = 96, 512, 20000
 		fines := seeds(t, fine, 1<<40, confidenceTruths)
@@ -43,7 +43,7 @@ func TestConfidenceOfViews(t *testing.T) {
 			}
 		}
 		idle(in, over)
-		first, runs := seeds(t, plain(in), 1, max(n/4, 4)), seeds(t, in, 1, n)
+		first, runs := seeds(t, oneLook(in), 1, max(n/4, 4)), seeds(t, in, 1, n)
 		for i := range truth.Views {
 			v := &truth.Views[i]
 			g := truth.glareHours(v, level.DGP, truthZ).Hours

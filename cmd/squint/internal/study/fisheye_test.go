@@ -11,7 +11,7 @@ import (
 )
 
 // fisheye is the view that coeff traces, made again from its definition.
-func fisheye(t *testing.T, v scene.Viewpoint, pixels int) (view.View, []int32) {
+func fisheye(t testing.TB, v scene.Viewpoint, pixels int) (view.View, []int32) {
 	t.Helper()
 	vw, err := view.New(v.Position, v.Direction, r3.Vec{Z: 1}, view.Equidistant, math.Pi, pixels, pixels)
 	if err != nil {
