@@ -1,6 +1,7 @@
 package study
 
 import (
+	"cmp"
 	"fmt"
 	"io/fs"
 	"slices"
@@ -60,8 +61,9 @@ func newOperation(in *Input, fsys fs.FS, workers int) (*operation, error) {
 	return o, nil
 }
 
-// standings are the combinations that were chosen, each with its moments, by
-// their labels; those of units that glare closes may change in rounds.
+// standings are the combinations that were chosen, each with its moments: the
+// most open one first, where it occurs, whose daylight factors stand for all, then
+// by their labels. Those of units that glare closes may change in rounds.
 func (o *operation) standings() ([]Standing, error) {
 	moments := map[control.Combination][]*scene.Moment{}
 	var order []control.Combination
@@ -83,14 +85,15 @@ func (o *operation) standings() ([]Standing, error) {
 		s.Moments = moments[c]
 		out = append(out, s)
 	}
+	open := o.built[o.plan.Open()].World
 	slices.SortFunc(out, func(a, b Standing) int {
 		switch {
-		case a.Label < b.Label:
+		case a.World == open:
 			return -1
-		case a.Label > b.Label:
+		case b.World == open:
 			return 1
 		}
-		return 0
+		return cmp.Compare(a.Label, b.Label)
 	})
 	return out, nil
 }

@@ -115,3 +115,25 @@ func replaceOnce(text, from, to string) string {
 	}
 	return strings.Replace(text, from, to, 1)
 }
+
+// TestOpenFactors: daylight factors are those of the most open position that
+// occurs, whatever its name: "drawn" comes before "raised". What follows the open
+// one does not change them.
+func TestOpenFactors(t *testing.T) {
+	of := func(more string) []float64 {
+		in := prepared(t, operatedRoom(operatedRoller+more))
+		in.Project.Criteria.Glare = "none"
+		return study(t, in, 2).Planes[0].Factor
+	}
+	open := of("")
+	operated := of("[[control]]\nname = \"noon\"\nsystems = [\"roller\"]\nrule = \"timetable\"\ntimetable = [{ from = \"09:00\", to = \"15:00\", state = \"drawn\" }]\n")
+	shut := of("[[control]]\nname = \"always\"\nsystems = [\"roller\"]\nrule = \"timetable\"\ntimetable = [{ state = \"drawn\" }]\n")
+	for i := range open {
+		if operated[i] != open[i] {
+			t.Errorf("sensor %d: got %g, want %g as with the roller up", i, operated[i], open[i])
+		}
+		if shut[i] > open[i]/2 {
+			t.Errorf("sensor %d: %g with the roller always down and %g with it up: the test sees nothing", i, shut[i], open[i])
+		}
+	}
+}
