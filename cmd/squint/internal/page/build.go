@@ -96,11 +96,12 @@ func (a *Archive) addYear(r *study.Result) {
 	pack(&p, "set", "u16", set)
 	a.Design.Days = a.add(&p)
 
-	var record, minute []uint16
+	var record []uint32 // steps of 5 minutes are more than 16 bits count
+	var minute []uint16
 	var sun []int16
 	var direct, sky []uint32
 	for _, m := range r.Climate.Moments {
-		record = append(record, uint16(m.Step))
+		record = append(record, uint32(m.Step))
 		minute = append(minute, uint16(m.Time.Hour()*60+m.Time.Minute()))
 		for _, x := range vec(m.Sun) {
 			sun = append(sun, int16(math.Round(x*32767)))
@@ -109,7 +110,7 @@ func (a *Archive) addYear(r *study.Result) {
 		sky = append(sky, uint32(math.Round(m.DiffuseLx)))
 	}
 	p = packer{}
-	pack(&p, "record", "u16", record)
+	pack(&p, "record", "u32", record)
 	pack(&p, "minute", "u16", minute)
 	pack(&p, "sun", "i16", sun)
 	pack(&p, "direct", "u32", direct)
