@@ -90,10 +90,7 @@ func shadingWords(r *study.Result) string {
 
 // exposureWords name ASE, which the standard wants with blinds open.
 func exposureWords(r *study.Result) string {
-	switch r.Planes[0].SDA.Shading {
-	case daylight.ByBlindRule, daylight.AsOperated:
-		return "ASE, as operated and not with blinds open"
-	case daylight.AsStanding:
+	if r.Planes[0].SDA.Shading == daylight.AsStanding {
 		return "ASE, so shaded and not with blinds open"
 	}
 	return "ASE"

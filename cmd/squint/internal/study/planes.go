@@ -2,6 +2,7 @@ package study
 
 import (
 	"math"
+	"slices"
 
 	"squint/glare/daylight"
 	"squint/glare/verdict"
@@ -51,8 +52,9 @@ type PlaneResult struct {
 // EN 17037:2018's minimum target.
 const daThresholdLx = 300
 
-// judgePlanes spreads the sensors' series over the year and counts.
-func (r *Result) judgePlanes(y *year) {
+// judgePlanes spreads the sensors' series over the year and counts. sun is that of
+// ASE, see openSun.
+func (r *Result) judgePlanes(y *year, sun [][]float32, shaded daylight.Shading) {
 	z := r.zSensors()
 	r.Settings.ZSensors = z
 	first := 0
@@ -61,12 +63,16 @@ func (r *Result) judgePlanes(y *year) {
 		p := PlaneResult{Plane: w, Asked: -1, Refined: y.looks[i]}
 		p.E = r.spread(y.light.E[first : first+n])
 		p.StdErr = r.spread(y.light.StdErr[first : first+n])
+		open := r.spread(slices.Clone(sun[first : first+n]))
 		p.Direct = r.spread(y.light.Direct[first : first+n])
 		if y.clear != nil {
 			p.Clear = daylight.Plane{E: y.clear.E[first : first+n], SE: y.clear.StdErr[first : first+n], Z: z}
 		}
 		p.Factor, p.FactorError = y.factors[first:first+n], y.factorE[first:first+n]
 		first += n
+		exposure := daylight.DefaultExposure
+		exposure.Shading = shaded
+		p.ASE = daylight.ASE(open, r.Clock, exposure, r.Climate.PerHour())
 		r.judgePlane(&p, z)
 		r.judgeFurther(&p, z)
 		r.Planes = append(r.Planes, p)
@@ -102,11 +108,9 @@ func (r *Result) judgePlane(p *PlaneResult, z float64) {
 	}
 	p.Factors = daylight.Factors(p.Factor)
 	plane := daylight.Plane{E: p.E, SE: p.StdErr, Z: z}
-	spatial, exposure := daylight.DefaultSpatial, daylight.DefaultExposure
+	spatial := daylight.DefaultSpatial
 	spatial.Shading = shading(r.Project)
-	exposure.Shading = spatial.Shading
 	p.SDA = daylight.SDA(plane, r.Clock, spatial, r.Climate.PerHour())
-	p.ASE = daylight.ASE(p.Direct, r.Clock, exposure, r.Climate.PerHour())
 	for k, l := range provisionLevels(r.Project) {
 		res := daylight.Provision(plane, r.Daylight, l)
 		v := verdict.Provision(p.Plane.Name, res)

@@ -3,6 +3,7 @@ package study
 import (
 	"fmt"
 	"math"
+	"slices"
 	"strings"
 	"testing"
 	"testing/fstest"
@@ -118,22 +119,37 @@ func replaceOnce(text, from, to string) string {
 
 // TestOpenFactors: daylight factors are those of the most open position that
 // occurs, whatever its name: "drawn" comes before "raised". What follows the open
-// one does not change them.
+// one does not change them. ASE is that without what is operated, but for sensors
+// that an edge of the sun's patch crosses, where it goes by the sun's middle.
 func TestOpenFactors(t *testing.T) {
-	of := func(more string) []float64 {
+	of := func(more string) *PlaneResult {
 		in := prepared(t, operatedRoom(operatedRoller+more))
 		in.Project.Criteria.Glare = "none"
-		return study(t, in, 2).Planes[0].Factor
+		return &study(t, in, 2).Planes[0]
 	}
 	open := of("")
 	operated := of("[[control]]\nname = \"noon\"\nsystems = [\"roller\"]\nrule = \"timetable\"\ntimetable = [{ from = \"09:00\", to = \"15:00\", state = \"drawn\" }]\n")
 	shut := of("[[control]]\nname = \"always\"\nsystems = [\"roller\"]\nrule = \"timetable\"\ntimetable = [{ state = \"drawn\" }]\n")
-	for i := range open {
-		if operated[i] != open[i] {
-			t.Errorf("sensor %d: got %g, want %g as with the roller up", i, operated[i], open[i])
+	sunny := 0.0
+	for i := range open.Factor {
+		if operated.Factor[i] != open.Factor[i] {
+			t.Errorf("sensor %d: got %g, want %g as with the roller up", i, operated.Factor[i], open.Factor[i])
 		}
-		if shut[i] > open[i]/2 {
-			t.Errorf("sensor %d: %g with the roller always down and %g with it up: the test sees nothing", i, shut[i], open[i])
+		if shut.Factor[i] > open.Factor[i]/2 {
+			t.Errorf("sensor %d: %g with the roller always down and %g with it up: the test sees nothing", i, shut.Factor[i], open.Factor[i])
 		}
+		sunny += open.ASE.SensorHours[i]
+		for _, p := range []*PlaneResult{operated, shut} {
+			if off := math.Abs(p.ASE.SensorHours[i] - open.ASE.SensorHours[i]); off > 2 {
+				t.Errorf("sensor %d: ASE counts %g hours with a roller that is operated, want %g as without", i, p.ASE.SensorHours[i], open.ASE.SensorHours[i])
+			}
+		}
+	}
+	most := float32(0)
+	for _, e := range shut.Direct {
+		most = max(most, slices.Max(e))
+	}
+	if sunny < 20 || most > 5000 {
+		t.Errorf("%g hours of sun in all, %g lx behind the roller: the test sees nothing", sunny, most)
 	}
 }

@@ -296,7 +296,11 @@ func Run(ctx context.Context, in *Input, opt Options) (*Result, error) {
 	}
 	r.judgeViews(y)
 	r.judgeAutonomy()
-	r.judgePlanes(y)
+	sun, err := in.openSun(ctx, opt, y)
+	if err != nil {
+		return nil, err
+	}
+	r.judgePlanes(y, sun, in.exposureShading())
 	if err := r.judgeViewsOut(ctx, in, opt); err != nil {
 		return nil, err
 	}
