@@ -2,7 +2,7 @@ package study
 
 import (
 	"fmt"
-	"math"
+	"os"
 	"testing"
 )
 
@@ -16,32 +16,24 @@ func steeper(size, cost []float64) float64 {
 	return last / first
 }
 
-// Bounds of the laws. Bytes allocated stand for rows, samples and frames and are
-// nearly free of noise: slices that grow by a quarter at a time are the 1.3. CPU
-// time is not: 1.6 is what busy neighbours on the same core may add.
-const (
-	mostSteeper = 1.3
-	mostSlower  = 1.6
-)
+// mostSteeper bounds it for bytes allocated, which stand for rows, samples and
+// frames and are nearly free of noise: slices that grow by a quarter at a time are
+// the 1.3. CPU time is a matter for BenchmarkFloor.
+const mostSteeper = 1.3
 
-// broken tells what of a linear law does not hold.
-func broken(size, bytes, seconds []float64) (problems []string) {
+// broken tells whether a linear law of memory does not hold.
+func broken(size, bytes []float64) error {
 	if s := steeper(size, bytes); s > mostSteeper {
-		problems = append(problems, fmt.Sprintf("memory rises %.2f times faster at the end than at the beginning, want at most %g", s, mostSteeper))
+		return fmt.Errorf("memory rises %.2f times faster at the end than at the beginning, want at most %g", s, mostSteeper)
 	}
-	n := len(size) - 1
-	if s := seconds[n] / seconds[0] / (size[n] / size[0]); s > mostSlower {
-		problems = append(problems, fmt.Sprintf("the last takes %.2f times the CPU time that its size explains, want at most %g", s, mostSlower))
-	}
-	return problems
+	return nil
 }
 
-// TestFloorLaws: cost grows no worse than linearly with viewpoints, sensors and
-// hours. With triangles neither the number of texel sides nor that of what is
-// allocated grows, and CPU time as their logarithm.
+// TestFloorLaws: what is allocated grows no worse than linearly with viewpoints,
+// sensors and hours. With triangles the number of texel sides hardly grows.
 func TestFloorLaws(t *testing.T) {
-	if testing.Short() {
-		t.Skip("takes half a minute")
+	if os.Getenv("SQUINT_LONG") == "" {
+		t.Skip("takes half a minute; set SQUINT_LONG=1, as .ci/run does")
 	}
 	tiny := floor{triangles: 12000, viewM: 30, sensorM: 6, days: 60, simulation: `fisheye_pixels = 32
 samples_per_pixel = 8
@@ -52,16 +44,16 @@ photons = 64
 `}
 	linear := func(name string, sizes []float64, set func(f *floor, x float64), size func(c floorCost) int) {
 		t.Run(name, func(t *testing.T) {
-			var at, bytes, seconds []float64
+			var at, bytes []float64
 			for _, x := range sizes {
 				f := tiny
 				set(&f, x)
 				c, _ := f.measure(t, Options{Workers: 1, Bare: true})
-				at, bytes, seconds = append(at, float64(size(c))), append(bytes, float64(c.bytes)), append(seconds, c.prepare+c.run)
+				at, bytes = append(at, float64(size(c))), append(bytes, float64(c.bytes))
 				t.Logf("%s %5.0f: %7.1f MiB allocated, %d texel sides, %.2f CPU s", name, at[len(at)-1], float64(c.bytes)/(1<<20), c.sides, c.prepare+c.run)
 			}
-			for _, p := range broken(at, bytes, seconds) {
-				t.Error(p)
+			if err := broken(at, bytes); err != nil {
+				t.Error(err)
 			}
 		})
 	}
@@ -78,27 +70,17 @@ photons = 64
 		if s := float64(many.sides) / float64(few.sides); s > 1.2 {
 			t.Errorf("texel sides: got %.2f times as many, want at most 1.2", s)
 		}
-		// The depth of the search trees.
-		law := math.Log(float64(many.triangles)) / math.Log(float64(few.triangles))
-		if s := many.run / few.run; s > mostSlower*law {
-			t.Errorf("CPU time: got %.2f times, want at most %.2f, the logarithms' ratio %.2f and %g", s, mostSlower*law, law, mostSlower)
-		}
 	})
 }
 
-// Twin: a part that grows with the square is found, a fixed part and noise of a
-// tenth are not.
+// Twin: a part that grows with the square is found, a fixed part is not.
 func TestFloorLawsFindSquares(t *testing.T) {
 	size := []float64{16, 40, 80}
 	at := func(f func(x float64) float64) []float64 { return []float64{f(size[0]), f(size[1]), f(size[2])} }
-	linear, square := at(func(x float64) float64 { return 100 + x }), at(func(x float64) float64 { return 100 + x*x })
-	if p := broken(size, linear, []float64{1, 2.5, 5.5}); len(p) > 0 {
-		t.Errorf("linear: got %q, want nothing", p)
+	if err := broken(size, at(func(x float64) float64 { return 100 + x })); err != nil {
+		t.Errorf("linear: got %v, want nothing", err)
 	}
-	if p := broken(size, square, linear); len(p) != 1 {
-		t.Errorf("memory by squares: got %q, want one problem", p)
-	}
-	if p := broken(size, linear, at(func(x float64) float64 { return x * x })); len(p) != 1 {
-		t.Errorf("time by squares: got %q, want one problem", p)
+	if err := broken(size, at(func(x float64) float64 { return 100 + x*x })); err == nil {
+		t.Error("memory by squares: got nothing, want an error")
 	}
 }
