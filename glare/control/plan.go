@@ -191,6 +191,17 @@ func (p *Plan) close(step int, states, held []int, o Observed) bool {
 	return moved
 }
 
-// Open is the combination in which every unit is in its first state, the most
-// open one.
-func (p *Plan) Open() Combination { return combination(make([]int, len(p.units))) }
+// Open is the most open combination, see Open.
+func (p *Plan) Open() Combination { return Open(p.units) }
+
+// Open is the most open combination that units can stand in: each in its first
+// state, but for those that always stand in another.
+func Open(units []Unit) Combination {
+	states := make([]int, len(units))
+	for i, u := range units {
+		if a, ok := u.Law.(Always); ok && u.Glare == nil {
+			states[i] = a.State
+		}
+	}
+	return combination(states)
+}

@@ -40,9 +40,9 @@ func (r *Result) findOpen(in *Input, y *year, z float64) *openSensors {
 	for i, w := range r.Scene.WorkPlanes {
 		asked := r.asked(w.Room)
 		n := len(w.Sensors)
-		planes := map[series]daylight.Plane{
-			ofYear:   {E: r.spread(slices.Clone(y.light.E[first : first+n])), SE: r.spread(slices.Clone(y.light.StdErr[first : first+n])), Z: z},
-			ofFactor: daylight.FactorPlane(y.factors[first:first+n], y.factorE[first:first+n], z),
+		planes := map[series]daylight.Plane{ofFactor: daylight.FactorPlane(y.factors[first:first+n], y.factorE[first:first+n], z)}
+		if slices.ContainsFunc(slices.Concat(asked...), func(c condition) bool { return c.of == ofYear }) {
+			planes[ofYear] = daylight.Plane{E: r.spread(slices.Clone(y.light.E[first : first+n])), SE: r.spread(slices.Clone(y.light.StdErr[first : first+n])), Z: z}
 		}
 		// Without a record of its hour a clear moment is of the first standing, which
 		// where glare decides need not be that of the daylight factors.
@@ -134,8 +134,12 @@ func (r *Result) lookCloser(ctx context.Context, in *Input, opt Options, y *year
 			y.looks[i] = round
 		}
 		first := in.Project.Simulation
-		r.Notes = append(r.Notes, fmt.Sprintf("look %d: %s of %s lay too near a limit and were computed again with %d times the rays and %d times the samples of surfaces.", round+1,
-			count(len(o.records()), "hour"), count(len(o.sensors), "sensor"), size.SensorSamples/first.SensorSamples, size.TexelSamples/first.TexelSamples))
+		what := count(len(o.sensors), "sensor")
+		if n := len(o.records()); n > 0 { // else daylight factors or a clear sky alone
+			what = count(n, stepWord(in.Climate)) + " of " + what
+		}
+		r.Notes = append(r.Notes, fmt.Sprintf("look %d: %s lay too near a limit and were computed again with %d times the rays and %d times the samples of surfaces.", round+1,
+			what, size.SensorSamples/first.SensorSamples, size.TexelSamples/first.TexelSamples))
 	}
 	return nil
 }
@@ -208,10 +212,7 @@ func (in *Input) recorded(moments []*scene.Moment) bool {
 // factorStanding is the one whose daylight factors the year has.
 func (in *Input) factorStanding() Standing {
 	if o := in.operation; o != nil && o.glare {
-		if o.openYear != nil {
-			return o.built[o.plan.Open()]
-		}
-		return in.Standings[in.standingAt(in.Climate.Moments[0].Step)]
+		return o.built[o.factorsOf]
 	}
 	return in.Standings[0]
 }

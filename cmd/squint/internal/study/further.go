@@ -174,6 +174,9 @@ func (r *Result) judgeLimits() {
 				if l.Metric == project.LimitEye {
 					e, se, v.Unit = w.Ev, w.EvErr, " lx"
 				}
+				if l.Metric == project.LimitDGP { // the pixels' error too, as for the levels
+					se = w.widened(s.Z)
+				}
 				s.E, s.SE = append(s.E, e), append(s.SE, se)
 				hours, _ := r.hoursOf(l.Hours, r.UseOf(w.Viewpoint.Room).Hours)
 				each = append(each, hours)

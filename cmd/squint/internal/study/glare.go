@@ -99,8 +99,8 @@ type Worst struct {
 	InsideOf *coeff.Eye
 }
 
-// causeFrom is the DGP from which an hour's cause is looked for, and the limit
-// next to which errors are found with all care: the strictest level's. Source: EN 17037:2018 annex E.
+// causeFrom is the DGP from which an hour's cause is looked for: the strictest
+// level's limit. Source: EN 17037:2018 annex E.
 const causeFrom = 0.35
 
 // glareSink turns frames into series as they come.
@@ -118,6 +118,7 @@ type glareSink struct {
 	cells map[string][]int // by room and step; nil: one for all
 	used  [][]bool         // by view and step; nil: eyes are open at every moment
 	keep  func(view, hour int) bool
+	near  float64          // the DGP next to which errors are found with all care
 	tops  []map[int]*Worst // by view and cell
 }
 
@@ -163,7 +164,7 @@ func newGlareSink(in *Input, workers int) *glareSink {
 	n := len(in.Scene.Viewpoints)
 	g := &glareSink{in: in, views: make([]ViewResult, n), mu: make([]sync.Mutex, n),
 		cause: make([]map[Cause]int16, n), work: make([]sinkScratch, workers), tops: make([]map[int]*Worst, n)}
-	g.opt = sourceOptions(in.Project.Criteria)
+	g.opt, g.near = sourceOptions(in.Project.Criteria), lowestLimit(in.Project)
 	for i := range g.views {
 		v := &g.views[i]
 		v.Viewpoint = in.Scene.Viewpoints[i]
@@ -184,6 +185,20 @@ func newGlareSink(in *Input, workers int) *glareSink {
 		g.cause[i], g.tops[i] = map[Cause]int16{}, map[int]*Worst{}
 	}
 	return g
+}
+
+// lowestLimit is the lowest DGP at which something is judged: the strictest
+// level's, or that of a limit of the project's own.
+func lowestLimit(p *project.Project) float64 {
+	low := causeFrom
+	for _, l := range p.Limits {
+		for _, bound := range []*float64{l.AtLeast, l.AtMost} {
+			if l.Metric == project.LimitDGP && bound != nil {
+				low = min(low, *bound)
+			}
+		}
+	}
+	return low
 }
 
 // sourceOptions translates the project's rule for sources of glare.
@@ -210,7 +225,7 @@ func (g *standingSink) take(worker int, f *annual.Frame) {
 		return
 	}
 	w.discs = toView(w.discs[:0], e.View, f.Discs)
-	dgp, ev, se, evErr := glare.Pooled(g.field, f.Mean, f.Batch, w.discs, g.opt, causeFrom, &w.scratch)
+	dgp, ev, se, evErr := glare.Pooled(g.field, f.Mean, f.Batch, w.discs, g.opt, g.near, &w.scratch)
 	v.DGP[h], v.Ev[h], v.StdErr[h], v.EvErr[h] = float32(dgp), float32(ev), float32(se), float32(evErr)
 	v.InRange[h] = glare.InRange(dgp, ev)
 	v.Coarse[h] = float32(g.atHalf(w, e, f.Mean))

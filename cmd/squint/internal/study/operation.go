@@ -16,19 +16,20 @@ import (
 
 // operation is how the systems that move stand over the year.
 type operation struct {
-	in       *Input
-	fsys     fs.FS
-	workers  int
-	units    []control.Unit
-	steps    []control.Step // of the climate's moments
-	plan     *control.Plan
-	moving   []int        // units that do not stand the whole year in one state
-	glare    bool         // some close for glare: their states show in rounds
-	open     *trace.World // everything in its most open state
-	built    map[control.Combination]Standing
-	facades  map[string]*facade           // by opening
-	openYear *look                        // of the most open combination, where it was computed
-	direct   map[int]map[string][]float32 // by step and group of openings
+	in        *Input
+	fsys      fs.FS
+	workers   int
+	units     []control.Unit
+	steps     []control.Step // of the climate's moments
+	plan      *control.Plan
+	moving    []int        // units that do not stand the whole year in one state
+	glare     bool         // some close for glare: their states show in rounds
+	open      *trace.World // everything in its most open state
+	built     map[control.Combination]Standing
+	facades   map[string]*facade           // by opening
+	openYear  *look                        // with everything open, where it was computed
+	factorsOf control.Combination          // whose daylight factors the year has, where glare decides
+	direct    map[int]map[string][]float32 // by step and group of openings
 }
 
 // maxStandings bounds the scenes of a study: each is traced on its own.
@@ -49,7 +50,7 @@ func newOperation(in *Input, fsys fs.FS, workers int) (*operation, error) {
 		return nil, nil
 	}
 	o.steps = control.Steps(in.Climate.Moments, in.Calendar)
-	open, err := o.stand(control.Combination(make([]byte, len(o.units))))
+	open, err := o.stand(control.Open(o.units))
 	if err != nil {
 		return nil, err
 	}
@@ -85,7 +86,7 @@ func (o *operation) standings() ([]Standing, error) {
 		s.Moments = moments[c]
 		out = append(out, s)
 	}
-	open := o.built[o.plan.Open()].World
+	open := o.built[o.mostOpen(order)].World
 	slices.SortFunc(out, func(a, b Standing) int {
 		switch {
 		case a.World == open:
@@ -96,6 +97,21 @@ func (o *operation) standings() ([]Standing, error) {
 		return cmp.Compare(a.Label, b.Label)
 	})
 	return out, nil
+}
+
+// mostOpen is the combination of the list whose units are the fewest states from
+// being open.
+func (o *operation) mostOpen(list []control.Combination) control.Combination {
+	open := o.plan.Open()
+	shut := func(c control.Combination) (n int) {
+		for k := range o.units {
+			n += max(c.State(k)-open.State(k), open.State(k)-c.State(k))
+		}
+		return n
+	}
+	return slices.MinFunc(list, func(a, b control.Combination) int {
+		return cmp.Or(cmp.Compare(shut(a), shut(b)), cmp.Compare(a, b))
+	})
 }
 
 // stand is the scene of a combination, without moments.

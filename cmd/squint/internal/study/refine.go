@@ -62,7 +62,10 @@ func (r *Result) refine(ctx context.Context, in *Input, opt Options, y *year) er
 			to, from := &y.glare.views[i], &closer.glare.views[k]
 			for _, h := range hours[k] {
 				to.DGP[h], to.StdErr[h], to.Ev[h], to.EvErr[h], to.InRange[h] = from.DGP[h], from.StdErr[h], from.Ev[h], from.EvErr[h], from.InRange[h]
-				to.Coarse[h], to.Bias[h] = from.Coarse[h], from.Bias[h]
+				to.Coarse[h], to.Bias[h], to.Cause[h] = from.Coarse[h], from.Bias[h], -1
+				if c := from.Cause[h]; c >= 0 {
+					to.Cause[h] = y.glare.causeID(i, from.Causes[c])
+				}
 			}
 			to.Refined = round
 			pictures[i] = append([]*Worst{from.Worst}, pictures[i]...)

@@ -61,3 +61,15 @@ func (v *ViewResult) judgeResolution() {
 		v.Bias[h] = float32(bias)
 	}
 }
+
+// widened are the standard errors of DGP that make z of them as wide as those of
+// the samples and the view's bias together; 0 in the dark.
+func (v *ViewResult) widened(z float64) []float32 {
+	out := make([]float32, len(v.StdErr))
+	for h, se := range v.StdErr {
+		if out[h] = se; v.DGP[h] != 0 || se != 0 {
+			out[h] = se + v.Bias[h]/float32(z)
+		}
+	}
+	return out
+}

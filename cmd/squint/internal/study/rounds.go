@@ -15,7 +15,12 @@ import (
 func operatedYear(ctx context.Context, in *Input, opt Options, r *Result) (*year, error) {
 	o := in.operation
 	if o == nil || !o.glare {
-		return computeYear(ctx, in, opt, r)
+		opt.anyWorst = true // found here, where it is not kept
+		y, err := computeYear(ctx, in, opt, r)
+		if err != nil {
+			return nil, err
+		}
+		return y, y.worstHours(ctx, in, opt, y.allViews(), func(view, _ int) []*Worst { return []*Worst{y.glare.views[view].Worst} })
 	}
 	looks := map[control.Combination]*look{}
 	for needs := o.plan.Needs(); len(needs) > 0; needs = o.plan.Needs() {
@@ -154,11 +159,14 @@ func (o *operation) settled(ctx context.Context, looks map[control.Combination]*
 		}
 		whole.adopt(looks[c].year, o.in, moments)
 	}
-	// Daylight factors are those with everything open, where that was computed.
-	if l := looks[o.plan.Open()]; l != nil {
-		whole.factors, whole.factorE = l.year.factors, l.year.factorE
-		o.openYear = l
+	// Daylight factors are those of the most open combination that was computed.
+	var known []control.Combination
+	for c := range looks {
+		known = append(known, c)
 	}
+	o.factorsOf = o.mostOpen(known)
+	whole.factors, whole.factorE = looks[o.factorsOf].year.factors, looks[o.factorsOf].year.factorE
+	o.openYear = looks[o.plan.Open()]
 	whole.adoptClear(o, looks, chosen)
 	if err := o.reshoot(ctx, chosen, opt); err != nil {
 		return nil, err
@@ -168,11 +176,7 @@ func (o *operation) settled(ctx context.Context, looks map[control.Combination]*
 	for i, c := range chosen {
 		at[o.in.Climate.Moments[i].Step] = c
 	}
-	all := make([]int, len(whole.glare.views))
-	for i := range all {
-		all[i] = i
-	}
-	return whole, whole.worstHours(ctx, o.in, opt, all, func(view, hour int) []*Worst {
+	return whole, whole.worstHours(ctx, o.in, opt, whole.allViews(), func(view, hour int) []*Worst {
 		return []*Worst{looks[at[hour]].year.glare.views[view].Worst}
 	})
 }

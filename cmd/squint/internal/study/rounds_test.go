@@ -130,8 +130,14 @@ func TestOpenFactors(t *testing.T) {
 	open := of("")
 	operated := of("[[control]]\nname = \"noon\"\nsystems = [\"roller\"]\nrule = \"timetable\"\ntimetable = [{ from = \"09:00\", to = \"15:00\", state = \"drawn\" }]\n")
 	shut := of("[[control]]\nname = \"always\"\nsystems = [\"roller\"]\nrule = \"timetable\"\ntimetable = [{ state = \"drawn\" }]\n")
+	// Another cloth that is always down is no reason to take the roller for drawn.
+	const voile = "[[roller]]\nname = \"voile\"\nopening = \"window\"\nposition = \"outside\"\nopenness = 0.3\ndiffuse_transmittance = 0.4\nreflectance = 0.3\ndrawn = true\n"
+	veiled, both := of(voile), of(voile+"[[control]]\nname = \"noon\"\nsystems = [\"roller\"]\nrule = \"timetable\"\ntimetable = [{ from = \"09:00\", to = \"15:00\", state = \"drawn\" }]\n")
 	sunny := 0.0
 	for i := range open.Factor {
+		if both.Factor[i] != veiled.Factor[i] {
+			t.Errorf("sensor %d: got %g behind a fixed cloth, want %g as with the roller up", i, both.Factor[i], veiled.Factor[i])
+		}
 		if operated.Factor[i] != open.Factor[i] {
 			t.Errorf("sensor %d: got %g, want %g as with the roller up", i, operated.Factor[i], open.Factor[i])
 		}

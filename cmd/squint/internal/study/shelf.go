@@ -44,7 +44,7 @@ func newShelf(in *Input, k int, opt Options) *shelf {
 	}
 	for i, v := range s.st.Scene.Viewpoints {
 		x := &viewRecord{}
-		load(s, digest("viewpoint", room, v.Position, v.Direction, sourceOptions(in.Project.Criteria)), x, &x.Key)
+		load(s, digest("viewpoint", room, v.Position, v.Direction, sourceOptions(in.Project.Criteria), lowestLimit(in.Project)), x, &x.Key)
 		s.views = append(s.views, x)
 		s.missingView(i)
 	}
@@ -159,9 +159,7 @@ func (s *shelf) compute(ctx context.Context, r *Result) error {
 		opt.keep = func(j, h int) bool { return s.opt.keep(s.lackViews[j], h) }
 	}
 	if opt.shots != nil {
-		all := newShotPlan(&sub)
-		all.pixels = opt.shots.pixels
-		opt.shots = all
+		opt.shots = opt.shots.part(&sub)
 	}
 	var own Result
 	y, err := traceYear(ctx, &sub, opt, &own)

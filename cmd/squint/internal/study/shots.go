@@ -280,3 +280,20 @@ func (g *glareSink) develop(ctx context.Context, opt Options) error {
 		return nil
 	})
 }
+
+// part is the plan for some views and moments of the plan's own, in use or not as
+// they are asked for there.
+func (s *shotPlan) part(in *Input) *shotPlan {
+	few := &shotPlan{pixels: s.pixels, rank: s.rank, stood: s.stood, always: true, frame: make([]int, len(s.frame)), used: s.used}
+	for i := range few.frame {
+		few.frame[i] = -1
+	}
+	for _, m := range in.Climate.Moments {
+		if m.Occupied || s.frame[m.Step] >= 0 {
+			few.frame[m.Step] = len(few.records)
+			few.records = append(few.records, m.Step)
+		}
+	}
+	few.kept, few.of = make([]*Shots, len(in.Scene.Viewpoints)), make([]*scene.Scene, len(few.records))
+	return few
+}

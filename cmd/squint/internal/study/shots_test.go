@@ -115,8 +115,7 @@ func TestShotsShrink(t *testing.T) {
 
 // A roller that is drawn at some hours has parts that the raised one lacks: what
 // a view sees is told for each standing, in the numbers of that standing's own
-// scene. With a store, which opens eyes at all hours with daylight, hours out of
-// use have pictures too; without one they have none.
+// scene. Hours out of use have pictures too, with a store and without.
 func TestShotsOfWhatMoves(t *testing.T) {
 	fsys := operatedRoom(operatedRoller + "[[control]]\nname = \"by glare\"\nsystems = [\"roller\"]\nrule = \"glare\"\ndgp_limit = 0.4\nhysteresis = 0\n")
 	fsys["site.epw"] = &fstest.MapFile{Data: tinyYear(t)}
@@ -169,6 +168,47 @@ func TestShotsOfWhatMoves(t *testing.T) {
 			if slices.Max(shown) <= 1 && r.Climate.SinAltitude[h] > 0.2 {
 				t.Errorf("record %d: got a black picture, want one of a room in daylight", h)
 			}
+		}
+	}
+}
+
+// Of a standing that no hour in use has, the records hold pictures alone: they
+// show the room all the same, and what is seen in it.
+func TestShotsOfNobody(t *testing.T) {
+	text := fmt.Sprintf(tinyProject, 0.8) + operatedRoller + "[[control]]\nname = \"c\"\nsystems = [\"roller\"]\nrule = \"timetable\"\ntimetable = [{ from = \"10:00\", to = \"13:00\", state = \"drawn\" }]\n"
+	text = replaceOnce(text, `glare = "medium"`, `glare = "none"`)
+	in := prepared(t, fstest.MapFS{"project.toml": {Data: []byte(text)}, "room.obj": {Data: []byte(tinyRoom())}})
+	r, err := Run(t.Context(), in, Options{Workers: 2, Shots: true, Store: memory{}, Program: "test", Bare: true})
+	if err != nil {
+		t.Fatal(err)
+	}
+	s := r.Views[0].Shots
+	if len(s.Stood) != 2 || len(s.Stood[0].Seen) == 0 || len(s.Stood[1].Seen) == 0 || s.Film.Points == 0 {
+		t.Fatalf("got pictures of %d points and %d standings, want both standings seen", s.Film.Points, len(s.Stood))
+	}
+	shown := make([]float64, s.Film.Points)
+	for i, h := range s.Records {
+		if s.Film.At(i, shown); slices.Max(shown) <= 1 && r.Climate.SinAltitude[h] > 0.2 {
+			t.Fatalf("record %d: got a black picture, want one of a room in daylight", h)
+		}
+	}
+}
+
+// A part of a plan keeps the whole's frames whatever its own size, for moments in
+// use and out of use.
+func TestShotPlanPart(t *testing.T) {
+	in := tiny(t, 2, 1024)
+	whole := newShotPlan(in)
+	few := *in
+	few.Climate = &scene.Climate{SinAltitude: in.Climate.SinAltitude, Moments: in.Climate.Moments[3:9]}
+	few.Scene = &scene.Scene{Viewpoints: make([]scene.Viewpoint, 100)} // more than have pictures out of use
+	part := whole.part(&few)
+	if len(part.records) != 6 || part.pixels != whole.pixels {
+		t.Errorf("got %d frames of %d pixels, want 6 of %d", len(part.records), part.pixels, whole.pixels)
+	}
+	for k, m := range few.Climate.Moments {
+		if part.frame[m.Step] != k {
+			t.Errorf("moment %d: got frame %d, want %d", k, part.frame[m.Step], k)
 		}
 	}
 }

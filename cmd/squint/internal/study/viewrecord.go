@@ -98,6 +98,9 @@ func (v *viewRecord) learn(y *year, j int, moments []*scene.Moment, shots *shotP
 	var kept *Shots
 	if shots != nil {
 		kept = shots.kept[j]
+		if kept != nil { // no hour in use may be among the moments
+			v.View, v.Seen, v.Inside = kept.Eye, kept.Stood[0].Seen, kept.SeenInside
+		}
 		if v.Pixels != shots.pixels {
 			for i := range v.Hours {
 				v.Hours[i].Shot, v.Hours[i].Discs = film.Frame{}, nil
@@ -184,7 +187,7 @@ func (y *year) readView(s *shelf, i int, r *Result) {
 		}
 	}
 	t := x.top(s.pictured(i))
-	if t == nil || v.Worst != nil && !brighter(t.DGP, t.Hour, v.Worst) {
+	if t == nil || v.Worst != nil && !brighter(float64(v.DGP[t.Hour]), t.Hour, v.Worst) {
 		return
 	}
 	w := &Worst{DGP: t.DGP, Ev: t.Ev, StdErr: t.StdErr, Discs: t.Discs, InsideOf: eye, Lum: make([]float32, x.View.Width*x.View.Height)}

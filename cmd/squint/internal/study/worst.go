@@ -63,3 +63,12 @@ func (v *ViewResult) show(w *Worst) {
 	}
 	v.Worst = w
 }
+
+// allViews are the numbers of the views.
+func (y *year) allViews() []int {
+	all := make([]int, len(y.glare.views))
+	for i := range all {
+		all[i] = i
+	}
+	return all
+}
