@@ -73,6 +73,7 @@ func (p *Plan) Report(l Losses) Report {
 }
 
 func (p *Plan) group(name string, chosen []Combination, view func(unit, state int) float64) GroupReport {
+	nothing := combination(make([]int, len(p.units))) // in the way, not even what always hangs
 	g := GroupReport{Group: name}
 	var members []int
 	for k, u := range p.units {
@@ -103,7 +104,7 @@ func (p *Plan) group(name string, chosen []Combination, view func(unit, state in
 		inUse += s.Share
 		if view != nil {
 			seen += s.Share * p.view(members, chosen[i], view)
-			whole += s.Share * p.view(members, p.Open(), view)
+			whole += s.Share * p.view(members, nothing, view)
 		}
 		if closed {
 			shaded += s.Share
