@@ -50,7 +50,8 @@ func TestPageOfHalfHours(t *testing.T) {
 			}
 		}
 	}
-	r.Climate = &c
+	c.SinAltitude, c.DiffuseLx = repeated(c.SinAltitude, n), repeated(c.DiffuseLx, n)
+	r.Climate, r.Calendar.PerHour = &c, n
 	r.Views = append(r.Views, floorView(r, 0, w, inside, 8, n))
 	var b bytes.Buffer
 	if err := page.Write(&b, []*page.Archive{page.Build(r, page.Words{Title: "Half hours", Outcome: "not met"})}, page.Options{}); err != nil {
@@ -132,6 +133,54 @@ func TestPageOfHalfHours(t *testing.T) {
 		t.Fatal(err)
 	}
 	keep(t, "page-half-hours.png", shot)
+}
+
+// repeated has each value n times in a row.
+func repeated(v []float64, n int) (out []float64) {
+	for _, x := range v {
+		for range n {
+			out = append(out, x)
+		}
+	}
+	return out
+}
+
+// Steps of five minutes are more than 16 bits count: late in the year too a
+// picture is that of its record.
+func TestPageOfFiveMinutes(t *testing.T) {
+	if testing.Short() {
+		t.Skip("starts a browser")
+	}
+	const n = 12
+	dir := t.TempDir()
+	r, w, inside := madeUpYear(t, dir, 24)
+	c := *r.Climate
+	c.Moments, r.Occupied, r.Standing = nil, nil, make([]int16, n*daylight.HoursPerYear)
+	for _, m := range r.Climate.Moments {
+		if !m.Occupied || m.Step*n < 1<<16 {
+			continue
+		}
+		for k := range n {
+			part := *m
+			part.Step, part.Time = n*m.Step+k, m.Time.Add(time.Duration(300*k-1650)*time.Second)
+			c.Moments, r.Occupied = append(c.Moments, &part), append(r.Occupied, part.Step)
+		}
+	}
+	c.SinAltitude, c.DiffuseLx = repeated(c.SinAltitude, n), repeated(c.DiffuseLx, n)
+	r.Climate, r.Calendar.PerHour = &c, n
+	r.Views = append(r.Views, floorView(r, 0, w, inside, 8, n))
+	var b bytes.Buffer
+	if err := page.Write(&b, []*page.Archive{page.Build(r, page.Words{Title: "Five minutes", Outcome: "not met"})}, page.Options{}); err != nil {
+		t.Fatal(err)
+	}
+	file := filepath.Join(dir, "page.html")
+	if err := os.WriteFile(file, b.Bytes(), 0o666); err != nil {
+		t.Fatal(err)
+	}
+	if first := r.Views[0].Shots.Records[0]; first < 1<<16 {
+		t.Fatalf("the first picture is of record %d: the test sees nothing", first)
+	}
+	readPictures(t, openTab(t, file), r.Views[0].Shots)
 }
 
 // readPictures reads luminances off the picture of the hour by keyboard, and wants

@@ -143,11 +143,11 @@ func (a *Archive) shots(f *film.Film, v *view.View, inside []int32, records []in
 		out.Pixels = v.Width
 		pack(&p, "inside", "u16", narrow(inside))
 	}
-	rises := make([]uint16, len(records))
+	rises := make([]uint32, len(records))
 	for i, before := 0, 0; i < len(records); i++ {
-		rises[i], before = uint16(records[i]-before), records[i]
+		rises[i], before = uint32(records[i]-before), records[i]
 	}
-	pack(&p, "rise", "u16", rises)
+	pack(&p, "rise", "u32", rises)
 	packSmall(&p, "mean", f.Mean)
 	sunny, changes := litChanges(f, records, 24*perHour)
 	pack(&p, "sunny", "u8", sunny)

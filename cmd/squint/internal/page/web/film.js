@@ -22,7 +22,7 @@ export function best(of) {
 // says how they are packed.
 function masks(n, shots, perDay) {
   let sum = 0;
-  n.record = Uint32Array.from(n.rise, (r) => (sum += r));
+  n.record = n.rise.map((r) => (sum += r));
   const row = Math.ceil(shots.points / 8), out = new Uint8Array(row * shots.frames), order = [...n.record.keys()];
   order.sort((a, b) => (n.record[a] % perDay) - (n.record[b] % perDay) || n.record[a] - n.record[b]);
   const mask = new Uint8Array(row);
