@@ -201,7 +201,7 @@ func Compare(w io.Writer, all []Design, dir string, elapsed time.Duration) error
 	p.gap()
 	p.para(2, "Glare: viewpoints at which the criterion is met, and the share of the hours in use over its limit at the worst. "+
 		"Light at rear: hours in use with 300 lx or more at the third of the sensors furthest from the glass, mean. "+
-		"sDA 300/50 % unshaded and ASE 1000/250 of the work plane.")
+		"sDA 300/50 % with each design's sun protection as it stands or is operated, ASE 1000/250 with open blinds; each summary names them.")
 	for _, d := range all {
 		q := compared(d)
 		p.gap()
