@@ -53,15 +53,7 @@ func TestPageOfHalfHours(t *testing.T) {
 	c.SinAltitude, c.DiffuseLx = repeated(c.SinAltitude, n), repeated(c.DiffuseLx, n)
 	r.Climate, r.Calendar.PerHour = &c, n
 	r.Views = append(r.Views, floorView(r, 0, w, inside, 8, n))
-	var b bytes.Buffer
-	if err := page.Write(&b, []*page.Archive{page.Build(r, page.Words{Title: "Half hours", Outcome: "not met"})}, page.Options{}); err != nil {
-		t.Fatal(err)
-	}
-	file := filepath.Join(dir, "page.html")
-	if err := os.WriteFile(file, b.Bytes(), 0o666); err != nil {
-		t.Fatal(err)
-	}
-	tab := openTab(t, file)
+	tab := openPage(t, dir, r)
 	if got := eval[string](t, tab, "document.getElementById('pick-hour').max"); got != "47" {
 		t.Errorf("the hour's slider ends at %s, want 47", got)
 	}
@@ -135,6 +127,20 @@ func TestPageOfHalfHours(t *testing.T) {
 	keep(t, "page-half-hours.png", shot)
 }
 
+// openPage opens the page of a year that was made up.
+func openPage(t *testing.T, dir string, r *study.Result) *tab {
+	t.Helper()
+	var b bytes.Buffer
+	if err := page.Write(&b, []*page.Archive{page.Build(r, page.Words{Title: "Made up", Outcome: "not met"})}, page.Options{}); err != nil {
+		t.Fatal(err)
+	}
+	file := filepath.Join(dir, "page.html")
+	if err := os.WriteFile(file, b.Bytes(), 0o666); err != nil {
+		t.Fatal(err)
+	}
+	return openTab(t, file)
+}
+
 // repeated has each value n times in a row.
 func repeated(v []float64, n int) (out []float64) {
 	for _, x := range v {
@@ -169,18 +175,10 @@ func TestPageOfFiveMinutes(t *testing.T) {
 	c.SinAltitude, c.DiffuseLx = repeated(c.SinAltitude, n), repeated(c.DiffuseLx, n)
 	r.Climate, r.Calendar.PerHour = &c, n
 	r.Views = append(r.Views, floorView(r, 0, w, inside, 8, n))
-	var b bytes.Buffer
-	if err := page.Write(&b, []*page.Archive{page.Build(r, page.Words{Title: "Five minutes", Outcome: "not met"})}, page.Options{}); err != nil {
-		t.Fatal(err)
-	}
-	file := filepath.Join(dir, "page.html")
-	if err := os.WriteFile(file, b.Bytes(), 0o666); err != nil {
-		t.Fatal(err)
-	}
 	if first := r.Views[0].Shots.Records[0]; first < 1<<16 {
 		t.Fatalf("the first picture is of record %d: the test sees nothing", first)
 	}
-	readPictures(t, openTab(t, file), r.Views[0].Shots)
+	readPictures(t, openPage(t, dir, r), r.Views[0].Shots)
 }
 
 // readPictures reads luminances off the picture of the hour by keyboard, and wants

@@ -11,22 +11,30 @@ import (
 	"unicode/utf8"
 )
 
-// sensitivityOf checks the small project, edited, with its finishes varied.
-func sensitivityOf(t *testing.T, project string) (string, sensitivityFile) {
+// checkSmall checks the small project, edited, and returns what it says and its
+// folder of results.
+func checkSmall(t *testing.T, project string, flags ...string) (*bytes.Buffer, string) {
 	t.Helper()
 	dir := t.TempDir()
 	if err := writeSmall(dir); err != nil {
 		t.Fatal(err)
 	}
-	name := filepath.Join(dir, "project.toml")
+	name, results := filepath.Join(dir, "project.toml"), filepath.Join(dir, "r")
 	if err := os.WriteFile(name, []byte(project), 0o666); err != nil {
 		t.Fatal(err)
 	}
 	var out, errs bytes.Buffer
-	if st := run(t.Context(), testHost(&out, &errs), []string{"check", name, "--sensitivity", "--out", filepath.Join(dir, "r")}); st != statusDone {
+	if st := run(t.Context(), testHost(&out, &errs), append([]string{"check", name, "--out", results}, flags...)); st != statusDone {
 		t.Fatalf("status %d: %s", st, errs.String())
 	}
-	data, err := os.ReadFile(filepath.Join(dir, "r", "sensitivity.json"))
+	return &out, results
+}
+
+// sensitivityOf checks the small project, edited, with its finishes varied.
+func sensitivityOf(t *testing.T, project string) (string, sensitivityFile) {
+	t.Helper()
+	out, results := checkSmall(t, project, "--sensitivity")
+	data, err := os.ReadFile(filepath.Join(results, "sensitivity.json"))
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -34,7 +42,7 @@ func sensitivityOf(t *testing.T, project string) (string, sensitivityFile) {
 	if err := json.Unmarshal(data, &f); err != nil {
 		t.Fatal(err)
 	}
-	summary, err := os.ReadFile(filepath.Join(dir, "r", "summary.json"))
+	summary, err := os.ReadFile(filepath.Join(results, "summary.json"))
 	if err != nil || !strings.Contains(string(summary), `"sensitivity.json"`) {
 		t.Errorf("summary.json does not list sensitivity.json: %v", err)
 	}
@@ -54,19 +62,8 @@ type sensitivityFile struct {
 // leastFactor is the daylight factor of the darkest sensor, by a check.
 func leastFactor(t *testing.T, project string) float64 {
 	t.Helper()
-	dir := t.TempDir()
-	if err := writeSmall(dir); err != nil {
-		t.Fatal(err)
-	}
-	name := filepath.Join(dir, "project.toml")
-	if err := os.WriteFile(name, []byte(project), 0o666); err != nil {
-		t.Fatal(err)
-	}
-	var out, errs bytes.Buffer
-	if st := run(t.Context(), testHost(&out, &errs), []string{"check", name, "--out", filepath.Join(dir, "r")}); st != statusDone {
-		t.Fatalf("status %d: %s", st, errs.String())
-	}
-	data, err := os.ReadFile(filepath.Join(dir, "r", "summary.json"))
+	_, results := checkSmall(t, project)
+	data, err := os.ReadFile(filepath.Join(results, "summary.json"))
 	if err != nil {
 		t.Fatal(err)
 	}
