@@ -111,18 +111,26 @@ func newShotPlan(in *Input) *shotPlan {
 			break
 		}
 	}
+	for _, m := range in.Climate.Moments {
+		s.used[m.Step] = m.Occupied
+	}
+	s.enlist(in, func(int) bool { return s.always })
+	return s
+}
+
+// enlist numbers the frames of an input's moments: those in use, and others that
+// are wanted too.
+func (s *shotPlan) enlist(in *Input, wanted func(step int) bool) {
 	for i := range s.frame {
 		s.frame[i] = -1
 	}
 	for _, m := range in.Climate.Moments {
-		s.used[m.Step] = m.Occupied
-		if m.Occupied || s.always {
+		if m.Occupied || wanted(m.Step) {
 			s.frame[m.Step] = len(s.records)
 			s.records = append(s.records, m.Step)
 		}
 	}
 	s.kept, s.of = make([]*Shots, len(in.Scene.Viewpoints)), make([]*scene.Scene, len(s.records))
-	return s
 }
 
 // open makes room for one view's pictures.
@@ -285,15 +293,6 @@ func (g *glareSink) develop(ctx context.Context, opt Options) error {
 // they are asked for there.
 func (s *shotPlan) part(in *Input) *shotPlan {
 	few := &shotPlan{pixels: s.pixels, rank: s.rank, stood: s.stood, always: true, frame: make([]int, len(s.frame)), used: s.used}
-	for i := range few.frame {
-		few.frame[i] = -1
-	}
-	for _, m := range in.Climate.Moments {
-		if m.Occupied || s.frame[m.Step] >= 0 {
-			few.frame[m.Step] = len(few.records)
-			few.records = append(few.records, m.Step)
-		}
-	}
-	few.kept, few.of = make([]*Shots, len(in.Scene.Viewpoints)), make([]*scene.Scene, len(few.records))
+	few.enlist(in, func(step int) bool { return s.frame[step] >= 0 })
 	return few
 }
